@@ -1,0 +1,1 @@
+export default defineConfig({ dialect: 'sqlite', schema: './db/schema/*.ts', out: './db/migrations' });

@@ -1,0 +1,14 @@
+import { spawn } from 'node:child_process';
+import { chmodSync } from 'node:fs';
+import { build, context } from 'esbuild';
+const options = {
+  entryPoints: { server: 'server/main.ts', cli: 'server/cli/main.ts', 'render.worker': 'server/packs/render.worker.ts' },
+  outdir: 'build', outExtension: { '.js': '.mjs' }, bundle: true, platform: 'node', target: 'node20', format: 'esm',
+  packages: 'external', sourcemap: true, banner: { js: '#!/usr/bin/env node' }, logLevel: 'warning',
+};
+await build(options);
+chmodSync('build/cli.mjs', 0o755);
+if (process.argv.includes('--watch')) {
+  await (await context(options)).watch();
+  spawn(process.execPath, ['--watch', '--enable-source-maps', 'build/server.mjs'], { stdio: 'inherit' });
+}
