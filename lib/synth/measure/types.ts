@@ -1,0 +1,118 @@
+/** Shapes of the measures. Every power is a mean of |x|² in the units of the samples it was taken of; every dB is 10 lg of a power ratio. */
+
+/** One symbol's share of the frame on the interpolated waveform; made by `createSymbolTally`, filled by `tallySymbol`. */
+export interface SymbolTally {
+  /** Σ|x|² over the symbol's own span (prefix with its ramps, useful part) as an unevaluated sum hi + lo. */
+  sumHi: number;
+  sumLo: number;
+  /** Largest |x|² in that span, and where it stands, in samples after the span's first. */
+  peakPower: number;
+  peakAt: number;
+  /** Samples in the span. */
+  samples: number;
+  /** The useful part alone: its own mean and its own largest |x|². A silent symbol has both 0. */
+  usefulMeanPower: number;
+  usefulPeakPower: number;
+  /** First bin of `counts` in the frame's histogram. */
+  firstBin: number;
+  /** Samples by power, `tallyBins` of them; what is weaker than the first bin is counted in it. */
+  counts: Uint32Array;
+}
+
+/** What the frame's tallies say together. */
+export interface FramePower {
+  /** Mean and largest |x|² over the active spans, gap and pad out; the figures in dB are null when nothing is painted. */
+  meanPower: number;
+  peakPower: number;
+  paprDb: number | null;
+  /** The slot (repeat · L + symbol) that holds the peak, and the sample within its span. */
+  peakSlot: number;
+  peakAt: number;
+  /** The same over symbols that are not silent. */
+  activeMeanPower: number;
+  activePaprDb: number | null;
+  samples: number;
+}
+
+/** Samples by |x|²: bin b holds powers from `powerOfBin(b)` up to `powerOfBin(b + 1)`, 32 bins an octave. */
+export interface PowerHistogram {
+  counts: Float64Array;
+  total: number;
+}
+
+/** A curve: the part of the samples (or symbols) that lies above `thresholdsDb`, 0…1. */
+export interface CcdfCurve {
+  thresholdsDb: Float64Array;
+  probability: Float64Array;
+}
+
+export type WindowKind = 'rectangular' | 'hann' | 'hamming' | 'blackman' | 'blackmanHarris' | 'nuttall' | 'flatTop';
+
+export interface WindowTable {
+  kind: WindowKind;
+  /** Periodic form, `weights.length` points. */
+  weights: Float64Array;
+  /** Equivalent noise bandwidth in bins: n·Σw²/(Σw)². */
+  enbwBins: number;
+  /** Σw/n. */
+  coherentGain: number;
+}
+
+/** A density over a whole sample clock, lowest frequency first: bin i stands at (i − ⌊n/2⌋)·binHz, and Σ density · binHz = mean power. */
+export interface Spectrum {
+  density: Float64Array;
+  binHz: number;
+  window: WindowKind;
+  /** Resolution bandwidth: ENBW · binHz. */
+  rbwHz: number;
+  segments: number;
+}
+
+export interface OccupiedBand {
+  lowHz: number;
+  highHz: number;
+  widthHz: number;
+}
+
+export interface ReconstructedPeak {
+  /** Largest |x|² of the interpolated samples, and its place in samples of the file (eighths). */
+  power: number;
+  atSample: number;
+  method: 'exactTransforms' | 'polyphaseFilter';
+  /** The method in words for manifest and card. */
+  words: string;
+  factor: 8;
+  /** Taps a side of the filter; null for the exact method. */
+  tapsEachSide: number | null;
+}
+
+/** How an EVM was taken; stands beside every figure. */
+export interface EvmRecipe {
+  cells: string;
+  estimate: 'none' | 'oneGain' | 'tapPerSubcarrier' | 'tapFromPilots';
+  phaseTracking: 'none' | 'perSymbol';
+  /** Where the transform begins, in samples of the file after the symbol's prefix began. */
+  dftWindow: string;
+  frames: number;
+  /** Symbols behind each estimated tap, for the bias of least squares; null where no bias is known. */
+  symbolsPerTap: number | null;
+}
+
+export interface EvmFigure {
+  /** √(Σ|Y/Ĥ − X|² / Σ|X|²), 0…; null when no energy was meant or nothing was compared. */
+  ratio: number | null;
+  db: number | null;
+  /** The figure before the bias of the fit is taken out. */
+  uncorrectedDb: number | null;
+  cells: number;
+}
+
+export interface EvmReport {
+  all: EvmFigure;
+  byInk: EvmFigure[];
+  bySymbol: EvmFigure[];
+  bySubcarrier: EvmFigure[];
+  /** Normalised correlation of what was meant and what was found, 0…1. */
+  correlation: number;
+  recipe: EvmRecipe;
+}
