@@ -1,0 +1,75 @@
+import { parseArgs } from 'node:util';
+
+export type Command =
+  | { name: 'help' }
+  | { name: 'version' }
+  | { name: 'render'; document: string; bench: string; out: string | null; json: boolean }
+  | { name: 'verify'; pack: string; json: boolean }
+  | { name: 'inspect'; document: string; json: boolean };
+
+export type Parsed = { ok: true; command: Command } | { ok: false; message: string; json: boolean };
+
+export const helpText = `combwright: from a waveform document to a proven vector
+
+  combwright render <document.json> <bench.json> [--out <pack.zip>]
+      Renders the document for the bench profile, reads the finished file back,
+      proves it and writes the pack (a draft). Without --out the pack gets its own
+      name in the current folder.
+  combwright verify <pack.zip>
+      Reads a pack again: every digest, and every word against a new synthesis.
+  combwright inspect <document.json>
+      Prints the document's figures and digests.
+
+  --json      one JSON object on standard output instead of lines
+  --help      this text
+  --version   the program's and its arithmetic's version
+
+  Exit code: 0 done, 1 refused or failed (the reason on standard error, with the
+  place in the document), 2 the command line itself is wrong.
+`;
+
+const options = {
+  out: { type: 'string' },
+  json: { type: 'boolean' },
+  help: { type: 'boolean', short: 'h' },
+  version: { type: 'boolean' },
+} as const;
+
+/** Reads the command line (without node and script). Unknown options and a wrong count of files are usage errors. */
+export function parseCommand(argv: string[]): Parsed {
+  const json = argv.includes('--json');
+  const wrong = (message: string): Parsed => ({ ok: false, message, json });
+  let values: { out?: string; json?: boolean; help?: boolean; version?: boolean };
+  let positionals: string[];
+  try {
+    ({ values, positionals } = parseArgs({ args: argv, options, allowPositionals: true, strict: true }));
+  } catch (error) {
+    return wrong((error as Error).message.split('. ')[0] ?? 'The command line could not be read');
+  }
+  if (values.help) return { ok: true, command: { name: 'help' } };
+  if (values.version) return { ok: true, command: { name: 'version' } };
+  const [name, ...files] = positionals;
+  if (name === undefined) return wrong('A command is missing: render, verify or inspect');
+  if (name !== 'render' && values.out !== undefined) return wrong('--out belongs to render');
+  switch (name) {
+    case 'render': {
+      const [document, bench] = files;
+      if (document === undefined || bench === undefined || files.length > 2)
+        return wrong('render takes a document and a bench profile');
+      if (values.out === '') return wrong('--out needs a file name');
+      return { ok: true, command: { name, document, bench, out: values.out ?? null, json } };
+    }
+    case 'verify': {
+      const [pack] = files;
+      if (pack === undefined || files.length > 1) return wrong('verify takes one pack');
+      return { ok: true, command: { name, pack, json } };
+    }
+    case 'inspect': {
+      const [document] = files;
+      if (document === undefined || files.length > 1) return wrong('inspect takes one document');
+      return { ok: true, command: { name, document, json } };
+    }
+    default:
+      return wrong(`There is no command "${name.slice(0, 40)}"`);
+  }
+}
