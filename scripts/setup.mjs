@@ -74,10 +74,23 @@ once('node_modules/.stamp', hash(['package-lock.json', 'tools']) + process.versi
 });
 
 // 2. the drawing engine's module into public/, which git ignores there
-once('public/.stamp', hash(['scripts/copy-assets.mjs', 'package-lock.json']), () => run('node', 'scripts/copy-assets.mjs'));
+once('public/.stamp', hash(['scripts/copy-assets.mjs', 'package-lock.json']), () =>
+  run('node', 'scripts/copy-assets.mjs'),
+);
 
 // 3. web app: exported beside the old one, then swapped in
-const web = ['app', 'components', 'lib', 'assets', 'public', 'app.json', 'babel.config.js', 'metro.config.js', 'tsconfig.json', 'package-lock.json'];
+const web = [
+  'app',
+  'components',
+  'lib',
+  'assets',
+  'public',
+  'app.json',
+  'babel.config.js',
+  'metro.config.js',
+  'tsconfig.json',
+  'package-lock.json',
+];
 once('dist/.stamp', hash([...web, 'scripts/compress.mjs']), () => {
   run(bin('expo'), 'export', '--platform', 'web', '--output-dir', 'dist.next');
   run('node', 'scripts/compress.mjs', 'dist.next');
