@@ -1,12 +1,13 @@
 import { z } from 'zod';
-import type { BenchProfile } from '@/lib/synth/types';
+import type { benchProfileSchema } from '@/lib/document/benchSchema';
+import { parseBenchProfile } from '@/lib/document/parse';
+import { benchWarningSchema } from './benchWarnings';
 import { personRefSchema, timeMsSchema, ulidSchema } from './common';
 import { defineEndpoint } from './endpoint';
-import { issueSchema } from './problem';
 
 /** Checked by lib/document on both sides. */
 export const wireBenchProfileSchema = z
-  .custom<BenchProfile>(
+  .custom<z.infer<typeof benchProfileSchema>>(
     (value) =>
       typeof value === 'object' && value !== null && (value as { format?: unknown }).format === 'combwright.bench',
     'is not a bench profile',
@@ -44,7 +45,7 @@ export const benchSchema = z
     versions: z.array(benchVersionSchema),
     shown: z.object({ version: z.number().int().positive(), profile: wireBenchProfileSchema }),
     /** Contradictions of the shown version: it may be saved and used, the words say what will not work. */
-    warnings: z.array(issueSchema),
+    warnings: z.array(benchWarningSchema),
   })
   .meta({ id: 'Bench' });
 export type Bench = z.infer<typeof benchSchema>;
@@ -78,6 +79,7 @@ export const createBench = defineEndpoint({
   access: 'writeBenches',
   summary: 'A new bench profile, version 1',
   body: wireBenchProfileSchema,
+  checkBody: parseBenchProfile,
   idempotent: true,
   response: benchSchema,
   status: 201,
@@ -93,7 +95,10 @@ export const saveBench = defineEndpoint({
   params: benchParams,
   query: z.strictObject({ afterVersion: z.coerce.number().int().positive() }),
   body: wireBenchProfileSchema,
+  checkBody: parseBenchProfile,
   idempotent: true,
   response: benchSchema,
   status: 201,
 });
+
+export const benchEndpoints = [listBenches, showBench, createBench, saveBench] as const;

@@ -166,3 +166,13 @@ export const withdrawEdition = defineEndpoint({
   body: z.strictObject({ reason: reasonSchema }),
   response: editionSchema,
 });
+
+export const reviewEndpoints = [
+  askForReview,
+  showReview,
+  takeBackReview,
+  returnRevision,
+  releaseRevision,
+  showEdition,
+  withdrawEdition,
+] as const;

@@ -1,27 +1,35 @@
 import { z } from 'zod';
-import type { WaveformDocument } from '@/lib/synth/types';
+import type { waveformDocumentSchema } from '@/lib/document/waveformSchema';
 import { personRefSchema, timeMsSchema, ulidSchema } from './common';
 import { defineEndpoint, DOCUMENT_BODY_BYTES } from './endpoint';
 import { editionSchema, openReviewSchema, revisionPointSchema, revisionStateSchema, stateStampSchema } from './reviews';
+import { checkSavedDocument, revisionNumbersSchema, savedDocumentSchema } from './savedDocument';
 
-/** What the numbers and the grid say at once, without synthesis. Absent parts are null: an empty grid has no span. */
-export const revisionNumbersSchema = z
+/** lib/drawing's small picture of a grid: blocks of equal look, fills mixed by area in sixteenths; drawn with the theme's fills. */
+export const gridPictureSchema = z
   .object({
-    fftSize: z.number().int(),
-    subcarrierSpacingHz: z.tuple([z.number(), z.number()]),
-    symbolCount: z.number().int(),
-    oversampling: z.number().int(),
-    /** N · M · spacing. */
-    sampleClockHz: z.number(),
-    /** From the lower edge of the lowest painted subcarrier to the upper edge of the highest one. */
-    paintedSpanHz: z.number().nullable(),
-    lowestSubcarrier: z.number().int().nullable(),
-    highestSubcarrier: z.number().int().nullable(),
-    /** Samples of the rendered file. */
-    fileSamples: z.number().int(),
+    columns: z.number().int(),
+    rowCount: z.number().int(),
+    styles: z.array(
+      z.enum([
+        'null',
+        'bpsk',
+        'pi2bpsk',
+        'qpsk',
+        'qam16',
+        'qam64',
+        'qam256',
+        'qam1024',
+        'qam4096',
+        'pilot',
+        'tone',
+        'reserved',
+      ]),
+    ),
+    looks: z.array(z.array(z.number().int())),
+    rows: z.array(z.object({ height: z.number().int(), runs: z.array(z.number().int()) })),
   })
-  .meta({ id: 'RevisionNumbers' });
-export type RevisionNumbers = z.infer<typeof revisionNumbersSchema>;
+  .meta({ id: 'GridPicture' });
 
 /** What only a synthesis tells. Levels are of the interpolated frame; null where nothing is sent (an empty grid). */
 export const measuredFiguresSchema = z
@@ -37,6 +45,8 @@ export type MeasuredFigures = z.infer<typeof measuredFiguresSchema>;
 export const revisionFiguresSchema = z
   .object({
     numbers: revisionNumbersSchema,
+    /** Null for the moment that a large grid takes to be drawn small. */
+    picture: gridPictureSchema.nullable(),
     measured: measuredFiguresSchema.nullable(),
     measureFailed: z.string().nullable(),
   })
@@ -140,7 +150,7 @@ export const listWaveforms = defineEndpoint({
 
 /** Checked by lib/document where it enters and where it is opened, not by zod on the wire: an 8 MB grid would cost seconds. */
 export const wireDocumentSchema = z
-  .custom<WaveformDocument>(
+  .custom<z.infer<typeof waveformDocumentSchema>>(
     (value) =>
       typeof value === 'object' && value !== null && (value as { format?: unknown }).format === 'combwright.waveform',
     'is not a waveform document',
@@ -157,7 +167,8 @@ export const createWaveform = defineEndpoint({
   access: 'saveWaveforms',
   summary: 'A new waveform from a whole document; a copy or an import names its source',
   query: z.strictObject({ sourceRevisionId: ulidSchema.optional() }),
-  body: wireDocumentSchema,
+  body: savedDocumentSchema,
+  checkBody: checkSavedDocument,
   bodyBytesMost: DOCUMENT_BODY_BYTES,
   idempotent: true,
   response: waveformSchema,
@@ -209,7 +220,8 @@ export const saveRevision = defineEndpoint({
   summary: 'Save the whole document as the revision after its parent',
   params: waveformParams,
   query: z.strictObject({ parentId: ulidSchema }),
-  body: wireDocumentSchema,
+  body: savedDocumentSchema,
+  checkBody: checkSavedDocument,
   bodyBytesMost: DOCUMENT_BODY_BYTES,
   idempotent: true,
   response: saveAnswerSchema,
@@ -260,3 +272,14 @@ export const exportDocument = defineEndpoint({
   response: z.never(),
   file: { mediaType: 'application/json' },
 });
+
+export const waveformEndpoints = [
+  listWaveforms,
+  createWaveform,
+  showWaveform,
+  listRevisions,
+  saveRevision,
+  showRevision,
+  showRevisionFigures,
+  exportDocument,
+] as const;

@@ -12,7 +12,12 @@ export function canonicalJson(value: unknown): string {
 
 /** `sha256:` and the hexadecimal SHA-256 of a value's canonical JSON. */
 export function digestOf(value: unknown): string {
-  return `sha256:${bytesToHex(sha256(utf8ToBytes(canonicalJson(value))))}`;
+  return digestOfCanonical(canonicalJson(value));
+}
+
+/** The same of text that is canonical JSON already. */
+export function digestOfCanonical(text: string): string {
+  return `sha256:${bytesToHex(sha256(utf8ToBytes(text)))}`;
 }
 
 export const contentDigest = (content: WaveformContent): string => digestOf(content);

@@ -1,0 +1,70 @@
+import { z } from 'zod';
+import { ulidSchema } from './common';
+import { defineEndpoint } from './endpoint';
+import { issueSchema } from './problem';
+
+/** A plain change of the document; the editor makes it a patch. */
+const plainChangeSchema = z.object({ pointer: z.string(), before: z.unknown(), after: z.unknown() });
+
+export const fitFindingSchema = z
+  .object({
+    check: z.enum([
+      'clock',
+      'granularity',
+      'leastLength',
+      'memory',
+      'mode',
+      'word',
+      'markers',
+      'seam',
+      'toneJump',
+      'payloadWrap',
+      'headroom',
+      'level',
+    ]),
+    title: z.string(),
+    measured: z.number().nullable(),
+    limit: z.number().nullable(),
+    unit: z.enum(['samples', 'Hz', 'dB', 'dBm', 'markers', 'turns', 'repeats', 'cells', 'components']).nullable(),
+    distance: z.number().nullable(),
+    verdict: z.enum(['meets', 'misses', 'cannotJudge']),
+    /** A miss refuses the pack. */
+    hard: z.boolean(),
+    byHowMuch: z.string(),
+    found: z.string(),
+    words: z.string(),
+    remedies: z.array(z.object({ label: z.string(), changes: z.array(plainChangeSchema), cost: z.string() })),
+  })
+  .meta({ id: 'FitFinding' });
+
+export const fitSchema = z
+  .object({
+    revisionId: ulidSchema,
+    bench: z.object({
+      benchId: ulidSchema,
+      version: z.number().int().positive(),
+      name: z.string(),
+      /** A newer version exists: check again. */
+      isNewest: z.boolean(),
+    }),
+    findings: z.array(fitFindingSchema),
+    /** Parts of the profile no pack can be written in yet; a pack is refused. */
+    notSupportedYet: z.array(issueSchema),
+    /** False while the levels are being rendered: headroom and level then cannot judge. */
+    isMeasured: z.boolean(),
+  })
+  .meta({ id: 'Fit' });
+export type Fit = z.infer<typeof fitSchema>;
+
+export const showFit = defineEndpoint({
+  name: 'showFit',
+  method: 'GET',
+  path: '/revisions/:revisionId/fit',
+  access: 'readWaveforms',
+  summary: 'A revision against a bench profile, its newest version unless asked',
+  params: z.object({ revisionId: ulidSchema }),
+  query: z.strictObject({ benchId: ulidSchema, version: z.coerce.number().int().positive().optional() }),
+  response: fitSchema,
+});
+
+export const fitEndpoints = [showFit] as const;

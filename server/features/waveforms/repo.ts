@@ -1,0 +1,52 @@
+import { eq } from 'drizzle-orm';
+import type { Queryable } from '@/db/openDatabase';
+import { users } from '@/db/schema/people';
+import { revisions, waveforms } from '@/db/schema/waveforms';
+
+export function insertWaveform(tx: Queryable, row: typeof waveforms.$inferInsert): void {
+  tx.insert(waveforms).values(row).run();
+}
+
+export function insertRevision(tx: Queryable, row: typeof revisions.$inferInsert): void {
+  tx.insert(revisions).values(row).run();
+}
+
+/** The waveform's title is its head's. */
+export function moveHead(tx: Queryable, waveformId: string, revisionId: string, title: string, nowMs: number): void {
+  tx.update(waveforms)
+    .set({ headRevisionId: revisionId, title, changedAtMs: nowMs })
+    .where(eq(waveforms.id, waveformId))
+    .run();
+}
+
+export type HeadRow = ReturnType<typeof listHeads>[number];
+
+/** Each waveform with its head and who saved it. */
+export function listHeads(db: Queryable) {
+  return db
+    .select({
+      waveformId: waveforms.id,
+      revisionId: revisions.id,
+      revisionNumber: revisions.number,
+      title: revisions.title,
+      contentDigest: revisions.contentDigest,
+      documentDigest: revisions.documentDigest,
+      authorId: revisions.authorId,
+      authorName: users.name,
+      createdAtMs: revisions.createdAtMs,
+    })
+    .from(waveforms)
+    .innerJoin(revisions, eq(revisions.id, waveforms.headRevisionId))
+    .innerJoin(users, eq(users.id, revisions.authorId))
+    .all();
+}
+
+/** Waveforms in which the person saved any revision. */
+export function waveformsOf(db: Queryable, personId: string): ReadonlySet<string> {
+  const rows = db
+    .selectDistinct({ waveformId: revisions.waveformId })
+    .from(revisions)
+    .where(eq(revisions.authorId, personId))
+    .all();
+  return new Set(rows.map((row) => row.waveformId));
+}
