@@ -15,7 +15,7 @@ export interface SymbolTally {
   usefulPeakPower: number;
   /** First bin of `counts` in the frame's histogram. */
   firstBin: number;
-  /** Samples by power, `tallyBins` of them; what is weaker than the first bin is counted in it. */
+  /** Samples by power from `firstBin` up (TALLY_BINS of them); what is weaker is counted in the first. */
   counts: Uint32Array;
 }
 
