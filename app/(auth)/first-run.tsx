@@ -1,0 +1,5 @@
+import { FirstRunScreen } from '@/components/screens/SignInScreen/FirstRunScreen';
+
+export default function Route() {
+  return <FirstRunScreen />;
+}

@@ -1,0 +1,5 @@
+import { SignInScreen } from '@/components/screens/SignInScreen/SignInScreen';
+
+export default function Route() {
+  return <SignInScreen />;
+}
