@@ -39,6 +39,9 @@ function quoted(values: readonly unknown[]): string {
   return values.map((value) => (typeof value === 'string' ? `"${value}"` : String(value))).join(', ');
 }
 
+const oneOf = (values: readonly unknown[]): string =>
+  values.length === 1 ? `must be ${quoted(values)}` : `must be one of ${quoted(values)}`;
+
 const typeWords: Record<string, string> = {
   number: 'a number',
   int: 'a whole number',
@@ -50,26 +53,25 @@ const typeWords: Record<string, string> = {
   null: 'null',
 };
 
+// Zod reports the wrong input itself only when asked to, and a contract's caller does not ask: its sentence names the type.
 function typeMessage(issue: Extract<RawIssue, { code: 'invalid_type' }>): string {
-  if (issue.input === undefined) return 'is missing';
-  if (typeof issue.input === 'number' && !Number.isFinite(issue.input)) return 'must be a finite number';
-  if ((issue.expected as string) === 'int' && typeof issue.input === 'number') return 'must be a whole number';
+  const received = /received (\S+)$/.exec(issue.message)?.[1];
+  if (received === 'undefined') return 'is missing';
+  if (received === 'NaN' || received === 'Infinity' || received === '-Infinity') return 'must be a finite number';
   return `must be ${typeWords[issue.expected] ?? issue.expected}`;
 }
 
 function sizeMessage(issue: Extract<RawIssue, { code: 'too_big' | 'too_small' }>): string {
-  const most = issue.code === 'too_big';
-  const limit = String(most ? issue.maximum : issue.minimum);
-  const strictly = issue.inclusive === false;
-  switch (issue.origin) {
-    case 'string':
-      return most ? `must have at most ${limit} characters` : `must have at least ${limit} characters`;
-    case 'array':
-      return most ? `must have at most ${limit} entries` : `must have at least ${limit} entries`;
-    default:
-      if (most) return strictly ? `must be less than ${limit}` : `must be at most ${limit}`;
-      return strictly ? `must be more than ${limit}` : `must be at least ${limit}`;
-  }
+  const isMost = issue.code === 'too_big';
+  const limit = String(isMost ? issue.maximum : issue.minimum);
+  const units: Record<string, [one: string, many: string]> = {
+    string: ['character', 'characters'],
+    array: ['entry', 'entries'],
+  };
+  const unit = units[issue.origin]?.[limit === '1' ? 0 : 1];
+  if (unit !== undefined) return `must have at ${isMost ? 'most' : 'least'} ${limit} ${unit}`;
+  if (issue.inclusive === false) return `must be ${isMost ? 'less' : 'more'} than ${limit}`;
+  return `must be at ${isMost ? 'most' : 'least'} ${limit}`;
 }
 
 function messageOf(issue: RawIssue): string {
@@ -80,10 +82,11 @@ function messageOf(issue: RawIssue): string {
     case 'too_small':
       return sizeMessage(issue);
     case 'invalid_value':
-      if (issue.input === undefined) return 'is missing';
-      return issue.values.length === 1 ? `must be ${quoted(issue.values)}` : `must be one of ${quoted(issue.values)}`;
+      return oneOf(issue.values);
     case 'invalid_union':
-      return issue.input === undefined ? 'is missing' : 'is no kind that this version knows';
+      return 'options' in issue && Array.isArray(issue.options)
+        ? oneOf(issue.options)
+        : 'is of no kind that this version knows';
     default:
       return issue.message;
   }
