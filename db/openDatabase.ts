@@ -23,7 +23,8 @@ export interface Store {
   close(): void;
 }
 
-export function openDatabase(file: string): Store {
+/** `onGone` hears of a vanished file once, so that the whole server can stop and not only the request that found it. */
+export function openDatabase(file: string, onGone?: () => void): Store {
   const sqlite = new Database(file);
   sqlite.pragma('journal_mode = WAL');
   sqlite.pragma('synchronous = FULL'); // an answered save survives a power cut
@@ -35,7 +36,9 @@ export function openDatabase(file: string): Store {
 
   function requireFile(): void {
     const found = statSync(file, { throwIfNoEntry: false });
-    if (found?.ino !== inode) throw new StoreGoneError(`The database file ${file} vanished or was replaced.`);
+    if (found?.ino === inode) return;
+    onGone?.();
+    throw new StoreGoneError(`The database file ${file} vanished or was replaced.`);
   }
 
   return {

@@ -11,6 +11,8 @@ export interface Lifecycle {
   readonly isStopping: boolean;
   /** Runs at the stop, newest first, within the 5 s that a stop may take. */
   onStop(task: () => void | Promise<void>): void;
+  /** Asks for the end of the process; the reason is said to whoever runs it. */
+  requestStop(reason: string): void;
 }
 
 /** Everything a service takes from outside; tests hand in a fake clock, a temporary directory and a quiet log. */
