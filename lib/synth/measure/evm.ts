@@ -1,0 +1,175 @@
+import { demand } from '../errors';
+import { log10 } from '../math/exponential';
+import type { EvmFigure, EvmRecipe, EvmReport } from './types';
+
+export interface EvmOptions {
+  fftSize: number;
+  symbolCount: number;
+  inkCount: number;
+  /** Inks (by number) whose cells are compared; every one with a meant value by default. Ink 0 never is. */
+  inks?: readonly number[];
+  /**
+   * Ĥ: `none` compares as found, `oneGain` fits one complex gain over all named cells, `taps` divides each subcarrier by its own
+   * (2·N, from `createTapEstimate` or known) first.
+   */
+  estimate:
+    | 'none'
+    | 'oneGain'
+    | { taps: Float64Array; from: 'tapPerSubcarrier' | 'tapFromPilots'; symbolsPerTap: number | null };
+  /** Words for the recipe. */
+  cellsWords?: string;
+  dftWindow?: string;
+}
+
+/** Compares found cells with meant ones and pools by power. */
+export interface EvmMeter {
+  /** One symbol of one frame: L symbols count from 0, `row` its N inks, `found` and `meant` 2·N values in position order. */
+  add(symbol: number, row: Uint8Array, found: Float64Array, meant: Float64Array): void;
+  /** Tells that a frame is complete (for the recipe alone). */
+  endFrame(): void;
+  report(): EvmReport;
+}
+
+/** Below this normalised correlation no EVM is told: what was found does not look like what was meant. */
+const LEAST_CORRELATION = 0.3;
+
+/** Places of the sums kept per group: Σ|D|², Re and Im ΣD·X*, Σ|X|², cells. D = Y/Ĥ₀ − X. */
+const PLACES = 5;
+
+/**
+ * EVM = √(Σ|Y/Ĥ − X|² / Σ|X|²) over the named cells, frames pooled by power, in all and per ink, symbol and subcarrier, each over its
+ * own Σ|X|². The sums are of D = Y − X, so that a fitted gain loses no digits however small the error: with g = 1 + ε,
+ * ε = ΣDX* / Σ|X|², a group's error is Σ|D − εX|² / |1 + ε|².
+ * A least-squares fit over S symbols takes a part 1/S of the error with it: corrected by −10 lg(1 − 1/S), both shown.
+ */
+export function createEvmMeter(options: EvmOptions): EvmMeter {
+  const { fftSize, symbolCount, inkCount, estimate } = options;
+  const taps = typeof estimate === 'object' ? estimate.taps : null;
+  const isNamed = new Uint8Array(256);
+  for (let ink = 1; ink < inkCount; ink++) isNamed[ink] = !options.inks || options.inks.includes(ink) ? 1 : 0;
+  demand(!taps || taps.length >= 2 * fftSize, 'buffer_too_small', 'One tap a subcarrier.');
+  const all = new Float64Array(PLACES);
+  const byInk = new Float64Array(PLACES * inkCount);
+  const bySymbol = new Float64Array(PLACES * symbolCount);
+  const bySubcarrier = new Float64Array(PLACES * fftSize);
+  let frames = 0;
+
+  const put = (into: Float64Array, at: number, error: number, re: number, im: number, meant: number): void => {
+    into[at] = into[at]! + error;
+    into[at + 1] = into[at + 1]! + re;
+    into[at + 2] = into[at + 2]! + im;
+    into[at + 3] = into[at + 3]! + meant;
+    into[at + 4] = into[at + 4]! + 1;
+  };
+
+  return {
+    add(symbol, row, found, meant) {
+      for (let p = 0; p < fftSize; p++) {
+        const ink = row[p]!;
+        if (isNamed[ink] === 0) continue;
+        const xRe = meant[2 * p]!;
+        const xIm = meant[2 * p + 1]!;
+        let yRe = found[2 * p]!;
+        let yIm = found[2 * p + 1]!;
+        if (taps) {
+          const hRe = taps[2 * p]!;
+          const hIm = taps[2 * p + 1]!;
+          const size = hRe * hRe + hIm * hIm;
+          if (size === 0) continue;
+          const re = (yRe * hRe + yIm * hIm) / size;
+          yIm = (yIm * hRe - yRe * hIm) / size;
+          yRe = re;
+        }
+        const dRe = yRe - xRe;
+        const dIm = yIm - xIm;
+        const error = dRe * dRe + dIm * dIm;
+        const re = dRe * xRe + dIm * xIm;
+        const im = dIm * xRe - dRe * xIm;
+        const size = xRe * xRe + xIm * xIm;
+        put(all, 0, error, re, im, size);
+        put(byInk, PLACES * ink, error, re, im, size);
+        put(bySymbol, PLACES * symbol, error, re, im, size);
+        put(bySubcarrier, PLACES * p, error, re, im, size);
+      }
+    },
+    endFrame() {
+      frames++;
+    },
+    report() {
+      const meantAll = all[3]!;
+      const fitted = estimate === 'oneGain' && meantAll > 0;
+      const gainRe = fitted ? all[1]! / meantAll : 0;
+      const gainIm = fitted ? all[2]! / meantAll : 0;
+      const foundAll = meantAll + 2 * all[1]! + all[0]!;
+      const cross = Math.sqrt((meantAll + all[1]!) * (meantAll + all[1]!) + all[2]! * all[2]!);
+      const correlation = meantAll > 0 && foundAll > 0 ? Math.min(1, cross / Math.sqrt(meantAll * foundAll)) : 0;
+      const symbolsPerTap = fitted ? all[4]! : typeof estimate === 'object' ? estimate.symbolsPerTap : null;
+      // one symbol a tap fits everything: nothing is left to correct
+      const kept = symbolsPerTap !== null && symbolsPerTap > 1 ? 1 - 1 / symbolsPerTap : 1;
+      const isTold = correlation >= LEAST_CORRELATION;
+      const figure = (sums: Float64Array, at: number): EvmFigure => {
+        const meant = sums[at + 3]!;
+        const cells = sums[at + 4]!;
+        if (meant === 0 || !isTold) return { ratio: null, db: null, uncorrectedDb: null, cells };
+        const left =
+          sums[at]! -
+          2 * (gainRe * sums[at + 1]! + gainIm * sums[at + 2]!) +
+          (gainRe * gainRe + gainIm * gainIm) * meant;
+        const power = Math.max(0, left) / ((1 + gainRe) * (1 + gainRe) + gainIm * gainIm) / meant;
+        return {
+          ratio: Math.sqrt(power / kept),
+          db: 10 * log10(power / kept),
+          uncorrectedDb: 10 * log10(power),
+          cells,
+        };
+      };
+      const group = (sums: Float64Array): EvmFigure[] =>
+        Array.from({ length: sums.length / PLACES }, (_, i) => figure(sums, PLACES * i));
+      const recipe: EvmRecipe = {
+        cells: options.cellsWords ?? 'all used cells',
+        estimate: typeof estimate === 'object' ? estimate.from : estimate,
+        phaseTracking: 'none',
+        dftWindow: options.dftWindow ?? 'the useful part, from its first sample',
+        frames,
+        symbolsPerTap,
+      };
+      return {
+        all: figure(all, 0),
+        byInk: group(byInk),
+        bySymbol: group(bySymbol),
+        bySubcarrier: group(bySubcarrier),
+        correlation,
+        recipe,
+      };
+    },
+  };
+}
+
+/** Least squares of one tap a subcarrier from known cells. */
+export interface TapEstimate {
+  /** One symbol; `known`: 1 for each position whose meant value may be used (2·N values each). */
+  add(known: Uint8Array, found: Float64Array, meant: Float64Array): void;
+  /** Ĥ_k = ΣYX* / Σ|X|², 0 where nothing is known. A new array of 2·N. */
+  taps(): Float64Array;
+}
+
+/** An empty estimate over `fftSize` subcarriers. */
+export function createTapEstimate(fftSize: number): TapEstimate {
+  const cross = new Float64Array(2 * fftSize);
+  const power = new Float64Array(fftSize);
+  return {
+    add(known, found, meant) {
+      for (let p = 0; p < fftSize; p++) {
+        if (known[p] === 0) continue;
+        const xRe = meant[2 * p]!;
+        const xIm = meant[2 * p + 1]!;
+        const yRe = found[2 * p]!;
+        const yIm = found[2 * p + 1]!;
+        cross[2 * p] = cross[2 * p]! + yRe * xRe + yIm * xIm;
+        cross[2 * p + 1] = cross[2 * p + 1]! + yIm * xRe - yRe * xIm;
+        power[p] = power[p]! + xRe * xRe + xIm * xIm;
+      }
+    },
+    taps: () => cross.map((value, i) => (power[i >> 1] === 0 ? 0 : value / power[i >> 1]!)),
+  };
+}
