@@ -18,3 +18,98 @@ export type {
 } from './measure/types';
 export type { FitCheck, FitFinding, FitVerdict, MeasuredLevels, PlainChange, Remedy } from './fit/types';
 export type { CardOverrides, CardReading, Caution, LevelCard } from './level/types';
+
+// synthesis, words, markers
+export { SynthError, type SynthErrorCode } from './errors';
+export {
+  sineCosine,
+  sineCosineOfFraction,
+  writeUnitOfFraction,
+  writeUnitOfTurns,
+  createRootsOfUnity,
+} from './math/turns';
+export { amplitudeOfDecibels, exponential, log10, logarithm, powerOfDecibels } from './math/exponential';
+export { createSum, type CompensatedSum } from './math/sums';
+export { bitsPerCell, isMapKnown, pointsOf } from './mapping/constellations';
+export { compressGrid, expandGrid, lowestSubcarrier } from './grid/grid';
+export { createBitSource, type BitSource } from './sequences/bitSource';
+export { createSequence, sequenceValue, type ValueSequence } from './sequences/sequence';
+export { createTransform, isFiveSmooth, type Transform } from './fft/transform';
+export { frameLayout, interpolationOf } from './synthesize/layout';
+export { createCellValues } from './synthesize/cellValues';
+export { createRamp } from './synthesize/ramp';
+export { createSymbolSynthesis } from './synthesize/symbolSynthesis';
+export { createSynthesis } from './synthesize/synthesis';
+export { createStatsCollector, interpolatedPeak, vectorStats, type StatsCollector } from './synthesize/vectorStats';
+export type {
+  CellValues,
+  FrameLayout,
+  RenderOptions,
+  SymbolSynthesis,
+  Synthesis,
+  VectorStats,
+} from './synthesize/types';
+export { fullScaleOf, wordScale } from './quantize/wordScale';
+export type { ReferenceLevels, SaturationCount, WordScale } from './quantize/types';
+export { createWordWriter, type WordWriter } from './files/wordWriter';
+export { createWordReader, type WordReader } from './files/wordReader';
+export { bytesPerSample } from './files/layout';
+export { markerBytes, markerRanges, type MarkerBytes, type MarkerRange } from './files/markers';
+export { synthVersion } from './version';
+
+// figures and measures
+export {
+  createCellCensus,
+  deriveFigures,
+  type CellCensus,
+  type DerivedFigures,
+  type ExactFraction,
+} from './numerology';
+export { pilotReach, type PilotReach, type ReachPair } from './measure/pilotReach';
+export {
+  createFrameTally,
+  createSymbolTally,
+  outstandingSymbols,
+  tallySymbol,
+  tallyTail,
+  type FrameTally,
+  type TallyOverlap,
+} from './measure/tally';
+export {
+  ccdfThresholds,
+  dbAtProbability,
+  gaussianCcdf,
+  gaussianSymbolCcdf,
+  sampleCcdf,
+  symbolCcdf,
+} from './measure/ccdf';
+export { createFrameMeasure, type FrameMeasure, type FrameMeasuring } from './measure/frameMeasure';
+export { createWindow } from './measure/window';
+export {
+  createWelch,
+  densityBetween,
+  frequencyOfBin,
+  occupiedBandwidth,
+  spectralNotch,
+  welchSegment,
+  welchSpectrum,
+  type SpectralNotch,
+  type WelchEstimate,
+  type WelchOptions,
+} from './measure/spectrum';
+export {
+  createCellPower,
+  worstUnpaintedLine,
+  type CellNotch,
+  type CellPower,
+  type UnpaintedLine,
+} from './measure/cells';
+export { decimateEnvelope, decimateMinMax } from './measure/decimate';
+export {
+  createReconstructedPeak,
+  reconstructedPeak,
+  type PeakMeasuring,
+  type SampleSource,
+} from './measure/reconstructedPeak';
+export { createEvmMeter, createTapEstimate, type EvmMeter, type EvmOptions, type TapEstimate } from './measure/evm';
+export { createDemodulator, type Demodulator, type FoundSymbol } from './receive/demodulate';
