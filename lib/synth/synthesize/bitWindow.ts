@@ -1,0 +1,40 @@
+import type { BitSource } from '../sequences/bitSource';
+
+const AHEAD_WORDS = 512;
+
+/** A stretch of a bit source kept packed, so that small steps upwards do not ask the source each time. */
+export interface BitWindow {
+  /** Packed words, most significant bit first; valid after `hold`. One word more than was asked for may be read. */
+  words: Uint32Array;
+  /** Makes bits startBit…endBit−1 available and returns where in `words` (counted in bits) startBit lies. */
+  hold(startBit: number, endBit: number): number;
+}
+
+/** A window on `source`; it grows to the largest stretch asked for. */
+export function createBitWindow(source: BitSource): BitWindow {
+  let first = 0;
+  let held = 0;
+  const window: BitWindow = {
+    words: new Uint32Array(AHEAD_WORDS + 2),
+    hold(startBit, endBit) {
+      const from = Math.floor(startBit / 32);
+      const to = Math.floor((endBit + 31) / 32) + 1;
+      if (from < first || to > first + held) {
+        const count = Math.max(to - from, AHEAD_WORDS);
+        let kept = 0;
+        const old = window.words;
+        if (window.words.length < count) window.words = new Uint32Array(count);
+        if (from >= first && from < first + held) {
+          kept = first + held - from;
+          if (old === window.words) old.copyWithin(0, from - first, held);
+          else window.words.set(old.subarray(from - first, held));
+        }
+        if (kept < count) source.readWords(from + kept, count - kept, window.words, kept);
+        first = from;
+        held = count;
+      }
+      return startBit - 32 * first;
+    },
+  };
+  return window;
+}

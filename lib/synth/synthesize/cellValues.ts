@@ -1,0 +1,264 @@
+import { demand, SynthError } from '../errors';
+import { expandGrid, lowestSubcarrier } from '../grid/grid';
+import { createRootsOfUnity } from '../math/turns';
+import { createBitSource } from '../sequences/bitSource';
+import type { WaveformContent } from '../types';
+import { createBitWindow, type BitWindow } from './bitWindow';
+import { createCellCounts } from './counts';
+import { planInks, type InkPlan } from './inkPlan';
+import { frameLayout } from './layout';
+import { mapHalfTurningRun, mapRun } from './mapRun';
+import type { CellValues } from './types';
+
+const ANCHOR_BITS = 12; // an anchored cell's place in its source: room for 4096-QAM
+
+/** Where position p of a symbol goes: out[2·(low − p)] up to p = ⌊N/2⌋, then out[2·(high − p)]; or p itself. */
+export interface Placement {
+  split: number;
+  low: number;
+  high: number;
+  stride: 1 | -1;
+}
+
+/** What the renderer needs beside CellValues: values straight into a transform's input. */
+export interface PlacedValues extends CellValues {
+  /** Writes the values of the symbol's cells that are not silent; all others must be 0 already. */
+  writePlaced(repeat: number, symbol: number, out: Float64Array, placement: Placement): void;
+}
+
+/**
+ * The values of a content's cells. `cells` (L·N ink numbers, kept by reference and never changed here) replaces the
+ * content's grid. Every value is multiplied by `gain`.
+ * Throws SynthError `bad_content`, `bad_size`, `not_supported_yet` (peak reduction).
+ */
+export function createPlacedValues(
+  content: WaveformContent,
+  givenCells: Uint8Array | undefined,
+  gain: number,
+): PlacedValues {
+  const { fftSize, symbolCount, streams, timing, tray } = content;
+  const cells = givenCells ?? expandGrid(content.grid, fftSize);
+  demand(cells.length === fftSize * symbolCount, 'bad_size', 'Cells do not fill the grid.');
+  const inks = planInks(content, gain);
+  const counts = createCellCounts(cells, fftSize, symbolCount, inks);
+  const base = frameLayout({ ...content, oversampling: 1, timing: { ...timing, padSamples: 0 } }, 1);
+  const windows: (BitWindow | undefined)[] = streams.map(() => undefined);
+  const taken = new Float64Array(streams.length); // next bit of each running stream
+  const inkTaken = new Float64Array(tray.length); // next `cell` number of each ink
+  const inSymbol = new Int32Array(tray.length); // cells of each ink so far in this symbol
+  const values = new Float64Array(2 * fftSize);
+  const lowest = lowestSubcarrier(fftSize);
+  let roots: Float64Array | null = null;
+  const natural: Placement = { split: fftSize, low: 0, high: 0, stride: 1 };
+
+  function windowOf(stream: number): BitWindow {
+    return (windows[stream] ??= createBitWindow(createBitSource(streams[stream]!.source)));
+  }
+
+  /** Source bit of the first cell (running), or of position 0 (anchored), of a symbol. */
+  function firstBitOf(stream: number, repeat: number, symbol: number): number {
+    const { fill, acrossRepeats } = streams[stream]!;
+    const counted = acrossRepeats === 'continue' ? repeat : 0;
+    if (fill === 'anchored') return ANCHOR_BITS * (counted * symbolCount + symbol) * fftSize;
+    const before = counts.bitsBefore(symbol, stream);
+    return counted === 0 ? before : before + counted * counts.bitsBefore(symbolCount, stream);
+  }
+
+  /** Sets the running counters to the symbol's beginning, for the inks that stand in it. */
+  const isReady = new Uint8Array(tray.length);
+  const isStreamReady = new Uint8Array(streams.length);
+  function prepare(ink: number, plan: InkPlan, repeat: number, symbol: number): void {
+    isReady[ink] = 1;
+    inSymbol[ink] = 0;
+    if (plan.kind === 'data') {
+      if (isStreamReady[plan.stream] === 0) {
+        taken[plan.stream] = firstBitOf(plan.stream, repeat, symbol);
+        isStreamReady[plan.stream] = 1;
+      }
+      if (plan.isHalfTurning && streams[plan.stream]!.fill === 'running')
+        inkTaken[ink] = counts.cellsBefore(symbol, ink);
+    } else if (plan.kind === 'value' && plan.needsCellCount) inkTaken[ink] = counts.cellsBefore(symbol, ink);
+  }
+
+  function writeData(
+    ink: number,
+    plan: InkPlan & { kind: 'data' },
+    p: number,
+    count: number,
+    out: Float64Array,
+    to: number,
+    stride: number,
+  ): void {
+    const window = windowOf(plan.stream);
+    const isRunning = streams[plan.stream]!.fill === 'running';
+    const step = isRunning ? plan.bits : ANCHOR_BITS;
+    const start = isRunning ? taken[plan.stream]! : taken[plan.stream]! + ANCHOR_BITS * p;
+    const offset = window.hold(start, start + step * count);
+    if (plan.isHalfTurning) {
+      const index = isRunning ? inkTaken[ink]! : p;
+      mapHalfTurningRun(window.words, offset, step, plan.points, index, out, to, stride, count);
+      inkTaken[ink]! += count;
+    } else mapRun(window.words, offset, step, plan.bits, plan.points, out, to, stride, count);
+    if (isRunning) taken[plan.stream]! += step * count;
+  }
+
+  function writeValues(
+    ink: number,
+    plan: InkPlan & { kind: 'value' },
+    repeat: number,
+    symbol: number,
+    p: number,
+    count: number,
+    out: Float64Array,
+    to: number,
+    stride: number,
+  ): void {
+    for (let i = 0; i < count; i++) {
+      values[2 * i] = plan.re;
+      values[2 * i + 1] = plan.im;
+    }
+    for (const { sequence, counter, start } of plan.factors) {
+      const index =
+        start +
+        (counter === 'cell'
+          ? inkTaken[ink]!
+          : counter === 'symbolCell'
+            ? inSymbol[ink]!
+            : counter === 'subcarrier'
+              ? p
+              : symbol);
+      if (index < 0) throw new SynthError('bad_index', `Ink ${tray[ink]!.name} counts below zero in symbol ${symbol}.`);
+      sequence.multiplyInto(index, counter === 'symbol' ? 0 : 1, count, values, 0);
+    }
+    if (plan.isContinuous) turnContinuously(repeat, symbol, p, count);
+    inkTaken[ink]! += count;
+    inSymbol[ink]! += count;
+    for (let i = 0, at = 2 * to; i < count; i++, at += 2 * stride) {
+      out[at] = values[2 * i]!;
+      out[at + 1] = values[2 * i + 1]!;
+    }
+  }
+
+  /** Times e^{j2πk·s/N}, s the useful part's first base-rate sample in the file: the sine runs on. */
+  function turnContinuously(repeat: number, symbol: number, p: number, count: number): void {
+    roots ??= createRootsOfUnity(fftSize);
+    const place = repeat * base.repeatSamples + base.symbolStarts[symbol]! + base.prefixes[symbol]!;
+    const start = place % fftSize;
+    for (let i = 0; i < count; i++) {
+      const turns = ((p + i + lowest) * start) % fftSize;
+      const root = 2 * (turns < 0 ? turns + fftSize : turns);
+      const re = values[2 * i]!;
+      const im = values[2 * i + 1]!;
+      values[2 * i] = re * roots[root]! - im * roots[root + 1]!;
+      values[2 * i + 1] = re * roots[root + 1]! + im * roots[root]!;
+    }
+  }
+
+  function writePart(
+    ink: number,
+    plan: InkPlan,
+    repeat: number,
+    symbol: number,
+    p: number,
+    end: number,
+    out: Float64Array,
+    origin: number,
+    stride: number,
+  ): void {
+    if (plan.kind === 'data') writeData(ink, plan, p, end - p, out, origin + stride * p, stride);
+    else if (plan.kind === 'value') {
+      writeValues(ink, plan, repeat, symbol, p, end - p, out, origin + stride * p, stride);
+    }
+  }
+
+  function writePlaced(repeat: number, symbol: number, out: Float64Array, placement: Placement): void {
+    const { split, low, high, stride } = placement;
+    const from = symbol * fftSize;
+    isReady.fill(0);
+    isStreamReady.fill(0);
+    for (let p = 0; p < fftSize;) {
+      const ink = cells[from + p]!;
+      let end = p + 1;
+      while (end < fftSize && cells[from + end] === ink) end++;
+      const plan = inks[ink];
+      if (plan === undefined) throw new SynthError('bad_content', `The tray has no ink ${ink}.`);
+      if (plan.kind !== 'silent') {
+        if (isReady[ink] === 0) prepare(ink, plan, repeat, symbol);
+        if (p < split) writePart(ink, plan, repeat, symbol, p, Math.min(end, split), out, low, stride);
+        if (end > split) writePart(ink, plan, repeat, symbol, Math.max(p, split), end, out, high, stride);
+      }
+      p = end;
+    }
+  }
+
+  /** Calls `visit` for each payload cell of the stream (or of all: −1) in fill order with its first source bit. */
+  function eachPayloadCell(
+    stream: number,
+    repeat: number,
+    symbol: number,
+    visit: (p: number, firstBit: number, bits: number, cellStream: number) => void,
+  ): void {
+    const from = symbol * fftSize;
+    const next = streams.map((_, number) => (stream < 0 || number === stream ? firstBitOf(number, repeat, symbol) : 0));
+    for (let p = 0; p < fftSize; p++) {
+      const plan = inks[cells[from + p]!]!;
+      if (plan.kind !== 'data' || (stream >= 0 && plan.stream !== stream)) continue;
+      if (streams[plan.stream]!.fill === 'anchored')
+        visit(p, next[plan.stream]! + ANCHOR_BITS * p, plan.bits, plan.stream);
+      else {
+        visit(p, next[plan.stream]!, plan.bits, plan.stream);
+        next[plan.stream]! += plan.bits;
+      }
+    }
+  }
+
+  function computeRepeatAlike(): boolean {
+    if (timing.repeats === 1) return true;
+    const turn = base.repeatSamples % fftSize;
+    const varies = inks.map((plan) => {
+      if (plan.kind === 'data') return streams[plan.stream]!.acrossRepeats === 'continue' ? 1 : 0;
+      return plan.kind === 'value' && plan.isContinuous && turn !== 0 ? 2 : 0;
+    });
+    if (varies.every((kind) => kind === 0)) return true;
+    for (let i = 0; i < cells.length; i++) {
+      const kind = varies[cells[i]!]!;
+      if (kind === 1 || (kind === 2 && (((i % fftSize) + lowest) * turn) % fftSize !== 0)) return false;
+    }
+    return true;
+  }
+
+  return {
+    content,
+    cells,
+    writePlaced,
+    write(repeat, symbol, out) {
+      demand(out.length >= 2 * fftSize, 'buffer_too_small', 'A symbol has 2·N numbers.');
+      out.fill(0, 0, 2 * fftSize);
+      writePlaced(repeat, symbol, out, natural);
+    },
+    bitsPerRepeat: (stream) => counts.bitsBefore(symbolCount, stream),
+    bitsOfSymbol: (stream, symbol) => counts.bitsBefore(symbol + 1, stream) - counts.bitsBefore(symbol, stream),
+    readBits(stream, repeat, symbol, out) {
+      const window = windowOf(stream);
+      let written = 0;
+      eachPayloadCell(stream, repeat, symbol, (_p, firstBit, bits) => {
+        const offset = window.hold(firstBit, firstBit + bits);
+        for (let i = offset; i < offset + bits; i++) out[written++] = (window.words[i >>> 5]! >>> (31 - (i & 31))) & 1;
+      });
+      return written;
+    },
+    firstBits(repeat, symbol, out) {
+      out.fill(-1, 0, fftSize);
+      eachPayloadCell(-1, repeat, symbol, (p, firstBit) => (out[p] = firstBit));
+    },
+    get isRepeatAlike() {
+      return computeRepeatAlike();
+    },
+    touch: counts.touch,
+  };
+}
+
+/** The values of a content's cells, as CellValues describes; see createPlacedValues for what it throws. */
+export function createCellValues(content: WaveformContent, cells?: Uint8Array): CellValues {
+  return createPlacedValues(content, cells, 1);
+}
