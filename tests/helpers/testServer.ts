@@ -9,7 +9,9 @@ import { migrateDatabase } from '@/db/migrate';
 import { openDatabase, type Store } from '@/db/openDatabase';
 import type { Role } from '@/lib/contracts/common';
 import { createApp } from '@/server/app';
+import { hashPassword } from '@/server/auth/passwords';
 import { rightsOf } from '@/server/auth/permissions';
+import { createSessions } from '@/server/auth/sessions';
 import type { Actor } from '@/server/auth/actor';
 import { readConfig, type Config } from '@/server/config';
 import type { Deps } from '@/server/deps';
@@ -32,6 +34,10 @@ export const people = {
   nobody: { name: 'Nils Norole', roles: [] },
 } as const satisfies Record<string, { name: string; roles: readonly Role[] }>;
 export type PersonKey = keyof typeof people;
+
+/** Of everybody here. */
+export const TEST_PASSWORD = 'a long enough password';
+let passwordHashOnce: Promise<string> | undefined;
 
 export interface FakeClock {
   nowMs(): number;
@@ -89,6 +95,8 @@ export async function startTestServer(options: TestServerOptions = {}): Promise<
   const ulid = monotonicFactory();
   const deps: Deps = { config, clock, store, log, lifecycle, newId: () => ulid(clock.nowMs()) };
 
+  passwordHashOnce ??= hashPassword(TEST_PASSWORD);
+  const passwordHash = await passwordHashOnce;
   const ids = new Map<PersonKey, string>();
   store.write((tx) => {
     insertInstallation(tx, options.kind ?? 'team', clock.nowMs());
@@ -97,8 +105,7 @@ export async function startTestServer(options: TestServerOptions = {}): Promise<
       const id = deps.newId();
       ids.set(key, id);
       const email = `${key.toLowerCase()}@example.org`;
-      // Not a hash of anything: these sign in by session alone.
-      insertUser(tx, { id, email, name: person.name, passwordHash: 'none', createdAtMs: clock.nowMs() }, person.roles);
+      insertUser(tx, { id, email, name: person.name, passwordHash, createdAtMs: clock.nowMs() }, person.roles);
     }
   });
   const app = createApp(deps);
@@ -122,7 +129,6 @@ export async function startTestServer(options: TestServerOptions = {}): Promise<
     },
     async as(key) {
       if (key === 'anonymous') return server.clientOf(null);
-      const { createSessions } = await import('@/server/auth/sessions');
       let cookie = '';
       const quietRequest = { headers: {}, get: () => 'test' };
       const response = { append: (_name: string, value: string) => void (cookie = value.split(';', 1)[0] ?? '') };

@@ -1,19 +1,10 @@
-import { hashPassword } from '@/server/auth/passwords';
-import { setPasswordHash } from '@/server/features/auth/repo';
-import { startTestServer, type TestServer } from '../../helpers/testServer';
+import { startTestServer, TEST_PASSWORD, type TestServer } from '../../helpers/testServer';
 
-const PASSWORD = 'a long enough password';
 const TEN_MINUTES_MS = 600_000;
 let server: TestServer;
 
-async function givePassword(key: 'author' | 'admin' | 'reviewer') {
-  const hash = await hashPassword(PASSWORD);
-  server.store.write((tx) => setPasswordHash(tx, server.personId(key), hash));
-}
-
 beforeEach(async () => {
   server = await startTestServer();
-  await givePassword('author');
 });
 afterEach(() => server.close());
 
@@ -24,7 +15,7 @@ const cookieOf = (answer: { headers: Record<string, unknown> }) =>
 
 describe('signing in', () => {
   it('answers the person and a cookie that no script reads', async () => {
-    const answer = await signIn(' Author@Example.org ', PASSWORD);
+    const answer = await signIn(' Author@Example.org ', TEST_PASSWORD);
     expect(answer.status).toBe(200);
     expect(answer.body).toMatchObject({ name: 'Ada Author', roles: ['author'] });
     const cookie = cookieOf(answer);
@@ -36,19 +27,19 @@ describe('signing in', () => {
   });
 
   it('keeps only the SHA-256 of the session id', async () => {
-    const secret = cookieOf(await signIn('author@example.org', PASSWORD)).split(/[=;]/)[1] ?? '';
+    const secret = cookieOf(await signIn('author@example.org', TEST_PASSWORD)).split(/[=;]/)[1] ?? '';
     const rows = server.store.sqlite.prepare('select * from sessions').all();
     expect(JSON.stringify(rows)).not.toContain(secret);
     expect(rows).toHaveLength(1);
     expect(JSON.stringify(server.logLines)).not.toContain(secret);
-    expect(JSON.stringify(server.logLines)).not.toContain(PASSWORD);
+    expect(JSON.stringify(server.logLines)).not.toContain(TEST_PASSWORD);
   });
 
   it('gives a new id at each sign-in and ends the one the browser came with', async () => {
-    const first = cookieOf(await signIn('author@example.org', PASSWORD)).split(';', 1)[0] ?? '';
+    const first = cookieOf(await signIn('author@example.org', TEST_PASSWORD)).split(';', 1)[0] ?? '';
     const again = await server
       .clientOf(first)
-      .post('/api/v1/auth/sign-in', { email: 'author@example.org', password: PASSWORD });
+      .post('/api/v1/auth/sign-in', { email: 'author@example.org', password: TEST_PASSWORD });
     expect(cookieOf(again).split(';', 1)[0]).not.toBe(first);
     expect((await server.clientOf(first).get('/api/v1/session')).body.me).toBeNull();
   });
@@ -76,40 +67,38 @@ describe('signing in', () => {
 
   it('refuses the eleventh wrong try in ten minutes, and takes the next after that', async () => {
     for (let i = 0; i < 10; i += 1) expect((await signIn('author@example.org', 'wrong')).status).toBe(401);
-    const refused = await signIn('author@example.org', PASSWORD);
+    const refused = await signIn('author@example.org', TEST_PASSWORD);
     expect(refused.status).toBe(429);
     expect(refused.body).toMatchObject({ code: 'too_many', detail: 'Too many tries. Try again in 10 minutes.' });
     expect(refused.headers['retry-after']).toBe('600');
     server.clock.advance(TEN_MINUTES_MS + 1);
-    expect((await signIn('author@example.org', PASSWORD)).status).toBe(200);
+    expect((await signIn('author@example.org', TEST_PASSWORD)).status).toBe(200);
   });
 
   it('locks nobody out from another address', async () => {
     await server.close();
     server = await startTestServer({ config: { trustsProxy: true } });
-    await givePassword('author');
     const from = (address: string, password: string) =>
       signIn('author@example.org', password).set('X-Forwarded-For', address);
     for (let i = 0; i < 11; i += 1) await from('198.51.100.7', 'wrong');
-    expect((await from('198.51.100.7', PASSWORD)).status).toBe(429);
-    expect((await from('198.51.100.8', PASSWORD)).status).toBe(200);
+    expect((await from('198.51.100.7', TEST_PASSWORD)).status).toBe(429);
+    expect((await from('198.51.100.8', TEST_PASSWORD)).status).toBe(200);
   });
 
   it('does not believe X-Forwarded-For without TRUST_PROXY', async () => {
     for (let i = 0; i < 11; i += 1)
       await signIn('author@example.org', 'wrong').set('X-Forwarded-For', `198.51.100.${i}`);
-    expect((await signIn('author@example.org', PASSWORD)).status).toBe(429);
+    expect((await signIn('author@example.org', TEST_PASSWORD)).status).toBe(429);
   });
 
   it('counts no try that succeeded', async () => {
-    for (let i = 0; i < 11; i += 1) expect((await signIn('author@example.org', PASSWORD)).status).toBe(200);
+    for (let i = 0; i < 11; i += 1) expect((await signIn('author@example.org', TEST_PASSWORD)).status).toBe(200);
   });
 
   it('sets Secure and __Host- where PUBLIC_URL is https', async () => {
     await server.close();
     server = await startTestServer({ config: { publicOrigin: 'https://waveforms.example.org' } });
-    await givePassword('author');
-    const answer = await signIn('author@example.org', PASSWORD).set('Origin', 'https://waveforms.example.org');
+    const answer = await signIn('author@example.org', TEST_PASSWORD).set('Origin', 'https://waveforms.example.org');
     expect(cookieOf(answer)).toMatch(/^__Host-combwright=/);
     expect(cookieOf(answer)).toContain('Secure');
   });
@@ -123,7 +112,7 @@ describe('the origin of a change', () => {
   ])('refuses %s', async (_name, origin) => {
     const test = server
       .clientOf(null)
-      .post('/api/v1/auth/sign-in', { email: 'author@example.org', password: PASSWORD });
+      .post('/api/v1/auth/sign-in', { email: 'author@example.org', password: TEST_PASSWORD });
     const answer = await (origin ? test.set('Origin', origin) : test.unset('Origin'));
     expect(answer.status).toBe(403);
     expect(answer.body.code).toBe('origin_refused');
@@ -211,16 +200,16 @@ describe('the account', () => {
     const change = (current: string) =>
       here.post('/api/v1/account/password', { current, next: 'another long password' });
     expect((await change('wrong')).body.issues[0].pointer).toBe('/current');
-    expect((await change(PASSWORD)).status).toBe(200);
+    expect((await change(TEST_PASSWORD)).status).toBe(200);
     expect((await there.get('/api/v1/account/sessions')).status).toBe(401);
     expect((await here.get('/api/v1/account/sessions')).body.sessions).toHaveLength(1);
-    expect((await signIn('author@example.org', PASSWORD)).status).toBe(401);
+    expect((await signIn('author@example.org', TEST_PASSWORD)).status).toBe(401);
     expect((await signIn('author@example.org', 'another long password')).status).toBe(200);
   });
 
   it('asks for 12 characters', async () => {
     const client = await server.as('author');
-    const answer = await client.post('/api/v1/account/password', { current: PASSWORD, next: 'elevenchars' });
+    const answer = await client.post('/api/v1/account/password', { current: TEST_PASSWORD, next: 'elevenchars' });
     expect(answer.body.issues).toEqual([{ pointer: '/next', message: '12 characters or more', code: 'too_small' }]);
   });
 });
