@@ -1,0 +1,5 @@
+import { WaveformsScreen } from '@/components/screens/WaveformsScreen/WaveformsScreen';
+
+export default function Route() {
+  return <WaveformsScreen />;
+}

@@ -1,0 +1,117 @@
+import { useMemo } from 'react';
+import { color } from '@/components/ui/theme';
+import type { Band } from './Straightedge';
+
+/** A spectrum: densities in dB, lowest frequency first, bin b at fromHz + b · stepHz from the carrier. */
+export interface SpectrumLine {
+  name: string;
+  fromHz: number;
+  stepHz: number;
+  densityDb: ArrayLike<number>;
+  dashed?: boolean;
+}
+
+const topDb = 15;
+const floorDb = -65;
+const figureFace = 'ChivoMono_400Regular';
+
+/** The largest density in each pixel column, so that no line is skipped. */
+function columnsOf(line: SpectrumLine, band: Band, fftSize: number, spacingHz: number, widthPx: number): Float64Array {
+  const zero = Math.floor(fftSize / 2) + 0.5;
+  const fromHz = (band.from - zero) * spacingHz;
+  const hzPerPx = ((band.to - band.from) * spacingHz) / widthPx;
+  const columns = new Float64Array(widthPx).fill(-Infinity);
+  for (let x = 0; x < widthPx; x++) {
+    const low = Math.floor((fromHz + x * hzPerPx - line.fromHz) / line.stepHz + 0.5);
+    const high = Math.max(low + 1, Math.floor((fromHz + (x + 1) * hzPerPx - line.fromHz) / line.stepHz + 0.5));
+    for (let bin = Math.max(0, low); bin < high && bin < line.densityDb.length; bin++)
+      columns[x] = Math.max(columns[x]!, line.densityDb[bin]!);
+  }
+  return columns;
+}
+
+/** Spectra under a grid, on the grid's own pixels a subcarrier; 0 dB is the mean of the painted cells. */
+export function SpectrumTrace({
+  lines,
+  band,
+  fftSize,
+  spacingHz,
+  widthPx,
+  heightPx,
+}: {
+  lines: readonly SpectrumLine[];
+  band: Band;
+  fftSize: number;
+  spacingHz: number;
+  widthPx: number;
+  heightPx: number;
+}) {
+  const y = (db: number) =>
+    Math.round(((topDb - Math.max(floorDb, Math.min(topDb, db))) / (topDb - floorDb)) * heightPx * 10) / 10;
+  const paths = useMemo(
+    () =>
+      lines.map((line) => {
+        const columns = columnsOf(line, band, fftSize, spacingHz, widthPx);
+        let path = '';
+        columns.forEach((db, x) => {
+          if (db === -Infinity) return;
+          path += `${path === '' ? 'M' : 'L'}${x + 0.5} ${y(db)}`;
+        });
+        return path;
+      }),
+    // eslint-disable-next-line react-hooks/exhaustive-deps -- y follows heightPx
+    [lines, band, fftSize, spacingHz, widthPx, heightPx],
+  );
+  return (
+    <svg
+      width={widthPx}
+      height={heightPx}
+      aria-hidden
+      style={{ display: 'block', backgroundColor: color.plot.background }}
+    >
+      {[10, 0, -10, -20, -30, -40, -50, -60].map((db) => (
+        <g key={db}>
+          <line
+            x1={0}
+            x2={widthPx}
+            y1={Math.round(y(db)) + 0.5}
+            y2={Math.round(y(db)) + 0.5}
+            stroke={color.plot.grid}
+          />
+          {db % 20 === 0 ? (
+            <text x={4} y={y(db) - 3} fontSize={11} fontFamily={figureFace} fill={color.plot.axis}>
+              {db < 0 ? `−${-db}` : db}
+            </text>
+          ) : null}
+        </g>
+      ))}
+      {lines.map((line, i) =>
+        line.dashed ? (
+          <path
+            key={line.name}
+            d={paths[i]}
+            fill="none"
+            stroke={color.plot.before}
+            strokeWidth={1}
+            strokeDasharray="4 3"
+          />
+        ) : (
+          <g key={line.name}>
+            {paths[i] ? (
+              <path d={`${paths[i]}L${widthPx} ${heightPx}L0 ${heightPx}Z`} fill={color.plot.traceFill} />
+            ) : null}
+            <path d={paths[i]} fill="none" stroke={color.plot.trace} strokeWidth={1.25} />
+          </g>
+        ),
+      )}
+      <rect
+        x={0.5}
+        y={0.5}
+        width={Math.max(0, widthPx - 1)}
+        height={heightPx - 1}
+        fill="none"
+        stroke={color.rule.line}
+      />
+    </svg>
+  );
+}
