@@ -8,6 +8,8 @@ const options = {
     server: 'server/main.ts',
     cli: 'server/cli/main.ts',
     'render.worker': 'server/packs/render.worker.ts',
+    'body.worker': 'server/http/body.worker.ts',
+    'measure.worker': 'server/figures/measure.worker.ts',
   },
   outdir: process.env.BUILD_DIR ?? 'build',
   outExtension: { '.js': '.mjs' },

@@ -4,7 +4,14 @@ import { createSessions } from './auth/sessions.ts';
 import type { Deps } from './deps.ts';
 import { mountAudit } from './features/audit/routes.ts';
 import { mountAuth } from './features/auth/routes.ts';
+import { mountBenches } from './features/benches/routes.ts';
+import { mountEditions } from './features/editions/routes.ts';
 import { mountPeople } from './features/people/routes.ts';
+import { mountReviews } from './features/reviews/routes.ts';
+import { mountWaveforms } from './features/waveforms/routes.ts';
+import { createEvents } from './events.ts';
+import { createFigures } from './figures/figures.ts';
+import { createMeasureThread } from './figures/measureThread.ts';
 import { answerErrors } from './http/errorHandler.ts';
 import { createMount } from './http/mount.ts';
 import { requireOwnOrigin } from './http/origin.ts';
@@ -34,6 +41,12 @@ export function createApp(deps: Deps): Express {
   mountAuth(mount, deps, sessions);
   mountPeople(mount, deps);
   mountAudit(mount, deps);
+  const events = createEvents((error) => deps.log.error({ err: error }, 'a listener failed'));
+  const figures = createFigures(deps, createMeasureThread(deps.config.buildDir));
+  mountWaveforms(mount, deps, figures);
+  mountReviews(mount, deps);
+  mountEditions(mount, deps, events);
+  mountBenches(mount, deps);
   app.use(requireOwnOrigin(deps), api);
   app.use('/api', () => {
     throw new DomainError('not_found');

@@ -58,16 +58,16 @@ const originSchema = z
   .refine((value) => new URL(value).pathname === '/', 'must not have a path')
   .transform((value) => new URL(value).origin);
 
+const wholeNumber = z.coerce.number({ error: 'is not a number' }).int('is not a whole number');
+
 const envSchema = z.object({
-  PORT: z.coerce.number().int().min(0).max(65535).default(8080),
+  PORT: wholeNumber.min(0).max(65535).default(8080),
   HOST: z.string().min(1).default('127.0.0.1'),
   DATA_DIR: z.string().min(1).optional(),
   DEMO: yesNo.optional(),
   PUBLIC_URL: originSchema.optional(),
   TRUST_PROXY: yesNo.default(false),
-  PACK_BYTES_MOST: z.coerce
-    .number()
-    .int()
+  PACK_BYTES_MOST: wholeNumber
     .min(1)
     .max(2 ** 43)
     .default(8 * 2 ** 30),
