@@ -1,0 +1,81 @@
+import { addressOf } from '@/lib/client/apiClient';
+import { endpoints } from '@/lib/contracts/endpoints';
+import { startTestServer, type PersonKey, type TestServer } from './testServer';
+
+/** The columns of every table, in this order. */
+export const WHO = ['anonymous', 'author', 'otherAuthor', 'reviewer', 'operator', 'admin'] as const;
+export type Who = (typeof WHO)[number];
+
+/** What one cell asks. Only the parts that the endpoint has. */
+export interface AccessRequest {
+  params?: Record<string, string | number>;
+  query?: Record<string, unknown>;
+  body?: object;
+  headers?: Record<string, string>;
+}
+
+export interface AccessTable {
+  /** Called once per cell, on a server of its own; '-' needs none. */
+  states: Record<string, (server: TestServer) => unknown>;
+  /** By endpoint name: the request in that state. `object` is what the state returned. */
+  // eslint-disable-next-line @typescript-eslint/no-explicit-any -- each table knows what its own states return
+  requests: Record<string, (object: any, server: TestServer, who: Who) => AccessRequest>;
+  /** `endpoint | state | anonymous | author | otherAuthor | reviewer | operator | admin`, cells `200` or `403 own_work`. */
+  table: string;
+}
+
+interface Row {
+  name: string;
+  state: string;
+  expected: [Who, string][];
+}
+
+/** The rows that a person reads, as the rows that a test runs. A first line of column names must be right. */
+export function readAccessTable({ table }: AccessTable): Row[] {
+  const lines = table.split('\n').map((line) => line.split('|').map((cell) => cell.trim()));
+  const [head, ...rows] = lines.filter((cells) => cells.length > 1);
+  expectColumns(head ?? [], ['endpoint', 'state', ...WHO]);
+  return rows.map((cells) => {
+    const [name = '', state = '', ...rest] = cells;
+    if (rest.length !== WHO.length)
+      throw new Error(`${name}, ${state}: ${rest.length} cells in place of ${WHO.length}`);
+    return { name, state, expected: WHO.map((who, i) => [who, rest[i] ?? '']) };
+  });
+}
+
+function expectColumns(found: string[], wanted: string[]): void {
+  if (found.join() !== wanted.join()) throw new Error(`The columns must be ${wanted.join(' | ')}`);
+}
+
+/** One test per row; each cell on a fresh server, so that no act of one cell shows in the next. */
+export function describeAccess(title: string, access: AccessTable): void {
+  describe(`access: ${title}`, () => {
+    for (const { name, state, expected } of readAccessTable(access)) {
+      it(`${name}${state === '-' ? '' : `, ${state}`}`, async () => {
+        const found: [Who, string][] = [];
+        for (const [who, wanted] of expected) found.push([who, await tryCell(access, name, state, who, wanted)]);
+        expect(Object.fromEntries(found)).toEqual(Object.fromEntries(expected));
+      });
+    }
+  });
+}
+
+async function tryCell(access: AccessTable, name: string, state: string, who: Who, wanted: string): Promise<string> {
+  const endpoint = endpoints.find((candidate) => candidate.name === name);
+  const makeRequest = access.requests[name];
+  const makeState = state === '-' ? () => undefined : access.states[state];
+  if (!endpoint || !makeRequest || !makeState) throw new Error(`${name} in state ${state} is not described`);
+  const server = await startTestServer();
+  try {
+    const object = await makeState(server);
+    const { params, query, body, headers } = makeRequest(object, server, who);
+    const client = await server.as(who satisfies PersonKey | 'anonymous');
+    const method = endpoint.method.toLowerCase() as Lowercase<typeof endpoint.method>;
+    const answer = await client[method](addressOf(endpoint, { params, query }), body).set(headers ?? {});
+    // The code is compared only where the table names one.
+    const code = (answer.body as { code?: string }).code;
+    return wanted.includes(' ') && code ? `${answer.status} ${code}` : String(answer.status);
+  } finally {
+    await server.close();
+  }
+}
