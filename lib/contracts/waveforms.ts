@@ -27,7 +27,8 @@ export const gridPictureSchema = z
       ]),
     ),
     looks: z.array(z.array(z.number().int())),
-    rows: z.array(z.object({ height: z.number().int(), runs: z.array(z.number().int()) })),
+    patterns: z.array(z.array(z.number().int())),
+    rows: z.array(z.number().int()),
   })
   .meta({ id: 'GridPicture' });
 
@@ -37,6 +38,8 @@ export const measuredFiguresSchema = z
     paprDb: z.number().nullable(),
     worstSymbolPaprDb: z.number().nullable(),
     worstSymbol: z.number().int().nullable(),
+    /** Less than all only for a very long file: the figures are then of the first ones. */
+    measuredRepeats: z.number().int(),
   })
   .meta({ id: 'MeasuredFigures' });
 export type MeasuredFigures = z.infer<typeof measuredFiguresSchema>;
@@ -203,6 +206,8 @@ export const saveAnswerSchema = z
     revision: revisionSchema,
     /** The document equals its parent: nothing was added, `revision` is the parent. */
     isUnchanged: z.boolean(),
+    /** The head, where `revision` is not: somebody saved after it. */
+    newer: revisionPointSchema.nullable(),
     openReview: openReviewSchema.nullable(),
   })
   .meta({ id: 'SaveAnswer' });

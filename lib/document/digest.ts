@@ -3,8 +3,22 @@ import { bytesToHex, utf8ToBytes } from '@noble/hashes/utils.js';
 import canonicalize from 'canonicalize';
 import type { BenchContent, BenchProfile, WaveformContent, WaveformDocument, WaveformIntent } from '@/lib/synth/index';
 
-/** RFC 8785 canonical JSON. Throws on what JSON cannot hold (NaN, a lone surrogate, undefined alone). */
+const isFinite = (value: unknown): boolean => typeof value === 'number' && Number.isFinite(value);
+
+/**
+ * RFC 8785 canonical JSON. Throws on what JSON cannot hold (NaN, a lone surrogate, undefined alone). Objects and lists of
+ * numbers are written here, the rest by the package: run-length rows are lists of numbers, four million of them at most, and
+ * ECMAScript's own number text is what the RFC asks for.
+ */
 export function canonicalJson(value: unknown): string {
+  if (Array.isArray(value)) {
+    return value.every(isFinite) ? JSON.stringify(value) : `[${value.map(canonicalJson).join(',')}]`;
+  }
+  if (typeof value === 'object' && value !== null && Object.getPrototypeOf(value) === Object.prototype) {
+    const entries = Object.entries(value).filter(([, entry]) => entry !== undefined);
+    entries.sort(([a], [b]) => (a < b ? -1 : 1)); // by UTF-16 code units, as < compares
+    return `{${entries.map(([key, entry]) => `${canonicalJson(key)}:${canonicalJson(entry)}`).join(',')}}`;
+  }
   const text = canonicalize(value);
   if (text === undefined) throw new TypeError('no JSON value');
   return text;

@@ -70,3 +70,11 @@ export function findOpenRequest(db: Queryable, waveformId: string) {
     .where(and(eq(reviewRequests.waveformId, waveformId), isNull(reviewRequests.outcome)))
     .get();
 }
+
+export function listOpenRequests(db: Queryable): { waveformId: string; revisionId: string }[] {
+  return db
+    .select({ waveformId: reviewRequests.waveformId, revisionId: reviewRequests.revisionId })
+    .from(reviewRequests)
+    .where(isNull(reviewRequests.outcome))
+    .all();
+}

@@ -1,7 +1,8 @@
-import { eq } from 'drizzle-orm';
+import { and, eq } from 'drizzle-orm';
 import type { Queryable } from '@/db/openDatabase';
 import { users } from '@/db/schema/people';
 import { revisions, waveforms } from '@/db/schema/waveforms';
+import { findRevision, type RevisionRow } from '../../revisions/revisionRepo.ts';
 
 export function insertWaveform(tx: Queryable, row: typeof waveforms.$inferInsert): void {
   tx.insert(waveforms).values(row).run();
@@ -49,4 +50,34 @@ export function waveformsOf(db: Queryable, personId: string): ReadonlySet<string
     .where(eq(revisions.authorId, personId))
     .all();
   return new Set(rows.map((row) => row.waveformId));
+}
+
+/** What the same person sent late before, from the same parent. */
+export function findSideRevision(
+  db: Queryable,
+  parentId: string,
+  authorId: string,
+  documentDigest: string,
+): string | null {
+  const row = db
+    .select({ id: revisions.id })
+    .from(revisions)
+    .where(
+      and(
+        eq(revisions.parentId, parentId),
+        eq(revisions.isSide, true),
+        eq(revisions.authorId, authorId),
+        eq(revisions.documentDigest, documentDigest),
+      ),
+    )
+    .get();
+  return row?.id ?? null;
+}
+
+/** The head of a waveform that is known to be there. */
+export function findHead(db: Queryable, waveformId: string): RevisionRow {
+  const row = db.select({ id: waveforms.headRevisionId }).from(waveforms).where(eq(waveforms.id, waveformId)).get();
+  const head = row && findRevision(db, row.id);
+  if (!head) throw new Error(`The waveform ${waveformId} has no head.`);
+  return head;
 }

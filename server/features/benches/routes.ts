@@ -1,0 +1,15 @@
+import * as contract from '@/lib/contracts/benches';
+import type { Deps } from '../../deps.ts';
+import type { Mount } from '../../http/mount.ts';
+import { createBenchesService } from './service.ts';
+
+export function mountBenches(mount: Mount, deps: Deps): void {
+  const service = createBenchesService(deps);
+
+  mount.json(contract.listBenches, ({ actor }) => ({ items: service.list(actor) }));
+  mount.json(contract.showBench, ({ actor, params, query }) => service.show(actor, params.benchId, query.version));
+  mount.json(contract.createBench, (call) => service.create(call.actor, call.body, call));
+  mount.json(contract.saveBench, (call) =>
+    service.save(call.actor, call.params.benchId, call.query.afterVersion, call.body, call),
+  );
+}
