@@ -76,16 +76,18 @@ export function exactFraction(numerator: bigint, denominator: bigint): ExactFrac
 }
 
 /**
- * The double nearest to a positive fraction (ties to even), correct to the last bit: the quotient is taken to 64 bits or more with a
- * sticky last bit, so that the one rounding of Number(bigint) is the only one. Range: quotients from 2^−900 to 2^900.
+ * The double nearest to a fraction (denominator positive, ties to even), correct to the last bit: the quotient is taken to 64 bits or more
+ * with a sticky last bit, so that the one rounding of Number(bigint) is the only one. Range: sizes from 2^−900 to 2^900, and 0.
  */
 export function fractionToNumber({ numerator, denominator }: ExactFraction): number {
+  if (numerator === 0n) return 0;
+  if (numerator < 0n) return -fractionToNumber({ numerator: -numerator, denominator });
   const shift = BigInt(Math.max(0, denominator.toString(2).length - numerator.toString(2).length + 66));
   const scaled = numerator << shift;
   const quotient = scaled / denominator;
   const sticky = quotient * denominator === scaled ? 0n : 1n;
   let value = Number((quotient << 1n) | sticky);
-  // 2^-shift · ½ is exact: the value has more than 64 bits before it and stays normal.
+  // a division by powers of two is exact: the value stays normal
   for (let left = Number(shift) + 1; left > 0; left -= 500) value /= powerOfTwo(Math.min(left, 500));
   return value;
 }
