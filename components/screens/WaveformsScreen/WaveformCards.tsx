@@ -1,12 +1,13 @@
 import { Link } from 'expo-router';
 import { StyleSheet, View } from 'react-native';
 import { Figure } from '@/components/ui/Figure';
-import { GridPicture } from '@/components/ui/GridPicture';
+
 import { Stamp } from '@/components/ui/Stamp';
 import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
 import type { WaveformItem } from '@/lib/contracts/waveforms';
 import { when } from '../when';
+import { ItemPicture } from './ItemPicture';
 import { itemAside, itemFigures } from './itemWords';
 
 /** The list on a phone: each row a card, the whole card the link. */
@@ -46,7 +47,7 @@ function Card({ item }: { item: WaveformItem }) {
           ) : null}
         </View>
         <View style={styles.figures}>
-          <GridPicture picture={item.picture} width={112} height={36} />
+          <ItemPicture item={item} width={112} height={36} />
           <View>
             <Text variant="label" weight={400} tone="quiet">
               Clock

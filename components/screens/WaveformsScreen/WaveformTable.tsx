@@ -1,12 +1,13 @@
 import { Link } from 'expo-router';
 import { useState } from 'react';
 import { Pressable, StyleSheet, View } from 'react-native';
-import { GridPicture } from '@/components/ui/GridPicture';
+
 import { Stamp } from '@/components/ui/Stamp';
 import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
 import type { WaveformItem } from '@/lib/contracts/waveforms';
 import { when } from '../when';
+import { ItemPicture } from './ItemPicture';
 import { itemAside, itemFigures } from './itemWords';
 
 type SortKey = 'title' | 'clock' | 'span' | 'papr' | 'changed';
@@ -101,7 +102,7 @@ function Row({ item }: { item: WaveformItem }) {
       {...({ onMouseEnter: () => setHovered(true), onMouseLeave: () => setHovered(false) } as object)}
     >
       <View role="cell" style={styles.picture}>
-        <GridPicture picture={item.picture} width={144} height={36} />
+        <ItemPicture item={item} width={144} height={36} />
       </View>
       <View role="cell" style={styles.title}>
         <Link

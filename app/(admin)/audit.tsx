@@ -1,0 +1,5 @@
+import { AuditScreen } from '@/components/screens/TeamScreen/AuditScreen';
+
+export default function Route() {
+  return <AuditScreen />;
+}

@@ -1,0 +1,5 @@
+import { AccountScreen } from '@/components/screens/AccountScreen/AccountScreen';
+
+export default function Route() {
+  return <AccountScreen />;
+}

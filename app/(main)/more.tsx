@@ -1,0 +1,5 @@
+import { MoreScreen } from '@/components/screens/MoreScreen';
+
+export default function Route() {
+  return <MoreScreen />;
+}

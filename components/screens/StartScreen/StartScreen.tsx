@@ -1,0 +1,168 @@
+import { useRouter } from 'expo-router';
+import { useMemo, useState } from 'react';
+import { StyleSheet, View } from 'react-native';
+import { Button } from '@/components/ui/Button';
+import { Notice } from '@/components/ui/Notice';
+import { Forbidden } from '@/components/ui/states';
+import { Text } from '@/components/ui/Text';
+import { TextField } from '@/components/ui/TextField';
+import { color } from '@/components/ui/theme';
+import { useBreakpoint } from '@/components/ui/useBreakpoint';
+import { useAct } from '@/lib/client/useApi';
+import { useMay } from '@/lib/client/useSession';
+import { createWaveform, listWaveforms } from '@/lib/contracts/waveforms';
+import { Page } from '../Page';
+import { BareGridSentence } from './BareGridSentence';
+import { DocumentDrop } from './DocumentDrop';
+import { StartList } from './StartList';
+import { StartSheet } from './StartSheet';
+import { bareGridDefaults, bareGridStart, presetStarts, type BareGridText, type Start } from './starts';
+
+/** Choose a start: a public standard's layout, a bare grid, or a document. */
+export function StartScreen() {
+  const router = useRouter();
+  const wide = useBreakpoint() === 'wide';
+  const mayMake = useMay('saveWaveforms');
+  const [presets] = useState(presetStarts);
+  const [chosen, setChosen] = useState<Start>(presets[0]!);
+  const [title, setTitle] = useState<string | null>(null);
+  const [find, setFind] = useState('');
+  const [bare, setBare] = useState<BareGridText>(bareGridDefaults);
+  const [bareError, setBareError] = useState<string | null>(null);
+  const create = useAct(createWaveform, [listWaveforms], (waveform) =>
+    router.replace({ pathname: '/waveforms/[waveformId]', params: { waveformId: waveform.waveformId } }),
+  );
+  const shown = useMemo(
+    () => presets.filter((start) => `${start.title} ${start.source}`.toLowerCase().includes(find.trim().toLowerCase())),
+    [presets, find],
+  );
+  if (!mayMake)
+    return (
+      <Page title="Start from" backTo="/waveforms">
+        <Forbidden />
+      </Page>
+    );
+
+  const choose = (start: Start) => {
+    setChosen(start);
+    setTitle(null);
+    create.reset();
+  };
+  const chooseBare = () => {
+    const start = bareGridStart(bare);
+    setBareError(start.ok ? null : start.message);
+    if (start.ok) choose(start.value);
+  };
+  const name = title ?? chosen.document.about.title;
+  const use = () =>
+    create.mutate({
+      query: {},
+      body: { ...chosen.document, about: { ...chosen.document.about, title: name.trim() } },
+      idempotencyKey: crypto.getRandomValues(new Uint32Array(4)).join('-'),
+    });
+  const useButton = (
+    <Button
+      kind="filled"
+      size={wide ? 'usual' : 'foot'}
+      fill={!wide}
+      busy={create.isPending}
+      disabledBecause={
+        name.trim() === '' ? 'A waveform needs a title.' : name.trim().length > 120 ? 'At most 120 characters.' : null
+      }
+      onPress={use}
+    >
+      Use this start
+    </Button>
+  );
+
+  return (
+    <Page
+      title="Start from"
+      backTo="/waveforms"
+      bare
+      foot={wide ? undefined : <View style={styles.foot}>{useButton}</View>}
+    >
+      <View style={wide ? styles.wide : styles.narrow}>
+        <View style={wide ? styles.left : null}>
+          <View style={styles.head}>
+            {wide ? (
+              <Text variant="display" heading={1} tone="strong" style={styles.grow}>
+                Start from
+              </Text>
+            ) : null}
+            <TextField
+              label="Find a preset"
+              quietLabel
+              placeholder="Find a preset"
+              value={find}
+              onChangeText={setFind}
+              style={wide ? styles.find : styles.grow}
+            />
+          </View>
+          <StartList
+            title="Public standards, each with its clause"
+            starts={shown}
+            chosenId={chosen.startId}
+            onChoose={choose}
+          />
+          {shown.length === 0 ? <Text tone="quiet">{`Nothing matches “${find.trim()}”.`}</Text> : null}
+          <BareGridSentence
+            text={bare}
+            onChange={setBare}
+            onChoose={chooseBare}
+            error={bareError}
+            chosen={chosen.startId === 'bare'}
+          />
+          <DocumentDrop onChoose={choose} chosen={chosen.startId === 'file' ? chosen.source : null} />
+        </View>
+        <View style={[styles.sheet, wide ? styles.right : null]}>
+          <View style={wide ? styles.titleRow : null}>
+            <TextField
+              label="Title of the new waveform"
+              value={name}
+              onChangeText={setTitle}
+              maxLength={130}
+              style={styles.grow}
+            />
+            {wide ? <View style={styles.use}>{useButton}</View> : null}
+          </View>
+          {create.error ? (
+            <Notice kind="danger" title="The waveform was not made.">
+              {create.error.problem?.issues?.[0]
+                ? `${create.error.problem.issues[0].pointer}: ${create.error.problem.issues[0].message}`
+                : create.error.message}
+            </Notice>
+          ) : null}
+          <StartSheet start={chosen} />
+        </View>
+      </View>
+    </Page>
+  );
+}
+
+const styles = StyleSheet.create({
+  wide: { flexDirection: 'row', alignItems: 'flex-start', gap: 40, padding: 24, paddingHorizontal: 40 },
+  narrow: { padding: 12, gap: 16 },
+  left: { width: 560, flexShrink: 1 },
+  head: { flexDirection: 'row', alignItems: 'flex-start', gap: 16 },
+  grow: { flexGrow: 1, flexShrink: 1 },
+  find: { width: 200 },
+  sheet: {
+    backgroundColor: color.surface.sheet,
+    borderWidth: 1,
+    borderColor: color.rule.line,
+    padding: 16,
+    gap: 8,
+    minWidth: 0,
+  },
+  right: { flexGrow: 1, flexShrink: 1, flexBasis: 600, padding: 24 },
+  titleRow: { flexDirection: 'row', alignItems: 'flex-start', gap: 16 },
+  use: { paddingTop: 22 },
+  foot: {
+    padding: 10,
+    flexDirection: 'row',
+    backgroundColor: color.surface.trough,
+    borderTopWidth: 1,
+    borderTopColor: color.rule.line,
+  },
+});
