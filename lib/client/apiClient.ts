@@ -9,7 +9,6 @@ import {
 import { problemSchema, type Problem } from '@/lib/contracts/problem';
 
 // The four schemas differ by endpoint; each use names its own through E.
-// eslint-disable-next-line @typescript-eslint/no-explicit-any
 type AnyEndpoint = Endpoint<any, any, any, any>;
 
 /** A part that the endpoint has must be given; one that it has not, or that may be empty, may be left out. */

@@ -20,7 +20,6 @@ export class ProblemError extends Error {
 }
 
 // The four schemas differ by endpoint; each use names its own through E.
-// eslint-disable-next-line @typescript-eslint/no-explicit-any
 type AnyEndpoint = Endpoint<any, any, any, any>;
 
 /** Calls an endpoint and throws what it refused. */
