@@ -1,4 +1,4 @@
-import type { BenchContent } from '@/lib/synth/types';
+import type { BenchContent } from '@/lib/synth';
 
 /** One annotation: a symbol of the first repeat, in output samples from the file's first. */
 export interface SymbolSpan {

@@ -1,4 +1,4 @@
-import { open, type FileHandle } from 'node:fs/promises';
+import type { FileHandle } from 'node:fs/promises';
 import { PackError } from './packError.ts';
 
 export interface ZipEntry {

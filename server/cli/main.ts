@@ -1,0 +1,54 @@
+import { helpText, parseCommand, type Command } from './arguments.ts';
+import { inspect } from './inspect.ts';
+import { done, refused, usage, type Outcome } from './outcome.ts';
+import { render } from './render.ts';
+import { verify } from './verify.ts';
+import { versionLine } from './version.ts';
+
+/** A cancel (Ctrl-C, TERM) lets the pack's makers remove what they have begun; a second one ends at once. */
+function cancelSignal(): AbortSignal {
+  const controller = new AbortController();
+  const stop = () => {
+    if (controller.signal.aborted) process.exit(130);
+    controller.abort();
+  };
+  process.on('SIGINT', stop);
+  process.on('SIGTERM', stop);
+  return controller.signal;
+}
+
+async function run(command: Command): Promise<Outcome> {
+  switch (command.name) {
+    case 'help':
+      return done(helpText.trimEnd().split('\n'), {});
+    case 'version':
+      return done([versionLine], { version: versionLine });
+    case 'render':
+      return render(command, cancelSignal());
+    case 'verify':
+      return verify(command, cancelSignal());
+    case 'inspect':
+      return inspect(command);
+  }
+}
+
+/** Whatever fails unexpectedly is one sentence on standard error: nobody at a bench reads a stack. */
+async function outcomeOf(argv: string[]): Promise<Outcome> {
+  const parsed = parseCommand(argv);
+  if (!parsed.ok) return usage(parsed.message);
+  try {
+    return await run(parsed.command);
+  } catch (error) {
+    const words = error instanceof Error ? error.message.split('\n')[0] : String(error);
+    return refused('internal', `The program failed: ${words}`);
+  }
+}
+
+const argv = process.argv.slice(2);
+const outcome = await outcomeOf(argv);
+// A reader that closes early (head) is no failure of ours.
+process.stdout.on('error', () => undefined);
+if (outcome.errors.length > 0) process.stderr.write(`${outcome.errors.join('\n')}\n`);
+const output = argv.includes('--json') ? JSON.stringify(outcome.json, null, 2) : outcome.lines.join('\n');
+if (output !== '') process.stdout.write(`${output}\n`);
+process.exitCode = outcome.exitCode;

@@ -1,0 +1,157 @@
+import { canonicalJson } from '@/lib/document/digest';
+import type { Manifest } from '@/lib/document/manifestSchema';
+import {
+  deriveFigures,
+  markerBytes,
+  synthVersion,
+  type BenchProfile,
+  type CellValues,
+  type FrameLayout,
+  type WaveformDocument,
+  type WordScale,
+} from '@/lib/synth';
+import {
+  cellsCsvChunks,
+  listedRepeats,
+  listsCells,
+  payloadChunks,
+  referenceChunks,
+  usedStreams,
+  type PayloadCount,
+} from './entryChunks.ts';
+import { payloadName } from './manifest/describeInks.ts';
+import type { PackState } from './packTypes.ts';
+import { packVersion } from './packVersion.ts';
+import { readmeText } from './readme.ts';
+import { sigmfMeta } from './sigmfMeta.ts';
+import type { VectorProof } from './vectorProof.ts';
+
+export type FileRole = Manifest['files'][number]['role'];
+
+/** One entry of the pack beside vector and manifest; `chunks` may be asked again and gives the same bytes. */
+export interface SideEntry {
+  name: string;
+  role: FileRole;
+  chunks: () => Iterable<Uint8Array>;
+}
+
+export interface EntryInput {
+  document: WaveformDocument;
+  profile: BenchProfile;
+  state: PackState;
+  baseName: string;
+  layout: FrameLayout;
+  values: CellValues;
+  scale: WordScale;
+  proof: VectorProof;
+  vectorBytes: number;
+  /** Filled as the payload entries are made. */
+  payloads: Map<number, PayloadCount>;
+  cardText: string;
+}
+
+export const vectorNameOf = (baseName: string, profile: BenchProfile): string =>
+  `${baseName}.${profile.content.fileName.extension}`;
+
+export const stateWordsOf = (state: PackState): string =>
+  state === 'draft' ? 'Draft, not for the bench.' : `Released, edition ${state}.`;
+
+/** Saturation that the document asked for is said wherever the vector is described. */
+export function saturatedWordsOf({ saturated }: VectorProof): string | null {
+  if (saturated.components === 0) return null;
+  return `${saturated.samples} samples pass full scale in ${saturated.components} components: the level refers to the RMS`;
+}
+
+const text = (value: string): Uint8Array[] => [Buffer.from(value, 'utf8')];
+
+function* markerChunks(input: EntryInput): Generator<Uint8Array> {
+  const source = markerBytes(input.document.content);
+  for (;;) {
+    const block = new Uint8Array(1 << 18);
+    const count = source.read(block);
+    if (count === 0) return;
+    yield block.subarray(0, count);
+  }
+}
+
+const wantsMarkers = ({ document, profile }: EntryInput): boolean =>
+  document.content.markers.length > 0 && profile.content.markers.packing === 'bytes';
+
+function readme(input: EntryInput): string {
+  const { document, profile, layout, values, baseName } = input;
+  const { content } = document;
+  const { sampleClock, sampleClockHz } = deriveFigures(content);
+  const { numerator, denominator } = sampleClock;
+  const hasMeta = metaOf(input) !== null;
+  return readmeText({
+    baseName,
+    stateWords: stateWordsOf(input.state),
+    versions: `Made by Combwright, synthesis ${synthVersion}, pack ${packVersion}.`,
+    vectorName: vectorNameOf(baseName, profile),
+    vectorBytes: input.vectorBytes,
+    vectorSha256Hex: input.proof.sha256,
+    metaWritten: hasMeta,
+    markersName: wantsMarkers(input) ? `${baseName}-markers.bin` : null,
+    bench: profile.content,
+    scale: input.scale.scale,
+    samples: layout.samples,
+    clockWords:
+      denominator === 1n
+        ? `${numerator} Hz, exactly`
+        : `${numerator}/${denominator} Hz exactly, about ${sampleClockHz} Hz`,
+    mode: layout.mode,
+    repeats: layout.repeats,
+    referenceRepeats: listedRepeats(values),
+    cellsWritten: listsCells(values),
+    payloadNames: usedStreams(values).map(payloadName),
+    frequencyOffsetHz: content.frequencyOffsetHz,
+    saturatedWords: saturatedWordsOf(input.proof),
+  });
+}
+
+function metaOf(input: EntryInput): object | null {
+  const { document, profile, layout, baseName } = input;
+  return sigmfMeta({
+    bench: profile.content,
+    sampleClockHz: deriveFigures(document.content).sampleClockHz,
+    sha512Hex: input.proof.sha512,
+    datasetName: vectorNameOf(baseName, profile),
+    baseName,
+    title: document.about.title,
+    packNote: stateWordsOf(input.state),
+    symbols: Array.from({ length: layout.symbolCount }, (_, symbol) => ({
+      startSample: layout.symbolStarts[symbol]!,
+      samples: layout.prefixes[symbol]! + layout.usefulSamples,
+    })),
+  });
+}
+
+/** Everything beside vector and manifest, in two groups since the manifest stands between them. The order is fixed. */
+export function sideEntries(input: EntryInput): { before: SideEntry[]; after: SideEntry[] } {
+  const { document, profile, values, baseName, payloads } = input;
+  const meta = metaOf(input);
+  const before: SideEntry[] = [];
+  if (meta !== null) {
+    const bytes = text(`${JSON.stringify(meta, null, 2)}\n`);
+    before.push({ name: `${baseName}.sigmf-meta`, role: 'meta', chunks: () => bytes });
+  }
+  if (wantsMarkers(input))
+    before.push({ name: `${baseName}-markers.bin`, role: 'markers', chunks: () => markerChunks(input) });
+  for (const stream of usedStreams(values)) {
+    const count: PayloadCount = { bits: 0, ones: 0 };
+    payloads.set(stream, count);
+    before.push({ name: payloadName(stream), role: 'payload', chunks: () => payloadChunks(values, stream, count) });
+  }
+  before.push({ name: 'reference.cf32', role: 'reference', chunks: () => referenceChunks(values) });
+  if (listsCells(values)) before.push({ name: 'cells.csv', role: 'cells', chunks: () => cellsCsvChunks(values) });
+  // Canonical JSON, so that the files' own SHA-256 are the digests by which the document and the profile are named.
+  return {
+    before,
+    after: [
+      { name: 'document.combwright.json', role: 'document', chunks: () => text(canonicalJson(document)) },
+      { name: 'bench.json', role: 'bench', chunks: () => text(canonicalJson(profile)) },
+      { name: 'level-card.txt', role: 'card', chunks: () => text(input.cardText) },
+      { name: 'README.txt', role: 'readme', chunks: () => text(readme(input)) },
+    ],
+  };
+}
