@@ -53,10 +53,12 @@ const yesNo = z
   .enum(['yes', 'no', '1', '0', 'true', 'false'])
   .transform((v) => v === 'yes' || v === '1' || v === 'true');
 
-const originSchema = z
-  .url({ protocol: /^https?$/, error: 'is not an http or https address' })
-  .refine((value) => new URL(value).pathname === '/', 'must not have a path')
-  .transform((value) => new URL(value).origin);
+const originSchema = z.string().transform((value, context) => {
+  const url = URL.canParse(value) ? new URL(value) : null;
+  if (!url || !/^https?:$/.test(url.protocol)) context.addIssue('is not an http or https address');
+  else if (url.pathname !== '/' || url.search !== '') context.addIssue('must not have a path');
+  return url?.origin ?? '';
+});
 
 const wholeNumber = z.coerce.number({ error: 'is not a number' }).int('is not a whole number');
 

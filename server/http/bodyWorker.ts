@@ -3,14 +3,15 @@ import { Worker } from 'node:worker_threads';
 import { DomainError } from '../problem.ts';
 import type { CheckedBody } from './checkJson.ts';
 
-export const CHECK_LIMIT_MS = 5000;
+/** What a thread may take; tests make it less. */
+const LIMITS = { timeMs: 5000, memoryMb: 1024 };
 const MOST_THREADS = 2;
 const MOST_WAITING = 8;
 
 export type LargeBodyCheck = (endpointName: string, bytes: Uint8Array<ArrayBuffer>) => Promise<CheckedBody>;
 
 /** Parses and checks large bodies in threads, so that one hostile body holds up nobody else. */
-export function createBodyWorker(buildDir: string, limitMs = CHECK_LIMIT_MS): LargeBodyCheck {
+export function createBodyWorker(buildDir: string, limits = LIMITS): LargeBodyCheck {
   const waiting: (() => void)[] = [];
   let running = 0;
 
@@ -37,7 +38,7 @@ export function createBodyWorker(buildDir: string, limitMs = CHECK_LIMIT_MS): La
   return async (endpointName, bytes) => {
     await turn();
     try {
-      return await checkInThread(path.join(buildDir, 'body.worker.mjs'), { endpointName, bytes }, limitMs);
+      return await checkInThread(path.join(buildDir, 'body.worker.mjs'), { endpointName, bytes }, limits);
     } finally {
       leave();
     }
@@ -47,16 +48,16 @@ export function createBodyWorker(buildDir: string, limitMs = CHECK_LIMIT_MS): La
 function checkInThread(
   file: string,
   workerData: { endpointName: string; bytes: Uint8Array<ArrayBuffer> },
-  limitMs: number,
+  limits: typeof LIMITS,
 ): Promise<CheckedBody> {
   return new Promise((resolve, reject) => {
     const worker = new Worker(file, {
       workerData,
       transferList: [workerData.bytes.buffer],
-      resourceLimits: { maxOldGenerationSizeMb: 1024 },
+      resourceLimits: { maxOldGenerationSizeMb: limits.memoryMb },
     });
-    const tooLong = new DomainError('too_large', `The body takes longer than ${limitMs / 1000} s to check.`);
-    const timer = setTimeout(() => settle(() => reject(tooLong)), limitMs);
+    const tooLong = new DomainError('too_large', `The body takes longer than ${limits.timeMs / 1000} s to check.`);
+    const timer = setTimeout(() => settle(() => reject(tooLong)), limits.timeMs);
     function settle(answer: () => void): void {
       clearTimeout(timer);
       worker.removeAllListeners();
