@@ -1,11 +1,13 @@
 import type { MeasuredLevels } from '../fit/types';
 import { spell } from '../fit/words';
 import { fractionToNumber, sampleClock } from '../numerology';
-import type { BenchProfile, WaveformDocument } from '../types';
+import type { BenchProfile, WaveformContent, WaveformIntent } from '../types';
 import { countedPeakDbfs } from './levels';
 import type { CardOverrides, CardReading, LevelCard } from './types';
 
 type Means = CardReading['means'];
+/** What the sample clock is made of: all of the content that a card needs. */
+type ClockNumbers = Pick<WaveformContent, 'fftSize' | 'oversampling' | 'subcarrierSpacingHz'>;
 
 const MEANS_WORDS: Record<Means, string> = {
   fileRms: 'its mean over the whole file',
@@ -35,7 +37,7 @@ function largest(values: (number | null)[]): number | null {
  * `overrides` are limits entered on the card for another device, or a setting that was typed; 0 dBm is a level like any other.
  */
 export function levelCard(
-  document: Pick<WaveformDocument, 'content' | 'intent'>,
+  document: { content: ClockNumbers; intent: WaveformIntent },
   bench: Pick<BenchProfile, 'content'>,
   measured: MeasuredLevels,
   overrides: CardOverrides = {},

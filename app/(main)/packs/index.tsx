@@ -1,0 +1,5 @@
+import { PacksScreen } from '@/components/screens/PacksScreen/PacksScreen';
+
+export default function Route() {
+  return <PacksScreen />;
+}
