@@ -20,17 +20,26 @@ export function checkRowsShape(rows: readonly unknown[], issues: LoopIssues): vo
     issues.add([], `must have at most ${mostRuns} runs in all, not ${Math.ceil(runs)}`);
     return;
   }
-  rows.forEach((row, rowAt) => {
+  // By index: forEach would pass over the holes of a sparse list.
+  for (let rowAt = 0; rowAt < rows.length; rowAt += 1) {
+    const row = rows[rowAt];
     if (!Array.isArray(row)) issues.add([rowAt], 'must be a list of lengths and inks');
     else if (row.length === 0 || row.length % 2 !== 0) issues.add([rowAt], 'must be pairs of a length and an ink');
-    else {
-      for (let at = 0; at < row.length; at += 2) {
-        if (!isWholeIn(row[at], 1, mostFftSize)) issues.add([rowAt, at], `must be a length of 1 to ${mostFftSize}`);
-        if (!isWholeIn(row[at + 1], 0, mostInks - 1))
-          issues.add([rowAt, at + 1], `must be an ink of 0 to ${mostInks - 1}`);
-      }
+    else checkRowShape(row, rowAt, issues);
+  }
+}
+
+function checkRowShape(row: readonly unknown[], rowAt: number, issues: LoopIssues): void {
+  for (let at = 0; at < row.length; at += 2) {
+    const length = row[at];
+    const ink = row[at + 1];
+    if (!isWholeIn(length, 1, mostFftSize) && !issues.countsOnly()) {
+      issues.add([rowAt, at], `must be a length of 1 to ${mostFftSize}`);
     }
-  });
+    if (!isWholeIn(ink, 0, mostInks - 1) && !issues.countsOnly()) {
+      issues.add([rowAt, at + 1], `must be an ink of 0 to ${mostInks - 1}`);
+    }
+  }
 }
 
 export function checkRowOfSymbolShape(rowOfSymbol: readonly unknown[], issues: LoopIssues): void {
@@ -44,16 +53,22 @@ export function checkRowOfSymbolShape(rowOfSymbol: readonly unknown[], issues: L
   }
 }
 
-function hashOf(row: readonly number[]): number {
-  let hash = row.length;
-  for (let at = 0; at < row.length; at += 1) hash = Math.imul(hash ^ row[at]!, 16777619) ^ (hash >>> 15);
-  return hash;
+function compareRows(a: readonly number[], b: readonly number[]): number {
+  const shared = Math.min(a.length, b.length);
+  for (let at = 0; at < shared; at += 1) if (a[at] !== b[at]) return a[at]! - b[at]!;
+  return a.length - b.length;
 }
 
-function isSameRow(a: readonly number[], b: readonly number[]): boolean {
-  if (a.length !== b.length) return false;
-  for (let at = 0; at < a.length; at += 1) if (a[at] !== b[at]) return false;
-  return true;
+/** For each row the first one equal to it, or −1. By sorting: a table of hashes could be made to collide by a hostile body. */
+function twinsOf(rows: readonly (readonly number[])[]): Int32Array {
+  const twins = new Int32Array(rows.length).fill(-1);
+  const order = Array.from(rows.keys()).sort((a, b) => compareRows(rows[a]!, rows[b]!) || a - b);
+  for (let at = 1; at < order.length; at += 1) {
+    const before = order[at - 1]!;
+    const row = order[at]!;
+    if (compareRows(rows[before]!, rows[row]!) === 0) twins[row] = twins[before] === -1 ? before : twins[before]!;
+  }
+  return twins;
 }
 
 function checkRow(row: readonly number[], rowAt: number, fftSize: number, inkCount: number, issues: LoopIssues): void {
@@ -61,9 +76,12 @@ function checkRow(row: readonly number[], rowAt: number, fftSize: number, inkCou
   for (let at = 0; at < row.length; at += 2) {
     cells += row[at]!;
     const ink = row[at + 1]!;
-    if (ink >= inkCount) issues.add(['rows', rowAt, at + 1], `must be an ink of the tray, 0 to ${inkCount - 1}`);
-    if (at > 0 && ink === row[at - 1])
+    if (ink >= inkCount && !issues.countsOnly()) {
+      issues.add(['rows', rowAt, at + 1], `must be an ink of the tray, 0 to ${inkCount - 1}`);
+    }
+    if (at > 0 && ink === row[at - 1] && !issues.countsOnly()) {
       issues.add(['rows', rowAt, at + 1], 'must differ from the run before it: merge the two');
+    }
   }
   if (cells !== fftSize) issues.add(['rows', rowAt], `must fill ${fftSize} subcarriers, not ${cells}`);
 }
@@ -76,17 +94,10 @@ export function gridProblems(
   inkCount: number,
   issues: LoopIssues,
 ): void {
-  const rowsByHash = new Map<number, number[]>();
+  const twins = twinsOf(grid.rows);
   grid.rows.forEach((row, rowAt) => {
     checkRow(row, rowAt, fftSize, inkCount, issues);
-    const hash = hashOf(row);
-    const alike = rowsByHash.get(hash);
-    if (alike === undefined) rowsByHash.set(hash, [rowAt]);
-    else {
-      const twin = alike.find((other) => isSameRow(grid.rows[other]!, row));
-      if (twin === undefined) alike.push(rowAt);
-      else issues.add(['rows', rowAt], `is the same as row ${twin}: rows are unique`);
-    }
+    if (twins[rowAt] !== -1) issues.add(['rows', rowAt], `is the same as row ${twins[rowAt]}: rows are unique`);
   });
   if (grid.rowOfSymbol.length !== symbolCount) {
     issues.add(
@@ -97,9 +108,9 @@ export function gridProblems(
   let seen = 0;
   for (let symbol = 0; symbol < grid.rowOfSymbol.length; symbol += 1) {
     const row = grid.rowOfSymbol[symbol]!;
-    if (row >= grid.rows.length)
+    if (row >= grid.rows.length) {
       issues.add(['rowOfSymbol', symbol], `must be the place of a row, 0 to ${grid.rows.length - 1}`);
-    else if (row > seen) {
+    } else if (row > seen) {
       issues.add(['rowOfSymbol', symbol], `must be ${seen} or less here: rows stand in order of first use`);
       seen = row + 1;
     } else if (row === seen) seen += 1;

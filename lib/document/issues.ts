@@ -132,6 +132,13 @@ export class LoopIssues {
     else this.unlisted += 1;
   }
 
+  /** True once the list is full, and then counts one: spares a loop the words of an issue that nobody will read. */
+  countsOnly(): boolean {
+    if (this.listed.length < mostIssues) return false;
+    this.unlisted += 1;
+    return true;
+  }
+
   get isEmpty(): boolean {
     return this.listed.length === 0;
   }

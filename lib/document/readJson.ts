@@ -3,12 +3,17 @@ import { failure, pointerOf, type ParseFailure } from './issues';
 /** A file is at most 32 MiB of UTF-8. */
 export const mostFileBytes = 32 * 1024 * 1024;
 const mostDepth = 16;
+// Far above what a file of ours has (a manifest's constellation tables have most); below what makes the parser itself slow.
+const mostObjects = 2 ** 19;
+const mostKeys = 256;
 
 // The web platform's decoder, which Node has too; this room's types know neither.
 declare const TextDecoder: new (label: string, options: { fatal: boolean }) => { decode(bytes: Uint8Array): string };
 
 const quote = 34;
 const comma = 44;
+const zero = 48;
+const nine = 57;
 const openList = 91;
 const backslash = 92;
 const closeList = 93;
@@ -16,13 +21,6 @@ const openObject = 123;
 const closeObject = 125;
 const letterI = 73;
 const letterN = 78;
-
-interface Level {
-  /** Keys so far, of an object; null in a list. */
-  keys: Set<string> | null;
-  step: string | number;
-  expectsKey: boolean;
-}
 
 /** The place after a string's closing quote; text.length where it never closes. */
 function endOfString(text: string, open: number): number {
@@ -44,43 +42,76 @@ function keyOf(raw: string): string {
   }
 }
 
+/** Where the scan stands: one place a level, reused, because a hostile body opens millions of objects. */
+class Nesting {
+  depth = 0;
+  /** The key or the index that each level is at. */
+  readonly steps: (string | number)[] = new Array<string | number>(mostDepth).fill(0);
+  readonly isObject: boolean[] = new Array<boolean>(mostDepth).fill(false);
+  private readonly keys = Array.from({ length: mostDepth }, () => new Set<string>());
+
+  open(isObject: boolean): void {
+    this.steps[this.depth] = 0;
+    this.isObject[this.depth] = isObject;
+    if (isObject && this.keys[this.depth]!.size > 0) this.keys[this.depth] = new Set();
+    this.depth += 1;
+  }
+
+  /** What is wrong with one more key of the object. */
+  takeKey(key: string): ParseFailure | null {
+    const keys = this.keys[this.depth - 1]!;
+    if (keys.size === mostKeys) {
+      return failure('malformed', pointerOf(this.steps.slice(0, this.depth - 1)), `has more than ${mostKeys} keys`);
+    }
+    this.steps[this.depth - 1] = key;
+    if (keys.has(key)) return this.fail('stands twice in its object');
+    keys.add(key);
+    return null;
+  }
+
+  fail(message: string): ParseFailure {
+    return failure('malformed', pointerOf(this.steps.slice(0, this.depth)), message);
+  }
+}
+
 /**
  * One pass over the text before it is parsed, for what JSON.parse lets through or cannot bear: nesting deeper than 16, a key
  * that stands twice (the last would win in silence), NaN and Infinity with a message of their own.
  */
 function scan(text: string): ParseFailure | null {
-  const levels: Level[] = [];
-  let top: Level | undefined;
+  const nesting = new Nesting();
+  const { steps } = nesting;
+  let objects = 0;
+  let isInObject = false;
+  let expectsKey = false;
   for (let at = 0; at < text.length; at += 1) {
     const code = text.charCodeAt(at);
-    if (code === quote) {
+    if (code >= zero && code <= nine) continue;
+    if (code === comma) {
+      if (isInObject) expectsKey = true;
+      else if (nesting.depth > 0) (steps[nesting.depth - 1] as number) += 1;
+    } else if (code === quote) {
       const end = endOfString(text, at);
-      if (top?.expectsKey === true && top.keys !== null) {
-        const key = keyOf(text.slice(at, end));
-        top.step = key;
-        top.expectsKey = false;
-        if (top.keys.has(key))
-          return failure('malformed', pointerOf(levels.map(({ step }) => step)), 'stands twice in its object');
-        top.keys.add(key);
+      if (expectsKey) {
+        expectsKey = false;
+        const found = nesting.takeKey(keyOf(text.slice(at, end)));
+        if (found !== null) return found;
       }
       at = end - 1;
-    } else if (code === comma) {
-      if (top === undefined) return null;
-      if (top.keys !== null) top.expectsKey = true;
-      else top.step = (top.step as number) + 1;
     } else if (code === openObject || code === openList) {
-      if (levels.length === mostDepth) return failure('malformed', '', `is nested deeper than ${mostDepth} levels`);
-      top =
-        code === openObject
-          ? { keys: new Set(), step: '', expectsKey: true }
-          : { keys: null, step: 0, expectsKey: false };
-      levels.push(top);
+      if (nesting.depth === mostDepth) return failure('malformed', '', `is nested deeper than ${mostDepth} levels`);
+      isInObject = code === openObject;
+      if (isInObject) objects += 1;
+      if (objects > mostObjects) return failure('too_large', '', `holds more than ${mostObjects} objects`);
+      expectsKey = isInObject;
+      nesting.open(isInObject);
     } else if (code === closeObject || code === closeList) {
-      levels.pop();
-      top = levels.at(-1);
+      if (nesting.depth === 0) return null; // no JSON: the parser says where
+      nesting.depth -= 1;
+      isInObject = nesting.depth > 0 && nesting.isObject[nesting.depth - 1]!;
+      expectsKey = false;
     } else if (code === letterN || code === letterI) {
-      const pointer = pointerOf(levels.map(({ step }) => step));
-      return failure('malformed', pointer, 'is not JSON: there is no NaN or Infinity in it');
+      return nesting.fail('is not JSON: there is no NaN or Infinity in it');
     }
   }
   return null;

@@ -3,7 +3,7 @@ import { contentProblems } from './contentRules';
 import { checkRowOfSymbolShape, checkRowsShape, mostSymbols } from './gridRules';
 import { inkSchema } from './inkSchema';
 import { customIssue } from './issues';
-import { bigArray, fraction, freeText, lineText, list, most32, nameText, real, whole } from './schemaParts';
+import { bigArray, fraction, freeText, isWholeIn, lineText, list, most32, nameText, real, whole } from './schemaParts';
 import { streamSchema } from './sourceSchema';
 
 const grid = z
@@ -26,12 +26,12 @@ const grid = z
 const prefixSamples = bigArray<number[]>(
   (values, issues) => {
     if (values.length < 1) issues.add([], 'must have at least 1 entry');
-    if (values.length > mostSymbols) issues.add([], `must have at most ${mostSymbols} entries, not ${values.length}`);
-    else {
-      values.forEach((value, at) => {
-        const isGood = Number.isInteger(value) && (value as number) >= 0 && (value as number) <= 16384;
-        if (!isGood || Object.is(value, -0)) issues.add([at], 'must be a whole number of samples, 0 to the FFT size');
-      });
+    if (values.length > mostSymbols) {
+      issues.add([], `must have at most ${mostSymbols} entries, not ${values.length}`);
+      return;
+    }
+    for (let at = 0; at < values.length; at += 1) {
+      if (!isWholeIn(values[at], 0, 16384)) issues.add([at], 'must be a whole number of samples, 0 to the FFT size');
     }
   },
   { type: 'array', minItems: 1, maxItems: mostSymbols, items: { type: 'integer', minimum: 0, maximum: 16384 } },
