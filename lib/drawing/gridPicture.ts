@@ -1,4 +1,4 @@
-import type { WaveformContent } from '@/lib/synth';
+import type { WaveformContent } from '@/lib/synth/index';
 import { inkStyleOf } from './inkStyle';
 import type { InkStyleKey } from './inkStyle';
 

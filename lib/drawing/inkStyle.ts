@@ -1,4 +1,4 @@
-import type { Ink } from '@/lib/synth';
+import type { Ink } from '@/lib/synth/index';
 
 /** The key of an ink's colours and mark in the theme's `cell` tokens. */
 export type InkStyleKey =

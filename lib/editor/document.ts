@@ -1,5 +1,5 @@
-import { compressGrid, expandGrid } from '@/lib/synth';
-import type { WaveformAbout, WaveformContent, WaveformDocument, WaveformIntent } from '@/lib/synth';
+import { compressGrid, expandGrid } from '@/lib/synth/index';
+import type { WaveformAbout, WaveformContent, WaveformDocument, WaveformIntent } from '@/lib/synth/index';
 import type { Settings } from './types';
 
 /**

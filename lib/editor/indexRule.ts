@@ -1,6 +1,6 @@
 import { countedTooLow, paintLimits } from '@/lib/document/counterRules';
 import type { PaintLimits } from '@/lib/document/counterRules';
-import type { Ink } from '@/lib/synth';
+import type { Ink } from '@/lib/synth/index';
 import type { EditorDocument } from './document';
 import type { Span } from './types';
 

@@ -1,4 +1,4 @@
-import { compressGrid, expandGrid } from '@/lib/synth';
+import { compressGrid, expandGrid } from '@/lib/synth/index';
 import type { EditorDocument } from './document';
 import type { CellRows, Change, Patch, Runs, SizedGrid } from './types';
 

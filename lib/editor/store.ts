@@ -1,6 +1,6 @@
 import { createStore } from 'zustand/vanilla';
 import type { StoreApi } from 'zustand/vanilla';
-import type { WaveformDocument } from '@/lib/synth';
+import type { WaveformDocument } from '@/lib/synth/index';
 import { lowestOf, openDocument } from './document';
 import type { EditorDocument } from './document';
 import { createGesture } from './gesture';

@@ -8,7 +8,7 @@ import type {
   WaveformAbout,
   WaveformContent,
   WaveformIntent,
-} from '@/lib/synth';
+} from '@/lib/synth/index';
 
 /** A cell by its place: position p = k + ⌊N/2⌋ (0…N−1, left to right in frequency) and symbol l. */
 export interface CellPoint {

@@ -1,4 +1,4 @@
-import type { PlainChange } from '@/lib/synth';
+import type { PlainChange } from '@/lib/synth/index';
 import type { EditorDocument } from '../document';
 import type { Outcome } from './outcome';
 import { planSettings } from './settings';

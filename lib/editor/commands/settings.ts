@@ -1,6 +1,6 @@
 import { parseWaveformDocument } from '@/lib/document/parse';
 import { formatInteger } from '@/lib/drawing/quantities';
-import type { WaveformAbout, WaveformIntent } from '@/lib/synth';
+import type { WaveformAbout, WaveformIntent } from '@/lib/synth/index';
 import type { EditorDocument } from '../document';
 import { gridRefusal } from '../indexRule';
 import { resizeCells } from '../kernels/resize';

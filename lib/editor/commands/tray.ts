@@ -1,4 +1,4 @@
-import type { Ink, Stream } from '@/lib/synth';
+import type { Ink, Stream } from '@/lib/synth/index';
 import { formatInteger } from '@/lib/drawing/quantities';
 import { countCells } from '../document';
 import type { EditorDocument } from '../document';

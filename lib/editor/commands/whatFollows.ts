@@ -1,7 +1,7 @@
 import { formatQuantity } from '@/lib/drawing/quantities';
 import type { QuantityText } from '@/lib/drawing/quantities';
-import { deriveFigures } from '@/lib/synth';
-import type { DerivedFigures, WaveformContent } from '@/lib/synth';
+import { deriveFigures } from '@/lib/synth/index';
+import type { DerivedFigures, WaveformContent } from '@/lib/synth/index';
 import type { EditorDocument } from '../document';
 import type { Settings } from '../types';
 

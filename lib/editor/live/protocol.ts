@@ -1,4 +1,4 @@
-import type { BenchContent, WaveformDocument } from '@/lib/synth';
+import type { BenchContent, WaveformDocument } from '@/lib/synth/index';
 import type { Patch } from '../types';
 
 /** What the views want to see; the worker measures no more than this. */
@@ -48,13 +48,13 @@ export interface TimeTrace {
   paprDb: number | null;
 }
 
-/** Density in dB against the mean used cell's (0 dB), by column over the shown positions. */
+/** Density in dB against that of a cell of 0 dB, by column over the shown positions. */
 export interface SpectrumTrace {
   from: number;
   to: number;
   db: MinMaxTrace;
   rbwHz: number;
-  /** "Welch, Hann window of 8192 samples, of the rendered samples". */
+  /** "Welch, Blackman–Harris window of 2048 samples, of the rendered samples". */
   recipe: string;
 }
 
