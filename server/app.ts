@@ -2,14 +2,15 @@ import compression from 'compression';
 import express, { Router, type Express } from 'express';
 import { createSessions } from './auth/sessions.ts';
 import type { Deps } from './deps.ts';
+import { createEvents } from './events.ts';
 import { mountAudit } from './features/audit/routes.ts';
 import { mountAuth } from './features/auth/routes.ts';
 import { mountBenches } from './features/benches/routes.ts';
 import { mountEditions } from './features/editions/routes.ts';
+import { createPacks } from './features/packs/packs.ts';
 import { mountPeople } from './features/people/routes.ts';
 import { mountReviews } from './features/reviews/routes.ts';
 import { mountWaveforms } from './features/waveforms/routes.ts';
-import { createEvents } from './events.ts';
 import { createFigures } from './figures/figures.ts';
 import { createMeasureThread } from './figures/measureThread.ts';
 import { answerErrors } from './http/errorHandler.ts';
@@ -46,12 +47,14 @@ export function createApp(deps: Deps): Express {
   mountWaveforms(mount, deps, figures);
   mountReviews(mount, deps);
   mountEditions(mount, deps, events);
-  mountBenches(mount, deps);
+  mountBenches(mount, deps, figures);
+  const packs = createPacks(deps, mount, events, sessions.readActor);
   app.use(requireOwnOrigin(deps), api);
   app.use('/api', () => {
     throw new DomainError('not_found');
   });
 
+  app.use(packs.page);
   app.use(servePage(deps.config.webDir));
   app.use(answerErrors);
   return app;

@@ -50,8 +50,11 @@ export const fitSchema = z
     findings: z.array(fitFindingSchema),
     /** Parts of the profile no pack can be written in yet; a pack is refused. */
     notSupportedYet: z.array(issueSchema),
-    /** False while the levels are being rendered: headroom and level then cannot judge. */
-    isMeasured: z.boolean(),
+    /**
+     * Headroom and level can be judged only once the levels are `measured`. `measuring`: ask again soon. `unknown`: the file is too long to
+     * be measured here; its pack measures it.
+     */
+    levels: z.enum(['measured', 'measuring', 'unknown']),
   })
   .meta({ id: 'Fit' });
 export type Fit = z.infer<typeof fitSchema>;

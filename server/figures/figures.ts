@@ -30,7 +30,8 @@ export interface Figures {
   want(digest: string): void;
   /** Of all the contents named; what is not measured yet is wanted by being read. */
   readAll(digests: readonly string[]): (digest: string) => RevisionFigures;
-  levelsOf(digest: string): RenderedLevels | null;
+  /** Levels of the whole rendering; `measuring` while they are to come, null where they cannot be had. */
+  levelsOf(digest: string): RenderedLevels | 'measuring' | null;
   /** For tests and for the first start: nothing waits any more. */
   settled(): Promise<void>;
 }
@@ -122,7 +123,11 @@ export function createFigures(deps: Deps, measuring: Measuring): Figures {
         return { ...figures, measureFailed: failedHere.get(digest) ?? null };
       };
     },
-    levelsOf: (digest) => readFigures(store.db, [digest], version).get(digest)?.levels ?? null,
+    levelsOf(digest) {
+      const figures = this.readAll([digest])(digest);
+      if (figures.measured === null && figures.measureFailed === null) return 'measuring';
+      return readFigures(store.db, [digest], version).get(digest)?.levels ?? null;
+    },
     async settled() {
       while (running) await running;
     },

@@ -1,9 +1,12 @@
 import * as contract from '@/lib/contracts/benches';
+import { showFit } from '@/lib/contracts/fit';
 import type { Deps } from '../../deps.ts';
+import type { Figures } from '../../figures/figures.ts';
 import type { Mount } from '../../http/mount.ts';
+import { createFitReader } from './fit.ts';
 import { createBenchesService } from './service.ts';
 
-export function mountBenches(mount: Mount, deps: Deps): void {
+export function mountBenches(mount: Mount, deps: Deps, figures: Figures): void {
   const service = createBenchesService(deps);
 
   mount.json(contract.listBenches, ({ actor }) => ({ items: service.list(actor) }));
@@ -12,4 +15,7 @@ export function mountBenches(mount: Mount, deps: Deps): void {
   mount.json(contract.saveBench, (call) =>
     service.save(call.actor, call.params.benchId, call.query.afterVersion, call.body, call),
   );
+
+  const fit = createFitReader(deps, figures);
+  mount.json(showFit, ({ actor, params, query }) => fit(actor, params.revisionId, query.benchId, query.version));
 }

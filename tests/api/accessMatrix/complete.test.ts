@@ -1,9 +1,11 @@
 import { endpoints } from '@/lib/contracts/endpoints';
 import { readAccessTable } from '../../helpers/accessMatrix';
 import { accountAccess } from './tables/account';
+import { benchesAccess } from './tables/benches';
 import { peopleAccess } from './tables/people';
+import { waveformsAccess } from './tables/waveforms';
 
-const tables = [accountAccess, peopleAccess];
+const tables = [accountAccess, peopleAccess, waveformsAccess, benchesAccess];
 
 it('every endpoint stands in the access matrix', () => {
   const rows = new Set(tables.flatMap((table) => readAccessTable(table).map((row) => row.name)));
