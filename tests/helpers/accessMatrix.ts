@@ -18,7 +18,6 @@ export interface AccessTable {
   /** Called once per cell, on a server of its own; '-' needs none. */
   states: Record<string, (server: TestServer) => unknown>;
   /** By endpoint name: the request in that state. `object` is what the state returned. */
-  // eslint-disable-next-line @typescript-eslint/no-explicit-any -- each table knows what its own states return
   requests: Record<string, (object: any, server: TestServer, who: Who) => AccessRequest>;
   /** `endpoint | state | anonymous | author | otherAuthor | reviewer | operator | admin`, cells `200` or `403 own_work`. */
   table: string;

@@ -108,7 +108,7 @@ describe('the API', () => {
 
   it('hides what went wrong inside, and logs it with the request id', async () => {
     server.store.sqlite.exec('alter table users rename to users_gone');
-    const answer = await (await server.clientOf('combwright=anything')).get('/api/v1/session');
+    const answer = await server.clientOf('combwright=anything').get('/api/v1/session');
     server.store.sqlite.exec('alter table users_gone rename to users');
     expect(answer.status).toBe(500);
     expect(answer.body).toMatchObject({ code: 'internal', detail: 'The server failed.' });
