@@ -134,8 +134,8 @@ export function createPlacedValues(
     inkTaken[ink]! += count;
     inSymbol[ink]! += count;
     for (let i = 0, at = 2 * to; i < count; i++, at += 2 * stride) {
-      out[at] = values[2 * i]!;
-      out[at + 1] = values[2 * i + 1]!;
+      out[at] = values[2 * i]! + 0; // no negative zeros
+      out[at + 1] = values[2 * i + 1]! + 0;
     }
   }
 
