@@ -5,6 +5,7 @@ import {
   formatQuantity,
   type QuantityText,
 } from '@/lib/drawing/quantities';
+import type { RevisionFigures } from '@/lib/contracts/waveforms';
 import { deriveFigures, pilotReach, type WaveformContent } from '@/lib/synth';
 
 export interface NamedFigure extends QuantityText {
@@ -62,4 +63,23 @@ export function reachSentences(content: WaveformContent): string[] {
     const doppler = pair.dopplerHz === null ? 'no Doppler (one pilot symbol)' : `${text(pair.dopplerHz, 'Hz')} Doppler`;
     return `${lead} ${delay}, ${doppler}.`;
   });
+}
+
+/** Figures that only a synthesis tells, as the server measured them. */
+export function measuredFigures(figures: RevisionFigures): NamedFigure[] {
+  const { measured, measureFailed } = figures;
+  const db = (value: number | null | undefined): QuantityText =>
+    measured === null
+      ? { value: measureFailed === null ? 'measuring' : 'not measured', unit: '' }
+      : value === null || value === undefined
+        ? { value: 'none', unit: '' }
+        : { value: formatNumber(value, 2, true), unit: 'dB' };
+  const worst = measured?.worstSymbol;
+  return [
+    { name: 'PAPR', ...db(measured?.paprDb) },
+    {
+      name: worst === null || worst === undefined ? 'Worst symbol' : `Worst symbol, ${worst}`,
+      ...db(measured?.worstSymbolPaprDb),
+    },
+  ];
 }

@@ -5,10 +5,11 @@ import { Figure } from '@/components/ui/Figure';
 import { Stamp } from '@/components/ui/Stamp';
 import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
+import { useMay } from '@/lib/client/useSession';
 import type { WaveformItem } from '@/lib/contracts/waveforms';
 import { when } from '../when';
 import { ItemPicture } from './ItemPicture';
-import { itemAside, itemFigures } from './itemWords';
+import { itemAside, itemFigures, waveformHref } from './itemWords';
 
 /** The list on a phone: each row a card, the whole card the link. */
 export function WaveformCards({ items }: { items: readonly WaveformItem[] }) {
@@ -27,7 +28,7 @@ function Card({ item }: { item: WaveformItem }) {
   const figures = itemFigures(item);
   const aside = itemAside(item);
   return (
-    <Link href={{ pathname: '/waveforms/[waveformId]', params: { waveformId: item.waveformId } }} style={styles.link}>
+    <Link href={waveformHref(item, useMay('readWaveforms'))} style={styles.link}>
       <View style={[styles.card, item.waitsForYourReview ? styles.waits : null]}>
         <Text variant="heading" tone="strong" numberOfLines={1}>
           {item.title}

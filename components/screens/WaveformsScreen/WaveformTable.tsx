@@ -5,10 +5,11 @@ import { Pressable, StyleSheet, View } from 'react-native';
 import { Stamp } from '@/components/ui/Stamp';
 import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
+import { useMay } from '@/lib/client/useSession';
 import type { WaveformItem } from '@/lib/contracts/waveforms';
 import { when } from '../when';
 import { ItemPicture } from './ItemPicture';
-import { itemAside, itemFigures } from './itemWords';
+import { itemAside, itemFigures, waveformHref } from './itemWords';
 
 type SortKey = 'title' | 'clock' | 'span' | 'papr' | 'changed';
 
@@ -105,10 +106,7 @@ function Row({ item }: { item: WaveformItem }) {
         <ItemPicture item={item} width={144} height={36} />
       </View>
       <View role="cell" style={styles.title}>
-        <Link
-          href={{ pathname: '/waveforms/[waveformId]', params: { waveformId: item.waveformId } }}
-          style={styles.link}
-        >
+        <Link href={waveformHref(item, useMay('readWaveforms'))} style={styles.link}>
           <Text variant="bodyStrong" tone="strong" numberOfLines={1}>
             {item.title}
           </Text>

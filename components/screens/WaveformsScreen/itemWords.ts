@@ -1,3 +1,4 @@
+import type { Href } from 'expo-router';
 import { formatNumber } from '@/lib/drawing/quantities';
 import type { WaveformItem } from '@/lib/contracts/waveforms';
 
@@ -28,4 +29,13 @@ export function itemAside(item: WaveformItem): { words: string; isCall: boolean 
   if (item.stamp.cameBack === 'returned' && item.stamp.reason)
     return { words: `Returned: ${item.stamp.reason}`, isCall: false };
   return null;
+}
+
+/** Where a row leads: what waits for a review to the review, a drawing to its table, an edition to its page. */
+export function waveformHref(item: WaveformItem, readsDrafts: boolean): Href {
+  const params = { waveformId: item.waveformId };
+  if (item.waitsForYourReview) return { pathname: '/waveforms/[waveformId]/review', params };
+  return readsDrafts
+    ? { pathname: '/waveforms/[waveformId]', params }
+    : { pathname: '/waveforms/[waveformId]/history', params };
 }
