@@ -34,4 +34,6 @@ export interface OpenedDrawing {
   document: WaveformDocument;
   editionNumber: number | null;
   openReview: OpenReview | null;
+  /** A copy from this device: the server has not got it yet. */
+  isUnsaved: boolean;
 }
