@@ -12,7 +12,7 @@ import { mountPeople } from './features/people/routes.ts';
 import { mountReviews } from './features/reviews/routes.ts';
 import { mountWaveforms } from './features/waveforms/routes.ts';
 import { createFigures } from './figures/figures.ts';
-import { createMeasureThread } from './figures/measureThread.ts';
+import { createMeasureThread, type Measuring } from './figures/measureThread.ts';
 import { answerErrors } from './http/errorHandler.ts';
 import { createMount } from './http/mount.ts';
 import { requireOwnOrigin } from './http/origin.ts';
@@ -22,7 +22,7 @@ import { servePage } from './http/staticFiles.ts';
 import { DomainError } from './problem.ts';
 
 /** The whole server but the listening. */
-export function createApp(deps: Deps): Express {
+export function createApp(deps: Deps, measuring: Measuring = createMeasureThread(deps.config.buildDir)): Express {
   const app = express();
   app.disable('x-powered-by');
   app.set('trust proxy', deps.config.trustsProxy ? 1 : false);
@@ -43,7 +43,7 @@ export function createApp(deps: Deps): Express {
   mountPeople(mount, deps);
   mountAudit(mount, deps);
   const events = createEvents((error) => deps.log.error({ err: error }, 'a listener failed'));
-  const figures = createFigures(deps, createMeasureThread(deps.config.buildDir));
+  const figures = createFigures(deps, measuring);
   mountWaveforms(mount, deps, figures);
   mountReviews(mount, deps);
   mountEditions(mount, deps, events);

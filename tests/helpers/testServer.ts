@@ -17,6 +17,7 @@ import { readConfig, type Config } from '@/server/config';
 import type { Deps } from '@/server/deps';
 import { insertInstallation } from '@/server/features/auth/installationRepo';
 import { insertUser } from '@/server/features/auth/repo';
+import type { Measuring } from '@/server/figures/measureThread';
 import { createLifecycle, type StoppableLifecycle } from '@/server/lifecycle';
 
 const rootDir = path.resolve(__dirname, '../..');
@@ -71,7 +72,11 @@ export interface TestServer {
   close(): Promise<void>;
 }
 
+/** Leaves every figure as still being measured: most tests look at none and need no thread. */
+const noMeasuring: Measuring = { measure: () => Promise.resolve(), stop: () => Promise.resolve() };
+
 export interface TestServerOptions {
+  measuring?: Measuring;
   config?: Partial<Config>;
   kind?: 'team' | 'demo';
   /** False: an empty installation. */
@@ -108,7 +113,7 @@ export async function startTestServer(options: TestServerOptions = {}): Promise<
       insertUser(tx, { id, email, name: person.name, passwordHash, createdAtMs: clock.nowMs() }, person.roles);
     }
   });
-  const app = createApp(deps);
+  const app = createApp(deps, options.measuring ?? noMeasuring);
 
   const server: TestServer = {
     app,
