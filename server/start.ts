@@ -10,6 +10,7 @@ import { createApp } from './app.ts';
 import { isLoopback, StartRefused, type Config } from './config.ts';
 import type { Deps } from './deps.ts';
 import { kindOfInstallation, markInstallation, prepareFirstRun } from './features/auth/installation.ts';
+import type { OwnAddress } from './features/demo/ownClient.ts';
 import { seedDemo } from './features/demo/seed.ts';
 import { createLifecycle, type StoppableLifecycle } from './lifecycle.ts';
 
@@ -42,10 +43,10 @@ export async function startServer(
     if (kind === 'demo') requireDemoPlace(config);
     markInstallation(deps, kind);
     const app = createApp(deps);
-    if (kind === 'demo') await seedDemo(deps);
     const server = createServer(app);
     const port = await listen(server, config);
     lifecycle.onStop(() => finishRequests(server));
+    if (kind === 'demo') await seedOrSay(deps, { ...config, port }, say);
     const host = config.host.includes(':') ? `[${config.host}]` : config.host;
     const address =
       config.publicOrigin ?? `http://${host === '0.0.0.0' || host === '[::]' ? 'localhost' : host}:${port}`;
@@ -80,6 +81,16 @@ function openData(config: Config, log: Logger, lifecycle: StoppableLifecycle): D
   const ulid = monotonicFactory();
   const clock = { nowMs: () => Date.now() };
   return { config, clock, store, log, lifecycle, newId: () => ulid(clock.nowMs()) };
+}
+
+/** A demo that is not whole is still a demo; the next start goes on. */
+async function seedOrSay(deps: Deps, address: OwnAddress, say: Say): Promise<void> {
+  try {
+    await seedDemo(deps, address);
+  } catch (error) {
+    deps.log.error({ err: error }, 'the demo team is not complete');
+    say('The demo team is not complete; the log says why. The next start goes on with it.');
+  }
 }
 
 /** Anyone may sign in to a demo as anyone: it must not be reachable from outside. */

@@ -2,10 +2,13 @@ import { mkdtempSync, renameSync, rmSync } from 'node:fs';
 import net from 'node:net';
 import os from 'node:os';
 import path from 'node:path';
+import Database from 'better-sqlite3';
+import { openDatabase } from '@/db/openDatabase';
+import { insertInstallation } from '@/server/features/auth/installationRepo';
 import { killSpawned, spawnServer } from '../../helpers/spawnServer';
 
 // Processes start in half a second here; the whole machine is shared.
-jest.setTimeout(30_000);
+jest.setTimeout(60_000);
 let dir: string;
 
 beforeEach(() => {
@@ -92,6 +95,28 @@ describe('a start', () => {
 });
 
 describe('a demo', () => {
+  it('is five people, three waveforms in three states, two benches and one proven pack; once', async () => {
+    const first = spawnServer({ DATA_DIR: dir, DEMO: 'yes' });
+    await first.ready;
+    first.process.kill('SIGTERM');
+    expect(await first.exitCode).toBe(0);
+    const second = spawnServer({ DATA_DIR: dir, DEMO: 'yes' });
+    await second.ready;
+    second.process.kill('SIGTERM');
+    await second.exitCode;
+
+    const db = new Database(path.join(dir, 'combwright.db'), { readonly: true });
+    const all = (sql: string) => db.prepare(sql).raw().all().flat();
+    expect(all('select count(*) from users')).toEqual([5]);
+    expect(all('select state from pack_jobs')).toEqual(['done']);
+    expect(all('select file_name from packs')).toEqual([expect.stringMatching(/-e1-[0-9a-f]{8}\.zip$/)]);
+    expect(all('select count(*) from bench_profiles')).toEqual([2]);
+    expect(all('select title from waveforms').length).toBe(3);
+    expect(all('select state from revision_states order by seq')).toEqual(['inReview', 'inReview', 'released']);
+    expect(all('select count(*) from sessions')).toEqual([0]);
+    db.close();
+  });
+
   it.each([
     ['another HOST', { HOST: '0.0.0.0' }, /listens on 127\.0\.0\.1 only, not on 0\.0\.0\.0/],
     ['production', { NODE_ENV: 'production' }, /not for production/],
@@ -99,10 +124,10 @@ describe('a demo', () => {
     const before = spawnServer({ DATA_DIR: dir, DEMO: 'yes', ...env });
     expect(await before.exitCode).toBe(1);
     expect(before.err()).toMatch(words);
-    const made = spawnServer({ DATA_DIR: dir, DEMO: 'yes' });
-    await made.ready;
-    made.process.kill('SIGTERM');
-    await made.exitCode;
+    // Nothing was made by the refused start; now it is a demo.
+    const store = openDatabase(path.join(dir, 'combwright.db'));
+    store.write((tx) => insertInstallation(tx, 'demo', 1));
+    store.close();
     // DEMO says what an empty directory becomes, not what this one is.
     const after = spawnServer({ DATA_DIR: dir, DEMO: 'no', ...env });
     expect(await after.exitCode).toBe(1);
