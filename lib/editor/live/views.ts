@@ -15,7 +15,7 @@ import type { CcdfTrace, ConstellationTrace, LiveView, MinMaxTrace, SpectrumTrac
 
 const COLUMNS_MOST = 4096;
 /** Symbols looked at for the constellation: bounded, so that a long frame costs no more. */
-const CONSTELLATION_SYMBOLS_MOST = 16;
+const CONSTELLATION_SYMBOLS_MOST = 8;
 const FLOOR_DB = -200;
 
 function split(pairs: Float64Array, columns: number, gain: number): MinMaxTrace {
@@ -151,19 +151,19 @@ export function constellationTrace(
   const { fftSize, symbolCount } = content;
   const gain = 1 / amplitudeOfDecibels(ink.powerDb);
   const values = new Float64Array(2 * fftSize);
-  const points: number[] = [];
+  const points = new Float32Array(2 * Math.min(cells, CONSTELLATION_POINTS_MOST));
+  let filled = 0;
   let looked = 0;
-  for (let i = 0; i < symbolCount && looked < CONSTELLATION_SYMBOLS_MOST; i++) {
+  for (let i = 0; i < symbolCount && looked < CONSTELLATION_SYMBOLS_MOST && filled < points.length; i++) {
     const symbol = (view.symbol + i) % symbolCount;
     if (!reach.holds(symbol, view.ink)) continue;
     looked++;
     waveform.values.write(0, symbol, values);
-    for (let p = 0; p < fftSize; p++) {
+    for (let p = 0; p < fftSize && filled < points.length; p++) {
       if (waveform.values.cells[symbol * fftSize + p] !== view.ink) continue;
-      points.push(values[2 * p]! * gain, values[2 * p + 1]! * gain);
-      if (points.length === 2 * CONSTELLATION_POINTS_MOST)
-        return { ink: view.ink, points: Float32Array.from(points), cells };
+      points[filled++] = values[2 * p]! * gain;
+      points[filled++] = values[2 * p + 1]! * gain;
     }
   }
-  return { ink: view.ink, points: Float32Array.from(points), cells };
+  return { ink: view.ink, points: points.slice(0, filled), cells };
 }

@@ -1,0 +1,113 @@
+// `npm run bench`: our rendering beside its peers, in interleaved rounds of one run. --json prints the ratios alone
+// (peer's median time / ours: above 1 we are faster); --rounds n, --only W1,W2. Peers that are not installed are left out.
+import { spawn, spawnSync } from 'node:child_process';
+import { mkdtempSync, rmSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+import { createInterface } from 'node:readline';
+import { build } from 'esbuild';
+
+const options = process.argv.slice(2);
+const valueOf = (name, other) => (options.includes(name) ? options[options.indexOf(name) + 1] : other);
+const isJson = options.includes('--json');
+const rounds = Number(valueOf('--rounds', '9'));
+const jobs = valueOf('--only', 'W1,W2,W3').split(',');
+const directory = mkdtempSync(join(tmpdir(), 'combwright-bench-'));
+
+/** A process that answers each line with one line of JSON. */
+function openPeer(name, command, args) {
+  const child = spawn(command, [...args, join(directory, `${name}.bin`)], { stdio: ['pipe', 'pipe', 'inherit'] });
+  const lines = createInterface({ input: child.stdout })[Symbol.asyncIterator]();
+  return {
+    name,
+    async ask(line) {
+      child.stdin.write(`${line}\n`);
+      const { value, done } = await lines.next();
+      if (done) throw new Error(`${name} ended.`);
+      return JSON.parse(value);
+    },
+    close: () => child.stdin.end(),
+  };
+}
+
+function hasNumpy() {
+  return spawnSync('/usr/bin/python3', ['-c', 'import numpy']).status === 0;
+}
+
+/** The C peer, where a compiler and FFTW 3 (Debian: gcc, libfftw3-dev) are there. */
+function compileFftw() {
+  const program = join(directory, 'fftwPeer');
+  const args = ['-O3', '-march=native', '-o', program, 'tests/bench/peers/fftwPeer.c', '-lfftw3', '-lm'];
+  return spawnSync('gcc', args, { stdio: 'ignore' }).status === 0 ? program : null;
+}
+
+const median = (values) => values.toSorted((a, b) => a - b)[values.length >> 1];
+
+function agree(ours, theirs, job, name) {
+  const isClose =
+    Math.abs(ours.peak / theirs.peak - 1) < 1e-9 && Math.abs(ours.meanPower / theirs.meanPower - 1) < 1e-9;
+  const isEqual = ours.firstWords.every((word, i) => Math.abs(word - theirs.firstWords[i]) <= 1);
+  if (!isClose || !isEqual) {
+    throw new Error(`${name} does other work in ${job}: ${JSON.stringify(ours)} ${JSON.stringify(theirs)}`);
+  }
+}
+
+/** An edit of one symbol in a document of 14 and of 1024 symbols, in a process of its own: { shortMs, longMs, ratio ≤ 1.3 }. */
+async function measureLiveEdit() {
+  const bundle = join(directory, 'liveEdit.mjs');
+  const contents =
+    "import { runLiveEdit } from './tests/bench/liveEdit.ts'; console.log(JSON.stringify(runLiveEdit()));";
+  const shared = { bundle: true, platform: 'node', format: 'esm', target: 'node20', alias: { '@': '.' } };
+  await build({ stdin: { contents, resolveDir: '.' }, outfile: bundle, logLevel: 'error', ...shared });
+  return JSON.parse(spawnSync(process.execPath, [bundle], { encoding: 'utf8' }).stdout);
+}
+
+try {
+  const bundle = join(directory, 'engine.mjs');
+  await build({
+    entryPoints: ['tests/bench/engine.ts'],
+    outfile: bundle,
+    bundle: true,
+    platform: 'node',
+    format: 'esm',
+    target: 'node20',
+    alias: { '@': '.' },
+    logLevel: 'error',
+  });
+  const engine = openPeer('engine', process.execPath, [bundle]);
+  const peers = [];
+  if (hasNumpy()) peers.push(openPeer('numpy', '/usr/bin/python3', ['tests/bench/peers/numpyPeer.py']));
+  const fftw = compileFftw();
+  if (fftw !== null) peers.push(openPeer('fftw', fftw, []));
+
+  const ratios = {};
+  for (const job of jobs) {
+    ratios[job] = {};
+    for (const mode of ['', ' file']) {
+      const times = new Map([engine, ...peers].map((peer) => [peer.name, []]));
+      for (let round = 0; round <= rounds; round++) {
+        const ours = await engine.ask(job + mode);
+        if (round > 0) times.get('engine').push(ours.ms);
+        for (const peer of peers) {
+          const theirs = await peer.ask(job + mode);
+          agree(ours, theirs, job, peer.name);
+          if (round > 0) times.get(peer.name).push(theirs.ms); // the first round warms up
+        }
+      }
+      const own = median(times.get('engine'));
+      for (const peer of peers) {
+        const key = mode === '' ? peer.name : `${peer.name}WithFile`;
+        ratios[job][key] = Number((median(times.get(peer.name)) / own).toFixed(2));
+      }
+      if (!isJson) {
+        const line = [...times].map(([name, values]) => `${name} ${median(values).toFixed(2)} ms`).join(', ');
+        console.log(`${job}${mode === '' ? '' : ' with file'}: ${line}`);
+      }
+    }
+  }
+  for (const peer of [engine, ...peers]) peer.close();
+  const liveEdit = await measureLiveEdit();
+  console.log(JSON.stringify({ ratios, liveEdit }, null, isJson ? 0 : 2));
+} finally {
+  rmSync(directory, { recursive: true, force: true });
+}
