@@ -1,0 +1,5 @@
+import { BenchesScreen } from '@/components/screens/BenchScreen/BenchesScreen';
+
+export default function Route() {
+  return <BenchesScreen />;
+}

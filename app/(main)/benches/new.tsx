@@ -1,0 +1,5 @@
+import { NewBenchScreen } from '@/components/screens/BenchScreen/BenchScreen';
+
+export default function Route() {
+  return <NewBenchScreen />;
+}
