@@ -8,9 +8,9 @@ import {
   prefixSum,
   sampleClock,
 } from '../numerology';
-import { createBitSource } from '../sequences/bitSource';
-import type { PayloadSource, WaveformContent } from '../types';
+import type { WaveformContent } from '../types';
 import { decimalFraction, divideFractions, multiplyFractions, nearestWhole, subtractFractions } from './exact';
+import { periodOf } from './period';
 
 const REPEATS_MOST = 65536;
 
@@ -192,13 +192,6 @@ export interface PayloadClosing {
   repeatsToClose: number | null;
   /** An anchored stream that restarts gives each cell fixed bits: no sequence runs, so none breaks. */
   isFixed: boolean;
-}
-
-function periodOf(source: PayloadSource): number | null {
-  if (source.kind === 'zeros' || source.kind === 'ones') return 1;
-  if (source.kind === 'pattern') return source.bits.length;
-  if (source.kind === 'uploaded') return source.bitCount;
-  return createBitSource(source).periodBits;
 }
 
 /** Every stream that painted data cells use, and after how many repeats its sequence closes (lcm of bits per frame and period). */

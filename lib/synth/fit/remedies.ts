@@ -258,7 +258,7 @@ function clockRemedies(about: Case): Remedy[] {
 
 /** Upwards to a tenth of a dB, a rounding above a whole tenth left alone. */
 function upToTenth(value: number): number {
-  return Math.ceil(value * 10 - 1e-9) / 10;
+  return Math.max(0, Math.ceil(value * 10 - 1e-9) / 10);
 }
 
 function headroomRemedies({ document, bench, measured }: Case): Remedy[] {
