@@ -1,6 +1,6 @@
 import { emptyDocument } from '@/lib/document/newDocument';
 import type { Edition, OpenReview } from '@/lib/contracts/reviews';
-import type { OpenedRevision, SaveAnswer, Waveform } from '@/lib/contracts/waveforms';
+import { openedRevisionSchema, type OpenedRevision, type SaveAnswer, type Waveform } from '@/lib/contracts/waveforms';
 import type { WaveformContent, WaveformDocument } from '@/lib/synth/index';
 import { smallDocument } from './documents';
 import type { Client } from './testServer';
@@ -39,7 +39,8 @@ export async function show(client: Client, waveformId: string): Promise<Waveform
 }
 
 export async function open(client: Client, revisionId: string): Promise<OpenedRevision> {
-  return (await client.get(`/api/v1/revisions/${revisionId}`).expect(200)).body as OpenedRevision;
+  // written by hand on the server, so its shape is checked here
+  return openedRevisionSchema.strict().parse((await client.get(`/api/v1/revisions/${revisionId}`).expect(200)).body);
 }
 
 export async function ask(client: Client, waveformId: string, revisionId: string, note = 'Please look.') {

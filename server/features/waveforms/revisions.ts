@@ -5,7 +5,7 @@ import { REVISIONS_MOST, type OpenedRevision, type Revision, type RevisionFigure
 import { may, type Actor } from '../../auth/actor.ts';
 import type { Figures } from '../../figures/figures.ts';
 import { visibleRevision, visibleWaveform } from '../../revisions/access.ts';
-import { documentText, readDocument } from '../../revisions/documents.ts';
+import { documentText } from '../../revisions/documents.ts';
 import { listRevisionsOf, type RevisionRow } from '../../revisions/revisionRepo.ts';
 import { toOneRevision, toPoint, toRevisions } from '../../revisions/stamps.ts';
 import { findHead } from './repo.ts';
@@ -25,14 +25,15 @@ export function createRevisionReader(db: Queryable, figures: Figures) {
       return { revisions: toRevisions(db, rows.slice(0, REVISIONS_MOST)), hasOlder: rows.length > REVISIONS_MOST };
     },
 
-    async show(actor: Actor, revisionId: string): Promise<OpenedRevision> {
+    /** An OpenedRevision as text: the stored document goes through unparsed, since a large one would hold up everybody else for a second. */
+    async opened(actor: Actor, revisionId: string): Promise<string> {
       const row = visibleRevision(db, actor, revisionId);
-      return {
+      const beside: Omit<OpenedRevision, 'document'> = {
         revision: toOneRevision(db, row),
-        document: await readDocument(db, row),
         figures: figures.readAll([row.contentDigest])(row.contentDigest),
         newer: newerThan(db, actor, row),
       };
+      return `{"document":${await documentText(db, row)},${JSON.stringify(beside).slice(1)}`;
     },
 
     figures(actor: Actor, revisionId: string) {

@@ -23,7 +23,11 @@ export function mountWaveforms(mount: Mount, deps: Deps, figures: Figures): void
   mount.json(contract.saveRevision, (call) =>
     service.save(call.actor, call.params.waveformId, call.query.parentId, call.body, call),
   );
-  mount.json(contract.showRevision, ({ actor, params }) => revisions.show(actor, params.revisionId));
+  mount.file(contract.showRevision, async ({ actor, params, response }) => {
+    const text = await revisions.opened(actor, params.revisionId);
+    response.setHeader('Cache-Control', 'no-store');
+    response.type('application/json').send(text);
+  });
   mount.json(contract.showRevisionFigures, ({ actor, params }) => revisions.figures(actor, params.revisionId));
   mount.file(contract.exportDocument, async ({ actor, params, response }) => {
     const { fileName, text } = await revisions.exported(actor, params.revisionId);
