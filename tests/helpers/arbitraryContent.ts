@@ -23,8 +23,8 @@ export interface ArbitraryLimits {
 
 const SMALL: ArbitraryLimits = { cellsMost: 2048, samplesMost: 65536 };
 
-/** 5-smooth sizes 16…1024. */
-const SIZES = Array.from({ length: 1009 }, (_, i) => i + 16).filter((size) => {
+/** 5-smooth sizes 16…4096. */
+const SIZES = Array.from({ length: 4081 }, (_, i) => i + 16).filter((size) => {
   let rest = size;
   for (const prime of [2, 3, 5]) while (rest % prime === 0) rest /= prime;
   return rest === 1;
