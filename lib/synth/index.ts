@@ -61,6 +61,8 @@ export { synthVersion } from './version';
 export {
   createCellCensus,
   deriveFigures,
+  exactFraction,
+  fractionToNumber,
   type CellCensus,
   type DerivedFigures,
   type ExactFraction,
@@ -113,3 +115,19 @@ export {
 } from './measure/reconstructedPeak';
 export { createEvmMeter, createTapEstimate, type EvmMeter, type EvmOptions, type TapEstimate } from './measure/evm';
 export { createDemodulator, type Demodulator, type FoundSymbol } from './receive/demodulate';
+
+// fit and level card
+export { checkFit, levelsAfter } from './fit/remedies';
+export { applyChanges } from './fit/changes';
+export {
+  loopClosing,
+  payloadClosing,
+  toneJumps,
+  type LoopClosing,
+  type PayloadClosing,
+  type ToneJump,
+  type ToneJumps,
+} from './fit/closing';
+export { levelCard } from './level/levelCard';
+export { countedPeakDbfs, levelsInDbfs } from './level/levels';
+export { cautions, type CardContext } from './level/cautions';

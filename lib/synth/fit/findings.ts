@@ -1,13 +1,13 @@
 import { countedPeakDbfs } from '../level/levels';
 import { levelCard } from '../level/levelCard';
 import type { BenchProfile, WaveformContent, WaveformDocument } from '../types';
-import { fileSamples, fractionToNumber, prefixSum, sampleClock } from '../numerology';
+import { fileSamples, fractionToNumber, sampleClock } from '../numerology';
 import { loopClosing, payloadClosing, toneJumps } from './closing';
 import { compareFractions, decimalFraction, divideFractions, multiplyFractions, nearestWhole } from './exact';
-import type { FitFinding, MeasuredLevels } from './types';
+import { markers } from './markerFinding';
+import type { Finding, FitFinding, MeasuredLevels } from './types';
 import { counted, spell, spellHz } from './words';
 
-type Found = Omit<FitFinding, 'remedies'>;
 type Bench = BenchProfile['content'];
 
 const NO_LEVELS: MeasuredLevels = {
@@ -22,7 +22,7 @@ const NO_LEVELS: MeasuredLevels = {
 const LEVEL_SLACK_DB = 1e-9;
 
 /** Every limit of the bench and the loop's own, in the order in which they are shown. No remedies yet. */
-export function judge(document: WaveformDocument, bench: BenchProfile, measured: MeasuredLevels | null): Found[] {
+export function judge(document: WaveformDocument, bench: BenchProfile, measured: MeasuredLevels | null): Finding[] {
   const { content } = document;
   const limits = bench.content;
   const levels = measured ?? NO_LEVELS;
@@ -50,12 +50,12 @@ function byDistance(
     distance: number;
     byHowMuch: string;
   },
-): Found {
+): Finding {
   const misses = of.distance > 0;
   return { ...of, verdict: misses ? 'misses' : 'meets', byHowMuch: misses ? of.byHowMuch : '' };
 }
 
-function clock(content: WaveformContent, limits: Bench): Found {
+function clock(content: WaveformContent, limits: Bench): Finding {
   const exact = sampleClock(content);
   const hz = fractionToNumber(exact);
   const { least, most, step } = limits.sampleClockHz;
@@ -107,7 +107,7 @@ function clock(content: WaveformContent, limits: Bench): Found {
   };
 }
 
-function granularity(content: WaveformContent, limits: Bench): Found {
+function granularity(content: WaveformContent, limits: Bench): Finding {
   const samples = fileSamples(content);
   const size = limits.granularitySamples;
   const short = (size - (samples % size)) % size;
@@ -129,7 +129,7 @@ function granularity(content: WaveformContent, limits: Bench): Found {
   });
 }
 
-function leastLength(content: WaveformContent, limits: Bench): Found {
+function leastLength(content: WaveformContent, limits: Bench): Finding {
   const samples = fileSamples(content);
   const least = limits.leastSamples;
   return byDistance({
@@ -146,7 +146,7 @@ function leastLength(content: WaveformContent, limits: Bench): Found {
   });
 }
 
-function memory(content: WaveformContent, limits: Bench): Found {
+function memory(content: WaveformContent, limits: Bench): Finding {
   const samples = fileSamples(content);
   const most = limits.mostSamples;
   return byDistance({
@@ -163,7 +163,7 @@ function memory(content: WaveformContent, limits: Bench): Found {
   });
 }
 
-function mode(content: WaveformContent, limits: Bench): Found {
+function mode(content: WaveformContent, limits: Bench): Finding {
   const plays = limits.modes.includes(content.timing.mode);
   return {
     check: 'mode',
@@ -180,7 +180,7 @@ function mode(content: WaveformContent, limits: Bench): Found {
   };
 }
 
-function word(content: WaveformContent, limits: Bench, levels: MeasuredLevels): Found {
+function word(content: WaveformContent, limits: Bench, levels: MeasuredLevels): Finding {
   const order =
     limits.word === 'int8' ? 'one byte' : limits.byteOrder === 'little' ? 'low byte first' : 'high byte first';
   const found = limits.word === 'float32' ? `32 bit float, ${order}` : `${limits.bits} bit, ${order}`;
@@ -211,87 +211,7 @@ function word(content: WaveformContent, limits: Bench, levels: MeasuredLevels): 
   };
 }
 
-function markers(content: WaveformContent, limits: Bench): Found {
-  const { count, leastSamples, stepSamples } = limits.markers;
-  const used = content.markers.length;
-  const names = content.markers.map((marker) => marker.name).join(', ');
-  const base = {
-    check: 'markers',
-    title: 'Markers',
-    unit: 'markers',
-    measured: used,
-    limit: count,
-    hard: true,
-    found: used === 0 ? `none of ${spell(count)}` : `${spell(used)} of ${spell(count)}, ${names}`,
-  } as const;
-  const miss = (byHowMuch: string, words: string): Found => ({
-    ...base,
-    distance: Math.max(1, used - count),
-    verdict: 'misses',
-    byHowMuch,
-    words,
-  });
-  if (used > count) {
-    return miss(
-      `${counted(used - count, 'marker')} too many`,
-      `${counted(used, 'marker')}; this bench has ${spell(count)}.`,
-    );
-  }
-  for (const marker of content.markers) {
-    const length = marker.lengthSamples;
-    if (length < leastSamples) {
-      return miss(
-        `${counted(leastSamples - length, 'sample')} short`,
-        `“${marker.name}” lasts ${counted(length, 'sample')}; the shortest mark has ${spell(leastSamples)}.`,
-      );
-    }
-    const starts = markerStarts(content, marker);
-    const off = starts.find((start) => start % stepSamples !== 0);
-    if (off !== undefined || length % stepSamples !== 0) {
-      const part = off !== undefined ? `begins at sample ${spell(off)}` : `lasts ${counted(length, 'sample')}`;
-      return miss(
-        'off the step',
-        `“${marker.name}” ${part}; marks stand on multiples of ${spell(stepSamples)} samples.`,
-      );
-    }
-    if (content.timing.mode === 'burst') {
-      const samples = fileSamples(content);
-      if (starts.some((start) => start < 0 || start + length > samples)) {
-        return miss('outside the file', `“${marker.name}” reaches past an end of the burst.`);
-      }
-    }
-  }
-  return {
-    ...base,
-    distance: used - count,
-    verdict: 'meets',
-    byHowMuch: '',
-    words: used === 0 ? 'No markers are used.' : `${counted(used, 'marker')} of ${spell(count)}: ${names}.`,
-  };
-}
-
-/**
- * Where a marker's marks begin in the file. Of many repeats the first two and the last: if the first stands on the step, so does every
- * other when the second does, and the outermost reach furthest past the ends.
- */
-function markerStarts(content: WaveformContent, marker: WaveformContent['markers'][number]): number[] {
-  const { oversampling, fftSize, symbolCount, prefixSamples, timing } = content;
-  if (marker.at === 'file') return [marker.offsetSamples];
-  const repeat = (prefixSum(content) + symbolCount * fftSize + timing.gapSamples) * oversampling;
-  const origins = [...new Set([0, Math.min(1, timing.repeats - 1), timing.repeats - 1])];
-  if (marker.at === 'repeat') return origins.map((r) => r * repeat + marker.offsetSamples);
-  const starts: number[] = [];
-  let at = 0;
-  for (let l = 0; l < symbolCount; l++) {
-    if (marker.symbol === null || marker.symbol === l) {
-      for (const r of origins) starts.push(r * repeat + at * oversampling + marker.offsetSamples);
-    }
-    at += prefixSamples[l % prefixSamples.length]! + fftSize;
-  }
-  return starts;
-}
-
-function seam(content: WaveformContent): Found {
+function seam(content: WaveformContent): Finding {
   const closing = loopClosing(content);
   const base = { check: 'seam', title: 'Seam', unit: 'turns', limit: 0, hard: false } as const;
   if (!closing.applies || content.frequencyOffsetHz === 0) {
@@ -319,7 +239,7 @@ function seam(content: WaveformContent): Found {
   };
 }
 
-function tones(content: WaveformContent): Found {
+function tones(content: WaveformContent): Finding {
   const jumps = toneJumps(content);
   const base = { check: 'toneJump', title: 'Tones', unit: 'turns', limit: 0, hard: false } as const;
   if (!jumps.worst) {
@@ -350,7 +270,7 @@ function tones(content: WaveformContent): Found {
 }
 
 /** No bench limits this: it is said, with what would close it, and refuses nothing. */
-function payload(content: WaveformContent): Found {
+function payload(content: WaveformContent): Finding {
   const open = payloadClosing(content).filter((stream) => stream.closes !== true);
   const base = { check: 'payloadWrap', title: 'Payload', unit: 'repeats', hard: false, distance: null } as const;
   const isOnce = content.timing.mode === 'burst' && content.timing.repeats === 1;
@@ -388,7 +308,7 @@ function payload(content: WaveformContent): Found {
   };
 }
 
-function headroom(limits: Bench, levels: MeasuredLevels): Found {
+function headroom(limits: Bench, levels: MeasuredLevels): Finding {
   const peak = countedPeakDbfs(levels);
   const base = {
     check: 'headroom',
@@ -430,7 +350,7 @@ function headroom(limits: Bench, levels: MeasuredLevels): Found {
   };
 }
 
-function level(document: WaveformDocument, bench: BenchProfile, levels: MeasuredLevels): Found {
+function level(document: WaveformDocument, bench: BenchProfile, levels: MeasuredLevels): Finding {
   const card = levelCard(document, bench, levels);
   const isMean = card.meanLeftDb !== null && (card.peakLeftDb === null || card.meanLeftDb < card.peakLeftDb);
   const left = isMean ? card.meanLeftDb : card.peakLeftDb;

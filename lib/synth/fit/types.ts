@@ -53,6 +53,9 @@ export interface FitFinding {
   remedies: Remedy[];
 }
 
+/** A finding before remedies are sought. */
+export type Finding = Omit<FitFinding, 'remedies'>;
+
 /** What rendering and reading back measured; null where it was not done (the finding then cannot judge). */
 export interface MeasuredLevels {
   /** dB to full scale, 0 dBFS the RMS magnitude of a complex tone with |x| = F. */
