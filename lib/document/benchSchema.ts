@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import { z } from './zod';
 import { customIssue } from './issues';
 import { freeText, lineText, list, real, whole } from './schemaParts';
 

@@ -21,6 +21,9 @@ export function paintLimits(ink: Ink): PaintLimits {
   return limits;
 }
 
+/** With the minus sign that figures have in sentences. */
+const signed = (value: number): string => String(value).replace('-', '−');
+
 const counterWords: Record<Counter, string> = {
   cell: 'cells',
   symbolCell: 'cells of the symbol',
@@ -32,9 +35,9 @@ const counterWords: Record<Counter, string> = {
 export function countedTooLow(ink: Ink, factorAt: number, fftSize: number, symbolCount: number): string {
   if (ink.role !== 'pilot' && ink.role !== 'tone') return '';
   const { counter, start } = ink.value.factors[factorAt]!;
-  const what = `Ink ${ink.inkId} “${ink.name}” counts ${counterWords[counter]} from ${start}, below its sequence's first value`;
+  const what = `Ink ${ink.inkId} “${ink.name}” counts ${counterWords[counter]} from ${signed(start)}, below its sequence's first value`;
   if (counter === 'subcarrier' && -start < fftSize) {
-    return `${what}: the first place it can hold is subcarrier ${-start - Math.floor(fftSize / 2)}`;
+    return `${what}: the first place it can hold is subcarrier ${signed(-start - Math.floor(fftSize / 2))}`;
   }
   if (counter === 'symbol' && -start < symbolCount) return `${what}: the first place it can hold is symbol ${-start}`;
   return `${what}: it can hold no place of this grid until it starts at 0 or more`;

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import { z } from './zod';
 import { benchProfileSchema } from './benchSchema';
 import { exampleBenches } from './examples/exampleBenches';
 import { exampleDocuments } from './examples/exampleDocuments';

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import { z } from './zod';
 import type { BitMap, Constellation } from '@/lib/synth/index';
 import { customIssue } from './issues';
 import { sequenceSchema } from './sourceSchema';

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import { z } from './zod';
 import { bitMaps, constellations } from './inkSchema';
 import { levelReferences } from './waveformSchema';
 

@@ -1,8 +1,5 @@
-import { z } from 'zod';
+import { z } from './zod';
 import { customIssue, LoopIssues } from './issues';
-
-// Zod compiles objects with new Function unless told not to, and even its probe is reported by our content security policy.
-z.config({ jitless: true });
 
 export const most32 = 2 ** 31 - 1;
 

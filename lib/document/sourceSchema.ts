@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import { z } from './zod';
 import { base64Problem } from './base64';
 import { customIssue } from './issues';
 import { bigArray, greatestCommonDivisor, isRealIn, list, most32, nameText, whole } from './schemaParts';

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import { z } from './zod';
 import { contentProblems } from './contentRules';
 import { checkRowOfSymbolShape, checkRowsShape, mostSymbols } from './gridRules';
 import { inkSchema } from './inkSchema';
