@@ -9,9 +9,6 @@ export function seededRandom(seed: number): () => number {
   };
 }
 
-type Json = null | boolean | number | string | Json[] | { [key: string]: Json };
-type Container = Json[] | { [key: string]: Json };
-
 const hostile: readonly (() => unknown)[] = [
   () => null,
   () => true,
@@ -38,20 +35,32 @@ const hostile: readonly (() => unknown)[] = [
   () => new Array(2_000).fill([1, 1]),
 ];
 
-function containersOf(value: Json, found: Container[] = []): Container[] {
-  if (typeof value !== 'object' || value === null) return found;
-  found.push(value);
-  for (const entry of Object.values(value)) containersOf(entry, found);
-  return found;
+function keyIn(holder: object, random: () => number): string | null {
+  if (Array.isArray(holder)) return holder.length === 0 ? null : String(Math.floor(random() * holder.length));
+  const keys = Object.keys(holder);
+  return keys[Math.floor(random() * keys.length)] ?? null;
+}
+
+/** A place somewhere in the document, by walking down from the top: deep and shallow ones, big lists no oftener than small. */
+function placeIn(document: unknown, random: () => number): { holder: Record<string, unknown>; key: string } | null {
+  let holder = document as Record<string, unknown>;
+  let key = keyIn(holder, random);
+  for (;;) {
+    const inner = key === null ? null : holder[key];
+    if (typeof inner !== 'object' || inner === null || random() < 0.15) return key === null ? null : { holder, key };
+    const innerKey = keyIn(inner, random);
+    if (innerKey === null) return key === null ? null : { holder, key };
+    holder = inner as Record<string, unknown>;
+    key = innerKey;
+  }
 }
 
 /** Changes one thing in place: a value swapped for a hostile or a neighbouring one, a key or an entry lost, added or doubled. */
 export function mutateValue(document: unknown, random: () => number): void {
   const pick = <T>(list: readonly T[]): T => list[Math.floor(random() * list.length)]!;
-  const holders = containersOf(document as Json).filter((holder) => Object.keys(holder).length > 0);
-  if (holders.length === 0) return;
-  const holder = pick(holders) as Record<string, unknown>;
-  const key = pick(Object.keys(holder));
+  const place = placeIn(document, random);
+  if (place === null) return;
+  const { holder, key } = place;
   const old = holder[key];
   const way = Math.floor(random() * 8);
   if (way === 0) delete holder[key];

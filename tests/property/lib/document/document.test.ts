@@ -57,7 +57,7 @@ function expectWhole(input: unknown, value: WaveformDocument): void {
   expect(canonicalJson(parsed(text))).toBe(text);
   const { content } = value;
   expect(content.grid.rowOfSymbol).toHaveLength(content.symbolCount);
-  expect(canonicalGrid(content.grid)).toEqual(content.grid);
+  expect(JSON.stringify(canonicalGrid(content.grid))).toBe(JSON.stringify(content.grid));
   const cells = expandGrid(content.grid, content.fftSize);
   expect(cells).toHaveLength(content.symbolCount * content.fftSize);
   for (const cell of cells) if (cell >= content.tray.length) throw new Error('a cell without ink');
@@ -65,8 +65,9 @@ function expectWhole(input: unknown, value: WaveformDocument): void {
 
 test(`${mutants} mutated documents, seed ${seed}: none crashes, takes over 1 s or is half accepted`, () => {
   const random = seededRandom(seed);
-  const small = exampleDocuments.filter(({ exampleId }) => exampleId !== 'pilot-comb'); // its grid is no shrunk one
-  const bases = [smallDocument(), ...small.map(({ build }) => build()), ...presets.map(({ build }) => build())];
+  const all = [smallDocument(), ...[...exampleDocuments, ...presets].map(({ build }) => build())];
+  const bases = all.filter(({ content }) => content.fftSize * content.symbolCount <= 4096);
+  expect(bases.length).toBeGreaterThan(5);
   const texts = bases.map((base) => JSON.stringify(base));
   let accepted = 0;
   let slowest = 0;

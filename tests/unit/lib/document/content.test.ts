@@ -472,7 +472,7 @@ describe('counters below zero', () => {
     (content) =>
       Object.assign(content.tray[2].value.factors[0], { counter, start });
   test.each<[string, number, RegExp]>([
-    ['subcarrier', -12, /k2 “Pilots” counts subcarriers from -12.*first place it can hold is subcarrier -20/],
+    ['subcarrier', -12, /k2 “Pilots” counts subcarriers from −12.*first place it can hold is subcarrier −20/],
     ['subcarrier', -64, /no place of this grid/],
     ['symbol', -1, /first place it can hold is symbol 1/],
     ['symbol', -4, /no place of this grid/],
