@@ -1,5 +1,5 @@
 import { createHash } from 'node:crypto';
-import { and, eq } from 'drizzle-orm';
+import { and, eq, lt } from 'drizzle-orm';
 import type { Queryable } from '@/db/openDatabase';
 import { idempotencyKeys } from '@/db/schema/people';
 import { DomainError } from './problem.ts';
@@ -31,9 +31,15 @@ export function findResult(tx: Queryable, request: KeyedRequest): string | null 
   return row.resultId;
 }
 
+/** Longer than any client goes on retrying. Autosaves leave a key each, so they must not pile up for ever. */
+const KEPT_MS = 7 * 24 * 3_600_000;
+
 /** Call it in the transaction that makes the thing, so that a killed server leaves both or neither. */
 export function rememberResult(tx: Queryable, request: KeyedRequest, resultId: string, nowMs: number): void {
   const { personId, endpoint, key } = request;
+  tx.delete(idempotencyKeys)
+    .where(lt(idempotencyKeys.createdAtMs, nowMs - KEPT_MS))
+    .run();
   tx.insert(idempotencyKeys)
     .values({ personId, endpoint, key, requestDigest: digestOf(request), resultId, createdAtMs: nowMs })
     .run();

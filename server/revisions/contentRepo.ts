@@ -17,10 +17,6 @@ export function putContent(tx: Queryable, content: PackedContent, nowMs: number)
     .run();
 }
 
-export function hasContent(db: Queryable, digest: string): boolean {
-  return db.select({ digest: contents.digest }).from(contents).where(eq(contents.digest, digest)).get() !== undefined;
-}
-
 /** The stored bytes (gzip) of a content that a revision names; foreign keys keep it there. */
 export function readContentBytes(db: Queryable, digest: string): Buffer {
   const row = db.select({ bytes: contents.bytes }).from(contents).where(eq(contents.digest, digest)).get();

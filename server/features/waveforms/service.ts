@@ -191,5 +191,3 @@ function stale(head: RevisionRow, kept: RevisionRow): DomainError {
     facts: { ...facts },
   });
 }
-
-export type WaveformsService = ReturnType<typeof createWaveformsService>;

@@ -140,6 +140,20 @@ test('a retry with the same Idempotency-Key answers the same revision, also when
   expect(misused.body.code).toBe('state_conflict');
 });
 
+test('keys are forgotten after a week, so that autosaves leave no heap', async () => {
+  const keyed = (title: string) =>
+    author.post('/api/v1/waveforms', documentOf(title)).set('Idempotency-Key', `key-${title}`);
+  await keyed('first').expect(201);
+  server.clock.advance(6 * 24 * 3_600_000);
+  author = await server.as('author'); // the session ended meanwhile
+  await keyed('second').expect(201);
+  expect(rowsIn('idempotency_keys')).toBe(2);
+  server.clock.advance(2 * 24 * 3_600_000);
+  author = await server.as('author');
+  await keyed('third').expect(201);
+  expect(rowsIn('idempotency_keys')).toBe(2);
+});
+
 test('a retried creation makes one waveform; the same key of another person is another key', async () => {
   const post = (client: Client) =>
     client.post('/api/v1/waveforms', documentOf('Once')).set('Idempotency-Key', 'create-once');
