@@ -3,6 +3,7 @@ import { authEndpoints } from './auth';
 import { benchEndpoints } from './benches';
 import type { Endpoint } from './endpoint';
 import { fitEndpoints } from './fit';
+import { packEndpoints } from './packs';
 import { peopleEndpoints } from './people';
 import { reviewEndpoints } from './reviews';
 import { waveformEndpoints } from './waveforms';
@@ -16,4 +17,5 @@ export const endpoints: readonly Endpoint[] = [
   ...reviewEndpoints,
   ...benchEndpoints,
   ...fitEndpoints,
+  ...packEndpoints,
 ];

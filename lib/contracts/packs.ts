@@ -268,3 +268,14 @@ export const cancelPackJob = defineEndpoint({
   params: jobParams,
   response: packJobSchema,
 });
+
+export const packEndpoints = [
+  makePack,
+  listPacks,
+  showPack,
+  downloadPack,
+  enterDeviceCard,
+  listPackJobs,
+  showPackJob,
+  cancelPackJob,
+] as const;

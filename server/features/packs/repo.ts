@@ -1,7 +1,7 @@
 import { and, asc, count, desc, eq, gt, inArray, isNull, or, sql } from 'drizzle-orm';
 import { alias } from 'drizzle-orm/sqlite-core';
 import type { Queryable } from '@/db/openDatabase';
-import { benchProfileVersions } from '@/db/schema/benches';
+import { benchProfiles, benchProfileVersions } from '@/db/schema/benches';
 import { deviceCards, packJobs, packs } from '@/db/schema/packs';
 import { users } from '@/db/schema/people';
 import { editions, revisions, withdrawals } from '@/db/schema/waveforms';
@@ -149,6 +149,39 @@ export function insertPack(tx: Queryable, row: typeof packs.$inferInsert): void 
   tx.insert(packs).values(row).run();
 }
 
+/** The same bytes made again after their file was lost. */
+export function updateStored(tx: Queryable, packId: string, change: Partial<typeof packs.$inferInsert>): void {
+  const { storedPath, fileBytes, fileSha256 } = change;
+  tx.update(packs)
+    .set({ ...(storedPath && { storedPath }), ...(fileBytes && { fileBytes }), ...(fileSha256 && { fileSha256 }) })
+    .where(eq(packs.id, packId))
+    .run();
+}
+
+export function readProfileJson(db: Queryable, profileVersionId: string): string {
+  const row = db
+    .select({ profileJson: benchProfileVersions.profileJson })
+    .from(benchProfileVersions)
+    .where(eq(benchProfileVersions.id, profileVersionId))
+    .get();
+  if (!row) throw new Error(`The profile version ${profileVersionId} is missing.`);
+  return row.profileJson;
+}
+
+/** One version of a bench profile, or its newest. */
+export function findProfileVersion(db: Queryable, benchId: string, version: number | undefined) {
+  const which =
+    version === undefined
+      ? eq(benchProfileVersions.id, benchProfiles.headVersionId)
+      : eq(benchProfileVersions.number, version);
+  return db
+    .select({ id: benchProfileVersions.id, profileJson: benchProfileVersions.profileJson })
+    .from(benchProfileVersions)
+    .innerJoin(benchProfiles, eq(benchProfiles.id, benchProfileVersions.profileId))
+    .where(and(eq(benchProfiles.id, benchId), which))
+    .get();
+}
+
 const askers = alias(users, 'askers');
 
 const selectJobs = (db: Queryable) =>
@@ -157,6 +190,8 @@ const selectJobs = (db: Queryable) =>
       job: packJobs,
       waveformId: revisions.waveformId,
       revisionAuthorId: revisions.authorId,
+      contentDigest: revisions.contentDigest,
+      withdrawnReason: withdrawals.reason,
       title: sql<string>`coalesce(${editions.title}, ${revisions.title})`,
       editionNumber: editions.number,
       benchId: benchProfileVersions.profileId,
@@ -168,7 +203,8 @@ const selectJobs = (db: Queryable) =>
     .innerJoin(revisions, eq(revisions.id, packJobs.revisionId))
     .innerJoin(benchProfileVersions, eq(benchProfileVersions.id, packJobs.profileVersionId))
     .innerJoin(askers, eq(askers.id, packJobs.askedBy))
-    .leftJoin(editions, eq(editions.id, packJobs.editionId));
+    .leftJoin(editions, eq(editions.id, packJobs.editionId))
+    .leftJoin(withdrawals, eq(withdrawals.editionId, editions.id));
 
 export type JobRow = NonNullable<ReturnType<typeof findJob>>;
 type JobColumns = typeof packJobs.$inferInsert;
@@ -223,7 +259,13 @@ export function countWaitingOf(db: Queryable, personId: string): number {
 }
 
 /** A waiting or running job of the same person for the same thing: asking twice is asking once. */
-export function findOpenJobOf(db: Queryable, personId: string, packKey: string, revisionId: string) {
+export function findOpenJobOf(
+  db: Queryable,
+  personId: string,
+  packKey: string,
+  revisionId: string,
+  profileVersionId: string,
+) {
   return db
     .select({ id: packJobs.id })
     .from(packJobs)
@@ -232,6 +274,7 @@ export function findOpenJobOf(db: Queryable, personId: string, packKey: string, 
         eq(packJobs.askedBy, personId),
         eq(packJobs.packKey, packKey),
         eq(packJobs.revisionId, revisionId),
+        eq(packJobs.profileVersionId, profileVersionId),
         inArray(packJobs.state, ['waiting', 'running']),
       ),
     )
