@@ -45,7 +45,7 @@ export const settings: readonly Setting[] = [
   {
     name: 'NODE_ENV',
     default: 'none',
-    words: 'production refuses demo directories and leaves the check of responses out.',
+    words: 'production refuses demo directories and takes ./data for DATA_DIR.',
   },
 ];
 
@@ -62,7 +62,7 @@ const originSchema = z.string().transform((value, context) => {
 
 const wholeNumber = z.coerce.number({ error: 'is not a number' }).int('is not a whole number');
 
-const envSchema = z.object({
+export const envSchema = z.object({
   PORT: wholeNumber.min(0).max(65535).default(8080),
   HOST: z.string().min(1).default('127.0.0.1'),
   DATA_DIR: z.string().min(1).optional(),

@@ -1,11 +1,10 @@
 import { DrizzleSQLiteAdapter } from '@lucia-auth/adapter-drizzle';
-import { eq } from 'drizzle-orm';
 import type { Adapter, DatabaseSession, DatabaseUser } from 'lucia';
 import type { Store } from '@/db/openDatabase';
 import { sessions, users } from '@/db/schema/people';
 import type { Clock } from '../deps.ts';
 import { hashSecret } from './secrets.ts';
-import { deleteEndedSessions, IDLE_MS } from './sessionRepo.ts';
+import { deleteByHash, deleteEndedSessions, deleteSessions, IDLE_MS, insertSession } from './sessionRepo.ts';
 
 export const LONGEST_MS = 30 * 24 * 3_600_000;
 
@@ -41,12 +40,8 @@ export class HashedIdAdapter implements Adapter {
 
   setSession(session: DatabaseSession): Promise<void> {
     const expiresAtSec = Math.floor((this.clock.nowMs() + LONGEST_MS) / 1000);
-    this.store.write((tx) =>
-      tx
-        .insert(sessions)
-        .values({ ...session.attributes, id: hashSecret(session.id), userId: session.userId, expiresAt: expiresAtSec })
-        .run(),
-    );
+    const row = { id: hashSecret(session.id), userId: session.userId, expiresAt: expiresAtSec };
+    this.store.write((tx) => insertSession(tx, { ...session.attributes, ...row }));
     return Promise.resolve();
   }
 
@@ -56,17 +51,12 @@ export class HashedIdAdapter implements Adapter {
   }
 
   deleteSession(id: string): Promise<void> {
-    this.store.write((tx) =>
-      tx
-        .delete(sessions)
-        .where(eq(sessions.id, hashSecret(id)))
-        .run(),
-    );
+    this.store.write((tx) => deleteByHash(tx, hashSecret(id)));
     return Promise.resolve();
   }
 
   deleteUserSessions(userId: string): Promise<void> {
-    this.store.write((tx) => tx.delete(sessions).where(eq(sessions.userId, userId)).run());
+    this.store.write((tx) => deleteSessions(tx, userId, null));
     return Promise.resolve();
   }
 

@@ -25,6 +25,14 @@ export function countSessionRows(db: Queryable, nowMs: number): Map<string, numb
   return new Map(rows.map((row) => [row.userId, row.n]));
 }
 
+export function insertSession(tx: Queryable, session: typeof sessions.$inferInsert): void {
+  tx.insert(sessions).values(session).run();
+}
+
+export function deleteByHash(tx: Queryable, sessionHash: string): void {
+  tx.delete(sessions).where(eq(sessions.id, sessionHash)).run();
+}
+
 export function touchSession(tx: Queryable, sessionHash: string, userId: string, nowMs: number): void {
   tx.update(sessions).set({ lastSeenAtMs: nowMs }).where(eq(sessions.id, sessionHash)).run();
   tx.update(users).set({ lastSeenAtMs: nowMs }).where(eq(users.id, userId)).run();
