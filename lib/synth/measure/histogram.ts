@@ -34,12 +34,6 @@ export function createHistogram(): PowerHistogram {
   return { counts: new Float64Array(POWER_BINS), total: 0 };
 }
 
-/** Adds `from` to `into`, times +1 or −1. */
-export function mergeHistogram(into: PowerHistogram, from: PowerHistogram, times: 1 | -1 = 1): void {
-  for (let bin = 0; bin < POWER_BINS; bin++) into.counts[bin] = into.counts[bin]! + times * from.counts[bin]!;
-  into.total += times * from.total;
-}
-
 /** The power that stands `db` above `mean`. */
 export function powerAbove(mean: number, db: number): number {
   return mean * powerOfDecibels(db);

@@ -160,11 +160,11 @@ export function tallyTail(tally: SymbolTally, useful: Float64Array, ramp: Float6
 
 /** The frame's figures, kept from per-symbol tallies. */
 export interface FrameTally {
-  /** Puts a copy of `tally` in a slot (0…slots−1, in time order), in place of what was there. O(1) in the number of slots. */
+  /** Puts a copy of `tally` in a slot (0…slots−1, in time order), in place of what was there. O(log slots). */
   replace(slot: number, tally: SymbolTally): void;
   /** Takes a slot's tally out. */
   clear(slot: number): void;
-  /** Mean, peak and PAPR over all slots: sums in slot order, so the result does not depend on the order of edits. */
+  /** Mean, peak and PAPR over all slots; the same whatever the order of edits. */
   power(): FramePower;
   /** The counts of all slots together; owned by the tally and changed by `replace`. */
   histogram(): PowerHistogram;
@@ -176,17 +176,22 @@ export interface FrameTally {
 
 /**
  * A frame of `slots` symbols (or tails). Integers are added and subtracted, so the histogram stays exact through any number of edits;
- * powers are summed anew in `power()` (three additions a slot).
+ * powers and peaks stand in a binary tree over the slots, so that an edit renews its way to the root alone and the sums (compensated)
+ * do not depend on the order of edits.
  */
 export function createFrameTally(slots: number): FrameTally {
-  const sumHi = new Float64Array(slots);
-  const sumLo = new Float64Array(slots);
-  const peakPower = new Float64Array(slots);
-  const peakAt = new Float64Array(slots);
-  const samples = new Float64Array(slots);
+  let leaves = 1;
+  while (leaves < slots) leaves *= 2;
+  // node 1 is the root, node i has the children 2i and 2i + 1, slot s is node leaves + s
+  const all = createSumTree(leaves);
+  const active = createSumTree(leaves);
+  const bestSlot = new Int32Array(2 * leaves);
+  for (let slot = 0; slot < leaves; slot++) bestSlot[leaves + slot] = slot;
+  for (let node = leaves - 1; node >= 1; node--) bestSlot[node] = bestSlot[2 * node]!;
+  const peakPower = new Float64Array(leaves);
+  const peakAt = new Float64Array(leaves);
   const firstBin = new Int32Array(slots);
   const counts: (Uint32Array | undefined)[] = new Array<Uint32Array | undefined>(slots);
-  const silent = new Uint8Array(slots).fill(1);
   const symbolPaprDb = new Float64Array(slots).fill(NaN);
   const symbolPeakPower = new Float64Array(slots);
   const total = createHistogram();
@@ -197,7 +202,21 @@ export function createFrameTally(slots: number): FrameTally {
     const first = firstBin[slot]!;
     const end = Math.min(TALLY_BINS, POWER_BINS - first);
     for (let i = 0; i < end; i++) total.counts[first + i] = total.counts[first + i]! + times * own[i]!;
-    total.total += times * samples[slot]!;
+    total.total += times * all.samples[leaves + slot]!;
+  };
+
+  const put = (slot: number, of: SymbolTally | null): void => {
+    all.put(slot, of);
+    active.put(slot, of && of.usefulMeanPower > 0 ? of : null);
+    peakPower[slot] = of ? of.peakPower : 0;
+    peakAt[slot] = of ? of.peakAt : 0;
+    symbolPeakPower[slot] = of ? of.usefulPeakPower : 0;
+    symbolPaprDb[slot] = of && of.usefulMeanPower > 0 ? 10 * log10(of.usefulPeakPower / of.usefulMeanPower) : NaN;
+    for (let node = (leaves + slot) >> 1; node >= 1; node >>= 1) {
+      const left = bestSlot[2 * node]!;
+      const right = bestSlot[2 * node + 1]!;
+      bestSlot[node] = peakPower[right]! > peakPower[left]! ? right : left;
+    }
   };
 
   return {
@@ -208,55 +227,59 @@ export function createFrameTally(slots: number): FrameTally {
       const own = (counts[slot] ??= new Uint32Array(TALLY_BINS));
       own.set(tally.counts);
       firstBin[slot] = tally.firstBin;
-      samples[slot] = tally.samples;
-      sumHi[slot] = tally.sumHi;
-      sumLo[slot] = tally.sumLo;
-      peakPower[slot] = tally.peakPower;
-      peakAt[slot] = tally.peakAt;
-      silent[slot] = tally.usefulMeanPower === 0 ? 1 : 0;
-      symbolPeakPower[slot] = tally.usefulPeakPower;
-      symbolPaprDb[slot] =
-        tally.usefulMeanPower === 0 ? NaN : 10 * log10(tally.usefulPeakPower / tally.usefulMeanPower);
+      put(slot, tally);
       move(slot, 1);
     },
     clear(slot) {
       move(slot, -1);
       counts[slot] = undefined;
-      samples[slot] = sumHi[slot] = sumLo[slot] = peakPower[slot] = symbolPeakPower[slot] = 0;
-      silent[slot] = 1;
-      symbolPaprDb[slot] = NaN;
+      put(slot, null);
     },
     histogram: () => total,
     power() {
-      let high = 0;
-      let low = 0;
-      let count = 0;
-      let activeHigh = 0;
-      let activeLow = 0;
-      let activeCount = 0;
-      let best = 0;
-      for (let slot = 0; slot < slots; slot++) {
-        const value = sumHi[slot]!;
-        const next = high + value;
-        low += (high >= value ? high - next + value : value - next + high) + sumLo[slot]!;
-        high = next;
-        count += samples[slot]!;
-        if (peakPower[slot]! > peakPower[best]!) best = slot;
-        if (silent[slot] === 1) continue;
-        const active = activeHigh + value;
-        activeLow += (activeHigh >= value ? activeHigh - active + value : value - active + activeHigh) + sumLo[slot]!;
-        activeHigh = active;
-        activeCount += samples[slot]!;
-      }
+      const best = bestSlot[1]!;
       return framePower({
-        sum: high + low,
-        samples: count,
-        activeSum: activeHigh + activeLow,
-        activeSamples: activeCount,
-        peakPower: slots === 0 ? 0 : peakPower[best]!,
+        sum: all.high[1]! + all.low[1]!,
+        samples: all.samples[1]!,
+        activeSum: active.high[1]! + active.low[1]!,
+        activeSamples: active.samples[1]!,
+        peakPower: peakPower[best]!,
         peakSlot: best,
-        peakAt: slots === 0 ? 0 : peakAt[best]!,
+        peakAt: peakAt[best]!,
       });
+    },
+  };
+}
+
+/** Compensated sums of power, and samples, over a binary tree. */
+interface SumTree {
+  high: Float64Array;
+  low: Float64Array;
+  samples: Float64Array;
+  put(slot: number, of: SymbolTally | null): void;
+}
+
+function createSumTree(leaves: number): SumTree {
+  const high = new Float64Array(2 * leaves);
+  const low = new Float64Array(2 * leaves);
+  const samples = new Float64Array(2 * leaves);
+  return {
+    high,
+    low,
+    samples,
+    put(slot, of) {
+      const leaf = leaves + slot;
+      high[leaf] = of ? of.sumHi : 0;
+      low[leaf] = of ? of.sumLo : 0;
+      samples[leaf] = of ? of.samples : 0;
+      for (let node = leaf >> 1; node >= 1; node >>= 1) {
+        const a = high[2 * node]!;
+        const b = high[2 * node + 1]!;
+        const sum = a + b;
+        high[node] = sum;
+        low[node] = (a >= b ? a - sum + b : b - sum + a) + low[2 * node]! + low[2 * node + 1]!;
+        samples[node] = samples[2 * node]! + samples[2 * node + 1]!;
+      }
     },
   };
 }
