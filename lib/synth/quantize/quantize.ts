@@ -17,23 +17,26 @@ export function quantize(
   count: number,
   scale: number,
   fullScale: number,
-  words: Int16Array | Int32Array,
+  words: Int16Array,
   counted: SaturationCount,
 ): void {
   const most = fullScale;
   const least = -fullScale - 1;
+  const rounder = ROUNDER; // a local constant: bundled modules keep theirs in variables
   const end = 2 * count;
   for (let i = 0; i < end; i += 2) {
-    let re = data[i]! * scale + ROUNDER - ROUNDER;
-    let im = data[i + 1]! * scale + ROUNDER - ROUNDER;
-    if (re > most || re < least || im > most || im < least) {
-      counted.samples++;
-      if (re > most || re < least) counted.components++;
-      if (im > most || im < least) counted.components++;
-      re = Math.min(Math.max(re, least), most);
-      im = Math.min(Math.max(im, least), most);
+    const re = data[i]! * scale + rounder - rounder;
+    const im = data[i + 1]! * scale + rounder - rounder;
+    if (Math.abs(re) > most || Math.abs(im) > most) {
+      const isReOver = re > most || re < least;
+      const isImOver = im > most || im < least;
+      if (isReOver || isImOver) counted.samples++;
+      counted.components += (isReOver ? 1 : 0) + (isImOver ? 1 : 0);
+      words[i] = Math.min(Math.max(re, least), most);
+      words[i + 1] = Math.min(Math.max(im, least), most);
+    } else {
+      words[i] = re;
+      words[i + 1] = im;
     }
-    words[i] = re;
-    words[i + 1] = im;
   }
 }

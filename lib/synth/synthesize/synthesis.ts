@@ -4,12 +4,12 @@ import { createRamp } from './ramp';
 import { createSymbolSynthesis } from './symbolSynthesis';
 import type { RenderOptions, Synthesis } from './types';
 
-const KEPT_BYTES_MOST = 50331648; // 48 MiB: useful parts kept for a second pass or for equal repeats
+const KEEP_BYTES = 50331648; // 48 MiB
 
 /**
  * A rendering of the whole content, read in blocks: symbols with prefixes, ramps and overlap, gaps, pad, the loop's wrap or
- * the burst's tail, the frequency offset. Memory: one symbol, and up to 48 MiB of kept useful parts where all of them fit
- * (each symbol once when repeats are alike). Edits of `cells` after creation are not seen.
+ * the burst's tail, the frequency offset. Memory: one symbol, and `keepBytes` (48 MiB) of useful parts that are kept for
+ * the next pass (each symbol once when repeats are alike). Edits of `cells` after creation are not seen.
  * Throws SynthError as frameLayout and createCellValues do.
  * Convention: x_l[n] = (1/√N) Σ_k a(k, l) e^{+j2πkn/(N·M)}, prefix = copied tail.
  */
@@ -20,20 +20,20 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
     layout;
   const offset = createFrequencyOffset(content, layout.oversampling);
   const ramp = createRamp(overlapSamples);
-  const symbolBytes = 16 * usefulSamples;
-  const isAlike = repeats > 1 && symbolCount * symbolBytes <= KEPT_BYTES_MOST && values.isRepeatAlike;
-  const slotCount = isAlike ? symbolCount : symbolCount * repeats;
+  const isAlike = repeats > 1 && values.isRepeatAlike;
+  // the first useful parts are kept for a second pass or for equal repeats, as many as fit
+  const keptMost = Math.floor((options.keepBytes ?? KEEP_BYTES) / (16 * usefulSamples));
   const kept: (Float64Array | undefined)[] = [];
-  const isKeeping = slotCount * symbolBytes <= KEPT_BYTES_MOST;
-  const scratch = isKeeping ? null : new Float64Array(2 * usefulSamples);
+  let scratch: Float64Array | null = null;
 
-  /** The useful part of symbol `symbol` of `repeat`; valid until the next call where nothing is kept. */
+  /** The useful part of symbol `symbol` of `repeat`; valid until the next call. */
   function usefulPart(repeat: number, symbol: number): Float64Array {
-    if (scratch !== null) {
+    const slot = isAlike ? symbol : repeat * symbolCount + symbol;
+    if (slot >= keptMost) {
+      scratch ??= new Float64Array(2 * usefulSamples);
       renderer.useful(repeat, symbol, scratch);
       return scratch;
     }
-    const slot = isAlike ? symbol : repeat * symbolCount + symbol;
     let part = kept[slot];
     if (part === undefined) {
       part = new Float64Array(2 * usefulSamples);

@@ -6,6 +6,8 @@ export interface RenderOptions {
   oversampling?: number;
   /** L·N ink numbers to use instead of the content's grid (read when needed, never kept or changed). */
   cells?: Uint8Array;
+  /** Most bytes of rendered symbols that a Synthesis may keep for its second pass; 48 MiB by default. Decides no bit. */
+  keepBytes?: number;
 }
 
 /**
