@@ -1,8 +1,6 @@
 /** Teeth of pilots and tones are drawn this wide where they stand far enough apart; tones always. */
 export const TOOTH_PX = 2;
 export const TOOTH_PITCH_PX_LEAST = 6;
-/** Pictures with less than this between teeth mix fills by area. */
-export const MIX_PITCH_PX_LEAST = 3;
 
 /**
  * One row of cells to pixel columns when a cell is narrower than a pixel: each cell belongs to one column (by its left

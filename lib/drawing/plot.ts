@@ -51,20 +51,3 @@ export function niceCeiling(value: number): number {
   const step = [1, 1.5, 2, 2.5, 3, 4, 5, 6, 8, 10].find((candidate) => candidate * power >= value * (1 - 1e-12));
   return (step ?? 10) * power;
 }
-
-/** The arc that joins a prefix with the tail it copies: a quadratic curve over the plot's upper edge. */
-export function prefixArc(
-  prefixMiddlePx: number,
-  tailMiddlePx: number,
-  topPx: number,
-  risePx: number,
-): { x1Px: number; y1Px: number; cxPx: number; cyPx: number; x2Px: number; y2Px: number } {
-  return {
-    x1Px: prefixMiddlePx,
-    y1Px: topPx,
-    cxPx: (prefixMiddlePx + tailMiddlePx) / 2,
-    cyPx: topPx - 2 * risePx,
-    x2Px: tailMiddlePx,
-    y2Px: topPx,
-  };
-}

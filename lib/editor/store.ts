@@ -154,7 +154,11 @@ export function createEditor(stored: WaveformDocument, options: EditorOptions = 
   }
 
   function step(take: () => Patch | null, direction: (patch: Patch) => Patch): boolean {
-    closeGesture('cancel');
+    // In the middle of a stroke, undo takes back the stroke: it is no step yet.
+    if (open) {
+      closeGesture('cancel');
+      return true;
+    }
     const patch = take();
     if (!patch) return false;
     write(direction(patch));

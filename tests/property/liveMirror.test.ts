@@ -49,7 +49,7 @@ const act = fc.oneof(
     place: fc.integer({ min: 1, max: 5 }),
   }),
   fc.record({ kind: fc.constant('size' as const), symbolCount: fc.integer({ min: 3, max: 14 }) }),
-  fc.record({ kind: fc.constant('work' as const), pieces: fc.integer({ min: 1, max: 20 }) }),
+  { weight: 4, arbitrary: fc.record({ kind: fc.constant('work' as const), pieces: fc.integer({ min: 1, max: 40 }) }) },
 );
 type Act = typeof act extends fc.Arbitrary<infer T> ? T : never;
 
@@ -86,7 +86,9 @@ it('keeps the figures of the document opened anew', () => {
         timing: { mode: of.mode, repeats: 1, gapSamples: of.gapSamples, padSamples: 0 },
       };
       const it = headlessEditor(testDocument(content));
-      const desk = liveDesk(it.editor, wholeView(32, { symbol: 2 }));
+      it.tool('rectangle', 2).pointerDown(5, 0).pointerMove(24, 13).pointerUp();
+      it.tool('rectangle', 3).pointerDown(8, 2).pointerMove(9, 11).pointerUp();
+      const desk = liveDesk(it.editor, wholeView(32, { symbol: 2 })).settle();
       for (const step of steps) {
         if (step.kind === 'work') desk.run(step.pieces);
         else perform(it, step);

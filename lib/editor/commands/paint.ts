@@ -91,7 +91,7 @@ export const paintCommands: readonly Command[] = [
     id: 'history.undo',
     label: 'Undo',
     shortcut: 'Ctrl+Z',
-    isEnabled: (editor) => editor.session.getState().undoLabel !== null,
+    isEnabled: (editor) => editor.session.getState().undoLabel !== null || editor.session.getState().gestureOpen,
     plan: () => ({ kind: 'history', step: 'undo' }),
   },
   {

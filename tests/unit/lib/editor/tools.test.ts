@@ -54,6 +54,15 @@ describe('brush', () => {
     expect(it.machine.phase()).toBe('idle');
   });
 
+  it('is what undo takes back while it lasts, not the step before', () => {
+    const it = headlessEditor().tool('brush', 1);
+    it.pointerDown(3, 4).pointerUp();
+    it.pointerDown(3, 8).pointerMove(9, 8).key('Ctrl+Z').pointerMove(12, 8).pointerUp();
+    expect(it.row(4)[3]).toBe('1');
+    expect(it.row(8)).toBe(empty);
+    expect(it.editor.session.getState().undoLabel).toBe('Paint 1 cell');
+  });
+
   it('refuses a stroke that a pilot cannot hold, with its name and the first place', () => {
     const tray = testTray.map((ink) =>
       ink.role === 'pilot'
