@@ -33,7 +33,6 @@ const sessionAnswerSchema = z
     }),
   })
   .meta({ id: 'SessionAnswer' });
-export type SessionAnswer = z.infer<typeof sessionAnswerSchema>;
 
 /** What every page asks first. Open to anyone, so that a signed-out page is no error. */
 export const getSession = defineEndpoint({

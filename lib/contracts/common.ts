@@ -49,7 +49,6 @@ export const reasonSchema = noteSchema.min(1, 'needs a reason');
 
 /** How a person appears beside their acts: no address. */
 export const personRefSchema = z.object({ personId: ulidSchema, name: z.string() }).meta({ id: 'PersonRef' });
-export type PersonRef = z.infer<typeof personRefSchema>;
 
 /** The answer of an endpoint that has nothing to say. */
 export const doneSchema = z.object({ done: z.literal(true) }).meta({ id: 'Done' });
