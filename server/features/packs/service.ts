@@ -248,6 +248,7 @@ export function createPacksService(deps: Deps, jobs: PackJobs, freeBytes: FreeBy
     ): DeviceCard {
       const row = visiblePack(actor, packId);
       requireRight(actor, 'enterDeviceCards');
+      if (row.withdrawnBy !== null) throw withdrawnError(row.editionNumber, row.withdrawnReason);
       const source = sourceOf(row);
       const cardId = store.write((tx) => {
         const intentJson = JSON.stringify(entered.intent);

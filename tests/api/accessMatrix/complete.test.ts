@@ -2,10 +2,11 @@ import { endpoints } from '@/lib/contracts/endpoints';
 import { readAccessTable } from '../../helpers/accessMatrix';
 import { accountAccess } from './tables/account';
 import { benchesAccess } from './tables/benches';
+import { packsAccess } from './tables/packs';
 import { peopleAccess } from './tables/people';
 import { waveformsAccess } from './tables/waveforms';
 
-const tables = [accountAccess, peopleAccess, waveformsAccess, benchesAccess];
+const tables = [accountAccess, peopleAccess, waveformsAccess, benchesAccess, packsAccess];
 
 it('every endpoint stands in the access matrix', () => {
   const rows = new Set(tables.flatMap((table) => readAccessTable(table).map((row) => row.name)));
