@@ -59,6 +59,7 @@ const perSymbol = readCheck<Record<string, { nyquist: number[]; 'alpha2.8': numb
   'th.ccdf.symbol',
 );
 const monteCarlo = readCheck<Record<string, Record<'L1' | 'L4', Record<string, number>>>>('th.ccdf.mc');
+const phases = readCheck<Record<string, { newman: number; schroeder: number; equal: number }>>('th.phases');
 const tones = readCheck<Record<string, number>>('th.tones');
 
 describe('references', () => {
@@ -101,6 +102,27 @@ describe('references', () => {
     expect(
       Math.abs(dbAtProbability(result.sampleCcdf, 1e-3)! - instantaneous.expected.db_at_prob['0.001']!),
     ).toBeLessThan(0.1);
+  });
+
+  test(titleOf(phases), () => {
+    for (const [size, expected] of Object.entries(phases.expected)) {
+      const count = Number(size);
+      for (const [kind, db] of Object.entries({
+        newman: expected.newman,
+        schroeder: expected.schroeder,
+        constant: expected.equal,
+      })) {
+        const sequence = kind === 'constant' ? ({ kind } as const) : { kind: kind as 'newman' | 'schroeder', count };
+        // N tones side by side, 16 points to the N tones' own clock
+        const content = smallContent({
+          fftSize: 2 * count,
+          oversampling: 8,
+          tray: [NULL_INK, pilotInk(1, [factor(sequence)])],
+          grid: { rows: [[count, 0, count, 1]], rowOfSymbol: [0] },
+        });
+        expect(Math.abs(measure(content).power.paprDb! - db)).toBeLessThan(1e-9);
+      }
+    }
   });
 
   test(titleOf(tones), () => {
