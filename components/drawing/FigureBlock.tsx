@@ -12,13 +12,18 @@ export function FigureBlock({
 }) {
   return (
     <View style={styles.block}>
-      {figures.map((figure) => (
+      {figures.map((figure, i) => (
         <FigureCell
           key={figure.name}
           label={figure.name}
           value={figure.value}
           {...(figure.unit ? { unit: figure.unit } : {})}
-          style={{ ...styles.cell, width: `${100 / columns}%` }}
+          style={{
+            ...styles.cell,
+            width: `${100 / columns}%`,
+            borderRightWidth: (i + 1) % columns === 0 ? 0 : 1,
+            borderBottomWidth: i >= figures.length - (figures.length % columns || columns) ? 0 : 1,
+          }}
         />
       ))}
     </View>
@@ -34,11 +39,7 @@ const styles = StyleSheet.create({
     backgroundColor: color.surface.raised,
   },
   cell: {
-    borderRightWidth: 1,
-    borderBottomWidth: 1,
     borderColor: color.rule.line,
-    marginRight: -1,
-    marginBottom: -1,
     paddingHorizontal: 12,
     overflow: 'hidden',
   },

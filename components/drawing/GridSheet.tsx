@@ -1,8 +1,8 @@
-import { useMemo } from 'react';
+import { useId, useMemo } from 'react';
 import { StyleSheet, View } from 'react-native';
-import { color, useThemeColors } from '@/components/ui/theme';
-import { gridPicture, pictureBlocks } from '@/lib/drawing/gridPicture';
+import { color } from '@/components/ui/theme';
 import type { WaveformContent } from '@/lib/synth';
+import { gridRows } from './gridRuns';
 import { Straightedge, type Band } from './Straightedge';
 import { SpectrumTrace, type SpectrumLine } from './SpectrumTrace';
 import { useWidth } from './useWidth';
@@ -43,24 +43,12 @@ export function GridSheet({
   label?: string;
 }) {
   const { widthPx, onLayout } = useWidth();
-  const colors = useThemeColors();
+  const hatchId = useId();
   const band = useMemo(() => paintedBand(content), [content]);
-  const visible = band.to - band.from;
-  const { blocks, columns, rowCount } = useMemo(() => {
-    // one column a pixel of the visible band, over the whole band: a comb keeps its teeth
-    const wanted = widthPx === 0 ? 0 : Math.min(content.fftSize, Math.ceil((widthPx * content.fftSize) / visible));
-    if (wanted === 0) return { blocks: [], columns: 1, rowCount: 1 };
-    const picture = gridPicture(content, wanted, Math.max(1, Math.floor(gridHeightPx / 2)));
-    const fills = Object.fromEntries(Object.entries(colors.cell).map(([key, cell]) => [key, cell.fill]));
-    return {
-      blocks: pictureBlocks(picture, fills as Parameters<typeof pictureBlocks>[1]),
-      columns: picture.columns,
-      rowCount: picture.rowCount,
-    };
-  }, [content, colors, gridHeightPx, visible, widthPx]);
-  const perPosition = columns / content.fftSize;
+  const rows = useMemo(() => (widthPx === 0 ? [] : gridRows(content, band, widthPx)), [content, band, widthPx]);
   const spacingHz = content.subcarrierSpacingHz[0] / content.subcarrierSpacingHz[1];
   const rowPx = gridHeightPx / content.symbolCount;
+  const yOf = (symbol: number) => Math.round(symbol * rowPx);
   return (
     <View
       onLayout={onLayout}
@@ -70,26 +58,40 @@ export function GridSheet({
     >
       {widthPx > 0 ? (
         <>
-          <svg width={widthPx} height={gridHeightPx} style={styles.grid as object} aria-hidden>
-            <svg
-              width={widthPx}
-              height={gridHeightPx}
-              viewBox={`${band.from * perPosition} 0 ${visible * perPosition} ${rowCount}`}
-              preserveAspectRatio="none"
-              shapeRendering="crispEdges"
-            >
-              {blocks.map((block, i) => (
-                <rect key={i} x={block.x} y={block.y} width={block.width} height={block.height} fill={block.fill} />
-              ))}
-            </svg>
+          <svg
+            width={widthPx}
+            height={gridHeightPx}
+            shapeRendering="crispEdges"
+            style={styles.grid as object}
+            aria-hidden
+          >
+            <pattern id={hatchId} width={4} height={4} patternUnits="userSpaceOnUse">
+              <rect width={4} height={4} fill={color.cell.reserved.fill} />
+              <path d="M-1 1L1 -1M0 4L4 0M3 5L5 3" stroke={color.cell.reserved.mark} shapeRendering="auto" />
+            </pattern>
+            <rect width={widthPx} height={gridHeightPx} fill={color.cell.null.fill} />
+            {rows.map((row) =>
+              row.runs.map((run) =>
+                run.style === 'null' ? null : (
+                  <rect
+                    key={`${row.fromSymbol}.${run.xPx}`}
+                    x={run.xPx}
+                    y={yOf(row.fromSymbol)}
+                    width={run.widthPx}
+                    height={yOf(row.toSymbol) - yOf(row.fromSymbol)}
+                    fill={run.style === 'reserved' ? `url(#${hatchId})` : color.cell[run.style].fill}
+                  />
+                ),
+              ),
+            )}
             {rowPx >= 6
               ? Array.from({ length: content.symbolCount - 1 }, (_, i) => (
                   <line
                     key={i}
                     x1={0}
                     x2={widthPx}
-                    y1={Math.round((i + 1) * rowPx) + 0.5}
-                    y2={Math.round((i + 1) * rowPx) + 0.5}
+                    y1={yOf(i + 1) + 0.5}
+                    y2={yOf(i + 1) + 0.5}
                     stroke={color.canvas.cellRule}
                   />
                 ))

@@ -101,9 +101,11 @@ function TopLine({ person, showTeam }: FrameProps) {
       {showTeam ? (
         <PlaceLink place={{ label: 'Team', href: '/people' }} open={isOpen(path, { label: '', href: '/people' })} />
       ) : null}
-      <Button kind="plain" size="small" label={`Use the ${next} theme`} onPress={() => chooseTheme(next)}>
-        {next === 'night' ? 'Night' : 'Paper'}
-      </Button>
+      <View style={styles.theme}>
+        <Button kind="plain" size="small" label={`Use the ${next} theme`} onPress={() => chooseTheme(next)}>
+          {next === 'night' ? 'Night' : 'Paper'}
+        </Button>
+      </View>
       <PlaceLink place={{ label: person, href: '/account' }} open={isOpen(path, { label: '', href: '/account' })} />
     </View>
   );
@@ -145,13 +147,16 @@ function PhoneHead({ title, backTo, headAside }: FrameProps) {
   );
 }
 
+/** Places that a phone reaches through More. */
+const underMore = ['/benches', '/people', '/audit', '/account'];
+
 function FootBar() {
   const path = usePathname();
   const all: Place[] = [places[0]!, places[1]!, { label: 'More', href: '/more' }];
   return (
     <View role="navigation" aria-label="Places" style={styles.foot}>
       {all.map((place) => {
-        const open = isOpen(path, place);
+        const open = isOpen(path, place) || (place.href === '/more' && underMore.some((one) => path.startsWith(one)));
         return (
           <Link key={place.label} href={place.href} aria-current={open ? 'page' : undefined} style={styles.footPlace}>
             <View style={[styles.footInner, { borderTopColor: open ? color.ink.strong : 'transparent' }]}>
@@ -193,6 +198,7 @@ const styles = StyleSheet.create({
   },
   placeText: { fontSize: 14, lineHeight: 20 },
   spring: { flex: 1 },
+  theme: { justifyContent: 'center', marginRight: 16 },
   demo: {
     alignItems: 'center',
     backgroundColor: color.warning.wash,

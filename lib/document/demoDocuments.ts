@@ -10,12 +10,13 @@ type Fill = [from: number, to: number, ink: number];
 function row(
   fftSize: number,
   fills: readonly Fill[],
-  comb: { ink: number; at: readonly number[] } | null = null,
+  comb: { ink: number; at: readonly number[]; spares?: number } | null = null,
 ): number[] {
   const low = -Math.floor(fftSize / 2);
   const cells = new Uint8Array(fftSize);
   for (const [from, to, ink] of fills) cells.fill(ink, from - low, to - low + 1);
-  for (const k of comb?.at ?? []) if (cells[k - low] !== 0) cells[k - low] = comb!.ink;
+  for (const k of comb?.at ?? [])
+    if (cells[k - low] !== 0 && cells[k - low] !== comb!.spares) cells[k - low] = comb!.ink;
   return Array.from(cells).flatMap((ink) => [1, ink]);
 }
 
@@ -103,7 +104,7 @@ export function paLadder(): WaveformDocument {
     grid: grid(symbolCount, (symbol) => {
       const fills = [...(symbol < 2 ? opening : blocks(symbol >= 8 && symbol < 11)), ...edges];
       const pass = pilotSymbols.indexOf(symbol);
-      return row(2048, fills, pass < 0 ? null : { ink: 8, at: steps(-588 + (pass % 2) * 6, 588, 12) });
+      return row(2048, fills, pass < 0 ? null : { ink: 8, at: steps(-588 + (pass % 2) * 6, 588, 12), spares: 9 });
     }),
     markers: [{ name: 'Frame', at: 'repeat', symbol: null, offsetSamples: 0, lengthSamples: 64 }],
   };

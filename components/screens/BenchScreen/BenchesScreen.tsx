@@ -75,5 +75,5 @@ export function BenchesScreen() {
 const styles = StyleSheet.create({
   list: { borderWidth: 1, borderColor: color.rule.line, backgroundColor: color.surface.sheet },
   link: { textDecorationLine: 'none', display: 'flex' },
-  row: { flexGrow: 1, minWidth: 0, padding: 14, gap: 2, borderBottomWidth: 1, borderBottomColor: color.rule.hair },
+  row: { flex: 1, minWidth: 0, padding: 14, gap: 2, borderBottomWidth: 1, borderBottomColor: color.rule.hair },
 });

@@ -36,13 +36,13 @@ export function BareGridSentence({
       </Text>
       <View style={[styles.sentence, chosen ? styles.chosen : null]}>
         <Text>Grid of</Text>
-        {blank('fftSize', 'Points', 60)}
+        {blank('fftSize', 'Points', 54)}
         <Text>points,</Text>
-        {blank('spacing', 'Spacing', 68)}
+        {blank('spacing', 'Spacing', 56)}
         <Text>Hz apart,</Text>
-        {blank('symbols', 'Symbols', 48)}
+        {blank('symbols', 'Symbols', 40)}
         <Text>symbols, prefix</Text>
-        {blank('prefix', 'Prefix', 52)}
+        {blank('prefix', 'Prefix', 48)}
         <Button kind="plain" onPress={onChoose}>
           Choose
         </Button>

@@ -64,7 +64,7 @@ export const ieee80211At20MHz: Preset = {
         subcarrierSpacingHz: [312500, 1],
         symbolCount,
         prefixSamples: [16],
-        oversampling: 4,
+        oversampling: 1,
         tray: [
           { inkId: 'k0', name: 'Null', role: 'null', powerDb: 0, value: null },
           {

@@ -81,7 +81,7 @@ export const ts36211At5MHz: Preset = {
         subcarrierSpacingHz: [15000, 1],
         symbolCount,
         prefixSamples: [40, 36, 36, 36, 36, 36, 36],
-        oversampling: 4,
+        oversampling: 1,
         tray: [
           { inkId: 'k0', name: 'Null', role: 'null', powerDb: 0, value: null },
           {
