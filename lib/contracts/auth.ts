@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import { z } from '@/lib/document/zod';
 import { doneSchema, emailSchema, personNameSchema, rightSchema, roleSchema, timeMsSchema, ulidSchema } from './common';
 import { defineEndpoint } from './endpoint';
 

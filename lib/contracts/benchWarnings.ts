@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import { z } from '@/lib/document/zod';
 import type { benchProfileSchema } from '@/lib/document/benchSchema';
 
 type BenchContent = z.infer<typeof benchProfileSchema>['content'];

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import { z } from '@/lib/document/zod';
 import type { benchProfileSchema } from '@/lib/document/benchSchema';
 import { parseBenchProfile } from '@/lib/document/parse';
 import { benchWarningSchema } from './benchWarnings';

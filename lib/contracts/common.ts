@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import { z } from '@/lib/document/zod';
 
 /** The four roles; a person may hold several, and what they may do is the union. */
 export const roleSchema = z.enum(['author', 'reviewer', 'operator', 'admin']);

@@ -1,4 +1,4 @@
-import type { z } from 'zod';
+import type { z } from '@/lib/document/zod';
 import type { Right } from './common';
 import type { Issue } from './problem';
 

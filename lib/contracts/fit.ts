@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import { z } from '@/lib/document/zod';
 import { ulidSchema } from './common';
 import { defineEndpoint } from './endpoint';
 import { issueSchema } from './problem';

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import { z } from '@/lib/document/zod';
 import { wireBenchProfileSchema } from './benches';
 import { digestSchema, personRefSchema, timeMsSchema, ulidSchema } from './common';
 import { defineEndpoint } from './endpoint';

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import { z } from '@/lib/document/zod';
 
 /**
  * Every expected refusal of the API by its stable code, with the HTTP status that carries it and the title a person reads.

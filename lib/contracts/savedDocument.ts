@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import { z } from '@/lib/document/zod';
 import { canonicalJson, digestOfCanonical } from '@/lib/document/digest';
 import { notSupportedYet } from '@/lib/document/notSupportedYet';
 import { parseWaveformDocument } from '@/lib/document/parse';

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import { z } from '@/lib/document/zod';
 import type { waveformDocumentSchema } from '@/lib/document/waveformSchema';
 import { personRefSchema, timeMsSchema, ulidSchema } from './common';
 import { defineEndpoint, DOCUMENT_BODY_BYTES } from './endpoint';
