@@ -12,11 +12,12 @@ import { useBreakpoint } from '@/components/ui/useBreakpoint';
 import { useApi } from '@/lib/client/useApi';
 import { useMay } from '@/lib/client/useSession';
 import type { Edition } from '@/lib/contracts/reviews';
+import { groupHistory, type HistoryLine } from '@/lib/contracts/history';
 import { listRevisions, showWaveform } from '@/lib/contracts/waveforms';
 import { Page } from '../Page';
 import { when } from '../when';
 import { AskSheet } from './AskSheet';
-import { groupRevisions, type RevisionGroup } from './groups';
+
 import { TakeBackDialog } from './TakeBackDialog';
 import { WithdrawDialog } from './WithdrawDialog';
 
@@ -103,8 +104,8 @@ export function HistoryScreen({ waveformId }: { waveformId: string }) {
                 />
               ) : null}
               <View role="list" aria-label="Revisions">
-                {groupRevisions(revisions.data?.revisions ?? []).map((group) => (
-                  <GroupRow key={group.last.revisionId} group={group} waveformId={waveformId} />
+                {groupHistory(revisions.data?.revisions ?? []).map((group) => (
+                  <GroupRow key={group.newest.revisionId} group={group} waveformId={waveformId} />
                 ))}
               </View>
               {revisions.data?.hasOlder ? <Text tone="quiet">Older revisions are kept and not shown here.</Text> : null}
@@ -164,8 +165,8 @@ function Editions({ editions, onWithdraw }: { editions: readonly Edition[]; onWi
   );
 }
 
-function GroupRow({ group, waveformId }: { group: RevisionGroup; waveformId: string }) {
-  const { last, revisions } = group;
+function GroupRow({ group, waveformId }: { group: HistoryLine; waveformId: string }) {
+  const { newest: last, revisions } = group;
   const first = revisions.at(-1)!;
   const numbers = revisions.length === 1 ? `Revision ${last.number}` : `Revisions ${first.number} to ${last.number}`;
   return (
