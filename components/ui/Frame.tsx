@@ -142,7 +142,7 @@ function PhoneHead({ title, backTo, headAside }: FrameProps) {
       <Text variant="heading" tone="strong" numberOfLines={1} style={styles.phoneTitle}>
         {title}
       </Text>
-      {headAside}
+      {headAside ? <View style={styles.headAside}>{headAside}</View> : null}
     </View>
   );
 }
@@ -220,6 +220,7 @@ const styles = StyleSheet.create({
   backInner: { width: 48, height: 44, alignItems: 'center', justifyContent: 'center' },
   phoneMark: { paddingLeft: 14, paddingRight: 9 },
   phoneTitle: { flex: 1, minWidth: 0 },
+  headAside: { height: 44, justifyContent: 'center', flexShrink: 0, marginLeft: 8 },
   foot: {
     flexDirection: 'row',
     paddingBottom: 'env(safe-area-inset-bottom)' as unknown as number,

@@ -144,8 +144,8 @@ function Word<T extends string>(props: {
     >
       <Text
         weight={chosen ? 600 : 500}
-        tone={choice.offBecause ? 'quiet' : chosen ? 'onSelected' : 'body'}
-        style={[styles.text, choice.offBecause ? styles.struck : null]}
+        tone={choice.offBecause && !chosen ? 'quiet' : chosen ? 'onSelected' : 'body'}
+        style={[styles.text, choice.offBecause && !chosen ? styles.struck : null]}
         numberOfLines={1}
       >
         {choice.label}

@@ -6,6 +6,7 @@ import { Figure } from '@/components/ui/Figure';
 import { Text, textStyle } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
 import { elevation } from '@/components/ui/tokens';
+import { useBreakpoint } from '@/components/ui/useBreakpoint';
 import { formatNumber, formatQuantity, parseQuantity } from '@/lib/drawing/quantities';
 import type { LevelCard } from '@/lib/synth';
 import { LevelScale } from './LevelScale';
@@ -23,6 +24,7 @@ export function LevelCardView({
 }) {
   const { widthPx, onLayout } = useWidth();
   const over = card.verdict === 'over';
+  const phone = useBreakpoint() === 'phone';
   const clock = formatQuantity(card.sampleClockHz, 'Hz');
   return (
     <View
@@ -68,7 +70,11 @@ export function LevelCardView({
           after attenuator and cable
         </Text>
       </View>
-      {widthPx > 0 ? <LevelScale card={card} widthPx={widthPx - 3} /> : <View style={styles.scalePlace} />}
+      {widthPx > 0 ? (
+        <LevelScale card={card} widthPx={widthPx - 3} heightPx={phone ? 160 : 190} />
+      ) : (
+        <View style={styles.scalePlace} />
+      )}
       <Readable card={card} />
       <Text variant="bodyStrong" tone={over ? 'danger' : 'strong'} role="status" style={styles.sentence}>
         {card.sentence}
@@ -174,7 +180,7 @@ const styles = StyleSheet.create({
   },
   scalePlace: { height: 190 },
   hidden: { position: 'absolute', width: 1, height: 1, overflow: 'hidden', opacity: 0 },
-  sentence: { paddingHorizontal: 14, paddingVertical: 8 },
+  sentence: { paddingHorizontal: 14, paddingVertical: 6, fontSize: 14, lineHeight: 20 },
   last: { flexDirection: 'row', borderTopWidth: 1, borderTopColor: color.rule.line },
   cell: {
     flex: 1,

@@ -31,7 +31,7 @@ function placesOf(marks: readonly Mark[], y: (dbm: number) => number): number[] 
 }
 
 /** Limits and levels at the device on one dB scale, at their true places; what is left stands as brackets. */
-export function LevelScale({ card, widthPx }: { card: LevelCard; widthPx: number }) {
+export function LevelScale({ card, widthPx, heightPx }: { card: LevelCard; widthPx: number; heightPx: number }) {
   const given: [Mark['kind'], number | null, boolean][] = [
     ['peakLimit', card.peakLimitDbm, true],
     ['peak', card.peakNowDbm, false],
@@ -47,7 +47,7 @@ export function LevelScale({ card, widthPx }: { card: LevelCard; widthPx: number
   const span = Math.max(6, highest - lowest);
   const top = highest + 0.06 * span;
   const bottom = lowest - 0.1 * span;
-  const scaleHeight = 190;
+  const scaleHeight = heightPx;
   const y = (dbm: number) => 8 + ((top - dbm) / (top - bottom)) * (scaleHeight - 12);
   const places = placesOf(marks, y);
   const height = Math.max(scaleHeight, places.at(-1)! + labelPx[marks.at(-1)!.kind] + 4);
@@ -78,8 +78,11 @@ export function LevelScale({ card, widthPx }: { card: LevelCard; widthPx: number
           </g>
         );
       })}
+      {marks.map((mark) => (
+        <Line key={mark.kind} mark={mark} lineY={Math.round(y(mark.dbm)) + 0.5} right={right} />
+      ))}
       {marks.map((mark, i) => (
-        <Level key={mark.kind} mark={mark} lineY={Math.round(y(mark.dbm)) + 0.5} labelY={places[i]!} right={right} />
+        <Level key={mark.kind} mark={mark} labelY={places[i]!} />
       ))}
       {card.peakLeftDb !== null && card.peakLeftDb > 0 ? (
         <Left leftDb={card.peakLeftDb} from={y(card.peakLimitDbm!)} to={y(card.peakNowDbm!)} right={right} />
@@ -111,22 +114,28 @@ function Bar({ card, y, bottom }: { card: LevelCard; y: (dbm: number) => number;
   );
 }
 
-function Level({ mark, lineY, labelY, right }: { mark: Mark; lineY: number; labelY: number; right: number }) {
+function Line({ mark, lineY, right }: { mark: Mark; lineY: number; right: number }) {
+  return (
+    <line
+      x1={52}
+      x2={right}
+      y1={lineY}
+      y2={lineY}
+      stroke={mark.isLimit ? color.plot.limit : color.plot.trace}
+      strokeWidth={mark.kind === 'peakLimit' ? 2 : 1.25}
+      strokeDasharray={mark.kind === 'meanLimit' ? '4 3' : undefined}
+    />
+  );
+}
+
+/** A name and its level under its line; paper round the letters keeps them legible where another line passes. */
+function Level({ mark, labelY }: { mark: Mark; labelY: number }) {
   const tone = mark.isLimit ? color.danger.text : color.ink.body;
   const large = mark.kind === 'peak' ? 34 : mark.kind === 'mean' ? 22 : 14;
   const value = formatNumber(mark.dbm, 2, true);
   const firstLine = labelY + 13;
   return (
-    <g>
-      <line
-        x1={52}
-        x2={right}
-        y1={lineY}
-        y2={lineY}
-        stroke={mark.isLimit ? color.plot.limit : color.plot.trace}
-        strokeWidth={mark.kind === 'peakLimit' ? 2 : 1.25}
-        strokeDasharray={mark.kind === 'meanLimit' ? '4 3' : undefined}
-      />
+    <g style={{ paintOrder: 'stroke', stroke: color.surface.raised, strokeWidth: 4 }}>
       <text x={88} y={mark.kind === 'mean' ? labelY + 21 : firstLine} fontSize={13} fontFamily={textFace} fill={tone}>
         {words[mark.kind]}
         {mark.kind === 'peak' ? null : (

@@ -93,8 +93,8 @@ function OpenPack({ pack, offline }: { pack: PackDetail; offline: boolean }) {
       ) : null}
       <View style={styles.stampRow}>
         <Stamp state={pack.state} edition={pack.editionNumber} />
-        <Text variant="small" tone="quiet" style={styles.shrink}>
-          {`${pack.bench.name}, card fetched ${clockTime(pack.fetchedAtMs)}`}
+        <Text variant="small" tone="quiet" style={styles.shrink} numberOfLines={phone ? 1 : 2}>
+          {`card fetched ${clockTime(pack.fetchedAtMs)}, ${pack.bench.name}`}
         </Text>
       </View>
       <View style={styles.digestRow}>
@@ -111,6 +111,7 @@ function OpenPack({ pack, offline }: { pack: PackDetail; offline: boolean }) {
       {withdrawn ? null : (
         <>
           <LevelCardView card={card} onSetting={setTyped} typed={typedDbm !== null} />
+          <CautionStrip points={points} onAll={() => setSheet('cautions')} />
           {mayEnter ? (
             <View style={styles.deviceRow}>
               <Text variant="small" tone="quiet" style={styles.shrink}>
@@ -121,7 +122,6 @@ function OpenPack({ pack, offline }: { pack: PackDetail; offline: boolean }) {
               </Button>
             </View>
           ) : null}
-          <CautionStrip points={points} onAll={() => setSheet('cautions')} />
         </>
       )}
     </View>
@@ -179,7 +179,7 @@ const styles = StyleSheet.create({
   columns: { flexDirection: 'row', alignItems: 'flex-start', gap: 40 },
   stack: { gap: 8 },
   left: { width: 420, flexShrink: 0, gap: 12 },
-  stampRow: { flexDirection: 'row', alignItems: 'center', gap: 10, flexWrap: 'wrap' },
+  stampRow: { flexDirection: 'row', alignItems: 'center', gap: 10 },
   shrink: { flexShrink: 1 },
   shrinkGrow: { flexShrink: 1, flexGrow: 1 },
   digestRow: {
