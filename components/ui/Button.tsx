@@ -109,13 +109,15 @@ export function Button(props: ButtonProps) {
             height,
             paddingHorizontal: kind === 'plain' ? 8 : size === 'small' && !touch ? 10 : 16,
             backgroundColor: off
-              ? color.surface.sunken
+              ? kind === 'plain'
+                ? 'transparent'
+                : color.surface.sunken
               : state.pressed
                 ? look.pressed
                 : (state as { hovered?: boolean }).hovered
                   ? look.hover
                   : look.ground,
-            borderColor: off ? color.rule.line : look.rule,
+            borderColor: off && kind !== 'plain' ? color.rule.line : look.rule,
           },
         ]}
       >

@@ -54,6 +54,7 @@ export function useNumberKeys(props: Pick<NumberFieldProps, 'value' | 'onSet' | 
   };
   const input = {
     value: typed ?? value,
+    dataSet: { typed: typed !== null && typed !== value ? '1' : '0' },
     onChangeText: (text: string) => {
       setTyped(text);
       onText?.(text);

@@ -23,7 +23,9 @@ function useModal(onClose: () => void, trap: boolean) {
     const first = node?.querySelector<HTMLElement>('[data-autofocus]') ?? node?.querySelector<HTMLElement>(focusable);
     first?.focus();
     const onKey = (event: KeyboardEvent) => {
-      if (event.key === 'Escape') {
+      // A number field with something new in it takes the first Escape itself: it restores its value.
+      const isTyped = event.target instanceof HTMLElement && event.target.dataset['typed'] === '1';
+      if (event.key === 'Escape' && !isTyped) {
         event.stopPropagation();
         close.current();
       }
@@ -59,6 +61,9 @@ export function Sheet({
   width = 420,
   top = 0,
   bottom = 0,
+  lit,
+  lead,
+  note,
 }: {
   title: string;
   onClose: () => void;
@@ -68,27 +73,38 @@ export function Sheet({
   /** Where it stands on a wide screen. */
   top?: number;
   bottom?: number;
+  /** What stands behind stays in sight on a phone too: no scrim, and room above. */
+  lit?: boolean;
+  /** Before the title (a swatch), and a quiet note behind it. */
+  lead?: ReactNode;
+  note?: string;
 }) {
   const phone = useBreakpoint() === 'phone';
   const ref = useModal(onClose, phone);
   const headingId = useId();
   return createPortal(
-    <View style={[styles.layer, { zIndex: z.sheet, pointerEvents: phone ? 'auto' : 'none' }]}>
-      {phone ? <View style={styles.scrim} {...({ onClick: onClose } as object)} /> : null}
+    <View style={[styles.layer, { zIndex: z.sheet, pointerEvents: phone && !lit ? 'auto' : 'none' }]}>
+      {phone && !lit ? <View style={styles.scrim} {...({ onClick: onClose } as object)} /> : null}
       <View
         ref={ref as never}
         role="dialog"
         aria-modal={phone}
         aria-labelledby={headingId}
         style={[
-          phone ? styles.phoneSheet : [styles.wideSheet, { width, top, bottom }],
+          phone ? [styles.phoneSheet, lit ? styles.litSheet : null] : [styles.wideSheet, { width, top, bottom }],
           { boxShadow: elevation.over.shadow.paper, pointerEvents: 'auto' } as object,
         ]}
       >
         {phone ? <View style={styles.grip} /> : null}
         <View style={styles.head}>
-          <Text variant="heading" heading={2} tone="strong" nativeID={headingId} style={styles.title}>
+          {lead}
+          <Text variant="heading" heading={2} tone="strong" nativeID={headingId} numberOfLines={1} style={styles.title}>
             {title}
+            {note ? (
+              <Text variant="small" tone="quiet">
+                {`  ${note}`}
+              </Text>
+            ) : null}
           </Text>
           <Button kind="plain" onPress={onClose}>
             Close
@@ -182,9 +198,17 @@ const styles = StyleSheet.create({
     marginTop: 7,
     backgroundColor: color.rule.control,
   },
-  head: { flexDirection: 'row', alignItems: 'center', paddingLeft: 16, paddingRight: 4, minHeight: 48 },
+  litSheet: { maxHeight: '74%' },
+  head: { flexDirection: 'row', alignItems: 'center', gap: 12, paddingLeft: 16, paddingRight: 4, minHeight: 48 },
   title: { flexGrow: 1, flexShrink: 1 },
-  body: { flexShrink: 1, overflow: 'scroll' as 'visible', paddingHorizontal: 16, paddingBottom: 16 },
+  body: {
+    flexGrow: 1,
+    flexShrink: 1,
+    minHeight: 0,
+    overflow: 'scroll' as 'visible',
+    paddingHorizontal: 16,
+    paddingBottom: 16,
+  },
   foot: {
     paddingHorizontal: 16,
     paddingVertical: 10,

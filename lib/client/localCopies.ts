@@ -57,10 +57,11 @@ const keyOf = (personId: string, waveformId: string) => `${personId}/${waveformI
 const foundKeyOf = (personId: string, waveformId: string) => `${keyOf(personId, waveformId)}/found`;
 const asideKeyOf = (personId: string, waveformId: string) => `${keyOf(personId, waveformId)}/aside`;
 
-export async function keepLocalCopy(personId: string, copy: LocalCopy): Promise<void> {
-  const { document, ...about } = copy;
-  const stored: StoredCopy = { ...about, text: JSON.stringify(document) };
-  await inStore('readwrite', (store) => store.put(stored, keyOf(personId, copy.waveformId)));
+/** Keeps a drawing as it is now. */
+export async function keepLocalCopy(personId: string, copy: Omit<LocalCopy, 'atMs'>): Promise<void> {
+  const { waveformId, parentId, document } = copy;
+  const stored: StoredCopy = { waveformId, parentId, atMs: Date.now(), text: JSON.stringify(document) };
+  await inStore('readwrite', (store) => store.put(stored, keyOf(personId, waveformId)));
 }
 
 export async function dropLocalCopy(personId: string, waveformId: string): Promise<void> {

@@ -52,10 +52,13 @@ export function drawStraightedge(
     }
   };
   put(subcarrierTicks(span, fftSize, 56), bar.y, 1, bar.y + 17, 10);
-  put(megahertzTicks(span, fftSize, spacingHz, 90), bottom, -1, bottom - 8, 18);
+  const megahertzPx = plotWidth < 500 ? 64 : 90;
+  const small = megahertzTicks(span, fftSize, spacingHz, megahertzPx / 4).map((one) => ({ ...one, label: '' }));
+  put(small, bottom, -1, bottom - 8, 18);
+  put(megahertzTicks(span, fftSize, spacingHz, megahertzPx), bottom, -1, bottom - 8, 18);
   lines(canvas, scope.stroke(tick, 1), ends);
-  text(canvas, scope, 'k', plotX - 8, bar.y + 17, tick, { align: 'end' });
-  text(canvas, scope, 'MHz', plotX - 8, bottom - 8, tick, { align: 'end' });
+  text(canvas, scope, 'k', plotX - 5, bar.y + 17, tick, { align: 'end' });
+  text(canvas, scope, 'MHz', plotX - 5, bottom - 8, tick, { align: 'end' });
   if (reading) {
     const x = plotX + plotWidth + 12;
     text(canvas, scope, reading[0], x, bar.y + 16, theme.plot.cursor, { font: 'figure' });

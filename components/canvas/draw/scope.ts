@@ -15,10 +15,11 @@ import {
 import type { FaceFiles, FaceName } from '../loadFaces';
 
 /** A step of the drawing's small type scale. */
-export type FontKey = 'axis' | 'axisStrong' | 'figure' | 'words' | 'wordsStrong';
+export type FontKey = 'axis' | 'raised' | 'axisStrong' | 'figure' | 'words' | 'wordsStrong';
 
 const fonts: Record<FontKey, { face: FaceName; size: number }> = {
   axis: { face: 'ChivoMono_400Regular', size: 11 },
+  raised: { face: 'ChivoMono_400Regular', size: 8 },
   axisStrong: { face: 'ChivoMono_600SemiBold', size: 11 },
   figure: { face: 'ChivoMono_500Medium', size: 11 },
   words: { face: 'HankenGrotesk_500Medium', size: 12 },

@@ -28,9 +28,14 @@ export function drawCcdf(
   for (const tick of decadeTicks(LOWEST_EXPONENT, 0, area.height)) {
     const y = Math.round(area.y + tick.atPx) + 0.5;
     line(canvas, hair, area.x, y, area.x + area.width, y);
-    text(canvas, scope, tick.label, area.x - 5, Math.min(Math.max(y + 4, area.y + 9), bottom + 1), theme.plot.axis, {
-      align: 'end',
-    });
+    decade(
+      canvas,
+      scope,
+      Math.round(Math.log10(tick.value)),
+      area.x - 5,
+      Math.min(Math.max(y + 4, area.y + 9), bottom + 1),
+      theme,
+    );
   }
   for (const tick of linearTicks({ from: 0, to: most, lengthPx: area.width }, 56)) {
     const x = Math.round(area.x + tick.atPx) + 0.5;
@@ -55,6 +60,14 @@ export function drawCcdf(
     drawWords(canvas, scope, area, trace, xOf, yOf, theme);
   }
   frame(canvas, scope.stroke(theme.rule.line, 1), area);
+}
+
+/** A power of ten with its exponent raised: the figure face has no raised digits. */
+function decade(canvas: SkCanvas, scope: DrawScope, exponent: number, x: number, y: number, theme: ThemeColors): void {
+  if (exponent === 0) return text(canvas, scope, '1', x, y, theme.plot.axis, { align: 'end' });
+  const raised = formatNumber(exponent);
+  text(canvas, scope, raised, x, y - 4, theme.plot.axis, { font: 'raised', align: 'end' });
+  text(canvas, scope, '10', x - scope.textWidth(raised, 'raised') - 1, y, theme.plot.axis, { align: 'end' });
 }
 
 /** Threshold of the last sample that the curve shows. */

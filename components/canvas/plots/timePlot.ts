@@ -1,6 +1,6 @@
 import { Skia, type SkCanvas } from '@shopify/react-native-skia';
 import { linearScale, linearTicks } from '@/lib/drawing/axis';
-import { niceCeiling, plotY } from '@/lib/drawing/plot';
+import { plotY } from '@/lib/drawing/plot';
 import { formatNumber } from '@/lib/drawing/quantities';
 import type { TimeTrace } from '@/lib/editor/live/protocol';
 import type { ThemeColors } from '@/components/ui/theme';
@@ -31,7 +31,8 @@ export function drawTimePlot(
   if (trace) {
     const { toPx } = linearScale({ from: trace.from, to: trace.to, lengthPx: area.width });
     const xOf = (sample: number) => area.x + toPx(sample);
-    const most = niceCeiling(Math.max(2, trace.peak?.ratio ?? 0) * 1.04);
+    // A little room over the peak, so that its ring is whole.
+    const most = Math.ceil(Math.max(2, (trace.peak?.ratio ?? 0) * 1.06) * 5) / 5;
     const scale = { from: 0, to: most, heightPx: area.height };
     const yOf = (ratio: number) => area.y + plotY(ratio, scale);
     const washes: [number, number][] =

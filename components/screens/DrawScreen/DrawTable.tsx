@@ -1,5 +1,5 @@
 import { useRouter } from 'expo-router';
-import { useCallback, useEffect, useMemo, useRef, useState } from 'react';
+import { useCallback, useEffect, useRef, useState } from 'react';
 import { StyleSheet, View } from 'react-native';
 import type { FrameProbe, TableCanvasHandle } from '@/components/canvas/CanvasGate';
 import { Dialog } from '@/components/ui/overlay';
@@ -54,7 +54,7 @@ export function DrawTable({ opened, store, mayDraw, onReopen, found, onFound }: 
   const me = useMe();
   const isPhone = useBreakpoint() !== 'wide';
   const [editor] = useState(() => createEditor(opened.document));
-  const { client, reader } = useTableLive(editor);
+  const { client, reader, setLayout } = useTableLive(editor);
   const saver = useSaving(editor, store, opened, me.personId);
   const saveState = useSaveState(saver);
   const [sheet, setSheet] = useState<OpenSheet | null>(null);
@@ -135,6 +135,7 @@ export function DrawTable({ opened, store, mayDraw, onReopen, found, onFound }: 
     open: setSheet,
     run,
     perform,
+    setLayout,
     page,
     setPage,
   };

@@ -1,4 +1,4 @@
-import { useMemo, useState, type ReactNode } from 'react';
+import { useEffect, useMemo, useState, type ReactNode } from 'react';
 import { ScrollView, StyleSheet, View } from 'react-native';
 import { CanvasGate } from '@/components/canvas/CanvasGate';
 import { Button } from '@/components/ui/Button';
@@ -42,6 +42,11 @@ export function PhoneTable({
   const { page, setPage, rights } = table;
   const places = useMemo(() => phonePlaces(width, height, page), [width, height, page]);
   useViewportSize(table.editor, width > 0 ? places.layout.grid.width : 0, places.layout.grid.height, true);
+  const { layout } = places;
+  const { setLayout } = table;
+  useEffect(() => {
+    if (width > 0) setLayout(layout);
+  }, [setLayout, layout, width]);
   const swipe = (step: -1 | 1) => {
     const at = PAGES.findIndex(({ value }) => value === page) + step;
     const next = PAGES[Math.max(0, Math.min(PAGES.length - 1, at))]!;

@@ -259,15 +259,6 @@ export function SentenceForm({ table, width }: { table: TableContext; width: num
       <View style={styles.parts}>
         <SentenceParts parts={parts} onWrong={setWrong} />
       </View>
-      {said ? (
-        <Text variant="small" tone="danger" role="alert" numberOfLines={2} style={styles.said}>
-          {said}
-        </Text>
-      ) : reach ? (
-        <Text variant="label" tone="quiet" numberOfLines={2} style={styles.reach} role="status">
-          {reach}
-        </Text>
-      ) : null}
       {act === 'Paint' ? (
         <Text variant="small" tone="quiet" style={styles.count}>
           <Text variant="figureSmall">{formatInteger(count)}</Text>
@@ -283,6 +274,15 @@ export function SentenceForm({ table, width }: { table: TableContext; width: num
           {act}
         </Button>
       ) : null}
+      {said ? (
+        <Text variant="label" tone="danger" role="alert" numberOfLines={1} style={styles.under}>
+          {said}
+        </Text>
+      ) : reach ? (
+        <Text variant="label" weight={400} tone="quiet" numberOfLines={1} style={styles.under} role="status">
+          {reach}
+        </Text>
+      ) : null}
     </View>
   );
 }
@@ -291,7 +291,6 @@ const styles = StyleSheet.create({
   line: { position: 'absolute', left: 20, top: 4, height: 34, flexDirection: 'row', alignItems: 'center', gap: 10 },
   parts: { flexDirection: 'row', alignItems: 'center', gap: 5, flexShrink: 0 },
   word: { fontSize: 14, lineHeight: 20 },
-  said: { flexShrink: 1, flexGrow: 1, textAlign: 'right' },
-  reach: { flexShrink: 1, flexGrow: 1, textAlign: 'right' },
+  under: { position: 'absolute', left: 48, right: 112, top: 33 },
   count: { flexShrink: 0, marginLeft: 'auto' },
 });

@@ -1,5 +1,5 @@
 import { Link } from 'expo-router';
-import { StyleSheet, View } from 'react-native';
+import { Pressable, StyleSheet, View } from 'react-native';
 import { Button } from '@/components/ui/Button';
 import { DigestChip } from '@/components/ui/DigestChip';
 import { Stamp } from '@/components/ui/Stamp';
@@ -15,24 +15,26 @@ export function SheetLine({ table }: { table: TableContext }) {
   const title = useTitle(editor);
   return (
     <View id="sheet-line" style={styles.line} {...({ tabIndex: -1 } as object)}>
-      {rights.canDraw ? (
-        <View style={styles.title}>
-          <Button kind="plain" label={`Rename ${title}`} onPress={() => open({ kind: 'title' })}>
-            {title}
-          </Button>
-        </View>
-      ) : null}
-      <Text
-        variant="title"
-        heading={1}
-        tone="strong"
-        numberOfLines={1}
-        style={rights.canDraw ? styles.unseen : styles.heading}
+      <Pressable
+        role={rights.canDraw ? 'button' : undefined}
+        aria-label={rights.canDraw ? `Rename ${title}` : undefined}
+        disabled={!rights.canDraw}
+        onPress={() => open({ kind: 'title' })}
+        style={styles.title}
       >
+        <Text variant="title" tone="strong" numberOfLines={1}>
+          {title}
+        </Text>
+      </Pressable>
+      <Text heading={1} style={styles.unseen}>
         {title}
       </Text>
-      <Stamp state={drawing.stampState} edition={drawing.editionNumber} />
-      <DigestChip digest={drawing.revision.contentDigest} />
+      <View>
+        <Stamp state={drawing.stampState} edition={drawing.editionNumber} />
+      </View>
+      <View>
+        <DigestChip digest={drawing.revision.contentDigest} />
+      </View>
       <SavedNote table={table} />
       <View style={styles.spring} />
       {rights.canDraw ? <UndoRedo table={table} /> : null}
@@ -90,8 +92,7 @@ const styles = StyleSheet.create({
     gap: 12,
     backgroundColor: color.surface.sheet,
   },
-  heading: { flexShrink: 1, minWidth: 0 },
-  title: { flexShrink: 1, minWidth: 0, marginLeft: -8 },
+  title: { flexShrink: 1, minWidth: 0 },
   unseen: { position: 'absolute', width: 1, height: 1, overflow: 'hidden' },
   spring: { flex: 1 },
   link: { display: 'flex', textDecorationLine: 'none' },

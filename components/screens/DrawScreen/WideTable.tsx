@@ -1,4 +1,4 @@
-import { useMemo, useState, type ReactNode } from 'react';
+import { useEffect, useMemo, useState, type ReactNode } from 'react';
 import { StyleSheet, View } from 'react-native';
 import { CanvasGate } from '@/components/canvas/CanvasGate';
 import { Text } from '@/components/ui/Text';
@@ -34,6 +34,10 @@ export function WideTable({
   );
   const { layout } = places;
   useViewportSize(table.editor, width > 0 ? layout.grid.width : 0, layout.grid.height, false);
+  const { setLayout } = table;
+  useEffect(() => {
+    if (width > 0) setLayout(layout);
+  }, [setLayout, layout, width]);
   return (
     <View id="table" style={styles.table} onLayout={onLayout}>
       {width > 0 ? (

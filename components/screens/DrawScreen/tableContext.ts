@@ -7,6 +7,7 @@ import type { Editor } from '@/lib/editor/store';
 import type { LiveReader } from './liveReader';
 import type { OpenSheet } from './sheets';
 import type { ViewPage } from './tableLayout';
+import type { TableLayout } from '@/components/canvas/CanvasGate';
 
 /** What a person may do here now. */
 export interface TableRights {
@@ -31,6 +32,8 @@ export interface TableContext {
   run(id: string): void;
   /** What a form planned: done, asked about, or refused (the message comes back). */
   perform(outcome: Outcome): string | null;
+  /** The views' places changed: the worker is told their widths. */
+  setLayout(layout: TableLayout): void;
   page: ViewPage;
   setPage(page: ViewPage): void;
 }

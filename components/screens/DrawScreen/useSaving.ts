@@ -13,7 +13,7 @@ export function useSaving(editor: Editor, store: DrawingStore, opened: OpenedDra
       getSnapshot: () => storedDocument(editor.document),
       send: (document, parentId, key, isLeaving) => store.save(document, parentId, key, isLeaving),
       opened: opened.revision,
-      keepLocal: (document, parentId) => keepLocalCopy(personId, { waveformId, parentId, atMs: Date.now(), document }),
+      keepLocal: (document, parentId) => keepLocalCopy(personId, { waveformId, parentId, document }),
       dropLocal: () => dropLocalCopy(personId, waveformId),
     });
   }, [editor, store, opened, personId]);

@@ -7,7 +7,7 @@ import type { Editor } from '@/lib/editor/store';
 import { createLiveReader, type LiveReader } from './liveReader';
 
 /** Widths that hold until the table knows its own. */
-const FIRST_WIDTH_PX = 360;
+const FIRST_WIDTHS = { time: 360, spectrum: 360 };
 /** Room beside the time plot's area for its scale. */
 const TIME_SCALE_PX = 23;
 
@@ -27,34 +27,36 @@ function viewOf(editor: Editor, widths: { time: number; spectrum: number }): Liv
   };
 }
 
-/**
- * The worker of this table. What the views show follows the session without a render: symbol, ink and zoom are told to it at once,
- * widths when the layout changes.
- */
+/** Tells the worker what the views show: symbol, ink and zoom as the session has them, widths as the layout has them. */
+function createViewFeed(editor: Editor, client: LiveClient) {
+  const widths = { ...FIRST_WIDTHS };
+  const send = () => client.setView(viewOf(editor, widths));
+  return {
+    setLayout({ time, spectrum, grid }: TableLayout): void {
+      if (time) widths.time = Math.max(16, Math.round(time.width - TIME_SCALE_PX));
+      widths.spectrum = Math.max(16, Math.round(spectrum?.width ?? grid.width));
+      send();
+    },
+    start(): () => void {
+      send();
+      return editor.session.subscribe((state, before) => {
+        const { viewport, chosenSymbol, ink } = before;
+        if (state.viewport !== viewport || state.chosenSymbol !== chosenSymbol || state.ink !== ink) send();
+      });
+    },
+  };
+}
+
+/** The worker of this table. What the views show follows the session without a render. */
 export function useTableLive(editor: Editor): {
   client: LiveClient;
   reader: LiveReader;
   setLayout: (layout: TableLayout) => void;
 } {
-  const widths = useMemo(() => ({ time: FIRST_WIDTH_PX, spectrum: FIRST_WIDTH_PX }), []);
-  const firstView = useMemo(() => viewOf(editor, widths), [editor, widths]);
+  const firstView = useMemo(() => viewOf(editor, FIRST_WIDTHS), [editor]);
   const client = useLiveSynthesis(editor, firstView);
   const reader = useMemo(() => createLiveReader(editor, client), [editor, client]);
-  useEffect(() => {
-    client.setView(viewOf(editor, widths));
-    return editor.session.subscribe((state, before) => {
-      const isSame =
-        state.viewport === before.viewport && state.chosenSymbol === before.chosenSymbol && state.ink === before.ink;
-      if (!isSame) client.setView(viewOf(editor, widths));
-    });
-  }, [client, editor, widths]);
-  const setLayout = useMemo(
-    () => (layout: TableLayout) => {
-      widths.time = Math.max(16, Math.round((layout.time?.width ?? widths.time + TIME_SCALE_PX) - TIME_SCALE_PX));
-      widths.spectrum = Math.max(16, Math.round(layout.spectrum?.width ?? layout.grid.width));
-      client.setView(viewOf(editor, widths));
-    },
-    [client, editor, widths],
-  );
-  return { client, reader, setLayout };
+  const feed = useMemo(() => createViewFeed(editor, client), [editor, client]);
+  useEffect(() => feed.start(), [feed]);
+  return { client, reader, setLayout: feed.setLayout };
 }

@@ -4,7 +4,7 @@ import type { Editor } from '@/lib/editor/store';
 import type { Viewport } from '@/lib/editor/types';
 
 const PHONE_CELL_PX = 14;
-const PHONE_SYMBOL_PX = 22;
+const PHONE_SYMBOL_PX = { least: 18, most: 24 };
 const SYMBOL_PX_LEAST = 12;
 /** Margin at both sides of what is painted, so that the spectrum's shoulders are seen. */
 const MARGIN_RATIO = 0.08;
@@ -30,11 +30,13 @@ function firstViewport(editor: Editor, view: Viewport, isPhone: boolean): Viewpo
   if (isPhone) {
     const middle = editor.session.getState().cursor.position + 0.5;
     const shown = view.widthPx / PHONE_CELL_PX;
+    const fitting = view.heightPx / settings.symbolCount;
+    const symbolPx = Math.min(Math.max(fitting, PHONE_SYMBOL_PX.least), PHONE_SYMBOL_PX.most);
     return clampViewport(
       {
         ...view,
         subcarrierPx: PHONE_CELL_PX,
-        symbolPx: PHONE_SYMBOL_PX,
+        symbolPx,
         firstPosition: middle - shown / 2,
         firstSymbol: 0,
       },
