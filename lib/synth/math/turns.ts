@@ -3,6 +3,7 @@ import { createPair, divide, multiply } from './doubleDouble';
 
 const TURN_HIGH = 6.283185307179586;
 const TURN_LOW = 2.4492935982947064e-16;
+const EIGHTH = 0.7853981633974483; // π/4
 const DENOMINATOR_MOST = 1125899906842624; // 2^50: four turns' worth stays an exact integer
 
 // Taylor coefficients; at π/4 the first one left out is below 2^-60 of the result.
@@ -32,12 +33,15 @@ function writeReduced(angle: number, tail: number, quarters: number, out: Float6
     S3 +
     square * (S5 + square * (S7 + square * (S9 + square * (S11 + square * (S13 + square * (S15 + square * S17))))));
   const half = 0.5 * square;
-  const sine = angle + (angle * square * sinePoly + tail * (1 - half));
+  let sine = angle + (angle * square * sinePoly + tail * (1 - half));
   const cosinePoly =
     C4 +
     square * (C6 + square * (C8 + square * (C10 + square * (C12 + square * (C14 + square * (C16 + square * C18))))));
   const rest = 1 - half;
   const cosine = rest + (1 - rest - half + (square * square * cosinePoly - angle * tail));
+  // the series meet at an eighth: one value for both keeps every table symmetric
+  if (angle === EIGHTH) sine = cosine;
+  else if (angle === -EIGHTH) sine = -cosine;
   switch (quarters & 3) {
     case 0:
       out[at] = cosine;
@@ -104,6 +108,20 @@ export function sineCosine(turns: number): { cosine: number; sine: number } {
 export function createRootsOfUnity(count: number): Float64Array {
   demand(Number.isInteger(count) && count >= 1 && count <= 16777216, 'bad_size', 'Roots of unity: 1 to 2^24 of them.');
   const roots = new Float64Array(2 * count);
-  for (let i = 0; i < count; i++) writeUnitOfFraction(i, count, roots, 2 * i);
+  const quarter = count / 4;
+  if (!Number.isInteger(quarter)) {
+    for (let i = 0; i < count; i++) writeUnitOfFraction(i, count, roots, 2 * i);
+    return roots;
+  }
+  // one octant is computed, the rest is its mirror and quarter turns: the same bits, as the reduction is symmetric
+  for (let i = 0; 2 * i <= quarter; i++) {
+    writeUnitOfFraction(i, count, roots, 2 * i);
+    roots[2 * (quarter - i)] = roots[2 * i + 1]!;
+    roots[2 * (quarter - i) + 1] = roots[2 * i]!;
+  }
+  for (let i = quarter; i < count; i++) {
+    roots[2 * i] = 0 - roots[2 * (i - quarter) + 1]!;
+    roots[2 * i + 1] = roots[2 * (i - quarter)]!;
+  }
   return roots;
 }

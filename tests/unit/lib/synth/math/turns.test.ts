@@ -68,6 +68,15 @@ function exactRemainder(angle: number, high: number): number {
 }
 
 describe('roots of unity', () => {
+  it('have the bits of the single values', () => {
+    for (const count of [1, 2, 3, 4, 5, 8, 12, 20, 60, 64, 100, 2048, 6480]) {
+      const roots = createRootsOfUnity(count);
+      for (let i = 0; i < count; i++) {
+        expect({ cosine: roots[2 * i], sine: roots[2 * i + 1] }).toEqual(sineCosineOfFraction(i, count));
+      }
+    }
+  });
+
   it('sum to zero and have magnitude one', () => {
     for (const count of [3, 5, 16, 360, 2048]) {
       const roots = createRootsOfUnity(count);
