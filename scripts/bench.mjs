@@ -10,7 +10,8 @@ import { build } from 'esbuild';
 const options = process.argv.slice(2);
 const valueOf = (name, other) => (options.includes(name) ? options[options.indexOf(name) + 1] : other);
 const isJson = options.includes('--json');
-const rounds = Number(valueOf('--rounds', '9'));
+const rounds = Number(valueOf('--rounds', '21'));
+const WARM_UPS = 2;
 const jobs = valueOf('--only', 'W1,W2,W3').split(',');
 const directory = mkdtempSync(join(tmpdir(), 'combwright-bench-'));
 
@@ -80,28 +81,36 @@ try {
   const fftw = compileFftw();
   if (fftw !== null) peers.push(openPeer('fftw', fftw, []));
 
+  /** Median times of all in interleaved rounds: { engine, numpy, … } in ms; of a peer with several ways, its fastest. */
+  async function measure(job, mode, count) {
+    const times = {};
+    for (let round = -WARM_UPS; round < count; round++) {
+      const ours = await engine.ask(job + mode);
+      for (const peer of [engine, ...peers]) {
+        const answer = peer === engine ? ours : await peer.ask(job + mode);
+        agree(ours, answer, job, peer.name);
+        for (const [way, ms] of Object.entries(answer.ways ?? { only: answer.ms })) {
+          const list = ((times[peer.name] ??= {})[way] ??= []);
+          if (round >= 0) list.push(ms);
+        }
+      }
+    }
+    const fastest = (ways) => Math.min(...Object.values(ways).map(median));
+    return Object.fromEntries(Object.entries(times).map(([name, ways]) => [name, fastest(ways)]));
+  }
+
   const ratios = {};
   for (const job of jobs) {
     ratios[job] = {};
     for (const mode of ['', ' file']) {
-      const times = new Map([engine, ...peers].map((peer) => [peer.name, []]));
-      for (let round = 0; round <= rounds; round++) {
-        const ours = await engine.ask(job + mode);
-        if (round > 0) times.get('engine').push(ours.ms);
-        for (const peer of peers) {
-          const theirs = await peer.ask(job + mode);
-          agree(ours, theirs, job, peer.name);
-          if (round > 0) times.get(peer.name).push(theirs.ms); // the first round warms up
-        }
-      }
-      const own = median(times.get('engine'));
+      const medians = await measure(job, mode, job === 'W3' ? Math.ceil(rounds / 4) : rounds);
       for (const peer of peers) {
         const key = mode === '' ? peer.name : `${peer.name}WithFile`;
-        ratios[job][key] = Number((median(times.get(peer.name)) / own).toFixed(2));
+        ratios[job][key] = Number((medians[peer.name] / medians.engine).toFixed(2));
       }
       if (!isJson) {
-        const line = [...times].map(([name, values]) => `${name} ${median(values).toFixed(2)} ms`).join(', ');
-        console.log(`${job}${mode === '' ? '' : ' with file'}: ${line}`);
+        const line = Object.entries(medians).map(([name, ms]) => `${name} ${ms.toFixed(2)} ms`);
+        console.log(`${job}${mode === '' ? '' : ' with file'}: ${line.join(', ')}`);
       }
     }
   }
