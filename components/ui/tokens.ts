@@ -314,38 +314,6 @@ export const themes = {
   },
 } as const;
 
-export const space = {
-  '0': 0,
-  '1': 4,
-  '2': 8,
-  '3': 12,
-  '4': 16,
-  '5': 20,
-  '6': 24,
-  '8': 32,
-  '10': 40,
-  '12': 48,
-  '16': 64,
-} as const;
-
-export const radius = {
-  none: 0,
-  cell: 0,
-  control: 3,
-  card: 4,
-  sheet: 6,
-  stamp: 2,
-  round: 999,
-} as const;
-
-export const border = {
-  hair: 1,
-  line: 1,
-  strong: 1.5,
-  focus: 2,
-  focusOffset: 2,
-} as const;
-
 export const type = {
   display: {
     family: 'text',
@@ -440,26 +408,11 @@ export const type = {
   },
 } as const;
 
-export const motion = {
-  none: 0,
-  quick: 90,
-  usual: 140,
-  slow: 190,
-  easing: 'cubic-bezier(0.2, 0, 0, 1)',
-} as const;
-
 export const breakpoint = {
   phone: 0,
   tablet: 720,
   wide: 1120,
   large: 1680,
-} as const;
-
-export const target = {
-  touchMin: 44,
-  pointerMin: 28,
-  rowTouch: 52,
-  rowPointer: 36,
 } as const;
 
 export const z = {
@@ -473,19 +426,6 @@ export const z = {
   dialog: 70,
   toast: 80,
   tooltip: 90,
-} as const;
-
-export const cellMarks = {
-  minCellPx: 10,
-  maxMarkPx: 14,
-  pipPx: 2,
-} as const;
-
-export const cellReduction = {
-  toothPx: 2,
-  toothMinPitchPx: 6,
-  mixMinPitchPx: 3,
-  priority: ['tone', 'pilot', 'reserved', 'data', 'null'],
 } as const;
 
 export const elevation = {
