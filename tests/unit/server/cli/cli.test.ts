@@ -1,5 +1,5 @@
-import { execFileSync, spawn, spawnSync } from 'node:child_process';
-import { existsSync, mkdtempSync, readdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
+import { spawn, spawnSync } from 'node:child_process';
+import { existsSync, mkdtempSync, readdirSync, readFileSync, rmSync, truncateSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
 import type { BenchProfile, WaveformDocument } from '@/lib/synth';
@@ -115,7 +115,7 @@ test('files that are not there, too large, folders, or the output itself', () =>
   inputs();
   expect(run('render', 'none.json', 'b.json').stderr).toBe('none.json: there is no such file.\n');
   expect(run('render', '.', 'b.json').stderr).toBe('.: it is a folder.\n');
-  execFileSync('truncate', ['-s', String(33 * 1024 * 1024), path.join(folder, 'huge.json')]);
+  truncateSync(path.join(folder, write('huge.json', '')), 33 * 1024 * 1024);
   expect(run('render', 'huge.json', 'b.json').stderr).toContain(
     'huge.json: it has 34603008 bytes, the limit is 33554432.',
   );
