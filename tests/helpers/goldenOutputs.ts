@@ -10,7 +10,6 @@ import {
 
 /** The three outputs whose bytes a golden digest holds. */
 export type GoldenKind = 'float64' | 'float32' | 'int16';
-export const GOLDEN_KINDS: GoldenKind[] = ['float64', 'float32', 'int16'];
 
 /**
  * The bytes of one output of a content, the low byte first: samples as they are rendered, or words of the content's level.

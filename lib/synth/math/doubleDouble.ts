@@ -1,5 +1,5 @@
 /**
- * Error-free sums and products of doubles: the exact result as the unevaluated sum high + low.
+ * Error-free products and quotients of doubles: the exact result as the unevaluated sum high + low.
  * Results go to a caller's two-element buffer, so that nothing is allocated in loops.
  * Source: Dekker, A floating-point technique for extending the available precision, 1971; Knuth, TAOCP vol. 2, 4.2.2.
  */
@@ -10,14 +10,6 @@ const SPLITTER = 134217729; // 2^27 + 1
 /** A buffer for one double-double: [high, low]. */
 export function createPair(): Pair {
   return new Float64Array(2);
-}
-
-/** out = a + b exactly; any order of magnitudes. No overflow handling. */
-export function twoSum(a: number, b: number, out: Pair): void {
-  const sum = a + b;
-  const bPart = sum - a;
-  out[1] = a - (sum - bPart) + (b - bPart);
-  out[0] = sum;
 }
 
 /** out = a · b exactly, for |a|, |b| < 2^996 and a product that is not subnormal. */

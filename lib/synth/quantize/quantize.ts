@@ -3,11 +3,6 @@ import type { SaturationCount } from './types';
 // adding and taking away 1.5 · 2^52 rounds to a whole number, half to even, for |value| < 2^51
 const ROUNDER = 6755399441055744;
 
-/** Rounds to the nearest whole number, half to even; |value| < 2^51. */
-export function roundHalfToEven(value: number): number {
-  return value + ROUNDER - ROUNDER;
-}
-
 /**
  * Integer words of `count` interleaved samples: words[i] = data[i]·scale rounded half to even, saturated at −F−1 and F.
  * `words` takes 2·count numbers and must not share memory with `data`. Adds to `counted`.

@@ -5,7 +5,7 @@ import type { WaveformContent } from '../types';
 const ANCHOR_SAMPLES = 1024;
 
 /** A finite double as numerator / 2^exponent, exact. */
-export function exactFraction(value: number): { numerator: bigint; denominator: bigint } {
+function fractionOfDouble(value: number): { numerator: bigint; denominator: bigint } {
   let scaled = value;
   let denominator = 1n;
   while (!Number.isInteger(scaled)) {
@@ -17,7 +17,7 @@ export function exactFraction(value: number): { numerator: bigint; denominator: 
 
 /** Turns of f0 in one output sample as an exact fraction, reduced to 0 ≤ numerator < denominator. */
 function turnsPerSample(content: WaveformContent, oversampling: number): { numerator: bigint; denominator: bigint } {
-  const offset = exactFraction(content.frequencyOffsetHz);
+  const offset = fractionOfDouble(content.frequencyOffsetHz);
   const [spacing, per] = content.subcarrierSpacingHz;
   const clock = BigInt(content.fftSize) * BigInt(oversampling) * BigInt(spacing);
   const denominator = offset.denominator * clock;

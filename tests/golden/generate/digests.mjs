@@ -20,14 +20,14 @@ try {
     format: 'esm',
     alias: { '@': '.' },
   });
-  const { goldenBytes, GOLDEN_KINDS, synthVersion } = await import(outfile);
+  const { goldenBytes, synthVersion } = await import(outfile);
   const read = (name) => JSON.parse(readFileSync(join(fixtures, 'examples', name), 'utf8'));
   const bench = read('int16.bench.json').content;
   const digests = {};
   for (const name of EXAMPLES) {
     const { content } = read(`${name}.combwright.json`);
     digests[name] = {};
-    for (const kind of GOLDEN_KINDS) {
+    for (const kind of ['float64', 'float32', 'int16']) {
       digests[name][kind] = createHash('sha256')
         .update(goldenBytes(content, bench, kind))
         .digest('hex');
