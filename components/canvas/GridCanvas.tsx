@@ -89,7 +89,6 @@ export function GridCanvas(props: TableCanvasProps & { faces: FaceFiles }) {
         tabIndex={0}
         role={'application' as never}
         aria-label={label}
-        aria-readonly={readOnly || undefined}
         onFocus={() => setHasFocus(true)}
         onBlur={() => setHasFocus(false)}
         style={[styles.grid, { left: grid.x, top: grid.y, width: grid.width, height: grid.height }]}

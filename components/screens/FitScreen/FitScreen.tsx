@@ -165,13 +165,15 @@ function LoadedFit({ waveformId, opened, benches, benchId, onBench, fit, failure
           <ChoiceField label="Bench profile" value={benchId} onChange={onBench} choices={benches} />
           {failure ? <Failing what={failure.words} onRetry={failure.retry} /> : null}
           {fit ? (
-            <Text variant="title" heading={2} tone="strong" role="status">
-              {misses.length === 0
-                ? unjudged.length > 0
-                  ? `Nothing misses; ${unjudged.length} of ${fit.findings.length} checks cannot be judged`
-                  : `Everything fits ${fit.bench.name}.`
-                : `${misses.length} of ${fit.findings.length} checks ${misses.length === 1 ? 'needs' : 'need'} a change`}
-            </Text>
+            <View role="status">
+              <Text variant="title" heading={2} tone="strong">
+                {misses.length === 0
+                  ? unjudged.length > 0
+                    ? `Nothing misses; ${unjudged.length} of ${fit.findings.length} checks cannot be judged`
+                    : `Everything fits ${fit.bench.name}.`
+                  : `${misses.length} of ${fit.findings.length} checks ${misses.length === 1 ? 'needs' : 'need'} a change`}
+              </Text>
+            </View>
           ) : failure ? null : (
             <Loading what="the fit" rows={3} rowHeight={110} />
           )}

@@ -20,7 +20,7 @@ import type { DrawingStore } from '../drawingStore';
 import { useStripWords } from '../NumbersStrip';
 import { SentenceParts, useSentence, useSentenceAct } from '../SentenceForm';
 import { UndoRedo } from '../SheetLine';
-import { savedWords } from '../SavedNote';
+import { SavedNote, savedWords } from '../SavedNote';
 import type { TableContext } from '../tableContext';
 import { useTitle } from '../useEditorState';
 import { TableSheet } from './TableSheet';
@@ -206,6 +206,7 @@ export function MoreSheet({
   };
   return (
     <TableSheet title="More" onClose={close(table)}>
+      {isPhone ? <SavedNote table={table} /> : null}
       <View style={styles.acts}>
         {isPhone && rights.canDraw ? <UndoRedo table={table} /> : null}
         {rights.canAsk && isPhone ? <Button onPress={() => open({ kind: 'ask' })}>Ask for review</Button> : null}
