@@ -1,4 +1,4 @@
-import { clampViewport, panViewport } from '@/lib/editor/kernels/viewport';
+import { clampViewport } from '@/lib/editor/kernels/viewport';
 import type { Editor } from '@/lib/editor/store';
 import { createToolMachine, type PointerInput } from '@/lib/editor/tools/machine';
 import type { CellPoint } from '@/lib/editor/types';
@@ -73,10 +73,19 @@ export function listenToPointers(
     editor.set({ viewport: clampViewport({ ...now, firstPosition: middle - shown / 2 }, size()) });
   }
 
+  /** Bar and spectrum are dragged along the band, whichever way the grid lies. */
+  function moveAxis(dxPx: number): void {
+    const now = view();
+    const { grid } = props().layout;
+    const along = now.turned ? now.heightPx : now.widthPx;
+    const positions = (dxPx / grid.width) * (along / now.subcarrierPx);
+    editor.set({ viewport: clampViewport({ ...now, firstPosition: now.firstPosition - positions }, size()) });
+  }
+
   function chooseRow(y: number): void {
     const { grid } = props().layout;
     const symbol = Math.floor(view().firstSymbol + (y - grid.y) / view().symbolPx);
-    if (symbol >= 0 && symbol < size().symbolCount) editor.set({ chosenSymbol: symbol });
+    if (!view().turned && symbol >= 0 && symbol < size().symbolCount) editor.set({ chosenSymbol: symbol });
   }
 
   function down(event: PointerEvent): void {
@@ -105,7 +114,7 @@ export function listenToPointers(
     }
     if (press.zone === 'grid') machine.pointerMove(inputOf(event, x, y));
     else if (press.zone === 'band') moveBand(x);
-    else if (press.zone === 'axis') editor.set({ viewport: panViewport(view(), size(), x - press.lastX, 0) });
+    else if (press.zone === 'axis') moveAxis(x - press.lastX);
     press.lastX = x;
   }
 

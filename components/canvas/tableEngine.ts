@@ -150,8 +150,8 @@ export function createTableEngine(
         theme,
       );
     });
-    part(canvas, 'numbers', [...common, symbolCount, chosenSymbol], (on) =>
-      drawSymbolNumbers(on, scope, layout.grid, view, symbolCount, chosenSymbol, theme),
+    part(canvas, 'numbers', [...common, symbolCount, chosenSymbol, fftSize], (on) =>
+      drawSymbolNumbers(on, scope, layout.grid, view, symbolCount, chosenSymbol, fftSize, theme),
     );
     const { peaks } = layout;
     if (peaks && result)

@@ -30,9 +30,11 @@ export function drawStraightedge(
   const bottom = bar.y + bar.height;
   fillRect(canvas, scope.fill(theme.canvas.ruleEdge), bar.x, bar.y, bar.width, bar.height);
   frame(canvas, scope.stroke(theme.rule.line, 1), bar);
+  // Turned, the grid's subcarriers run upwards; bar and spectrum go on showing the same part of the band.
+  const along = view.turned ? view.heightPx : view.widthPx;
   const span = {
     from: view.firstPosition,
-    to: view.firstPosition + plotWidth / view.subcarrierPx,
+    to: view.firstPosition + along / view.subcarrierPx,
     lengthPx: plotWidth,
   };
   const ends: Point[] = [];
@@ -74,9 +76,10 @@ export function drawSymbolNumbers(
   view: Viewport,
   symbolCount: number,
   chosen: number,
+  fftSize: number,
   theme: ThemeColors,
 ): void {
-  if (view.turned) return;
+  if (view.turned) return drawTurnedNumbers(canvas, scope, grid, view, symbolCount, chosen, fftSize, theme);
   const to = view.firstSymbol + grid.height / view.symbolPx;
   const ticks = symbolTicks({ from: view.firstSymbol, to, lengthPx: grid.height }, symbolCount, 12);
   if (!ticks.some((tick) => tick.value === chosen)) {
@@ -99,6 +102,39 @@ export function drawSymbolNumbers(
         align: 'end',
       },
     );
+  }
+}
+
+/** Turned axes: subcarriers at the left, upwards; symbol numbers over the grid. */
+function drawTurnedNumbers(
+  canvas: SkCanvas,
+  scope: DrawScope,
+  grid: Rect,
+  view: Viewport,
+  symbolCount: number,
+  chosen: number,
+  fftSize: number,
+  theme: ThemeColors,
+): void {
+  const along = {
+    from: view.firstPosition,
+    to: view.firstPosition + grid.height / view.subcarrierPx,
+    lengthPx: grid.height,
+  };
+  for (const { atPx, label, isZero } of subcarrierTicks(along, fftSize, 40)) {
+    if (!label || atPx < 6 || atPx > grid.height - 4) continue;
+    const y = Math.round(grid.y + grid.height - atPx + 4);
+    const font = isZero ? 'axisStrong' : 'axis';
+    text(canvas, scope, label, grid.x - 6, y, isZero ? theme.ink.strong : theme.ink.quiet, { font, align: 'end' });
+  }
+  const across = { from: view.firstSymbol, to: view.firstSymbol + grid.width / view.symbolPx, lengthPx: grid.width };
+  for (const { value, atPx, label } of symbolTicks(across, symbolCount, 28)) {
+    if (atPx < 6 || atPx > grid.width - 6) continue;
+    const isChosen = value === chosen;
+    text(canvas, scope, label, grid.x + atPx, grid.y - 4, isChosen ? theme.ink.strong : theme.ink.quiet, {
+      font: isChosen ? 'axisStrong' : 'axis',
+      align: 'middle',
+    });
   }
 }
 

@@ -39,7 +39,7 @@ export function drawSpectrum(
     line(canvas, scope.stroke(theme.plot.grid, 1), area.x, y, area.x + area.width, y);
     text(canvas, scope, tick.label, area.x - 6, y + 4, theme.plot.axis, { align: 'end' });
   }
-  text(canvas, scope, 'dB', area.x - 40, area.y + 12, theme.plot.axis, { font: 'words' });
+  if (area.x >= 40) text(canvas, scope, 'dB', area.x - 40, area.y + 12, theme.plot.axis, { font: 'words' });
   if (trace) {
     canvas.save();
     clipTo(canvas, area);

@@ -186,7 +186,9 @@ export function DrawTable({ opened, store, mayDraw, onReopen, found, onFound }: 
       foot={<View />}
       headAside={
         <View style={styles.aside}>
-          <Stamp state={table.drawing.stampState} edition={table.drawing.editionNumber} />
+          <View>
+            <Stamp state={table.drawing.stampState} edition={table.drawing.editionNumber} />
+          </View>
           <Button kind="plain" onPress={() => setSheet({ kind: 'more' })}>
             More
           </Button>

@@ -10,7 +10,7 @@ import { formatInteger } from '@/lib/drawing/quantities';
 import { BLOCK_FIGURES, figureText } from './figureWords';
 import { figureOf, useLive } from './liveReader';
 import { CopyButton, MeasuringNote, useViewWords } from './MarginColumn';
-import { useSentence, useSentenceAct } from './SentenceForm';
+import { useSentenceAct, useShortSentence } from './SentenceForm';
 import { ToolRail, Tray } from './Trough';
 import type { TableCanvas } from './tableCanvas';
 import type { TableContext } from './tableContext';
@@ -134,7 +134,7 @@ function ViewHead({ table, places }: { table: TableContext; places: PhonePlaces 
 
 /** The sentence shortened: "Change" opens its blanks in a sheet. */
 function PhoneSentence({ table }: { table: TableContext }) {
-  const parts = useSentence(table.editor);
+  const parts = useShortSentence(table.editor);
   const { count, act, perform, reach } = useSentenceAct(table);
   const notice = useEditorState(table.editor, (state) => state.notice);
   const [wrong, setWrong] = useState<string | null>(null);
@@ -149,15 +149,15 @@ function PhoneSentence({ table }: { table: TableContext }) {
         ) : (
           <>
             {parts.map((part, i) =>
-              part.blank ? (
-                <Text key={i} variant="figureSmall" tone="strong">{` ${formatInteger(part.blank.value)}`}</Text>
+              typeof part === 'number' ? (
+                <Text key={i} variant="figureSmall" tone="strong">{`${formatInteger(part)} `}</Text>
               ) : (
-                <Text key={i} variant="small" weight={part.strong ? 600 : 400} tone={part.strong ? 'strong' : 'quiet'}>
-                  {` ${part.word}`}
+                <Text key={i} variant="small" weight={i === 0 ? 600 : 400} tone={i === 0 ? 'strong' : 'quiet'}>
+                  {`${part} `}
                 </Text>
               ),
             )}
-            {act === 'Paint' ? ', paints ' : ''}
+            {act === 'Paint' ? 'paints ' : ''}
             {act === 'Paint' ? (
               <Text variant="figureSmall" tone="strong">
                 {formatInteger(count)}

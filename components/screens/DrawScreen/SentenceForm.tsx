@@ -139,6 +139,35 @@ export function useSentence(editor: Editor): SentencePart[] {
   }
 }
 
+/** The sentence as a phone shows it: its blanks open in a sheet. Words and figures in turn, figures as numbers. */
+export function useShortSentence(editor: Editor): (string | number)[] {
+  const { tool, ink, brush, comb, rectangle, cursor } = useEditorState(editor, (session) => session);
+  const { fftSize, tray } = useSettings(editor);
+  const name = tray[ink]?.name ?? '';
+  switch (tool) {
+    case 'brush':
+      return ['Brush', `${name},`, brush.subcarriers, '×', brush.symbols];
+    case 'rectangle': {
+      const { subcarrierFrom, subcarrierTo, symbolFrom, symbolTo } = rectangle;
+      return ['Rectangle', `${name},`, subcarrierFrom, 'to', subcarrierTo, ', symbols', symbolFrom, 'to', symbolTo];
+    }
+    case 'comb':
+      return [
+        'Comb',
+        `${name},`,
+        comb.everySubcarrier,
+        'subcarriers,',
+        comb.everySymbol,
+        'symbols, shift',
+        comb.shiftPerPass,
+      ];
+    case 'pick':
+      return ['Pick', 'the ink of', cursor.position + lowestOf(fftSize), ', symbol', cursor.symbol];
+    case 'pan':
+      return ['Pan', 'moves the drawing with one finger'];
+  }
+}
+
 function ordinal(n: number): string {
   const tens = Math.abs(n) % 100;
   if (tens >= 11 && tens <= 13) return 'th';
