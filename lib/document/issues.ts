@@ -92,6 +92,23 @@ function messageOf(issue: RawIssue): string {
   }
 }
 
+/** Words for schemas that bring none of their own: an error map of zod's, for one parse. */
+export function schemaWords(issue: z.core.$ZodRawIssue): string | undefined {
+  switch (issue.code) {
+    case 'invalid_type':
+      return issue.input === undefined ? 'is missing' : `must be ${typeWords[issue.expected] ?? issue.expected}`;
+    case 'too_big':
+    case 'too_small':
+      return sizeMessage(issue as Parameters<typeof sizeMessage>[0]);
+    case 'invalid_value':
+      return oneOf(issue.values as unknown[]);
+    case 'invalid_format':
+      return 'has not the form it must have';
+    default:
+      return undefined;
+  }
+}
+
 /** Turns zod's issues into ours: one line a field, at most 50, the rest counted. */
 export function issuesOf(error: { issues: readonly RawIssue[] }): ParseFailure {
   const issues: Issue[] = [];

@@ -1,6 +1,7 @@
 import { createGunzip } from 'node:zlib';
 import type { Request } from 'express';
 import { DEFAULT_BODY_BYTES, type Endpoint } from '@/lib/contracts/endpoint';
+import type { Issue } from '@/lib/contracts/problem';
 import { DomainError } from '../problem.ts';
 import type { LargeBodyCheck } from './bodyWorker.ts';
 import { checkBodyBytes } from './checkJson.ts';
@@ -52,6 +53,12 @@ async function readBytes(request: Request, most: number): Promise<Uint8Array<Arr
   return whole;
 }
 
+function unreadError(issue: Issue): DomainError {
+  const place = issue.pointer === '' ? 'The body' : `The body's ${issue.pointer}`;
+  const code = issue.code === 'too_large' ? 'too_large' : 'malformed';
+  return new DomainError(code, { detail: `${place} ${issue.message}.`, issues: [issue] });
+}
+
 /** Reads, parses and checks the body by the endpoint's contract; each refusal is a domain error. */
 export async function readBody(request: Request, endpoint: Endpoint, checkLarge: LargeBodyCheck): Promise<unknown> {
   if (!endpoint.body) return undefined;
@@ -60,7 +67,7 @@ export async function readBody(request: Request, endpoint: Endpoint, checkLarge:
   const checked =
     bytes.length > THREAD_FROM_BYTES ? await checkLarge(endpoint.name, bytes) : checkBodyBytes(endpoint, bytes);
   if (checked.ok) return checked.value;
-  if ('malformed' in checked) throw new DomainError('malformed', checked.malformed);
+  if ('unread' in checked) throw unreadError(checked.unread);
   const code = checked.issues.some((issue) => issue.code === 'not_supported_yet') ? 'not_supported_yet' : 'invalid';
   throw new DomainError(code, { issues: checked.issues, moreIssues: checked.more });
 }

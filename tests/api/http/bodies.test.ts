@@ -2,7 +2,6 @@ import { gzipSync } from 'node:zlib';
 import path from 'node:path';
 import { writeFileSync } from 'node:fs';
 import { createBodyWorker } from '@/server/http/bodyWorker';
-import { isNestedTooDeep } from '@/server/http/checkJson';
 import { ORIGIN, startTestServer, type Client, type TestServer } from '../../helpers/testServer';
 
 const MIB = 2 ** 20;
@@ -40,7 +39,17 @@ describe('a body', () => {
 
   it('nested very deep is refused before a parser goes down', async () => {
     const answer = await send(Buffer.from('['.repeat(100_000)));
-    expect(answer.body).toMatchObject({ status: 400, detail: 'The body is nested too deep.' });
+    expect(answer.body).toMatchObject({ status: 400, detail: 'The body is nested deeper than 16 levels.' });
+  });
+
+  it.each([
+    ['NaN', '{"content":{"level":{"headroomDb":NaN}}}', '/content/level/headroomDb', /no NaN/],
+    ['a key that stands twice', '{"format":"x","format":"combwright.waveform"}', '/format', /stands twice/],
+    ['half a document', '{"format":"combwright.waveform",', '', /is not JSON/],
+  ])('with %s says where and why', async (_name, text, pointer, words) => {
+    const answer = await send(Buffer.from(text));
+    expect(answer.body).toMatchObject({ status: 400, code: 'malformed', issues: [{ pointer }] });
+    expect(answer.body.detail).toMatch(words);
   });
 
   it('of another type is refused', async () => {
@@ -82,6 +91,23 @@ describe('a body', () => {
   it('of a small endpoint has a small limit', async () => {
     const answer = await author.patch('/api/v1/account', { name: 'x'.repeat(300 * 1024) });
     expect(answer.body).toMatchObject({ code: 'too_large', detail: 'A body here has at most 256 KiB.' });
+  });
+
+  it('says in words what a schema without words of its own refuses', async () => {
+    const found = await author.get(`/api/v1/waveforms?state=lost&find=${'a'.repeat(300)}`);
+    expect(found.body.issues).toEqual([
+      {
+        pointer: '/query/state',
+        message: 'must be one of "draft", "inReview", "released", "withdrawn"',
+        code: 'invalid',
+      },
+      { pointer: '/query/find', message: expect.stringMatching(/^must have at most \d+ characters$/), code: 'invalid' },
+    ]);
+    const named = await author.patch('/api/v1/account', { name: 3, role: 'admin' });
+    expect(named.body.issues).toEqual([
+      { pointer: '/name', message: 'must be text', code: 'invalid' },
+      { pointer: '/role', message: 'is no key of this version', code: 'invalid' },
+    ]);
   });
 
   it('of a stranger is not even read', async () => {
@@ -145,16 +171,6 @@ describe('the checking thread', () => {
     await expect(Promise.all(Array.from({ length: 20 }, () => check('createWaveform', bytes())))).rejects.toMatchObject(
       { code: 'too_many' },
     );
-  });
-});
-
-describe('nesting', () => {
-  const deep = (text: string) => isNestedTooDeep(Buffer.from(text), 2);
-  it('counts brackets outside strings only', () => {
-    expect(deep('[[1], [2], {"a": "[[[["}]')).toBe(false);
-    expect(deep('[[["x"]]]')).toBe(true);
-    expect(deep('["\\"[[[[", "\\\\"]')).toBe(false);
-    expect(deep('[{"a": []}]')).toBe(true);
   });
 });
 
