@@ -17,26 +17,27 @@ export const operatorStyle = `
 box-sizing:border-box;width:100%;height:100%;overflow:auto;background:var(--desk);color:var(--ink);font:16px/1.45 system-ui,sans-serif}
 @media(prefers-color-scheme:dark){#plain{--desk:#0D1526;--sheet:#14203A;--ink:#EEF1F8;--quiet:#AEB8CF;--rule:#C9D3E8;--hair:#2B3A5C;--solid:#C9D6F5;--on:#0F1930;
 --danger:#FF9C9C;--dangerWash:#3A1D28;--warning:#F2C46D;--warningWash:#352B18;--link:#9DBBFF}}
-#plain *{box-sizing:border-box}#plain main{max-width:520px;margin:0 auto;padding:16px 16px 96px;background:var(--sheet);min-height:100%}
+#plain *{box-sizing:border-box}#plain main{max-width:520px;margin:0 auto;padding:12px 16px 0;background:var(--sheet);min-height:100%}
 #plain h1{font-size:22px;line-height:1.25;margin:0 0 4px}#plain h2{font-size:15px;margin:20px 0 4px}#plain p{margin:6px 0}
 #plain .stamp{display:inline-block;border:3px double;padding:1px 8px;font-size:12px;font-weight:700;text-transform:uppercase}
 #plain .draft{border:2px dashed}#plain .withdrawn{border:1px solid;border-bottom-width:4px;color:var(--danger)}
 #plain code,#plain b{font-family:ui-monospace,monospace;font-variant-numeric:tabular-nums}#plain code{word-break:break-word}
 #plain .big b{font-size:34px}#plain .mid b{font-size:22px}#plain .none{font-size:18px!important;font-family:inherit}
-#plain dl{margin:8px 0}#plain dt{color:var(--quiet);font-size:13px;margin-top:8px}#plain dd{margin:0}
-#plain hr{border:0;border-top:2px solid var(--rule);margin:14px 0 0}#plain .quiet{color:var(--quiet);font-size:13px}
+#plain dl{display:grid;grid-template-columns:1fr 1fr;gap:0 12px;margin:4px 0}#plain dt{color:var(--quiet);font-size:13px;margin-top:4px}#plain dd{margin:0;line-height:1.2}
+#plain hr{border:0;border-top:2px solid var(--rule);margin:8px 0 0}#plain .quiet{color:var(--quiet);font-size:13px}
 #plain .notice{border-left:3px solid var(--danger);background:var(--dangerWash);padding:8px 13px;color:var(--danger);font-weight:600}
-#plain ol{margin:0;padding-left:28px}#plain .first{border-left:3px solid var(--warning);background:var(--warningWash);padding:8px 13px 8px 8px}
+#plain ol{margin:0;padding-left:28px}#plain ol.first{border-left:3px solid var(--warning);background:var(--warningWash);padding:6px 13px 6px 32px}
 #plain li{margin:4px 0}#plain .severe{color:var(--danger);font-weight:600}
 #plain summary{min-height:44px;padding:10px 0;cursor:pointer;color:var(--link)}
-#plain .get{display:block;text-align:center;background:var(--solid);color:var(--on);padding:13px;margin:20px 0 0;text-decoration:none;font-weight:600;min-height:48px}
+#plain .get{display:block;text-align:center;background:var(--solid);color:var(--on);padding:13px;margin:12px 0 0;text-decoration:none;font-weight:600;min-height:48px}
+#plain .foot{position:sticky;bottom:0;background:var(--sheet);padding:4px 0 12px}
 #plain .over{background:var(--dangerWash);padding:0 8px}`.replace(/\n/g, '');
 
 type Card = Pick<PackDetail, 'card' | 'cautions'>;
 
 function cardHtml({ card }: Card): string {
   const tolerance =
-    card.highestSettingDbm === null ? '' : `<p class="quiet">${card.levelToleranceDb} dB kept for error</p>`;
+    card.highestSettingDbm === null ? '' : `<dd class="quiet">${card.levelToleranceDb} dB kept for error</dd>`;
   const readings =
     card.readings.length < 2
       ? ''
@@ -47,17 +48,21 @@ function cardHtml({ card }: Card): string {
           )
           .join('')}</ul>`;
   return `<section class="${card.verdict === 'over' ? 'over' : ''}" aria-label="Level card"><dl>
-<dt>Set on the generator</dt><dd class="big">${dbm(card.settingDbm, 'Not given')}</dd><dd class="quiet">${text(card.settingWords)}</dd>
-<dt>Highest setting</dt><dd class="mid">${dbm(card.highestSettingDbm, 'No limit given')}${tolerance}</dd></dl><hr>
+<div><dt>Set on the generator</dt><dd class="big">${dbm(card.settingDbm, 'Not given')}</dd><dd class="quiet">${text(card.settingWords)}</dd></div>
+<div><dt>Highest setting</dt><dd class="mid">${dbm(card.highestSettingDbm, 'No limit given')}</dd>${tolerance}</div></dl><hr>
 <p class="quiet">At the device’s connector, after attenuator and cable</p><dl>
-<dt>Peak now</dt><dd class="big">${dbm(card.peakNowDbm, 'Not known')}</dd>
-<dt>Peak limit</dt><dd class="mid">${dbm(card.peakLimitDbm, 'No limit given')}</dd>
-<dt>Mean</dt><dd class="mid">${dbm(card.meanNowDbm, 'Not known')}</dd>
-<dt>Mean limit</dt><dd class="mid">${dbm(card.meanLimitDbm, 'No limit given')}</dd></dl>
-<p class="${card.verdict === 'inside' ? '' : 'severe'}">${text(card.sentence)}</p>${readings}<dl>
-<dt>Loss before it</dt><dd><b>${card.lossDb}</b> dB</dd>
-<dt>Sample clock</dt><dd><b>${megahertz(card.sampleClockHz)}</b></dd>
-<dt>Peak in the file</dt><dd><b>${card.peakDbfs === null ? 'none' : `${minus(card.peakDbfs.toFixed(2))} dBFS`}</b></dd></dl></section>`;
+<div><dt>Peak now</dt><dd class="big">${dbm(card.peakNowDbm, 'Not known')}</dd></div>
+<div><dt>Peak limit</dt><dd class="mid">${dbm(card.peakLimitDbm, 'No limit given')}</dd></div>
+<div><dt>Mean</dt><dd class="mid">${dbm(card.meanNowDbm, 'Not known')}</dd></div>
+<div><dt>Mean limit</dt><dd class="mid">${dbm(card.meanLimitDbm, 'No limit given')}</dd></div></dl>
+<p class="${card.verdict === 'inside' ? '' : 'severe'}">${text(card.sentence)}</p>${readings}</section>`;
+}
+
+function settingsHtml({ card }: Card): string {
+  const peak = card.peakDbfs === null ? 'none' : `${minus(card.peakDbfs.toFixed(2))} dBFS`;
+  return `<dl><div><dt>Loss before it</dt><dd><b>${card.lossDb}</b> dB</dd></div>
+<div><dt>Sample clock</dt><dd><b>${megahertz(card.sampleClockHz)}</b></dd></div>
+<div><dt>Peak in the file</dt><dd><b>${peak}</b></dd></div></dl>`;
 }
 
 const points = (cautions: PackDetail['cautions']) =>
@@ -77,7 +82,7 @@ export function operatorHtml(pack: PackDetail, downloadAddress: string): string 
   const head = `<h1>${text(pack.title)}</h1>
 <p><span class="stamp ${pack.state}">${stamp}</span> <span class="quiet">card fetched ${time(pack.fetchedAtMs)}</span></p>
 <p class="quiet">Bench profile ${text(pack.bench.name)}, version ${pack.bench.version}</p>
-<p class="quiet">SHA-256 of the vector<br><code>${groups(pack.vectorDigest.replace('sha256:', ''))}</code></p>`;
+<p class="quiet">SHA-256 of the vector <code>${groups(pack.vectorDigest.replace('sha256:', ''))}</code></p>`;
   if (pack.state === 'withdrawn')
     return `<div id="plain"><main>${head}<p class="notice" role="alert">Do not use this pack. ${text(pack.withdrawn?.reason ?? '')}</p></main></div>`;
   // The newest alone: the page stays small however often limits were entered, and the app lists the others.
@@ -87,7 +92,8 @@ export function operatorHtml(pack: PackDetail, downloadAddress: string): string 
     : '';
   return `<div id="plain"><main>${head}${cardHtml(pack)}
 <h2>First cautions</h2><ol class="first">${points(pack.cautions.filter(({ number }) => number === 3 || number === 4))}</ol>
-<a class="get" href="${text(downloadAddress)}">Download pack</a>
+${settingsHtml(pack)}
 <p class="quiet">${text(pack.fileName)}, ${pack.fileBytes} bytes, SHA-256 <code>${groups(pack.fileDigest.replace('sha256:', ''))}</code></p>
-<details><summary>All cautions, ${pack.cautions.length}</summary><ol>${points(pack.cautions)}</ol></details>${entered}</main></div>`;
+<details><summary>All cautions, ${pack.cautions.length}</summary><ol>${points(pack.cautions)}</ol></details>${entered}
+<div class="foot"><a class="get" href="${text(downloadAddress)}">Download pack</a></div></main></div>`;
 }

@@ -1,3 +1,5 @@
+import { SynthError, type SynthErrorCode } from '@/lib/synth';
+
 /** Why a pack was not made; the codes are those of the HTTP API where a person meets them. */
 export type PackErrorCode =
   | 'invalid'
@@ -35,11 +37,22 @@ export function throwIfCancelled(signal: AbortSignal | undefined): void {
   if (signal?.aborted) throw new PackError('cancelled', cancelledMessage);
 }
 
+/** What lib/synth refuses and no check before it found; the rest of its codes are mistakes of ours. */
+const synthCodes: Partial<Record<SynthErrorCode, PackErrorCode>> = {
+  bad_content: 'invalid',
+  marker_outside: 'invalid',
+  nothing_painted: 'invalid',
+  not_supported_yet: 'not_supported_yet',
+  too_large: 'too_large',
+};
+
 const noRoomCodes = new Set(['ENOSPC', 'EDQUOT', 'EFBIG']);
 
 /** The system's own failures in words for a person; paths stay out of them, since a job's reason is shown on a page. */
 export function toPackError(error: unknown): PackError {
   if (error instanceof PackError) return error;
+  const synthCode = error instanceof SynthError ? synthCodes[error.code] : undefined;
+  if (synthCode) return new PackError(synthCode, (error as SynthError).message);
   const code = (error as { code?: unknown } | null)?.code;
   if (code === 'ABORT_ERR') return new PackError('cancelled', cancelledMessage);
   if (typeof code === 'string' && noRoomCodes.has(code))

@@ -50,6 +50,9 @@ export function refusalOf(document: WaveformDocument, profile: BenchProfile): Pa
 /** What a person should know though the pack was made: soft findings, and saturation that the document asked for. */
 export function noticesOf(document: WaveformDocument, profile: BenchProfile, measured: MeasuredLevels): string[] {
   return checkFit(document, profile, measured)
-    .filter((finding) => !finding.hard && finding.verdict === 'misses')
+    .filter(
+      ({ check, hard, verdict }) =>
+        (!hard && verdict === 'misses') || (check === 'word' && (measured.saturatedComponents ?? 0) > 0),
+    )
     .map((finding) => finding.words);
 }

@@ -10,7 +10,6 @@ import { manifestSchema, type Manifest } from '@/lib/document/manifestSchema';
 import {
   log10,
   loopClosing,
-  markerRanges,
   synthVersion,
   type BenchProfile,
   type CellValues,
@@ -26,6 +25,7 @@ import type { PackState } from '../packTypes.ts';
 import { packVersion } from '../packVersion.ts';
 import type { VectorProof } from '../vectorProof.ts';
 import { describeInks, describeStreams } from './describeInks.ts';
+import { describeMarkers } from './describeMarkers.ts';
 import {
   describeClock,
   describeRamp,
@@ -49,8 +49,6 @@ export interface ManifestInput {
   files: Manifest['files'];
   safety: string[];
 }
-
-const mostMarkerRanges = 4096;
 
 /** Names the bytes of a pack before it is made: equal inputs have been rendered already. */
 export function packKeyOf(document: WaveformDocument, profile: BenchProfile, state: PackState): string {
@@ -95,25 +93,6 @@ function describePapr({ frame }: RenderingMeasure): Manifest['papr'] {
     worstSymbol: worst?.symbol ?? null,
     medianSymbolDb: median,
   };
-}
-
-function describeMarkers(input: ManifestInput): Manifest['markers'] {
-  const { markers } = input.document.content;
-  if (markers.length === 0) return [];
-  const ranges = markerRanges(input.document.content);
-  return markers.map((marker, number) => ({
-    marker: number,
-    name: marker.name,
-    at: marker.at,
-    symbol: marker.symbol,
-    offsetSamples: marker.offsetSamples,
-    lengthSamples: marker.lengthSamples,
-    rangeCount: ranges[number]!.length,
-    ranges: ranges[number]!.slice(0, mostMarkerRanges).map(({ start, end }) => ({
-      startSample: start,
-      lengthSamples: end - start,
-    })),
-  }));
 }
 
 function describeProof({ proof, document }: ManifestInput): Manifest['proof'] {
@@ -189,7 +168,7 @@ export function makeManifest(input: ManifestInput): Manifest {
     transform: describeTransform(content),
     inks: describeInks(input.values),
     streams: describeStreams(input.values, input.payloads),
-    markers: describeMarkers(input),
+    markers: describeMarkers(content),
     proof: describeProof(input),
     peakReduction: null,
     safety: input.safety,

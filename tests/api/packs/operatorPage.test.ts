@@ -68,8 +68,9 @@ test('the card is in the first answer, in reading order, small, without script, 
     'First cautions',
     'Output off while',
     'Attenuator first',
-    `href="/api/v1/packs/${pack.packId}/file"`,
+    'Sample clock',
     'All cautions, 11',
+    `href="/api/v1/packs/${pack.packId}/file"`,
     '/_expo/static/js/web/entry-1.js',
   ];
   const places = order.map((part) => html.indexOf(part));
