@@ -109,7 +109,7 @@ export function paLadder(): WaveformDocument {
     markers: [{ name: 'Frame', at: 'repeat', symbol: null, offsetSamples: 0, lengthSamples: 64 }],
   };
   document.intent = {
-    outputRmsDbm: -22,
+    outputRmsDbm: -24,
     lossDb: 20.6,
     devicePeakLimitDbm: -10,
     deviceMeanLimitDbm: -18,
