@@ -75,7 +75,9 @@ export function createPacksService(deps: Deps, jobs: PackJobs, freeBytes: FreeBy
     const revision = visibleRevision(store.db, actor, revisionId);
     const edition = findEditionOfRevision(store.db, revisionId);
     if (!edition) {
-      authorizeAct(actor, 'makeDraftPacks', revision, (own) => own.authorId === actor.personId);
+      if (revision.authorId !== actor.personId && may(actor, 'makeDraftPacks'))
+        throw new DomainError('action_forbidden', `Only ${revision.authorName} may make a pack of this draft.`);
+      authorizeAct(actor, 'makeDraftPacks', revision);
       return { revision, edition: null };
     }
     requireRight(actor, 'makeEditionPacks');
@@ -217,9 +219,15 @@ export function createPacksService(deps: Deps, jobs: PackJobs, freeBytes: FreeBy
 
     /** The stored file, with every right and state asked anew. */
     async file(actor: Actor, packId: string): Promise<PackFile> {
-      const row = visiblePack(actor, packId);
-      if (row.withdrawnBy !== null) throw withdrawnError(row.editionNumber, row.withdrawnReason);
+      const offered = () => {
+        const row = visiblePack(actor, packId);
+        if (row.withdrawnBy !== null) throw withdrawnError(row.editionNumber, row.withdrawnReason);
+        return row;
+      };
+      const row = offered();
       const file = await jobs.findFile(row);
+      // A withdrawal while the disk was asked found no download to cut.
+      offered();
       if (file === null)
         throw new DomainError('not_found', 'The stored file is not there any more. Make the pack again.');
       return { file, fileName: row.fileName, fileSha256: row.fileSha256, editionId: row.editionId };

@@ -3,6 +3,9 @@ import http from 'node:http';
 import type { AddressInfo } from 'node:net';
 import request from 'supertest';
 import type { PackDetail } from '@/lib/contracts/packs';
+import { createPacksService } from '@/server/features/packs/service';
+import { createPackJobs, type PackJobs } from '@/server/packs/jobs';
+import { createRenderThread } from '@/server/packs/renderThread';
 import { openBench } from '../../helpers/documents';
 import { createBench, makePack } from '../../helpers/packCalls';
 import { startTestServer, type Client, type TestServer } from '../../helpers/testServer';
@@ -93,6 +96,24 @@ test('a withdrawn edition answers 409 with the reason: whole, part, head and If-
   const shown = (await operator.get(`/api/v1/packs/${pack.packId}`).expect(200)).body as PackDetail;
   expect(shown).toMatchObject({ state: 'withdrawn', withdrawn: { reason: 'Burns inputs.' } });
   expect(shown.cautions[9]!.text).toContain('Withdrawn, edition 1: do not use it');
+});
+
+test('a withdrawal while the file is looked for still refuses it', async () => {
+  await prepare(1);
+  const found = createPackJobs(server.deps, createRenderThread(server.deps.config.buildDir));
+  const slow: PackJobs = {
+    ...found,
+    async findFile(stored) {
+      await withdrawing(reviewer, pack.waveformId, 1, 'Too late.').expect(200);
+      return found.findFile(stored);
+    },
+  };
+  await expect(createPacksService(server.deps, slow).file(server.actor('operator'), pack.packId)).rejects.toMatchObject(
+    {
+      code: 'edition_withdrawn',
+      message: 'Edition 1 was withdrawn: Too late.',
+    },
+  );
 });
 
 test('rights are asked at each request', async () => {

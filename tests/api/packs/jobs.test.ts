@@ -68,7 +68,10 @@ test("a draft's pack is its author's: made, listed, shown and fetched by nobody 
   expect(pack.fileName).toContain('-draft-');
   expect((pack.manifest.safety as string[])[0]).toBe('Draft, not for the bench.');
   const otherAuthor = await server.as('otherAuthor');
-  expect((await asking(otherAuthor, revisionId, benchId).expect(403)).body.code).toBe('action_forbidden');
+  expect((await asking(otherAuthor, revisionId, benchId).expect(403)).body).toMatchObject({
+    code: 'action_forbidden',
+    detail: expect.stringMatching(/^Only .+ may make a pack of this draft\.$/),
+  });
   expect((await asking(reviewer, revisionId, benchId).expect(403)).body.code).toBe('action_forbidden');
   expect((await asking(operator, revisionId, benchId).expect(404)).body.code).toBe('not_found');
   for (const stranger of [otherAuthor, reviewer, operator, admin]) {
