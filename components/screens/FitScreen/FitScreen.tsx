@@ -1,4 +1,4 @@
-import { Link, useRouter } from 'expo-router';
+import { useRouter } from 'expo-router';
 import { useState } from 'react';
 import { StyleSheet, View } from 'react-native';
 import { Button } from '@/components/ui/Button';
@@ -9,6 +9,7 @@ import { Empty, Failing, Loading, NotThere } from '@/components/ui/states';
 import { Notice } from '@/components/ui/Notice';
 import { Stamp } from '@/components/ui/Stamp';
 import { Text } from '@/components/ui/Text';
+import { TextLink } from '@/components/ui/TextLink';
 import { color } from '@/components/ui/theme';
 import { showToast } from '@/components/ui/toast';
 import { useBreakpoint } from '@/components/ui/useBreakpoint';
@@ -116,7 +117,8 @@ function LoadedFit({ waveformId, opened, benches, benchId, onBench, fit, failure
             : 'You can look. Changing needs the author role.'
         : null;
   const applyAll = async () => {
-    const undo = await remedies.apply(first.flatMap((remedy) => remedy.changes));
+    if (first.length === 0) return;
+    const undo = await remedies.applyAll(benchId, first[0]!.changes);
     if (undo) showToast(first.length === 1 ? 'Change applied' : `${first.length} changes applied`, undo);
   };
   const primary =
@@ -201,11 +203,9 @@ function LoadedFit({ waveformId, opened, benches, benchId, onBench, fit, failure
               kind="danger"
               title="The change was not saved."
               actions={
-                <Link href={{ pathname: '/waveforms/[waveformId]', params: { waveformId } }}>
-                  <Text weight={600} tone="accent">
-                    Open the newer
-                  </Text>
-                </Link>
+                <TextLink href={{ pathname: '/waveforms/[waveformId]', params: { waveformId } }}>
+                  Open the newer
+                </TextLink>
               }
             >
               {remedies.problem}

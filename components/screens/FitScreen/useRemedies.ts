@@ -11,6 +11,9 @@ import {
 } from '@/lib/contracts/waveforms';
 import { applyChanges, type PlainChange, type WaveformDocument } from '@/lib/synth';
 
+/** More remedies than there are checks with one would go round in circles. */
+const roundsMost = 4;
+
 /** Applies remedies as the next revision, and takes them back by saving what stood before. */
 export function useRemedies(opened: OpenedRevision, waveformId: string) {
   const queries = useQueryClient();
@@ -50,5 +53,24 @@ export function useRemedies(opened: OpenedRevision, waveformId: string) {
     const saved = await save(applyChanges(opened.document, changes), opened.revision.revisionId);
     return saved === null ? null : () => void save(opened.document, saved);
   };
-  return { apply, busy, problem };
+  /**
+   * The first remedy of each finding that misses, one after the other, the fit checked again between: a remedy is judged alone, and one
+   * may change what the next should be.
+   */
+  const applyAll = async (benchId: string, first: readonly PlainChange[]): Promise<(() => void) | null> => {
+    let document = opened.document;
+    let revisionId = opened.revision.revisionId;
+    let changes: readonly PlainChange[] | undefined = first;
+    for (let round = 0; changes && round < roundsMost; round++) {
+      document = applyChanges(document, changes);
+      const saved = await save(document, revisionId);
+      if (saved === null) return null;
+      revisionId = saved;
+      const fit = await ask(showFit, { params: { revisionId }, query: { benchId } });
+      changes = fit.findings.find((finding) => finding.verdict === 'misses' && finding.remedies.length > 0)?.remedies[0]
+        ?.changes;
+    }
+    return () => void save(opened.document, revisionId);
+  };
+  return { apply, applyAll, busy, problem };
 }
