@@ -1,4 +1,4 @@
-import { Link, useLocalSearchParams } from 'expo-router';
+import { useLocalSearchParams } from 'expo-router';
 import { useState } from 'react';
 import { StyleSheet, View } from 'react-native';
 import { Button } from '@/components/ui/Button';
@@ -7,6 +7,7 @@ import { Failing, Loading, NotThere } from '@/components/ui/states';
 import { Notice } from '@/components/ui/Notice';
 import { Stamp } from '@/components/ui/Stamp';
 import { Text } from '@/components/ui/Text';
+import { TextLink } from '@/components/ui/TextLink';
 import { color } from '@/components/ui/theme';
 import { useBreakpoint } from '@/components/ui/useBreakpoint';
 import { useApi } from '@/lib/client/useApi';
@@ -15,6 +16,7 @@ import type { Edition } from '@/lib/contracts/reviews';
 import { groupHistory, type HistoryLine } from '@/lib/contracts/history';
 import { listRevisions, showWaveform } from '@/lib/contracts/waveforms';
 import { Page } from '../Page';
+import { PrimaryStrip } from '../PrimaryStrip';
 import { when } from '../when';
 import { AskSheet } from './AskSheet';
 
@@ -38,7 +40,7 @@ export function HistoryScreen({ waveformId }: { waveformId: string }) {
   const open = data?.openReview ?? null;
   const mayAsk = maySave && head !== null && head.stamp.state === 'draft' && open === null;
   const ask = mayAsk ? (
-    <Button kind="filled" onPress={() => setAsking(true)}>
+    <Button kind="filled" size={phone ? 'foot' : 'usual'} fill={phone} onPress={() => setAsking(true)}>
       Ask for review
     </Button>
   ) : null;
@@ -59,18 +61,15 @@ export function HistoryScreen({ waveformId }: { waveformId: string }) {
           />
         )
       ) : null}
-      {phone ? ask : null}
       {open ? (
         <Notice
           kind="warning"
           title={`Revision ${open.revisionNumber} is in review, asked by ${open.askedBy.name}, ${when(open.askedAtMs)}`}
           actions={
             <>
-              <Link href={{ pathname: '/waveforms/[waveformId]/review', params: { waveformId } }}>
-                <Text weight={600} tone="accent">
-                  {mayReview ? 'Open the review' : 'Look at the review'}
-                </Text>
-              </Link>
+              <TextLink href={{ pathname: '/waveforms/[waveformId]/review', params: { waveformId } }}>
+                {mayReview ? 'Open the review' : 'Look at the review'}
+              </TextLink>
               {maySave ? (
                 <Button kind="plain" onPress={() => setTakingBack(true)}>
                   Take it back
@@ -113,6 +112,7 @@ export function HistoryScreen({ waveformId }: { waveformId: string }) {
           ) : null}
         </>
       ) : null}
+      {phone && ask ? <PrimaryStrip>{ask}</PrimaryStrip> : null}
       {asking && head ? <AskSheet waveformId={waveformId} head={head} onClose={() => setAsking(false)} /> : null}
       {takingBack && open ? (
         <TakeBackDialog waveformId={waveformId} revisionId={open.revisionId} onClose={() => setTakingBack(false)} />
@@ -147,11 +147,12 @@ function Editions({ editions, onWithdraw }: { editions: readonly Edition[]; onWi
             </View>
             <DigestChip digest={edition.contentDigest} />
             {mayMake && !edition.withdrawn ? (
-              <Link href={{ pathname: '/packs', params: { revisionId: edition.revisionId } }} style={styles.act}>
-                <Text weight={600} tone="accent">
-                  Make a pack
-                </Text>
-              </Link>
+              <TextLink
+                href={{ pathname: '/packs', params: { revisionId: edition.revisionId } }}
+                label={`Make a pack of edition ${edition.number}`}
+              >
+                Make a pack
+              </TextLink>
             ) : null}
             {mayWithdraw && !edition.withdrawn ? (
               <Button kind="grave" onPress={() => onWithdraw(edition)}>
@@ -172,11 +173,9 @@ function GroupRow({ group, waveformId }: { group: HistoryLine; waveformId: strin
   return (
     <View role="listitem" style={styles.row}>
       <View style={styles.grow}>
-        <Link href={{ pathname: '/waveforms/[waveformId]', params: { waveformId, revision: last.revisionId } }}>
-          <Text variant="bodyStrong" tone="strong">
-            {last.isHead ? `${numbers}, newest` : numbers}
-          </Text>
-        </Link>
+        <TextLink href={{ pathname: '/waveforms/[waveformId]', params: { waveformId, revision: last.revisionId } }}>
+          {last.isHead ? `${numbers}, newest` : numbers}
+        </TextLink>
         <Text variant="small" tone="quiet">
           {`${last.savedBy.name}, ${when(last.savedAtMs)}${last.isSide ? ', kept beside: somebody saved first' : ''}`}
         </Text>
@@ -188,14 +187,12 @@ function GroupRow({ group, waveformId }: { group: HistoryLine; waveformId: strin
       </View>
       <Stamp state={last.stamp.state} edition={last.stamp.editionNumber} />
       <DigestChip digest={last.contentDigest} />
-      <Link
+      <TextLink
         href={{ pathname: '/waveforms/[waveformId]/fit', params: { waveformId, revision: last.revisionId } }}
-        style={styles.act}
+        label={`Fit of revision ${last.number}`}
       >
-        <Text weight={600} tone="accent">
-          Fit
-        </Text>
-      </Link>
+        Fit
+      </TextLink>
     </View>
   );
 }
@@ -214,5 +211,4 @@ const styles = StyleSheet.create({
     borderBottomColor: color.rule.hair,
   },
   grow: { flexGrow: 1, flexShrink: 1, minWidth: 180 },
-  act: { paddingVertical: 10 },
 });
