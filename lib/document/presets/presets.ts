@@ -1,8 +1,13 @@
 import { ieee80211At20MHz } from './ieee80211';
+import { ieee80211At40MHz, ieee80211At80MHz, ieee80211HighEfficiency } from './ieee80211Wide';
 import type { Preset } from './preset';
-import { ts36211At5MHz } from './ts36211';
+import { ts36211Presets } from './ts36211';
 
-export type { Preset };
-
-/** The built-in starting layouts; each cites its standard and says what of it is left out. */
-export const presets: readonly Preset[] = [ieee80211At20MHz, ts36211At5MHz];
+/** The built-in starting layouts; each cites its standard, or that it has none, and says what of it is left out. */
+export const presets: readonly Preset[] = [
+  ieee80211At20MHz,
+  ieee80211At40MHz,
+  ieee80211At80MHz,
+  ieee80211HighEfficiency,
+  ...ts36211Presets,
+];
