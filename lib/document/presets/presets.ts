@@ -1,3 +1,4 @@
+import { en300744Presets } from './en300744';
 import { ieee80211At20MHz } from './ieee80211';
 import { ieee80211At40MHz, ieee80211At80MHz, ieee80211HighEfficiency } from './ieee80211Wide';
 import type { Preset } from './preset';
@@ -14,4 +15,5 @@ export const presets: readonly Preset[] = [
   ...ts36211Presets,
   ...ts38211Slots,
   ts38211SyncBlock,
+  ...en300744Presets,
 ];
