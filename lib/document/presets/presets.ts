@@ -1,3 +1,4 @@
+import { en300401ModeI } from './en300401';
 import { en300744Presets } from './en300744';
 import { ieee80211At20MHz } from './ieee80211';
 import { ieee80211At40MHz, ieee80211At80MHz, ieee80211HighEfficiency } from './ieee80211Wide';
@@ -16,4 +17,5 @@ export const presets: readonly Preset[] = [
   ...ts38211Slots,
   ts38211SyncBlock,
   ...en300744Presets,
+  en300401ModeI,
 ];
