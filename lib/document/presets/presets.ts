@@ -1,5 +1,6 @@
 import { en300401ModeI } from './en300401';
 import { en300744Presets } from './en300744';
+import { es201980ModeB } from './es201980';
 import { ieee80211At20MHz } from './ieee80211';
 import { ieee80211At40MHz, ieee80211At80MHz, ieee80211HighEfficiency } from './ieee80211Wide';
 import type { Preset } from './preset';
@@ -18,4 +19,5 @@ export const presets: readonly Preset[] = [
   ts38211SyncBlock,
   ...en300744Presets,
   en300401ModeI,
+  es201980ModeB,
 ];
