@@ -1,3 +1,4 @@
+import { benchPresets } from './benchBasics';
 import { en300401ModeI } from './en300401';
 import { en300744Presets } from './en300744';
 import { es201980ModeB } from './es201980';
@@ -20,4 +21,5 @@ export const presets: readonly Preset[] = [
   ...en300744Presets,
   en300401ModeI,
   es201980ModeB,
+  ...benchPresets,
 ];
