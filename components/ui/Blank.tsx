@@ -31,7 +31,7 @@ export function Blank(props: {
       style={[
         textStyle('figureSmall', 500),
         styles.blank,
-        { height: touch ? 40 : 26, width: Math.max(34, draft.length * 8 + 18) },
+        { height: touch ? 44 : 26, width: Math.max(34, draft.length * 8 + 18) },
         { borderColor: wrong ? color.danger.rule : color.rule.control },
       ]}
     />
@@ -64,7 +64,7 @@ export function ChoiceBlank<T extends string>(props: {
       style: {
         ...(StyleSheet.flatten([textStyle('figureSmall', 500)]) as object),
         lineHeight: 'normal',
-        height: fill ? (touch ? 48 : 36) : touch ? 40 : 26,
+        height: fill ? (touch ? 48 : 36) : touch ? 44 : 26,
         width: fill ? '100%' : undefined,
         maxWidth: '100%',
         margin: 0,

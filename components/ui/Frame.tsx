@@ -1,7 +1,6 @@
 import { Link, usePathname, type Href } from 'expo-router';
 import { useEffect, type ReactNode } from 'react';
-import { ScrollView, StyleSheet, View } from 'react-native';
-import { Button } from './Button';
+import { Pressable, ScrollView, StyleSheet, View } from 'react-native';
 import { Mark } from './Mark';
 import { Text } from './Text';
 import { chooseTheme, color, useTheme } from './theme';
@@ -32,6 +31,10 @@ export interface FrameProps {
   backTo?: Href;
   /** Phone head: a stamp or one plain action. */
   headAside?: ReactNode;
+  /** Phone head: a field in the title's place, while something is looked for. */
+  headField?: ReactNode;
+  /** Stands under the head on every page it is given to: a lost connection. */
+  notice?: ReactNode;
   /** Takes the foot bar's place on a phone. */
   foot?: ReactNode;
   /** The content fills the page and scrolls by itself. */
@@ -44,19 +47,22 @@ function isOpen(path: string, place: Place): boolean {
 
 /** The frame of every signed-in page: top line on a wide screen, head and foot bar on a phone. */
 export function Frame(props: FrameProps) {
-  const { title, children, demo, foot, fixed } = props;
+  const { title, children, demo, foot, fixed, notice } = props;
   const phone = useBreakpoint() === 'phone';
   useDocumentTitle(title);
   return (
     <View style={styles.page}>
-      {phone ? <PhoneHead {...props} /> : <TopLine {...props} />}
-      {demo ? (
-        <View style={styles.demo}>
-          <Text variant="label" tone="warning">
-            Demo: invented people and data
-          </Text>
-        </View>
-      ) : null}
+      <View role="banner" style={styles.banner}>
+        {phone ? <PhoneHead {...props} /> : <TopLine {...props} />}
+        {demo ? (
+          <View style={styles.demo}>
+            <Text variant="label" tone="warning">
+              Demo: invented people and data
+            </Text>
+          </View>
+        ) : null}
+        {notice}
+      </View>
       {fixed ? (
         <View role="main" style={styles.content}>
           {children}
@@ -66,7 +72,13 @@ export function Frame(props: FrameProps) {
           {children}
         </ScrollView>
       )}
-      {foot ?? (phone ? <FootBar /> : null)}
+      {foot ? (
+        <View role="region" aria-label="What can be done here">
+          {foot}
+        </View>
+      ) : phone ? (
+        <FootBar />
+      ) : null}
     </View>
   );
 }
@@ -83,7 +95,7 @@ function TopLine({ person, showTeam }: FrameProps) {
   const theme = useTheme();
   const next = theme.name === 'paper' ? 'night' : 'paper';
   return (
-    <View role="banner" style={styles.top}>
+    <View style={styles.top}>
       <Link href="/waveforms" style={styles.brand}>
         <View style={styles.brandRow}>
           <Mark size={24} />
@@ -102,11 +114,20 @@ function TopLine({ person, showTeam }: FrameProps) {
         <PlaceLink place={{ label: 'Team', href: '/people' }} open={isOpen(path, { label: '', href: '/people' })} />
       ) : null}
       <View style={styles.theme}>
-        <Button kind="plain" size="small" label={`Use the ${next} theme`} onPress={() => chooseTheme(next)}>
-          {next === 'night' ? 'Night' : 'Paper'}
-        </Button>
+        <Pressable
+          role="button"
+          aria-label={`Use the ${next} theme`}
+          onPress={() => chooseTheme(next)}
+          style={styles.themeWord}
+        >
+          <Text weight={500} tone="quiet" style={styles.placeText}>
+            {next === 'night' ? 'Night' : 'Paper'}
+          </Text>
+        </Pressable>
       </View>
-      <PlaceLink place={{ label: person, href: '/account' }} open={isOpen(path, { label: '', href: '/account' })} />
+      <View style={styles.person}>
+        <PlaceLink place={{ label: person, href: '/account' }} open={isOpen(path, { label: '', href: '/account' })} />
+      </View>
     </View>
   );
 }
@@ -115,7 +136,7 @@ function PlaceLink({ place, open }: { place: Place; open: boolean }) {
   return (
     <Link href={place.href} aria-current={open ? 'page' : undefined} style={styles.place}>
       <View style={[styles.placeInner, { borderBottomColor: open ? color.ink.strong : 'transparent' }]}>
-        <Text weight={open ? 600 : 500} tone={open ? 'strong' : 'quiet'} style={styles.placeText}>
+        <Text weight={open ? 600 : 500} tone={open ? 'strong' : 'quiet'} numberOfLines={1} style={styles.placeText}>
           {place.label}
         </Text>
       </View>
@@ -123,9 +144,9 @@ function PlaceLink({ place, open }: { place: Place; open: boolean }) {
   );
 }
 
-function PhoneHead({ title, backTo, headAside }: FrameProps) {
+function PhoneHead({ title, backTo, headAside, headField }: FrameProps) {
   return (
-    <View role="banner" style={styles.phoneHead}>
+    <View style={styles.phoneHead}>
       {backTo ? (
         <Link href={backTo} aria-label="Back" style={styles.back}>
           <View style={styles.backInner}>
@@ -139,9 +160,16 @@ function PhoneHead({ title, backTo, headAside }: FrameProps) {
           <Mark size={24} />
         </View>
       )}
-      <Text variant="heading" tone="strong" numberOfLines={1} style={styles.phoneTitle}>
+      <Text
+        variant="heading"
+        heading={1}
+        tone="strong"
+        numberOfLines={1}
+        style={headField ? styles.unseen : styles.phoneTitle}
+      >
         {title}
       </Text>
+      {headField ? <View style={styles.phoneTitle}>{headField}</View> : null}
       {headAside ? <View style={styles.headAside}>{headAside}</View> : null}
     </View>
   );
@@ -175,6 +203,8 @@ const styles = StyleSheet.create({
   page: { flex: 1, minHeight: 0, backgroundColor: color.surface.desk },
   content: { flex: 1, minHeight: 0 },
   grow: { flexGrow: 1 },
+  banner: { zIndex: z.navigation },
+  unseen: { position: 'absolute', width: 1, height: 1, overflow: 'hidden', opacity: 0 },
   top: {
     height: 44,
     flexDirection: 'row',
@@ -183,7 +213,6 @@ const styles = StyleSheet.create({
     borderBottomWidth: 1,
     borderBottomColor: color.rule.line,
     backgroundColor: color.surface.sheet,
-    zIndex: z.navigation,
   },
   brand: { marginRight: 36, display: 'flex', alignItems: 'center', textDecorationLine: 'none' },
   brandRow: { flexDirection: 'row', alignItems: 'center', gap: 9 },
@@ -198,7 +227,9 @@ const styles = StyleSheet.create({
   },
   placeText: { fontSize: 14, lineHeight: 20 },
   spring: { flex: 1 },
-  theme: { justifyContent: 'center', marginRight: 16 },
+  theme: { justifyContent: 'center', marginRight: 26 },
+  themeWord: { height: 36, justifyContent: 'center' },
+  person: { maxWidth: 240, marginRight: -26 },
   demo: {
     alignItems: 'center',
     backgroundColor: color.warning.wash,
@@ -214,7 +245,6 @@ const styles = StyleSheet.create({
     borderBottomWidth: 1,
     borderBottomColor: color.rule.line,
     backgroundColor: color.surface.sheet,
-    zIndex: z.navigation,
   },
   back: { display: 'flex' },
   backInner: { width: 48, height: 44, alignItems: 'center', justifyContent: 'center' },

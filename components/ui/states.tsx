@@ -1,9 +1,10 @@
-import { Link, type Href } from 'expo-router';
+import type { Href } from 'expo-router';
 import { useEffect, useState, type ReactNode } from 'react';
 import { StyleSheet, View } from 'react-native';
 import { Button } from './Button';
 import { Notice } from './Notice';
 import { Text } from './Text';
+import { TextLink } from './TextLink';
 import { color } from './theme';
 
 /** One sentence and one act, no picture. */
@@ -24,7 +25,8 @@ export function Loading({ what, rows = 5, rowHeight = 68 }: { what: string; rows
     return () => clearTimeout(timer);
   }, []);
   return (
-    <View role="status" aria-label={`Loading ${what}`} style={styles.loading}>
+    <View role="status" style={styles.loading}>
+      <Text style={styles.unseen}>{`Loading ${what}`}</Text>
       {late
         ? Array.from({ length: rows }, (_, i) => <View key={i} style={[styles.outline, { height: rowHeight }]} />)
         : null}
@@ -41,18 +43,24 @@ export function Failing({ what, onRetry }: { what: string; onRetry: () => void }
   );
 }
 
-function WholePage({ title, words, way }: { title: string; words: string; way: { label: string; href: Href } }) {
+function WholePage({
+  title,
+  words,
+  way,
+  level,
+}: {
+  title: string;
+  words: string;
+  way: { label: string; href: Href };
+  level: 1 | 2;
+}) {
   return (
     <View style={styles.whole}>
-      <Text variant="title" heading={1} tone="strong">
+      <Text variant="title" heading={level} tone="strong">
         {title}
       </Text>
       <Text>{words}</Text>
-      <Link href={way.href}>
-        <Text weight={600} tone="accent">
-          {way.label}
-        </Text>
-      </Link>
+      <TextLink href={way.href}>{way.label}</TextLink>
     </View>
   );
 }
@@ -65,19 +73,27 @@ export function Forbidden() {
       title="Not for your roles"
       words="Your roles do not include this page. An admin can change that."
       way={back}
+      level={2}
     />
   );
 }
 
-export function NotThere() {
+/** `alone`: without the frame of a page, so that its title is the page's. */
+export function NotThere({ alone = false }: { alone?: boolean }) {
   return (
-    <WholePage title="Nothing here" words="There is nothing at this address. It may have been removed." way={back} />
+    <WholePage
+      title="Nothing here"
+      words="There is nothing at this address. It may have been removed."
+      way={back}
+      level={alone ? 1 : 2}
+    />
   );
 }
 
 const styles = StyleSheet.create({
   empty: { padding: 24, gap: 12, alignItems: 'flex-start' },
   loading: { gap: 0, minHeight: 200 },
+  unseen: { position: 'absolute', width: 1, height: 1, overflow: 'hidden', opacity: 0 },
   outline: { borderWidth: 1, borderColor: color.rule.hair, backgroundColor: color.surface.sheet, marginTop: -1 },
   whole: { flex: 1, gap: 12, padding: 24, maxWidth: 520, width: '100%', alignSelf: 'center', justifyContent: 'center' },
 });

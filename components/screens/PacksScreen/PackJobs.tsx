@@ -1,4 +1,3 @@
-import { Link } from 'expo-router';
 import { useEffect, useRef } from 'react';
 import { StyleSheet, View } from 'react-native';
 import { useQueryClient } from '@tanstack/react-query';
@@ -6,6 +5,7 @@ import { Button } from '@/components/ui/Button';
 import { Notice } from '@/components/ui/Notice';
 import { Progress } from '@/components/ui/Progress';
 import { Text } from '@/components/ui/Text';
+import { TextLink } from '@/components/ui/TextLink';
 import { color } from '@/components/ui/theme';
 import { keyOf, useAct } from '@/lib/client/useApi';
 import { cancelPackJob, listPackJobs, listPacks, type PackJob } from '@/lib/contracts/packs';
@@ -57,11 +57,7 @@ export function JobRow({ job }: { job: PackJob }) {
         kind="success"
         title={name}
         actions={
-          <Link href={{ pathname: '/packs/[packId]', params: { packId: job.packId } }}>
-            <Text weight={600} tone="accent">
-              Open the pack
-            </Text>
-          </Link>
+          <TextLink href={{ pathname: '/packs/[packId]', params: { packId: job.packId } }}>Open the pack</TextLink>
         }
       >
         Read back and proven.

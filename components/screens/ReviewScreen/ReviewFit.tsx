@@ -1,10 +1,10 @@
-import { Link } from 'expo-router';
 import { useState } from 'react';
 import { StyleSheet, View } from 'react-native';
 import { ChoiceField } from '@/components/ui/ChoiceField';
 import { FigureRow } from '@/components/ui/Figure';
 import { Failing, Loading } from '@/components/ui/states';
 import { Text } from '@/components/ui/Text';
+import { TextLink } from '@/components/ui/TextLink';
 import { useApi } from '@/lib/client/useApi';
 import { listBenches } from '@/lib/contracts/benches';
 import { showFit } from '@/lib/contracts/fit';
@@ -56,11 +56,9 @@ export function ReviewFit({ waveformId, revisionId }: { waveformId: string; revi
           verdictTone={finding.verdict === 'meets' ? 'success' : finding.verdict === 'misses' ? 'danger' : 'quiet'}
         />
       ))}
-      <Link href={{ pathname: '/waveforms/[waveformId]/fit', params: { waveformId, revision: revisionId } }}>
-        <Text weight={600} tone="accent">
-          All findings
-        </Text>
-      </Link>
+      <TextLink href={{ pathname: '/waveforms/[waveformId]/fit', params: { waveformId, revision: revisionId } }}>
+        All findings
+      </TextLink>
     </View>
   );
 }

@@ -1,10 +1,11 @@
-import { Link, useRouter } from 'expo-router';
+import { useRouter } from 'expo-router';
 import { useRef, useState } from 'react';
 import { Pressable, StyleSheet, View, type TextInput } from 'react-native';
 import { Button } from '@/components/ui/Button';
 import { Loading } from '@/components/ui/states';
 import { Notice } from '@/components/ui/Notice';
 import { Text } from '@/components/ui/Text';
+import { TextLink } from '@/components/ui/TextLink';
 import { TextField } from '@/components/ui/TextField';
 import { color } from '@/components/ui/theme';
 import { ProblemError, useApi } from '@/lib/client/useApi';
@@ -40,13 +41,7 @@ export function SignInScreen() {
       {installation?.needsFirstRun ? (
         <Notice
           title="This installation has no people yet."
-          actions={
-            <Link href="/first-run">
-              <Text weight={600} tone="accent">
-                Set up Combwright
-              </Text>
-            </Link>
-          }
+          actions={<TextLink href="/first-run">Set up Combwright</TextLink>}
         >
           The first one becomes admin.
         </Notice>

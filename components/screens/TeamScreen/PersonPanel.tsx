@@ -36,7 +36,7 @@ export function PersonPanel({ person, bare }: { person: Person; bare?: boolean }
       <Text variant="small" tone="quiet">
         {person.email}
       </Text>
-      <Text variant="bodyStrong" tone="strong">
+      <Text variant="bodyStrong" heading={3} tone="strong">
         {`Open sessions, ${count}`}
       </Text>
       {sessions.isPending ? <Loading what="sessions" rows={2} rowHeight={52} /> : null}
@@ -47,7 +47,7 @@ export function PersonPanel({ person, bare }: { person: Person; bare?: boolean }
         </Button>
       ) : null}
       <View style={styles.rule} />
-      <Text variant="bodyStrong" tone="strong">
+      <Text variant="bodyStrong" heading={3} tone="strong">
         What the roles open
       </Text>
       {person.roles.length === 0 ? <Text variant="small">Nothing: no role is given.</Text> : null}
