@@ -21,7 +21,9 @@ export function SignedOutDialog({ person }: { person: Me }) {
   return (
     <Dialog
       question="You were signed out. Sign in to go on."
-      onClose={leave}
+      // Escape keeps the page: leaving it would lose what was typed
+      onClose={() => undefined}
+      startsOnField={!person.isDemo}
       safe={{ label: 'Leave', onPress: leave }}
       act={{ label: `Sign in as ${person.name}`, busy: act.isPending, onPress: send }}
     >
@@ -29,15 +31,20 @@ export function SignedOutDialog({ person }: { person: Me }) {
         <Text>What you typed is still here.</Text>
         {person.isDemo ? null : (
           <TextField
-            label="Password"
+            label={`Password of ${person.email}`}
             secret
             value={password}
             onChangeText={setPassword}
             autoComplete="current-password"
             onSubmitEditing={send}
-            error={act.error?.message ?? null}
+            error={act.error ? (act.error.problem?.detail ?? 'No connection. Signing in needs the server.') : null}
           />
         )}
+        {person.isDemo && act.error ? (
+          <Text variant="small" tone="danger" role="alert">
+            {act.error.problem?.detail ?? 'No connection. Signing in needs the server.'}
+          </Text>
+        ) : null}
       </View>
     </Dialog>
   );

@@ -1,5 +1,6 @@
 import { useState, type ReactNode } from 'react';
 import { Pressable, StyleSheet, View, type GestureResponderEvent, type ViewStyle } from 'react-native';
+import { useIsBehindOverlay } from './overlayState';
 import { Text } from './Text';
 import { color } from './theme';
 import { useBreakpoint } from './useBreakpoint';
@@ -72,7 +73,7 @@ const looks: Record<ButtonKind, Look> = {
 export function Button(props: ButtonProps) {
   const {
     children,
-    kind = 'ruled',
+    kind: asked = 'ruled',
     size = 'usual',
     onPress,
     disabledBecause,
@@ -85,6 +86,8 @@ export function Button(props: ButtonProps) {
   } = props;
   const touch = useBreakpoint() === 'phone';
   const [saysWhy, setSaysWhy] = useState(false);
+  const behind = useIsBehindOverlay();
+  const kind = asked === 'filled' && behind ? 'ruled' : asked;
   const look = looks[kind];
   const height = size === 'foot' ? 48 : touch ? 44 : size === 'small' ? 28 : 36;
   const off = Boolean(disabledBecause);
@@ -107,6 +110,7 @@ export function Button(props: ButtonProps) {
           styles.button,
           {
             height,
+            minWidth: touch ? 44 : undefined,
             paddingHorizontal: kind === 'plain' ? 8 : size === 'small' && !touch ? 10 : 16,
             backgroundColor: off
               ? kind === 'plain'

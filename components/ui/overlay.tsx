@@ -1,7 +1,8 @@
-import { useEffect, useId, useRef, type ReactNode } from 'react';
+import { useEffect, useId, useRef, useState, type ReactNode } from 'react';
 import { StyleSheet, View } from 'react-native';
 import { createPortal } from 'react-dom';
 import { Button } from './Button';
+import { InOverlay, overlayOpened } from './overlayState';
 import { Text } from './Text';
 import { color } from './theme';
 import { elevation, z } from './tokens';
@@ -10,8 +11,13 @@ import { useBreakpoint } from './useBreakpoint';
 const focusable =
   'a[href],button:not([disabled]),[tabindex]:not([tabindex="-1"]),input:not([disabled]),textarea,select,[role=button]';
 
-/** Keeps the keyboard inside, closes with Escape, gives the focus back at the end. */
-function useModal(onClose: () => void, trap: boolean) {
+const isShown = (node: HTMLElement) => node.offsetParent !== null || node === document.activeElement;
+
+/**
+ * Keeps the keyboard inside, closes with Escape, gives the focus back at the end. The focus starts where `first` points to,
+ * else on the first control.
+ */
+function useModal(onClose: () => void, trap: boolean, firstSelector?: string) {
   const ref = useRef<HTMLElement>(null);
   const close = useRef(onClose);
   useEffect(() => {
@@ -20,9 +26,14 @@ function useModal(onClose: () => void, trap: boolean) {
   useEffect(() => {
     const before = document.activeElement as HTMLElement | null;
     const node = ref.current;
-    const first = node?.querySelector<HTMLElement>('[data-autofocus]') ?? node?.querySelector<HTMLElement>(focusable);
+    const first =
+      (firstSelector && node?.querySelector<HTMLElement>(firstSelector)) || node?.querySelector<HTMLElement>(focusable);
     first?.focus();
+    const closed = overlayOpened();
     const onKey = (event: KeyboardEvent) => {
+      // Where the focused control went away with its act, the keyboard is at the page: a modal still answers it.
+      const isHere = node?.contains(event.target as Node) || (trap && event.target === document.body);
+      if (!isHere) return;
       // A number field with something new in it takes the first Escape itself: it restores its value.
       const isTyped = event.target instanceof HTMLElement && event.target.dataset['typed'] === '1';
       if (event.key === 'Escape' && !isTyped) {
@@ -30,9 +41,12 @@ function useModal(onClose: () => void, trap: boolean) {
         close.current();
       }
       if (event.key !== 'Tab' || !trap || !node) return;
-      const all = [...node.querySelectorAll<HTMLElement>(focusable)].filter((one) => one.offsetParent !== null);
+      const all = [...node.querySelectorAll<HTMLElement>(focusable)].filter(isShown);
       const last = all.at(-1);
-      if (event.shiftKey && document.activeElement === all[0]) {
+      if (event.target === document.body) {
+        event.preventDefault();
+        all[0]?.focus();
+      } else if (event.shiftKey && document.activeElement === all[0]) {
         event.preventDefault();
         last?.focus();
       } else if (!event.shiftKey && document.activeElement === last) {
@@ -40,12 +54,13 @@ function useModal(onClose: () => void, trap: boolean) {
         all[0]?.focus();
       }
     };
-    node?.addEventListener('keydown', onKey);
+    document.addEventListener('keydown', onKey);
     return () => {
-      node?.removeEventListener('keydown', onKey);
+      document.removeEventListener('keydown', onKey);
+      closed();
       before?.focus?.();
     };
-  }, [trap]);
+  }, [trap, firstSelector]);
   return ref;
 }
 
@@ -64,6 +79,7 @@ export function Sheet({
   lit,
   lead,
   note,
+  unsaved = false,
 }: {
   title: string;
   onClose: () => void;
@@ -78,45 +94,72 @@ export function Sheet({
   /** Before the title (a swatch), and a quiet note behind it. */
   lead?: ReactNode;
   note?: string;
+  /** Something was typed that leaving would lose: asked once. */
+  unsaved?: boolean;
 }) {
   const phone = useBreakpoint() === 'phone';
-  const ref = useModal(onClose, phone);
+  const [leaving, setLeaving] = useState(false);
+  const leave = () => (unsaved && !leaving ? setLeaving(true) : onClose());
+  const ref = useModal(leave, phone);
   const headingId = useId();
   return createPortal(
-    <View style={[styles.layer, { zIndex: z.sheet, pointerEvents: phone && !lit ? 'auto' : 'none' }]}>
-      {phone && !lit ? <View style={styles.scrim} {...({ onClick: onClose } as object)} /> : null}
-      <View
-        ref={ref as never}
-        role="dialog"
-        aria-modal={phone}
-        aria-labelledby={headingId}
-        style={[
-          phone ? [styles.phoneSheet, lit ? styles.litSheet : null] : [styles.wideSheet, { width, top, bottom }],
-          { boxShadow: elevation.over.shadow.paper, pointerEvents: 'auto' } as object,
-        ]}
-      >
-        {phone ? <View style={styles.grip} /> : null}
-        <View style={styles.head}>
-          {lead}
-          <Text variant="heading" heading={2} tone="strong" nativeID={headingId} numberOfLines={1} style={styles.title}>
-            {title}
-            {note ? (
-              <Text variant="small" tone="quiet">
-                {`  ${note}`}
+    <InOverlay value>
+      <View style={[styles.layer, { zIndex: z.sheet, pointerEvents: phone && !lit ? 'auto' : 'none' }]}>
+        {phone && !lit ? <View style={styles.scrim} {...({ onClick: leave } as object)} /> : null}
+        <View
+          ref={ref as never}
+          role="dialog"
+          aria-modal={phone}
+          aria-labelledby={headingId}
+          style={[
+            phone ? [styles.phoneSheet, lit ? styles.litSheet : null] : [styles.wideSheet, { width, top, bottom }],
+            { boxShadow: elevation.over.shadow.paper, pointerEvents: 'auto' } as object,
+          ]}
+        >
+          {phone ? <View style={styles.grip} /> : null}
+          <View style={styles.head}>
+            {lead}
+            <Text
+              variant="heading"
+              heading={2}
+              tone="strong"
+              nativeID={headingId}
+              numberOfLines={1}
+              style={styles.title}
+            >
+              {title}
+              {note ? (
+                <Text variant="small" tone="quiet">
+                  {`  ${note}`}
+                </Text>
+              ) : null}
+            </Text>
+            <Button kind="plain" onPress={leave}>
+              Close
+            </Button>
+          </View>
+          <View style={styles.body}>{children}</View>
+          {leaving && unsaved ? (
+            <View role="alert" style={styles.foot}>
+              <Text weight={600} style={styles.title}>
+                Leave without saving?
               </Text>
-            ) : null}
-          </Text>
-          <Button kind="plain" onPress={onClose}>
-            Close
-          </Button>
+              <Button onPress={() => setLeaving(false)}>Stay</Button>
+              <Button kind="grave" onPress={onClose}>
+                Leave
+              </Button>
+            </View>
+          ) : foot ? (
+            <View style={styles.foot}>{foot}</View>
+          ) : null}
         </View>
-        <View style={styles.body}>{children}</View>
-        {foot ? <View style={styles.foot}>{foot}</View> : null}
       </View>
-    </View>,
+    </InOverlay>,
     document.body,
   );
 }
+
+const safeButton = '[data-safe] [role=button]';
 
 /** Only for what cannot be undone: the question, what follows, and buttons that repeat the verb; focus on the safe one. */
 export function Dialog({
@@ -125,46 +168,53 @@ export function Dialog({
   safe,
   act,
   onClose,
+  startsOnField = false,
 }: {
   question: string;
   children?: ReactNode;
   safe: { label: string; onPress: () => void };
   act?: { label: string; grave?: boolean; busy?: boolean; onPress: () => void; disabledBecause?: string | null };
   onClose: () => void;
+  /** The way out is the field, not the safe button: to sign in again. */
+  startsOnField?: boolean;
 }) {
-  const ref = useModal(onClose, true);
+  const ref = useModal(onClose, true, startsOnField ? 'input' : safeButton);
+  const bodyId = useId();
   const headingId = useId();
   return createPortal(
-    <View style={[styles.layer, styles.centre, { zIndex: z.dialog }]}>
-      <View style={styles.scrim} />
-      <View
-        ref={ref as never}
-        role="alertdialog"
-        aria-modal
-        aria-labelledby={headingId}
-        style={[styles.dialog, { boxShadow: elevation.over.shadow.paper } as object]}
-      >
-        <Text variant="title" heading={2} tone="strong" nativeID={headingId}>
-          {question}
-        </Text>
-        {typeof children === 'string' ? <Text>{children}</Text> : children}
-        <View style={styles.buttons}>
-          <View {...({ dataSet: { safe: '1' } } as object)}>
-            <Button onPress={safe.onPress}>{safe.label}</Button>
+    <InOverlay value>
+      <View style={[styles.layer, styles.centre, { zIndex: z.dialog }]}>
+        <View style={styles.scrim} />
+        <View
+          ref={ref as never}
+          role="alertdialog"
+          aria-modal
+          aria-labelledby={headingId}
+          aria-describedby={bodyId}
+          style={[styles.dialog, { boxShadow: elevation.over.shadow.paper } as object]}
+        >
+          <Text variant="title" heading={2} tone="strong" nativeID={headingId}>
+            {question}
+          </Text>
+          <View nativeID={bodyId}>{typeof children === 'string' ? <Text>{children}</Text> : children}</View>
+          <View style={styles.buttons}>
+            <View {...({ dataSet: { safe: '1' } } as object)}>
+              <Button onPress={safe.onPress}>{safe.label}</Button>
+            </View>
+            {act ? (
+              <Button
+                kind={act.grave ? 'graveFilled' : 'filled'}
+                busy={act.busy ?? false}
+                disabledBecause={act.disabledBecause ?? null}
+                onPress={act.onPress}
+              >
+                {act.label}
+              </Button>
+            ) : null}
           </View>
-          {act ? (
-            <Button
-              kind={act.grave ? 'graveFilled' : 'filled'}
-              busy={act.busy ?? false}
-              disabledBecause={act.disabledBecause ?? null}
-              onPress={act.onPress}
-            >
-              {act.label}
-            </Button>
-          ) : null}
         </View>
       </View>
-    </View>,
+    </InOverlay>,
     document.body,
   );
 }
@@ -216,10 +266,13 @@ const styles = StyleSheet.create({
     borderTopColor: color.rule.line,
     backgroundColor: color.surface.trough,
     flexDirection: 'row',
+    alignItems: 'center',
     gap: 10,
   },
   dialog: {
     maxWidth: 480,
+    maxHeight: '100%',
+    overflow: 'scroll' as 'visible',
     width: '100%',
     gap: 12,
     padding: 20,

@@ -36,6 +36,7 @@ export function AskSheet({
     <Sheet
       title="Ask for review"
       onClose={onClose}
+      unsaved={!act.data && note.trim() !== ''}
       foot={
         act.data ? (
           <Button kind="filled" size="foot" fill onPress={onClose}>

@@ -1,5 +1,5 @@
 import { useState } from 'react';
-import { StyleSheet, View } from 'react-native';
+import { Pressable, StyleSheet, View } from 'react-native';
 import { Button } from '@/components/ui/Button';
 import { NumberField } from '@/components/ui/NumberField';
 import { Sheet } from '@/components/ui/overlay';
@@ -67,6 +67,7 @@ export function DeviceSheet({
     <Sheet
       title="Another device"
       onClose={onClose}
+      unsaved={deviceName !== '' || intent !== pack.intent}
       foot={
         <Button
           kind="filled"
@@ -144,9 +145,19 @@ function Choice({
   onPress: () => void;
 }) {
   return (
-    <Button kind={chosen ? 'ruled' : 'plain'} label={`${label}, ${aside}${chosen ? ', in use' : ''}`} onPress={onPress}>
-      {`${label}: ${aside}${chosen ? ' (in use)' : ''}`}
-    </Button>
+    <Pressable
+      role="radio"
+      aria-checked={chosen}
+      onPress={onPress}
+      style={[styles.choice, chosen ? styles.chosen : null]}
+    >
+      <Text weight={chosen ? 600 : 500} tone={chosen ? 'onSelected' : 'body'}>
+        {label}
+      </Text>
+      <Text variant="small" tone={chosen ? 'onSelected' : 'quiet'}>
+        {aside}
+      </Text>
+    </Pressable>
   );
 }
 
@@ -157,6 +168,13 @@ const styles = StyleSheet.create({
     paddingBottom: 8,
     borderBottomWidth: 1,
     borderBottomColor: color.rule.line,
-    alignItems: 'flex-start',
   },
+  choice: {
+    minHeight: 48,
+    justifyContent: 'center',
+    paddingHorizontal: 10,
+    borderBottomWidth: 2,
+    borderBottomColor: 'transparent',
+  },
+  chosen: { backgroundColor: color.surface.selected, borderBottomColor: color.ink.strong },
 });

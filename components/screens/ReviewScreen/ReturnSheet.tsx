@@ -28,6 +28,7 @@ export function ReturnSheet({
     <Sheet
       title="Return with a note"
       onClose={onClose}
+      unsaved={reason.trim() !== ''}
       foot={
         <Button
           kind="filled"

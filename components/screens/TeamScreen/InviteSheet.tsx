@@ -22,6 +22,7 @@ export function InviteSheet({ onClose }: { onClose: () => void }) {
     <Sheet
       title="Invite a person"
       onClose={onClose}
+      unsaved={!act.data && (name !== '' || email !== '')}
       foot={
         act.data ? (
           <Button kind="filled" size="foot" fill onPress={onClose}>
