@@ -31,6 +31,7 @@ export interface NumberFieldProps {
   words?: boolean;
   style?: ViewStyle;
   inputRef?: Ref<TextInput>;
+  readOnly?: boolean;
 }
 
 interface KeyLike {
@@ -78,7 +79,8 @@ export function useNumberKeys(props: Pick<NumberFieldProps, 'value' | 'onSet' | 
 
 /** A number with its unit in a fixed slot, limits below while focused, and keys that step to legal values. */
 export function NumberField(props: NumberFieldProps) {
-  const { label, unit, units, onUnit, limits, error, remedy, quietLabel, autoFocus, words, style, inputRef } = props;
+  const { label, unit, units, onUnit, limits, error, remedy, quietLabel, autoFocus, words, style, inputRef, readOnly } =
+    props;
   const touch = useBreakpoint() !== 'wide';
   const id = useId();
   const [focused, setFocused] = useState(false);
@@ -88,14 +90,17 @@ export function NumberField(props: NumberFieldProps) {
   return (
     <View style={style}>
       {quietLabel ? null : (
-        <Text variant="small" weight={500} style={styles.label}>
-          {label}
-        </Text>
+        <label htmlFor={id} style={{ marginBottom: 4 }}>
+          <Text variant="small" weight={500}>
+            {label}
+          </Text>
+        </label>
       )}
       <View
         style={[styles.frame, { height: touch ? 48 : 36, borderColor: error ? color.danger.rule : color.rule.control }]}
       >
         <TextInput
+          id={id}
           ref={inputRef}
           aria-label={[label, unit, limits].filter(Boolean).join(', ')}
           aria-invalid={error ? true : undefined}
@@ -103,6 +108,7 @@ export function NumberField(props: NumberFieldProps) {
           inputMode={words ? 'text' : 'decimal'}
           autoComplete="off"
           autoFocus={autoFocus}
+          readOnly={readOnly}
           selectTextOnFocus
           {...input}
           onFocus={() => setFocused(true)}
@@ -152,7 +158,6 @@ function nextOf(units: readonly string[], unit: string | undefined): string {
 }
 
 const styles = StyleSheet.create({
-  label: { marginBottom: 4 },
   frame: {
     flexDirection: 'row',
     alignItems: 'stretch',

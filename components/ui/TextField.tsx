@@ -27,12 +27,15 @@ export function TextField(props: TextFieldProps) {
   return (
     <View style={style}>
       {quietLabel ? null : (
-        <Text variant="small" weight={500} nativeID={`${id}-label`} style={styles.label}>
-          {label}
-        </Text>
+        <label htmlFor={id} style={{ marginBottom: 4 }}>
+          <Text variant="small" weight={500}>
+            {label}
+          </Text>
+        </label>
       )}
       <View style={styles.frame}>
         <TextInput
+          id={id}
           ref={inputRef}
           aria-label={label}
           aria-invalid={error ? true : undefined}
@@ -50,7 +53,12 @@ export function TextField(props: TextFieldProps) {
           ]}
         />
         {secret ? (
-          <Pressable role="button" aria-pressed={shown} onPress={() => setShown(!shown)} style={styles.show}>
+          <Pressable
+            role="button"
+            aria-label={shown ? `Hide ${label}` : `Show ${label}`}
+            onPress={() => setShown(!shown)}
+            style={styles.show}
+          >
             <Text variant="small" weight={600} tone="accent">
               {shown ? 'Hide' : 'Show'}
             </Text>
@@ -71,7 +79,6 @@ export function TextField(props: TextFieldProps) {
 }
 
 const styles = StyleSheet.create({
-  label: { marginBottom: 4 },
   frame: { position: 'relative' },
   input: {
     borderWidth: 1,

@@ -19,35 +19,44 @@ interface Common<T extends string> {
   style?: ViewStyle;
   /** Without the frame: filter words and tabs. */
   bare?: boolean;
+  /** None of the words can be pressed: who may only look is told why. */
+  offBecause?: string | null;
 }
 
 /** One of several words: a radio group; arrows move the choice. */
 export function OneOf<T extends string>(props: Common<T> & { value: T | null; onChange: (value: T) => void }) {
-  const { label, choices, value, onChange, style, bare } = props;
+  const { label, choices, value, onChange, style, bare, offBecause } = props;
   const refs = useRef(new Map<T, { focus: () => void }>());
   const [why, setWhy] = useState<string | null>(null);
-  const step = (from: number, by: number) => {
-    for (let i = 1; i <= choices.length; i++) {
-      const next = choices[(from + by * i + choices.length * i) % choices.length];
-      if (next && !next.offBecause) {
-        onChange(next.value);
-        refs.current.get(next.value)?.focus();
-        return;
-      }
-    }
+  const press = (choice: WordChoice<T>) => {
+    const off = offBecause ?? choice.offBecause ?? null;
+    setWhy(choice.value === value ? null : off);
+    if (!off) onChange(choice.value);
   };
+  /** Arrows move the choice; a word that cannot be pressed is reached too, and says why. */
+  const step = (from: number, by: number) => {
+    const next = choices[(from + by + choices.length) % choices.length]!;
+    press(next);
+    refs.current.get(next.value)?.focus();
+  };
+  const hasChosen = choices.some((choice) => choice.value === value);
   return (
     <View style={style}>
-      <View role="radiogroup" aria-label={label} style={[styles.row, bare ? styles.bareRow : styles.framed]}>
+      <View
+        role="radiogroup"
+        aria-label={label}
+        style={[styles.row, bare ? styles.bareRow : [styles.framed, styles.wraps]]}
+      >
         {choices.map((choice, i) => (
           <Word
             key={choice.value}
             choice={choice}
             bare={bare}
+            allOff={Boolean(offBecause)}
             role="radio"
             chosen={choice.value === value}
-            tabbable={choice.value === value || (value === null && i === 0)}
-            onPress={() => (choice.offBecause ? setWhy(choice.offBecause) : (setWhy(null), onChange(choice.value)))}
+            tabbable={choice.value === value || (!hasChosen && i === 0)}
+            onPress={() => press(choice)}
             onKey={(key) => {
               if (key === 'ArrowRight' || key === 'ArrowDown') return (step(i, 1), true);
               if (key === 'ArrowLeft' || key === 'ArrowUp') return (step(i, -1), true);
@@ -68,24 +77,25 @@ export function OneOf<T extends string>(props: Common<T> & { value: T | null; on
 export function AnyOf<T extends string>(
   props: Common<T> & { values: readonly T[]; onToggle: (value: T, on: boolean) => void },
 ) {
-  const { label, choices, values, onToggle, style, bare } = props;
+  const { label, choices, values, onToggle, style, bare, offBecause } = props;
   const [why, setWhy] = useState<string | null>(null);
   return (
     <View style={style}>
-      <View role="group" aria-label={label} style={[styles.row, bare ? styles.bareRow : styles.framed]}>
+      <View role="group" aria-label={label} style={[styles.row, bare ? styles.bareRow : [styles.framed, styles.wraps]]}>
         {choices.map((choice) => (
           <Word
             key={choice.value}
             choice={choice}
             bare={bare}
+            allOff={Boolean(offBecause)}
             role="button"
             chosen={values.includes(choice.value)}
             tabbable
-            onPress={() =>
-              choice.offBecause
-                ? setWhy(choice.offBecause)
-                : (setWhy(null), onToggle(choice.value, !values.includes(choice.value)))
-            }
+            onPress={() => {
+              const off = offBecause ?? choice.offBecause ?? null;
+              setWhy(off);
+              if (!off) onToggle(choice.value, !values.includes(choice.value));
+            }}
           />
         ))}
       </View>
@@ -108,11 +118,12 @@ function Word<T extends string>(props: {
   role: 'radio' | 'button';
   tabbable: boolean;
   bare?: boolean;
+  allOff: boolean;
   onPress: () => void;
   onKey?: (key: string) => boolean;
   register?: (node: { focus: () => void } | null) => void;
 }) {
-  const { choice, chosen, role, tabbable, bare, onPress, onKey, register } = props;
+  const { choice, chosen, role, tabbable, bare, allOff, onPress, onKey, register } = props;
   const touch = useBreakpoint() === 'phone';
   const state = role === 'radio' ? { 'aria-checked': chosen } : { 'aria-pressed': chosen };
   return (
@@ -120,7 +131,7 @@ function Word<T extends string>(props: {
       ref={register as never}
       role={role}
       {...state}
-      aria-disabled={choice.offBecause ? true : undefined}
+      aria-disabled={allOff || choice.offBecause ? true : undefined}
       tabIndex={tabbable ? 0 : -1}
       onPress={onPress}
       {...({
@@ -144,7 +155,7 @@ function Word<T extends string>(props: {
     >
       <Text
         weight={chosen ? 600 : 500}
-        tone={choice.offBecause && !chosen ? 'quiet' : chosen ? 'onSelected' : 'body'}
+        tone={(allOff || choice.offBecause) && !chosen ? 'quiet' : chosen ? 'onSelected' : 'body'}
         style={[styles.text, choice.offBecause && !chosen ? styles.struck : null]}
         numberOfLines={1}
       >
@@ -161,17 +172,24 @@ function Word<T extends string>(props: {
 
 const styles = StyleSheet.create({
   row: { flexDirection: 'row' },
+  // four long words do not fit a narrow phone in one row
+  wraps: { flexWrap: 'wrap' },
   framed: {
     borderWidth: 1,
     borderColor: color.rule.control,
     borderRadius: 3,
     backgroundColor: color.surface.raised,
-    overflow: 'hidden',
   },
   bareRow: { gap: 4 },
   word: { flexDirection: 'row', gap: 6, alignItems: 'center', justifyContent: 'center', borderBottomWidth: 2 },
-  framedWord: { flexGrow: 1, paddingHorizontal: 8, borderRightWidth: 1, borderRightColor: color.rule.hair },
-  bareWord: { paddingHorizontal: 11, flexShrink: 0 },
+  framedWord: {
+    flexGrow: 1,
+    minWidth: 0,
+    paddingHorizontal: 8,
+    borderRightWidth: 1,
+    borderRightColor: color.rule.hair,
+  },
+  bareWord: { paddingHorizontal: 11, minWidth: 44, flexShrink: 0 },
   text: { fontSize: 14, lineHeight: 20 },
   struck: { textDecorationLine: 'line-through', textDecorationColor: color.rule.control },
   why: { marginTop: 4 },

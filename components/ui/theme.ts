@@ -38,6 +38,7 @@ const pageRules = `
 html,body{background:var(--surface-desk);color-scheme:light}
 html[data-theme=night]{color-scheme:dark}
 :focus-visible{outline:2px solid var(--focus-ring)!important;outline-offset:2px}
+[role=radio]:focus-visible,[role=button]:focus-visible{z-index:1}
 ::selection{background:var(--surface-selected);color:var(--ink-onSelected)}
 @media (prefers-reduced-motion:reduce){*{animation-duration:0s!important;transition-duration:0s!important}}
 `;
