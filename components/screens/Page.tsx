@@ -1,16 +1,22 @@
 import type { Href } from 'expo-router';
 import type { ReactNode } from 'react';
 import { StyleSheet, View } from 'react-native';
+import { useQueryClient } from '@tanstack/react-query';
 import { Frame } from '@/components/ui/Frame';
+import { Notice } from '@/components/ui/Notice';
 import { Text } from '@/components/ui/Text';
 import { useBreakpoint } from '@/components/ui/useBreakpoint';
+import { shownSinceMs, useConnectionLost } from '@/lib/client/connection';
 import { useMe, useSession } from '@/lib/client/useSession';
+import { getSession } from '@/lib/contracts/auth';
+import { clockTime } from './when';
 
 export interface PageProps {
   title: string;
   children: ReactNode;
   backTo?: Href;
   headAside?: ReactNode;
+  headField?: ReactNode;
   foot?: ReactNode;
   fixed?: boolean;
   /** The wide page's heading row; on a phone the head names the page. */
@@ -20,7 +26,7 @@ export interface PageProps {
 }
 
 /** A signed-in page: the frame with the person in it, a heading and a margin. */
-export function Page({ title, children, backTo, headAside, foot, fixed, actions, bare }: PageProps) {
+export function Page({ title, children, backTo, headAside, headField, foot, fixed, actions, bare }: PageProps) {
   const me = useMe();
   const demo = useSession().data?.installation.isDemo ?? false;
   const phone = useBreakpoint() === 'phone';
@@ -32,6 +38,8 @@ export function Page({ title, children, backTo, headAside, foot, fixed, actions,
       demo={demo}
       {...(backTo ? { backTo } : {})}
       headAside={headAside}
+      headField={headField}
+      notice={fixed ? null : <LostConnection />}
       foot={foot}
       fixed={fixed ?? false}
     >
@@ -51,6 +59,19 @@ export function Page({ title, children, backTo, headAside, foot, fixed, actions,
         </View>
       )}
     </Frame>
+  );
+}
+
+/** A page that can be read without the server says how old it is; one that draws says it by its own words. */
+function LostConnection() {
+  const queries = useQueryClient();
+  const lost = useConnectionLost();
+  if (!lost) return null;
+  const sinceMs = shownSinceMs(queries, getSession.name);
+  return (
+    <Notice kind="warning">
+      {sinceMs === null ? 'No connection.' : `No connection. What you see was loaded at ${clockTime(sinceMs)}.`}
+    </Notice>
   );
 }
 

@@ -8,6 +8,7 @@ import {
 import type { Endpoint, ResponseOf } from '@/lib/contracts/endpoint';
 import type { Problem } from '@/lib/contracts/problem';
 import { call, type CallInput } from './apiClient';
+import { noteAnswer } from './connection';
 
 /** An expected refusal or a lost connection, thrown so that queries and mutations carry it as their error. */
 export class ProblemError extends Error {
@@ -25,6 +26,7 @@ type AnyEndpoint = Endpoint<any, any, any, any>;
 /** Calls an endpoint and throws what it refused. */
 export async function ask<E extends AnyEndpoint>(endpoint: E, input: CallInput<E>): Promise<ResponseOf<E>> {
   const answer = await call(endpoint, input);
+  noteAnswer(answer.ok || answer.problem !== null);
   if (answer.ok) return answer.value;
   throw new ProblemError(answer.problem);
 }

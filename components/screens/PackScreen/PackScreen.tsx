@@ -1,4 +1,4 @@
-import { useState } from 'react';
+import { useEffect, useState } from 'react';
 import { StyleSheet, View } from 'react-native';
 import { Button } from '@/components/ui/Button';
 import { Failing, Loading, NotThere } from '@/components/ui/states';
@@ -25,7 +25,7 @@ import { cardOfPack, cautionsOfPack } from './packCard';
 export function PackScreen({ packId }: { packId: string }) {
   // asked again within 60 s, so that an open page says when its edition was withdrawn
   const pack = useApi(showPack, { params: { packId } }, { refetchInterval: 30_000, refetchIntervalInBackground: true });
-  if (pack.data) return <OpenPack key={packId} pack={pack.data} offline={pack.isError} />;
+  if (pack.data) return <OpenPack key={packId} pack={pack.data} />;
   return (
     <Page title="Pack" backTo="/packs">
       {pack.isPending ? <Loading what="the pack" rows={3} rowHeight={120} /> : null}
@@ -37,7 +37,7 @@ export function PackScreen({ packId }: { packId: string }) {
   );
 }
 
-function OpenPack({ pack, offline }: { pack: PackDetail; offline: boolean }) {
+function OpenPack({ pack }: { pack: PackDetail }) {
   const phone = useBreakpoint() === 'phone';
   const mayEnter = useMay('enterDeviceCards');
   const [sheet, setSheet] = useState<'files' | 'cautions' | 'device' | null>(null);
@@ -61,6 +61,7 @@ function OpenPack({ pack, offline }: { pack: PackDetail; offline: boolean }) {
     { what: 'whole pack', digest: pack.fileDigest },
     ...pack.files.map((file) => ({ what: file.name, digest: file.digest })),
   ];
+  useDownloadKey();
   const hex = pack.vectorDigest.replace('sha256:', '');
   const download = withdrawn ? null : (
     <a
@@ -68,6 +69,7 @@ function OpenPack({ pack, offline }: { pack: PackDetail; offline: boolean }) {
       download={pack.fileName}
       style={{ textDecoration: 'none', flexGrow: 1, display: 'block' }}
       data-testid="download"
+      id="download-pack"
     >
       <View style={[styles.download, phone ? styles.downloadPhone : null]}>
         <Text variant={phone ? 'heading' : 'bodyStrong'} tone="onSolid">
@@ -87,9 +89,6 @@ function OpenPack({ pack, offline }: { pack: PackDetail; offline: boolean }) {
         <Notice kind="danger" title="Do not use this pack.">
           {`Edition ${pack.editionNumber} was withdrawn by ${pack.withdrawn?.by.name ?? 'a reviewer'}: ${pack.withdrawn?.reason ?? ''}`}
         </Notice>
-      ) : null}
-      {offline ? (
-        <Notice kind="warning">{`No connection. What you see was loaded at ${clockTime(pack.fetchedAtMs)}.`}</Notice>
       ) : null}
       <View style={styles.stampRow}>
         <Stamp state={pack.state} edition={pack.editionNumber} />
@@ -170,6 +169,21 @@ function OpenPack({ pack, offline }: { pack: PackDetail; offline: boolean }) {
       ) : null}
     </Page>
   );
+}
+
+/** `D` downloads, unless a field or a sheet has the keyboard. */
+function useDownloadKey() {
+  useEffect(() => {
+    const onKey = (event: KeyboardEvent) => {
+      if (event.key.toLowerCase() !== 'd' || event.ctrlKey || event.metaKey || event.altKey || event.repeat) return;
+      const at = event.target instanceof HTMLElement ? event.target : null;
+      if (at && (/^(INPUT|TEXTAREA|SELECT)$/.test(at.tagName) || at.closest('[role=dialog],[role=alertdialog]')))
+        return;
+      document.getElementById('download-pack')?.click();
+    };
+    window.addEventListener('keydown', onKey);
+    return () => window.removeEventListener('keydown', onKey);
+  }, []);
 }
 
 const styles = StyleSheet.create({
