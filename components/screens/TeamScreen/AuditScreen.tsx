@@ -2,6 +2,7 @@ import { useState } from 'react';
 import { StyleSheet, View } from 'react-native';
 import { Button } from '@/components/ui/Button';
 import { Empty, Failing, Loading } from '@/components/ui/states';
+import { Table, type TableColumn } from '@/components/ui/Table';
 import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
 import { useBreakpoint } from '@/components/ui/useBreakpoint';
@@ -16,6 +17,7 @@ const words = (act: string) => act.replaceAll('.', ', ').replaceAll('_', ' ');
 
 /** Who did what, newest first. */
 export function AuditScreen() {
+  const phone = useBreakpoint() === 'phone';
   const people = useApi(listPeople, {});
   const [personId, setPersonId] = useState('');
   const [act, setAct] = useState('');
@@ -67,11 +69,17 @@ export function AuditScreen() {
         <Failing what={`The list did not load. ${audit.error.message}`} onRetry={() => void audit.refetch()} />
       ) : null}
       {audit.data && acts.length === 0 ? <Empty>Nothing matches.</Empty> : null}
-      <View role="list" aria-label="Acts" style={acts.length > 0 ? styles.table : null}>
-        {acts.map((one) => (
-          <Row key={one.seq} act={one} />
-        ))}
-      </View>
+      {acts.length > 0 ? (
+        phone ? (
+          <View role="list" aria-label="Acts" style={styles.table}>
+            {acts.map((one) => (
+              <Row key={one.seq} act={one} />
+            ))}
+          </View>
+        ) : (
+          <Table label="Acts" columns={columns} rows={acts} keyOf={(one) => String(one.seq)} rowHeight={44} />
+        )
+      ) : null}
       {problem ? <Failing what={problem} onRetry={() => void showOlder()} /> : null}
       {nextBefore !== null ? (
         <Button busy={busy} onPress={() => void showOlder()}>
@@ -82,23 +90,61 @@ export function AuditScreen() {
   );
 }
 
-function Row({ act }: { act: AuditAct }) {
-  const phone = useBreakpoint() === 'phone';
-  const time = when(act.atMs);
-  return (
-    <View role="listitem" style={[styles.row, phone ? null : styles.wide]}>
-      <Text variant="small" tone="quiet" style={phone ? null : styles.time}>
-        {time.includes(':') || time.includes('ago') || time === 'just now' ? time : `${time} ${clockTime(act.atMs)}`}
+function timeWords(atMs: number): string {
+  const time = when(atMs);
+  return time.includes(':') || time.includes('ago') || time === 'just now' ? time : `${time} ${clockTime(atMs)}`;
+}
+
+const objectWords = (act: AuditAct) =>
+  `${act.objectLabel}${typeof act.detail.reason === 'string' ? `: ${act.detail.reason}` : ''}`;
+
+const columns: TableColumn<AuditAct>[] = [
+  {
+    key: 'time',
+    label: 'Time',
+    width: 150,
+    cell: (act) => (
+      <Text variant="small" tone="quiet">
+        {timeWords(act.atMs)}
       </Text>
-      <Text variant="small" weight={600} style={phone ? null : styles.person}>
+    ),
+  },
+  {
+    key: 'person',
+    label: 'Person',
+    width: 160,
+    cell: (act) => (
+      <Text variant="small" weight={600} numberOfLines={1}>
         {act.person?.name ?? 'the installation'}
       </Text>
-      <Text variant="small" style={phone ? null : styles.act}>
-        {words(act.act)}
+    ),
+  },
+  { key: 'act', label: 'Act', width: 200, cell: (act) => <Text variant="small">{words(act.act)}</Text> },
+  {
+    key: 'object',
+    label: 'Object',
+    cell: (act) => (
+      <Text variant="small" numberOfLines={2}>
+        {objectWords(act)}
       </Text>
-      <Text variant="small" tone="body" style={styles.object} numberOfLines={2}>
-        {act.objectLabel}
-        {typeof act.detail.reason === 'string' ? `: ${act.detail.reason}` : ''}
+    ),
+  },
+];
+
+function Row({ act }: { act: AuditAct }) {
+  return (
+    <View role="listitem" style={styles.row}>
+      <Text variant="small">
+        <Text variant="small" weight={600} tone="strong">
+          {act.person?.name ?? 'The installation'}
+        </Text>
+        {`: ${words(act.act)}`}
+      </Text>
+      <Text variant="small" numberOfLines={2}>
+        {objectWords(act)}
+      </Text>
+      <Text variant="small" tone="quiet">
+        {timeWords(act.atMs)}
       </Text>
     </View>
   );
@@ -108,9 +154,4 @@ const styles = StyleSheet.create({
   filters: { flexDirection: 'row', flexWrap: 'wrap', gap: 12 },
   table: { borderWidth: 1, borderColor: color.rule.line, backgroundColor: color.surface.sheet },
   row: { paddingHorizontal: 14, paddingVertical: 8, gap: 2, borderBottomWidth: 1, borderBottomColor: color.rule.hair },
-  wide: { flexDirection: 'row', alignItems: 'center', gap: 16, minHeight: 44 },
-  time: { width: 150 },
-  person: { width: 150 },
-  act: { width: 220 },
-  object: { flexGrow: 1, flexShrink: 1 },
 });

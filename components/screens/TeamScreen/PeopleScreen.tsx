@@ -2,6 +2,7 @@ import { useState } from 'react';
 import { Pressable, StyleSheet, View } from 'react-native';
 import { Button } from '@/components/ui/Button';
 import { Failing, Loading } from '@/components/ui/states';
+import { Table } from '@/components/ui/Table';
 import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
 import { showToast } from '@/components/ui/toast';
@@ -13,6 +14,7 @@ import { useMe } from '@/lib/client/useSession';
 import { getSession } from '@/lib/contracts/auth';
 import { roleSchema, type Role } from '@/lib/contracts/common';
 import { listPeople, setRoles, type Person } from '@/lib/contracts/people';
+import { PrimaryStrip } from '../PrimaryStrip';
 import { when } from '../when';
 import { InviteSheet } from './InviteSheet';
 import { PersonPanel } from './PersonPanel';
@@ -21,14 +23,18 @@ import { WaitingLinks } from './WaitingLinks';
 
 /** Everybody of the team; roles are words to press, saved at once. */
 export function PeopleScreen() {
-  const wide = useBreakpoint() === 'wide';
+  const size = useBreakpoint();
+  const wide = size === 'wide';
+  const phone = size === 'phone';
   const people = useApi(listPeople, {});
   const [chosenId, setChosenId] = useState<string | null>(null);
   const [inviting, setInviting] = useState(false);
   const chosen = people.data?.people.find((person) => person.personId === chosenId) ?? null;
   const joined = people.data?.people.filter((person) => person.hasJoined || person.isDemo) ?? [];
+  const admins = joined.filter((one) => one.roles.includes('admin')).length;
+  const choose = (person: Person) => setChosenId(person.personId);
   const invite = (
-    <Button kind="filled" onPress={() => setInviting(true)}>
+    <Button kind="filled" size={phone ? 'foot' : 'usual'} fill={phone} onPress={() => setInviting(true)}>
       Invite a person
     </Button>
   );
@@ -41,47 +47,99 @@ export function PeopleScreen() {
       {people.data ? (
         <View style={wide ? styles.columns : styles.stack}>
           <View style={styles.main}>
-            <View role="list" aria-label="People" style={styles.table}>
-              {joined.map((person) => (
-                <PersonRow
-                  key={person.personId}
-                  person={person}
-                  admins={joined.filter((one) => one.roles.includes('admin')).length}
-                  chosen={person.personId === chosenId}
-                  onChoose={() => setChosenId(person.personId)}
-                />
-              ))}
-            </View>
+            {phone ? (
+              <View role="list" aria-label="People" style={styles.table}>
+                {joined.map((person) => (
+                  <View key={person.personId} role="listitem" style={styles.card}>
+                    <Who person={person} chosen={person.personId === chosenId} onChoose={choose} />
+                    <Roles person={person} admins={admins} />
+                    <Text variant="small" tone="quiet">
+                      {`last seen ${seenWords(person)}, ${sessionWords(person)}`}
+                    </Text>
+                  </View>
+                ))}
+              </View>
+            ) : (
+              <Table
+                label="People"
+                rows={joined}
+                keyOf={(person) => person.personId}
+                isChosen={(person) => person.personId === chosenId}
+                onOpen={(person) => setChosenId(person.personId)}
+                columns={[
+                  {
+                    key: 'person',
+                    label: 'Person',
+                    sortBy: (person) => person.name.toLowerCase(),
+                    cell: (person) => <Who person={person} chosen={person.personId === chosenId} onChoose={choose} />,
+                  },
+                  {
+                    key: 'roles',
+                    label: 'Roles, press to give or take',
+                    width: 372,
+                    cell: (person) => <Roles person={person} admins={admins} />,
+                  },
+                  {
+                    key: 'seen',
+                    label: 'Last seen',
+                    width: 120,
+                    sortBy: (person) => -(person.lastSeenAtMs ?? 0),
+                    cell: (person) => <Text variant="small">{seenWords(person)}</Text>,
+                  },
+                  {
+                    key: 'sessions',
+                    label: 'Sessions',
+                    width: 90,
+                    sortBy: (person) => -person.sessionCount,
+                    cell: (person) => (
+                      <Text variant="small" tone={person.sessionCount === 0 ? 'quiet' : 'body'}>
+                        {sessionWords(person)}
+                      </Text>
+                    ),
+                  },
+                ]}
+              />
+            )}
             {joined.length === 1 ? <Text tone="quiet">Only you so far.</Text> : null}
             <WaitingLinks people={people.data.people.filter((person) => !person.hasJoined && !person.isDemo)} />
           </View>
           {chosen && wide ? <PersonPanel key={chosen.personId} person={chosen} /> : null}
         </View>
       ) : null}
-      {wide ? null : invite}
       {chosen && !wide ? (
         <Sheet title={chosen.name} onClose={() => setChosenId(null)}>
           <PersonPanel key={chosen.personId} person={chosen} bare />
         </Sheet>
       ) : null}
+      {phone ? <PrimaryStrip>{invite}</PrimaryStrip> : null}
       {inviting ? <InviteSheet onClose={() => setInviting(false)} /> : null}
     </TeamPage>
   );
 }
 
-function PersonRow({
-  person,
-  admins,
-  chosen,
-  onChoose,
-}: {
-  person: Person;
-  admins: number;
-  chosen: boolean;
-  onChoose: () => void;
-}) {
+const seenWords = (person: Person) => (person.lastSeenAtMs === null ? 'never' : when(person.lastSeenAtMs));
+
+const sessionWords = (person: Person) =>
+  person.sessionCount === 0 ? 'none' : person.sessionCount === 1 ? '1 session' : `${person.sessionCount} sessions`;
+
+/** Name and address; pressing shows sessions and acts. */
+function Who({ person, chosen, onChoose }: { person: Person; chosen: boolean; onChoose: (person: Person) => void }) {
   const me = useMe();
-  const wide = useBreakpoint() === 'wide';
+  return (
+    <Pressable role="button" aria-pressed={chosen} onPress={() => onChoose(person)} style={styles.person}>
+      <Text variant="bodyStrong" tone="strong" numberOfLines={1}>
+        {person.name}
+      </Text>
+      <Text variant="small" tone="quiet" numberOfLines={1}>
+        {person.personId === me.personId ? `${person.email}, you` : person.email}
+      </Text>
+    </Pressable>
+  );
+}
+
+/** Four words to press, saved at once. */
+function Roles({ person, admins }: { person: Person; admins: number }) {
+  const me = useMe();
   const act = useAct(setRoles, [listPeople, getSession]);
   const isLastAdmin = person.roles.includes('admin') && admins === 1;
   const save = (roles: Role[]) =>
@@ -97,48 +155,28 @@ function PersonRow({
       ? 'Never releases own work, whatever the roles.'
       : null;
   return (
-    <View role="listitem" style={[styles.row, wide ? styles.rowWide : null, chosen ? styles.chosen : null]}>
-      <Pressable role="button" aria-pressed={chosen} onPress={onChoose} style={styles.person}>
-        <Text variant="bodyStrong" tone="strong">
-          {person.name}
+    <View style={styles.roles}>
+      <AnyOf<Role>
+        label={`Roles of ${person.name}`}
+        choices={roleSchema.options.map((role) => ({
+          value: role,
+          label: role,
+          offBecause: role === 'admin' && isLastAdmin ? 'There must be one admin.' : null,
+        }))}
+        values={person.roles}
+        onToggle={(role, on) =>
+          save(roleSchema.options.filter((one) => (one === role ? on : person.roles.includes(one))))
+        }
+      />
+      {act.error ? (
+        <Text variant="small" tone="danger" role="alert">
+          {act.error.message}
         </Text>
+      ) : note ? (
         <Text variant="small" tone="quiet">
-          {person.personId === me.personId ? `${person.email}, you` : person.email}
+          {note}
         </Text>
-      </Pressable>
-      <View style={styles.roles}>
-        <AnyOf<Role>
-          label={`Roles of ${person.name}`}
-          choices={roleSchema.options.map((role) => ({
-            value: role,
-            label: role,
-            offBecause: role === 'admin' && isLastAdmin ? 'There must be one admin.' : null,
-          }))}
-          values={person.roles}
-          onToggle={(role, on) =>
-            save(roleSchema.options.filter((one) => (one === role ? on : person.roles.includes(one))))
-          }
-        />
-        {act.error ? (
-          <Text variant="small" tone="danger" role="alert">
-            {act.error.message}
-          </Text>
-        ) : note ? (
-          <Text variant="small" tone="quiet">
-            {note}
-          </Text>
-        ) : null}
-      </View>
-      <View style={styles.seen}>
-        <Text variant="small">{person.lastSeenAtMs === null ? 'never' : when(person.lastSeenAtMs)}</Text>
-        <Text variant="small" tone="quiet">
-          {person.sessionCount === 0
-            ? 'no session'
-            : person.sessionCount === 1
-              ? '1 session'
-              : `${person.sessionCount} sessions`}
-        </Text>
-      </View>
+      ) : null}
     </View>
   );
 }
@@ -148,17 +186,7 @@ const styles = StyleSheet.create({
   stack: { gap: 16 },
   main: { flexGrow: 1, flexShrink: 1, minWidth: 0, gap: 24 },
   table: { borderWidth: 1, borderColor: color.rule.line, backgroundColor: color.surface.sheet },
-  row: {
-    gap: 10,
-    padding: 12,
-    borderBottomWidth: 1,
-    borderBottomColor: color.rule.hair,
-    borderLeftWidth: 3,
-    borderLeftColor: 'transparent',
-  },
-  rowWide: { flexDirection: 'row', alignItems: 'center', gap: 20, minHeight: 60 },
-  chosen: { backgroundColor: color.surface.raised, borderLeftColor: color.ink.strong },
-  person: { width: 232, maxWidth: '100%' },
-  roles: { flexGrow: 1, flexShrink: 1, gap: 4, maxWidth: 400 },
-  seen: { minWidth: 120 },
+  card: { gap: 10, padding: 12, borderBottomWidth: 1, borderBottomColor: color.rule.hair },
+  person: { minHeight: 44, minWidth: 0, justifyContent: 'center' },
+  roles: { gap: 4, maxWidth: 400, alignSelf: 'stretch' },
 });

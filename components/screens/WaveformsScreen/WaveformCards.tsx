@@ -80,7 +80,7 @@ const styles = StyleSheet.create({
   list: { gap: 10 },
   link: { textDecorationLine: 'none', display: 'flex' },
   card: {
-    flexGrow: 1,
+    flex: 1,
     minHeight: 140,
     minWidth: 0,
     paddingVertical: 9,

@@ -1,17 +1,18 @@
 import { useRouter } from 'expo-router';
-import { useEffect, useRef, useState } from 'react';
-import { ScrollView, StyleSheet, View, type TextInput } from 'react-native';
+import { useEffect, useState } from 'react';
+import { ScrollView, StyleSheet, View } from 'react-native';
 import { Button } from '@/components/ui/Button';
+import { FindField, isTyping } from '@/components/ui/FindField';
 import { Empty, Failing, Loading } from '@/components/ui/states';
-import { TextField } from '@/components/ui/TextField';
-import { color } from '@/components/ui/theme';
 import { useBreakpoint } from '@/components/ui/useBreakpoint';
 import { AnyOf, OneOf } from '@/components/ui/WordsToPress';
+import { useConnectionLost } from '@/lib/client/connection';
 import { useApi } from '@/lib/client/useApi';
 import { useMay } from '@/lib/client/useSession';
 import { listWaveforms } from '@/lib/contracts/waveforms';
 import type { RevisionState } from '@/lib/contracts/reviews';
 import { Page } from '../Page';
+import { PrimaryStrip } from '../PrimaryStrip';
 import { useLater } from '../useLater';
 import { WaveformCards } from './WaveformCards';
 import { WaveformTable } from './WaveformTable';
@@ -28,7 +29,7 @@ export function WaveformsScreen() {
   const [mine, setMine] = useState(false);
   const [find, setFind] = useState('');
   const [finding, setFinding] = useState(false);
-  const findRef = useRef<TextInput>(null);
+  const needsConnection = useConnectionLost() ? 'Needs a connection.' : null;
   const wanted = useLater(find.trim(), 250);
   const list = useApi(
     listWaveforms,
@@ -45,18 +46,15 @@ export function WaveformsScreen() {
 
   useEffect(() => {
     const onKey = (event: KeyboardEvent) => {
-      const typing = event.target instanceof HTMLElement && /^(INPUT|TEXTAREA)$/.test(event.target.tagName);
-      if (typing || event.ctrlKey || event.metaKey || event.altKey) return;
-      if (event.key === '/') {
-        event.preventDefault();
-        setFinding(true);
-        setTimeout(() => findRef.current?.focus(), 0);
-      }
-      if (event.key.toLowerCase() === 'n' && mayMake) router.push('/start');
+      if (isTyping(event) || event.ctrlKey || event.metaKey || event.altKey) return;
+      if (event.key === '/') setFinding(true);
+      if (event.key.toLowerCase() === 'n' && mayMake && !needsConnection) router.push('/start');
+      if (event.key === 'ArrowDown' && document.activeElement === document.body)
+        document.querySelector<HTMLElement>('[data-row] a[href]')?.focus();
     };
     window.addEventListener('keydown', onKey);
     return () => window.removeEventListener('keydown', onKey);
-  }, [mayMake, router]);
+  }, [mayMake, needsConnection, router]);
 
   const counts = list.data?.counts;
   const choices = (
@@ -72,21 +70,13 @@ export function WaveformsScreen() {
     .map(([value, label, count]) => ({ value, label, ...(count === undefined ? {} : { count }) }));
 
   const field = (
-    <TextField
+    <FindField
       label="Find a title or a digest"
-      quietLabel
-      placeholder="Find a title or a digest"
       value={find}
-      onChangeText={setFind}
-      inputRef={findRef}
-      autoCapitalize="none"
-      onKeyPress={(event) => {
-        if (event.nativeEvent.key === 'Escape') {
-          setFind('');
-          setFinding(false);
-        }
-      }}
-      style={phone ? styles.findPhone : styles.find}
+      onChange={setFind}
+      onLeave={() => setFinding(false)}
+      autoFocus={phone}
+      {...(phone ? {} : { style: styles.find })}
     />
   );
 
@@ -94,19 +84,25 @@ export function WaveformsScreen() {
     <Page
       title="Waveforms"
       headAside={
-        <Button kind="plain" expanded={finding} onPress={() => setFinding(!finding)}>
-          Find
+        <Button
+          kind="plain"
+          onPress={() => {
+            setFind('');
+            setFinding(!finding);
+          }}
+        >
+          {finding ? 'Close' : 'Find'}
         </Button>
       }
+      headField={finding ? field : null}
       actions={
         mayMake ? (
-          <Button kind="filled" onPress={make}>
+          <Button kind="filled" disabledBecause={needsConnection} onPress={make}>
             New waveform
           </Button>
         ) : null
       }
     >
-      {phone && finding ? field : null}
       <View style={styles.filters}>
         <ScrollView horizontal showsHorizontalScrollIndicator={false} style={styles.words}>
           <OneOf<Filter> label="State" bare choices={choices} value={filter} onChange={setFilter} />
@@ -148,11 +144,11 @@ export function WaveformsScreen() {
         )
       ) : null}
       {phone && mayMake ? (
-        <View style={styles.strip}>
-          <Button kind="filled" size="foot" onPress={make} fill>
+        <PrimaryStrip>
+          <Button kind="filled" size="foot" disabledBecause={needsConnection} onPress={make} fill>
             New waveform
           </Button>
-        </View>
+        </PrimaryStrip>
       ) : null}
     </Page>
   );
@@ -187,17 +183,4 @@ const styles = StyleSheet.create({
   filters: { flexDirection: 'row', alignItems: 'flex-start', gap: 12 },
   words: { flexGrow: 1, flexShrink: 1 },
   find: { width: 270 },
-  findPhone: { width: '100%' },
-  strip: {
-    position: 'sticky' as 'absolute',
-    bottom: 0,
-    marginTop: 'auto',
-    marginHorizontal: -12,
-    marginBottom: -12,
-    padding: 10,
-    paddingHorizontal: 12,
-    backgroundColor: color.surface.trough,
-    borderTopWidth: 1,
-    borderTopColor: color.rule.line,
-  },
 });
