@@ -68,6 +68,12 @@ function BenchEditor({ bench, start }: { bench: Bench | null; start: BenchProfil
   const changed = JSON.stringify(profile) !== JSON.stringify(start);
   const parsed = useMemo(() => parseBenchProfile(profile), [profile]);
   const errors = { ...(parsed.ok ? {} : byPointer(parsed.issues)), ...typing };
+  // a new profile's empty name is no mistake before somebody has been there
+  const shownErrors: Record<string, string> = { ...errors };
+  if (profile.about.name.trim() === '') {
+    if (!bench && profile.about.name === start.about.name) delete shownErrors['/about/name'];
+    else shownErrors['/about/name'] = 'A bench needs a name.';
+  }
   const warnings = parsed.ok ? benchWarnings(profile.content) : [];
   const newest = bench?.versions[0] ?? null;
   const onDone = (saved: Bench) => {
@@ -165,7 +171,7 @@ function BenchEditor({ bench, start }: { bench: Bench | null; start: BenchProfil
           <BenchForm
             profile={profile}
             onChange={setProfile}
-            errors={errors}
+            errors={shownErrors}
             warnings={warnings}
             readOnly={!mayWrite}
             onTyping={(pointer, message) => {

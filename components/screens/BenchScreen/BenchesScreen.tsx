@@ -4,11 +4,13 @@ import { Button } from '@/components/ui/Button';
 import { Empty, Failing, Loading } from '@/components/ui/states';
 import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
+import { useBreakpoint } from '@/components/ui/useBreakpoint';
 import { useApi } from '@/lib/client/useApi';
 import { useMay } from '@/lib/client/useSession';
 import { listBenches, type BenchItem } from '@/lib/contracts/benches';
 import { formatNumber, formatQuantity } from '@/lib/drawing/quantities';
 import { Page } from '../Page';
+import { PrimaryStrip } from '../PrimaryStrip';
 import { when } from '../when';
 
 function layoutWords({ profile: { content } }: BenchItem): string {
@@ -30,21 +32,22 @@ function limitWords({ profile: { content } }: BenchItem): string {
 /** The team's generators by their limits and layouts. */
 export function BenchesScreen() {
   const router = useRouter();
+  const phone = useBreakpoint() === 'phone';
   const mayWrite = useMay('writeBenches');
   const benches = useApi(listBenches, {});
   const add = mayWrite ? (
-    <Button kind="filled" onPress={() => router.push('/benches/new')}>
+    <Button kind="filled" size={phone ? 'foot' : 'usual'} fill={phone} onPress={() => router.push('/benches/new')}>
       Add a bench
     </Button>
   ) : null;
   return (
-    <Page title="Benches" backTo="/more" actions={add} headAside={add}>
+    <Page title="Benches" backTo="/more" actions={add}>
       {benches.isPending ? <Loading what="bench profiles" /> : null}
       {benches.error && !benches.data ? (
         <Failing what={`The list did not load. ${benches.error.message}`} onRetry={() => void benches.refetch()} />
       ) : null}
       {benches.data?.items.length === 0 ? (
-        <Empty>No bench profile yet. Take the limits from the generator’s manual.</Empty>
+        <Empty action={phone ? null : add}>No bench profiles yet. Take the limits from the generator’s manual.</Empty>
       ) : null}
       {benches.data && benches.data.items.length > 0 ? (
         <View role="list" aria-label="Bench profiles" style={styles.list}>
@@ -52,7 +55,7 @@ export function BenchesScreen() {
             <View key={item.benchId} role="listitem">
               <Link href={{ pathname: '/benches/[benchId]', params: { benchId: item.benchId } }} style={styles.link}>
                 <View style={styles.row}>
-                  <Text variant="bodyStrong" tone="strong">
+                  <Text variant="bodyStrong" tone="strong" numberOfLines={2}>
                     {item.name}
                   </Text>
                   <Text variant="small">{layoutWords(item)}</Text>
@@ -68,12 +71,13 @@ export function BenchesScreen() {
           ))}
         </View>
       ) : null}
+      {phone && add ? <PrimaryStrip>{add}</PrimaryStrip> : null}
     </Page>
   );
 }
 
 const styles = StyleSheet.create({
   list: { borderWidth: 1, borderColor: color.rule.line, backgroundColor: color.surface.sheet },
-  link: { textDecorationLine: 'none', display: 'flex' },
+  link: { textDecorationLine: 'none', display: 'flex', minWidth: 0 },
   row: { flex: 1, minWidth: 0, padding: 14, gap: 2, borderBottomWidth: 1, borderBottomColor: color.rule.hair },
 });
