@@ -64,8 +64,8 @@ const styles = StyleSheet.create({
     paddingHorizontal: 13,
   },
   point: { flexDirection: 'row', gap: 8, marginBottom: 4 },
-  number: { width: 20 },
-  words: { flexGrow: 1, flexShrink: 1 },
+  number: { width: 20, flexShrink: 0 },
+  words: { flex: 1, minWidth: 0 },
   all: { alignItems: 'flex-start', marginLeft: -8 },
   list: { gap: 8 },
 });

@@ -130,6 +130,11 @@ function Setting({ card, onSetting }: { card: LevelCard; onSetting: (settingDbm:
           onChangeText={setText}
           onBlur={leave}
           onSubmitEditing={leave}
+          onKeyPress={(event) => {
+            if (event.nativeEvent.key !== 'Escape') return;
+            setText(shown);
+            setProblem(null);
+          }}
           style={[textStyle('figureHero'), styles.settingInput]}
         />
         <Text tone="quiet">dBm</Text>

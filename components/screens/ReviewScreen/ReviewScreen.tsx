@@ -18,6 +18,7 @@ import { useApi } from '@/lib/client/useApi';
 import { useMay } from '@/lib/client/useSession';
 import { showReview, type OpenReview } from '@/lib/contracts/reviews';
 import { showRevision, showWaveform, type OpenedRevision } from '@/lib/contracts/waveforms';
+import { formatNumber } from '@/lib/drawing/quantities';
 import { contentFigures, measuredFigures, reachSentences } from '../figureWords';
 import { Page } from '../Page';
 import { when } from '../when';
@@ -69,6 +70,7 @@ function OpenedReview({
   const { revision } = opened;
   const done = () => router.replace({ pathname: '/waveforms/[waveformId]/history', params: { waveformId } });
   const mayRelease = review.releasableBy.you === 'yes';
+  const own = review.releasableBy.you === 'ownWork';
   const buttons = mayReview ? (
     <>
       <Button size={phone ? 'foot' : 'usual'} onPress={() => setAsking('return')}>
@@ -78,11 +80,11 @@ function OpenedReview({
         <Button kind="filled" size={phone ? 'foot' : 'usual'} fill={phone} onPress={() => setAsking('release')}>
           {`Release edition ${review.nextEditionNumber}`}
         </Button>
-      ) : (
+      ) : own ? (
         <Text variant="small" weight={600} style={styles.own}>
           You drew this. Somebody else releases it.
         </Text>
-      )}
+      ) : null}
     </>
   ) : null;
 
@@ -95,7 +97,10 @@ function OpenedReview({
         spectrumHeightPx={phone ? 140 : 240}
         label={`Grid and spectrum of revision ${revision.number}`}
       />
-      <TrayList content={content} />
+      <View style={styles.under}>
+        <TrayList content={content} />
+        {phone ? <DigestChip digest={revision.contentDigest} /> : null}
+      </View>
       <Text variant="small" tone="quiet">
         Spectrum of the rendered samples, over a 0 dB cell; a released file is measured again in its pack.
       </Text>
@@ -190,10 +195,10 @@ function OpenedReview({
 function Intent({ opened }: { opened: OpenedRevision }) {
   const { intent } = opened.document;
   const say = (name: string, dbm: number | null) =>
-    `${name} ${dbm === null ? 'not given' : `${String(dbm).replace('-', '−')} dBm`}`;
+    `${name} ${dbm === null ? 'not given' : `${formatNumber(dbm, 2)} dBm`}`;
   return (
     <Text>
-      {`${say('Mean wanted', intent.outputRmsDbm)}, loss ${intent.lossDb} dB, ${say('peak limit', intent.devicePeakLimitDbm)}, ${say('mean limit', intent.deviceMeanLimitDbm)}.`}
+      {`${say('Mean wanted', intent.outputRmsDbm)}, loss ${formatNumber(intent.lossDb, 2)} dB, ${say('peak limit', intent.devicePeakLimitDbm)}, ${say('mean limit', intent.deviceMeanLimitDbm)}.`}
     </Text>
   );
 }
@@ -204,7 +209,8 @@ const styles = StyleSheet.create({
   head: { flexDirection: 'row', alignItems: 'center', gap: 12 },
   grow: { flexGrow: 1, flexShrink: 1, minWidth: 0, gap: 4 },
   titleRow: { flexDirection: 'row', flexWrap: 'wrap', alignItems: 'center', gap: 12 },
-  own: { maxWidth: 200 },
+  own: { maxWidth: 200, flexShrink: 1 },
+  under: { flexDirection: 'row', flexWrap: 'wrap', alignItems: 'center', justifyContent: 'space-between', gap: 8 },
   columns: { flexDirection: 'row', alignItems: 'flex-start', gap: 24 },
   left: { flexGrow: 1, flexShrink: 1, minWidth: 0 },
   right: { width: 436, flexShrink: 0, gap: 20 },

@@ -5,6 +5,7 @@ import { Button } from '@/components/ui/Button';
 import { Loading } from '@/components/ui/states';
 import { Notice } from '@/components/ui/Notice';
 import { Text } from '@/components/ui/Text';
+import { TextLink } from '@/components/ui/TextLink';
 import { TextField } from '@/components/ui/TextField';
 import { fieldErrors } from '@/lib/client/fieldErrors';
 import { useAct } from '@/lib/client/useApi';
@@ -31,7 +32,16 @@ export function LinkScreen({ kind }: { kind: 'invite' | 'reset' }) {
     <AuthPage title={kind === 'invite' ? 'Join' : 'New password'}>
       {look.isPending ? <Loading what="the link" rows={2} rowHeight={52} /> : null}
       {look.error ? (
-        <Notice kind="danger">
+        <Notice
+          kind="danger"
+          actions={
+            look.error.problem === null ? (
+              <Button onPress={() => lookNow({ body: { token } })}>Try again</Button>
+            ) : (
+              <TextLink href="/sign-in">Back to sign in</TextLink>
+            )
+          }
+        >
           {look.error.problem === null
             ? 'No connection. Signing in needs the server.'
             : 'This link was used or is too old. Ask for a new one.'}
@@ -66,7 +76,14 @@ export function LinkScreen({ kind }: { kind: 'invite' | 'reset' }) {
             autoComplete="new-password"
             secret
             onSubmitEditing={send}
-            error={errors.password ?? (take.error && !take.error.problem?.issues ? take.error.message : null)}
+            error={
+              errors.password ??
+              (take.error && !take.error.problem?.issues
+                ? take.error.problem === null
+                  ? 'No connection. Signing in needs the server.'
+                  : take.error.message
+                : null)
+            }
           />
           <View style={styles.row}>
             <Button kind="filled" size="foot" busy={take.isPending} onPress={send}>

@@ -31,15 +31,15 @@ export function BareGridSentence({
   );
   return (
     <View style={styles.group}>
-      <Text variant="label" tone="quiet" style={styles.title}>
+      <Text variant="label" heading={2} tone="quiet" style={styles.title}>
         A bare grid
       </Text>
       <View style={[styles.sentence, chosen ? styles.chosen : null]}>
         <Text>Grid of</Text>
         {blank('fftSize', 'Points', 54)}
         <Text>points,</Text>
-        {blank('spacing', 'Spacing', 56)}
-        <Text>Hz apart,</Text>
+        {blank('spacing', 'Spacing', 76)}
+        <Text>apart,</Text>
         {blank('symbols', 'Symbols', 40)}
         <Text>symbols, prefix</Text>
         {blank('prefix', 'Prefix', 48)}

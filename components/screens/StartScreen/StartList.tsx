@@ -1,3 +1,4 @@
+import { useRef } from 'react';
 import { Pressable, StyleSheet, View } from 'react-native';
 import { GridPicture } from '@/components/ui/GridPicture';
 import { Text } from '@/components/ui/Text';
@@ -12,24 +13,46 @@ export function StartList({
   starts,
   chosenId,
   onChoose,
+  onUse,
 }: {
   title: string;
   starts: readonly Start[];
   chosenId: string;
   onChoose: (start: Start) => void;
+  /** Enter on the chosen one. */
+  onUse: () => void;
 }) {
+  const refs = useRef(new Map<string, { focus: () => void }>());
+  if (starts.length === 0) return null;
+  const hasChosen = starts.some((start) => start.startId === chosenId);
+  const go = (to: number) => {
+    const next = starts[(to + starts.length) % starts.length]!;
+    onChoose(next);
+    refs.current.get(next.startId)?.focus();
+  };
   return (
     <View style={styles.group}>
-      <Text variant="label" tone="quiet" style={styles.title}>
+      <Text variant="label" heading={2} tone="quiet" style={styles.title}>
         {title}
       </Text>
       <View role="radiogroup" aria-label={title} style={styles.list}>
-        {starts.map((start) => (
+        {starts.map((start, i) => (
           <Entry
             key={start.startId}
             start={start}
             chosen={start.startId === chosenId}
+            tabbable={start.startId === chosenId || (!hasChosen && i === 0)}
             onPress={() => onChoose(start)}
+            onKey={(key) => {
+              if (key === 'ArrowDown') go(i + 1);
+              else if (key === 'ArrowUp') go(i - 1);
+              else if (key === 'Enter' && start.startId === chosenId) onUse();
+              else return false;
+              return true;
+            }}
+            register={(node) => {
+              if (node) refs.current.set(start.startId, node);
+            }}
           />
         ))}
       </View>
@@ -37,14 +60,35 @@ export function StartList({
   );
 }
 
-function Entry({ start, chosen, onPress }: { start: Start; chosen: boolean; onPress: () => void }) {
+function Entry({
+  start,
+  chosen,
+  tabbable,
+  onPress,
+  onKey,
+  register,
+}: {
+  start: Start;
+  chosen: boolean;
+  tabbable: boolean;
+  onPress: () => void;
+  onKey: (key: string) => boolean;
+  register: (node: { focus: () => void } | null) => void;
+}) {
   const { content } = start.document;
   const spacing = formatFraction(content.subcarrierSpacingHz);
   return (
     <Pressable
+      ref={register as never}
       role="radio"
       aria-checked={chosen}
+      tabIndex={tabbable ? 0 : -1}
       onPress={onPress}
+      {...({
+        onKeyDown: (event: { key: string; preventDefault: () => void }) => {
+          if (onKey(event.key)) event.preventDefault();
+        },
+      } as object)}
       style={(state) => [
         styles.entry,
         chosen ? styles.chosen : null,

@@ -2,12 +2,14 @@ import { useRouter } from 'expo-router';
 import { useMemo, useState } from 'react';
 import { StyleSheet, View } from 'react-native';
 import { Button } from '@/components/ui/Button';
+import { FindField } from '@/components/ui/FindField';
 import { Notice } from '@/components/ui/Notice';
 import { Forbidden } from '@/components/ui/states';
 import { Text } from '@/components/ui/Text';
 import { TextField } from '@/components/ui/TextField';
 import { color } from '@/components/ui/theme';
 import { useBreakpoint } from '@/components/ui/useBreakpoint';
+import { useConnectionLost } from '@/lib/client/connection';
 import { useAct } from '@/lib/client/useApi';
 import { useMay } from '@/lib/client/useSession';
 import { createWaveform, listWaveforms } from '@/lib/contracts/waveforms';
@@ -21,7 +23,9 @@ import { bareGridDefaults, bareGridStart, presetStarts, type BareGridText, type 
 /** Choose a start: a public standard's layout, a bare grid, or a document. */
 export function StartScreen() {
   const router = useRouter();
-  const wide = useBreakpoint() === 'wide';
+  const size = useBreakpoint();
+  const wide = size === 'wide';
+  const needsConnection = useConnectionLost() ? 'Needs a connection.' : null;
   const mayMake = useMay('saveWaveforms');
   const [presets] = useState(presetStarts);
   const [chosen, setChosen] = useState<Start>(presets[0]!);
@@ -67,7 +71,11 @@ export function StartScreen() {
       fill={!wide}
       busy={create.isPending}
       disabledBecause={
-        name.trim() === '' ? 'A waveform needs a title.' : name.trim().length > 120 ? 'At most 120 characters.' : null
+        name.trim() === ''
+          ? 'A waveform needs a title.'
+          : name.trim().length > 120
+            ? 'At most 120 characters.'
+            : needsConnection
       }
       onPress={use}
     >
@@ -85,27 +93,28 @@ export function StartScreen() {
       <View style={wide ? styles.wide : styles.narrow}>
         <View style={wide ? styles.left : null}>
           <View style={styles.head}>
-            {wide ? (
+            {size !== 'phone' ? (
               <Text variant="display" heading={1} tone="strong" style={styles.grow}>
                 Start from
               </Text>
             ) : null}
-            <TextField
-              label="Find a preset"
-              quietLabel
-              placeholder="Find a preset"
-              value={find}
-              onChangeText={setFind}
-              style={wide ? styles.find : styles.grow}
-            />
+            <FindField label="Find a preset" value={find} onChange={setFind} style={wide ? styles.find : styles.grow} />
           </View>
           <StartList
             title="Public standards, each with its clause"
             starts={shown}
             chosenId={chosen.startId}
             onChoose={choose}
+            onUse={use}
           />
-          {shown.length === 0 ? <Text tone="quiet">{`Nothing matches “${find.trim()}”.`}</Text> : null}
+          {shown.length === 0 ? (
+            <View style={styles.nothing}>
+              <Text tone="quiet">{`Nothing matches “${find.trim()}”.`}</Text>
+              <Button kind="plain" onPress={() => setFind('')}>
+                Clear
+              </Button>
+            </View>
+          ) : null}
           <BareGridSentence
             text={bare}
             onChange={setBare}
@@ -122,6 +131,13 @@ export function StartScreen() {
               value={name}
               onChangeText={setTitle}
               maxLength={130}
+              error={
+                title !== null && name.trim() === ''
+                  ? 'A waveform needs a title.'
+                  : name.trim().length > 120
+                    ? 'At most 120 characters.'
+                    : null
+              }
               style={styles.grow}
             />
             {wide ? <View style={styles.use}>{useButton}</View> : null}
@@ -144,7 +160,8 @@ const styles = StyleSheet.create({
   wide: { flexDirection: 'row', alignItems: 'flex-start', gap: 40, padding: 24, paddingHorizontal: 40 },
   narrow: { padding: 12, gap: 16 },
   left: { width: 560, flexShrink: 1 },
-  head: { flexDirection: 'row', alignItems: 'flex-start', gap: 16 },
+  head: { flexDirection: 'row', alignItems: 'center', gap: 16, marginBottom: 12 },
+  nothing: { flexDirection: 'row', alignItems: 'center', gap: 8, marginBottom: 20 },
   grow: { flexGrow: 1, flexShrink: 1 },
   find: { width: 200 },
   sheet: {

@@ -32,7 +32,7 @@ export interface BareGridText {
   prefix: string;
 }
 
-export const bareGridDefaults: BareGridText = { fftSize: '2048', spacing: '15k', symbols: '14', prefix: '144' };
+export const bareGridDefaults: BareGridText = { fftSize: '2048', spacing: '15 kHz', symbols: '14', prefix: '144' };
 
 const onlyTwoThreeFive = (size: number) => {
   for (const prime of [2, 3, 5]) while (size % prime === 0) size /= prime;
@@ -44,7 +44,7 @@ export function bareGridStart(text: BareGridText): { ok: true; value: Start } | 
   const fftSize = parseInteger(text.fftSize);
   if (!fftSize.ok || fftSize.value < 16 || fftSize.value > 16384 || !onlyTwoThreeFive(fftSize.value))
     return { ok: false, message: 'Points: 16 to 16384, only factors 2, 3 and 5.' };
-  const spacing = parseFraction(text.spacing);
+  const spacing = parseFraction(text.spacing, 'Hz');
   if (!spacing.ok) return { ok: false, message: `Spacing: ${spacing.message}` };
   if (spacing.value[0] / spacing.value[1] > 1e9) return { ok: false, message: 'Spacing: at most 1 GHz.' };
   const symbols = parseInteger(text.symbols);
