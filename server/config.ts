@@ -1,5 +1,6 @@
 import path from 'node:path';
 import { z } from 'zod';
+import { schemaWords } from '@/lib/document/issues';
 
 interface Setting {
   name: string;
@@ -60,7 +61,9 @@ const originSchema = z.string().transform((value, context) => {
   return url?.origin ?? '';
 });
 
-const wholeNumber = z.coerce.number({ error: 'is not a number' }).int('is not a whole number');
+const wholeNumber = z.coerce
+  .number({ error: ({ code }) => (code === 'invalid_type' ? 'is not a number' : undefined) })
+  .int('is not a whole number');
 
 export const envSchema = z.object({
   PORT: wholeNumber.min(0).max(65535).default(8080),
@@ -102,7 +105,7 @@ export class StartRefused extends Error {}
 export function readConfig(env: Readonly<Record<string, string | undefined>>, rootDir: string): Config {
   // An empty value is what a compose file leaves behind: it means "not set".
   const given = Object.fromEntries(Object.entries(env).filter(([, value]) => value !== ''));
-  const parsed = envSchema.safeParse(given);
+  const parsed = envSchema.safeParse(given, { error: schemaWords });
   if (!parsed.success) {
     const words = parsed.error.issues.map((issue) => `${issue.path.join('.')}: ${issue.message}`).join('; ');
     throw new StartRefused(`The settings are not right. ${words}`);

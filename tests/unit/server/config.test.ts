@@ -46,6 +46,21 @@ it.each([
   expect(() => readConfig(env, root)).toThrow(StartRefused);
 });
 
+it('says in words what is wrong with a setting', () => {
+  const words = (env: Record<string, string>) => {
+    try {
+      readConfig(env, root);
+    } catch (error) {
+      return (error as Error).message;
+    }
+    return null;
+  };
+  expect(words({ PORT: '99999', LOG_LEVEL: 'loud' })).toBe(
+    'The settings are not right. PORT: must be at most 65535; LOG_LEVEL: must be one of "fatal", "error", "warn", "info", "debug", "silent"',
+  );
+  expect(words({ PORT: 'x' })).toBe('The settings are not right. PORT: is not a number');
+});
+
 it.each([
   ['127.0.0.1', true],
   ['127.9.9.9', true],
