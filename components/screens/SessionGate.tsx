@@ -25,7 +25,9 @@ export function SessionGate({ children }: { children: ReactNode }) {
       </MeContext.Provider>
     );
   }
-  if (session.data) return <Redirect href={session.data.installation.needsFirstRun ? '/first-run' : '/sign-in'} />;
+  // An answer that is being renewed may be older than the sign-in which led here.
+  if (session.data && !session.isFetching)
+    return <Redirect href={session.data.installation.needsFirstRun ? '/first-run' : '/sign-in'} />;
   return (
     <View style={styles.page}>
       {session.error ? (
