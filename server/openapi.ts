@@ -36,6 +36,10 @@ function toOperation(endpoint: Endpoint): ZodOpenApiOperationObject {
     ...(body && { requestBody: { required: true, content: { 'application/json': { schema: body } } } }),
     responses: {
       [String(status)]: { description: 'Done', content: answer },
+      ...(file?.takesRanges && {
+        '206': { description: 'The range that was asked for', content: answer },
+        '304': { description: 'As the ETag in If-None-Match' },
+      }),
       default: {
         description: 'Refused; `code` says why',
         content: { 'application/problem+json': { schema: problemSchema } },
@@ -65,6 +69,15 @@ export function buildOpenApi() {
     },
     security: [{ session: [] }],
     paths,
-    components: { securitySchemes: { session: { type: 'apiKey', in: 'cookie', name: 'combwright' } } },
+    components: {
+      securitySchemes: {
+        session: {
+          type: 'apiKey',
+          in: 'cookie',
+          name: 'combwright',
+          description: 'Where PUBLIC_URL is https the cookie is called `__Host-combwright`.',
+        },
+      },
+    },
   });
 }

@@ -37,7 +37,7 @@ export interface Endpoint<
   idempotent?: boolean;
   response: Response;
   /** A file in place of JSON: `response` is then z.never()-like and the handler writes the answer itself. */
-  file?: { mediaType: string };
+  file?: { mediaType: string; takesRanges?: boolean };
   /** Default 200. */
   status?: number;
 }

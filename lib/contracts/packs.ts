@@ -220,7 +220,7 @@ export const downloadPack = defineEndpoint({
   summary: 'The zip itself',
   params: packParams,
   response: z.unknown(),
-  file: { mediaType: 'application/zip' },
+  file: { mediaType: 'application/zip', takesRanges: true },
 });
 
 export const enterDeviceCard = defineEndpoint({

@@ -27,3 +27,10 @@ it('holds every endpoint with its parameters', () => {
     }
   }
 });
+
+it('says what a download may answer besides the whole', () => {
+  const download = document.paths?.['/api/v1/packs/{packId}/file']?.get as { responses: Record<string, unknown> };
+  expect(Object.keys(download.responses)).toEqual(['200', '206', '304', 'default']);
+  const exported = document.paths?.['/api/v1/revisions/{revisionId}/document']?.get as typeof download;
+  expect(Object.keys(exported.responses)).toEqual(['200', 'default']);
+});
