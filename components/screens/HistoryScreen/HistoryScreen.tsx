@@ -11,7 +11,7 @@ import { TextLink } from '@/components/ui/TextLink';
 import { color } from '@/components/ui/theme';
 import { useBreakpoint } from '@/components/ui/useBreakpoint';
 import { useApi } from '@/lib/client/useApi';
-import { useMay } from '@/lib/client/useSession';
+import { useMay, useMe } from '@/lib/client/useSession';
 import type { Edition } from '@/lib/contracts/reviews';
 import { groupHistory, type HistoryLine } from '@/lib/contracts/history';
 import { listRevisions, showWaveform } from '@/lib/contracts/waveforms';
@@ -169,6 +169,8 @@ function Editions({ editions, onWithdraw }: { editions: readonly Edition[]; onWi
 function GroupRow({ group, waveformId }: { group: HistoryLine; waveformId: string }) {
   const { newest: last, revisions } = group;
   const first = revisions.at(-1)!;
+  const me = useMe();
+  const mayPack = me.rights.includes('makeDraftPacks') && last.savedBy.personId === me.personId;
   const numbers = revisions.length === 1 ? `Revision ${last.number}` : `Revisions ${first.number} to ${last.number}`;
   return (
     <View role="listitem" style={styles.row}>
@@ -193,6 +195,14 @@ function GroupRow({ group, waveformId }: { group: HistoryLine; waveformId: strin
       >
         Fit
       </TextLink>
+      {mayPack && last.stamp.state === 'draft' ? (
+        <TextLink
+          href={{ pathname: '/packs', params: { revisionId: last.revisionId } }}
+          label={`Make a draft pack of revision ${last.number}`}
+        >
+          Make a draft pack
+        </TextLink>
+      ) : null}
     </View>
   );
 }
