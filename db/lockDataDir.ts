@@ -21,7 +21,8 @@ export function lockDataDir(dataDir: string): DataDirLock | null {
     return { release: () => lock.close() };
   } catch (error) {
     lock.close();
-    if (error instanceof Database.SqliteError && error.code.startsWith('SQLITE_BUSY')) return null;
+    // by its code: the class is not one and the same where the package was loaded twice
+    if (String((error as { code?: unknown }).code).startsWith('SQLITE_BUSY')) return null;
     throw error;
   }
 }
