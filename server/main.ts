@@ -8,6 +8,15 @@ const STOP_MS = 4900;
 const rootDir = path.resolve(import.meta.dirname, '..');
 
 let stop: ((exitCode: number) => void) | null = null;
+let isAsked = false;
+
+// before anything is said: who reads the address may stop the server at once
+function onSignal(): void {
+  isAsked = true;
+  stop?.(0);
+}
+process.on('SIGTERM', onSignal);
+process.on('SIGINT', onSignal);
 
 function onStopRequest(reason: string): void {
   console.error(reason);
@@ -25,8 +34,7 @@ try {
     setTimeout(() => process.exit(exitCode || 1), STOP_MS).unref();
     void lifecycle.stop().then(() => process.exit(exitCode));
   };
-  process.on('SIGTERM', () => stop?.(0));
-  process.on('SIGINT', () => stop?.(0));
+  if (isAsked) stop(0);
 } catch (error) {
   if (!(error instanceof StartRefused)) throw error;
   console.error(error.message);
