@@ -10,6 +10,8 @@ export interface Watch {
 
 interface Fixtures {
   watch: Watch;
+  /** An empty window of its own: no cookies, no local copies; on the demo unless another server is named. */
+  newWindow: (origin?: string) => Promise<Page>;
   /** A window of its own for a person of the demo team, signed in through the API. */
   as: (name: DemoName) => Promise<Page>;
 }
@@ -55,17 +57,23 @@ export const test = base.extend<Fixtures>({
     },
     { auto: true },
   ],
-  as: async ({ browser, watch, baseURL }, provide) => {
+  newWindow: async ({ browser, watch, baseURL }, provide) => {
     const contexts: BrowserContext[] = [];
-    await provide(async (name) => {
-      const context = await browser.newContext();
+    await provide(async (origin = baseURL!) => {
+      const context = await browser.newContext({ baseURL: origin });
       contexts.push(context);
-      watch.watch(context, baseURL!);
+      watch.watch(context, origin);
       await context.addInitScript(showHook);
-      await signIn(context.request, baseURL!, name);
       return context.newPage();
     });
     for (const context of contexts) await context.close();
+  },
+  as: async ({ newWindow, baseURL }, provide) => {
+    await provide(async (name) => {
+      const page = await newWindow();
+      await signIn(page.context().request, baseURL!, name);
+      return page;
+    });
   },
 });
 
