@@ -1,11 +1,10 @@
 import { useRef } from 'react';
 import { Pressable, StyleSheet, View } from 'react-native';
-import { GridPicture } from '@/components/ui/GridPicture';
 import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
-import { gridPicture } from '@/lib/drawing/gridPicture';
 import { formatFraction } from '@/lib/drawing/quantities';
-import type { Start } from './starts';
+import { StartPicture } from './StartPicture';
+import type { PresetStart } from './starts';
 
 /** A group of starts: picture, name and citation, size and spacing. */
 export function StartList({
@@ -16,9 +15,9 @@ export function StartList({
   onUse,
 }: {
   title: string;
-  starts: readonly Start[];
+  starts: readonly PresetStart[];
   chosenId: string;
-  onChoose: (start: Start) => void;
+  onChoose: (start: PresetStart) => void;
   /** Enter on the chosen one. */
   onUse: () => void;
 }) {
@@ -68,15 +67,15 @@ function Entry({
   onKey,
   register,
 }: {
-  start: Start;
+  start: PresetStart;
   chosen: boolean;
   tabbable: boolean;
   onPress: () => void;
   onKey: (key: string) => boolean;
   register: (node: { focus: () => void } | null) => void;
 }) {
-  const { content } = start.document;
-  const spacing = formatFraction(content.subcarrierSpacingHz);
+  const { fftSize, subcarrierSpacingHz, symbolCount } = start.numbers;
+  const spacing = formatFraction(subcarrierSpacingHz);
   return (
     <Pressable
       ref={register as never}
@@ -96,7 +95,7 @@ function Entry({
       ]}
     >
       <View style={styles.picture}>
-        <GridPicture picture={gridPicture(content, 144, 21)} width="100%" height={42} />
+        <StartPicture start={start} />
       </View>
       <View style={styles.words}>
         <Text variant="bodyStrong" tone={chosen ? 'onSelected' : 'strong'} numberOfLines={1}>
@@ -108,10 +107,10 @@ function Entry({
       </View>
       <View style={styles.numbers}>
         <Text variant="figureSmall" weight={600} tone={chosen ? 'onSelected' : 'strong'}>
-          {`${content.fftSize} · ${spacing.value} ${spacing.unit}`}
+          {`${fftSize} · ${spacing.value} ${spacing.unit}`}
         </Text>
         <Text variant="small" tone={chosen ? 'onSelected' : 'quiet'}>
-          {`${content.symbolCount} symbols`}
+          {symbolCount === 1 ? '1 symbol' : `${symbolCount} symbols`}
         </Text>
       </View>
     </Pressable>

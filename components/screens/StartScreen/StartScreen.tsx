@@ -13,12 +13,13 @@ import { useConnectionLost } from '@/lib/client/connection';
 import { useAct } from '@/lib/client/useApi';
 import { useMay } from '@/lib/client/useSession';
 import { createWaveform, listWaveforms } from '@/lib/contracts/waveforms';
+import { presetGroups } from '@/lib/document/presets/preset';
 import { Page } from '../Page';
 import { BareGridSentence } from './BareGridSentence';
 import { DocumentDrop } from './DocumentDrop';
 import { StartList } from './StartList';
 import { StartSheet } from './StartSheet';
-import { bareGridDefaults, bareGridStart, presetStarts, type BareGridText, type Start } from './starts';
+import { bareGridDefaults, bareGridStart, groupTitles, presetStarts, type BareGridText, type Start } from './starts';
 
 /** Choose a start: a public standard's layout, a bare grid, or a document. */
 export function StartScreen() {
@@ -100,13 +101,16 @@ export function StartScreen() {
             ) : null}
             <FindField label="Find a preset" value={find} onChange={setFind} style={wide ? styles.find : styles.grow} />
           </View>
-          <StartList
-            title="Public standards, each with its clause"
-            starts={shown}
-            chosenId={chosen.startId}
-            onChoose={choose}
-            onUse={use}
-          />
+          {presetGroups.map((group) => (
+            <StartList
+              key={group}
+              title={groupTitles[group]}
+              starts={shown.filter((start) => start.group === group)}
+              chosenId={chosen.startId}
+              onChoose={choose}
+              onUse={use}
+            />
+          ))}
           {shown.length === 0 ? (
             <View style={styles.nothing}>
               <Text tone="quiet">{`Nothing matches “${find.trim()}”.`}</Text>

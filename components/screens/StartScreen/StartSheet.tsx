@@ -18,6 +18,7 @@ export function StartSheet({ start }: { start: Start }) {
           ? `After ${start.document.about.basedOn}. Every value can be changed.`
           : `${start.source}.`}
       </Text>
+      {start.holds ? <Text>{start.holds}</Text> : null}
       <GridSheet
         content={content}
         gridHeightPx={wide ? 280 : 168}
@@ -42,6 +43,9 @@ export function StartSheet({ start }: { start: Start }) {
             {start.leftOut.map((line) => (
               <Text key={line}>{`${line[0]!.toUpperCase()}${line.slice(1)}.`}</Text>
             ))}
+            {start.fromMemory ? (
+              <Text tone="quiet">{`From memory, not compared with the text: ${start.fromMemory}.`}</Text>
+            ) : null}
           </View>
         ) : null}
       </View>

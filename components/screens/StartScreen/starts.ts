@@ -1,5 +1,5 @@
 import { emptyDocument } from '@/lib/document/newDocument';
-import type { Preset } from '@/lib/document/presets/preset';
+import type { Preset, PresetGroup, PresetNumbers } from '@/lib/document/presets/preset';
 import { presets } from '@/lib/document/presets/presets';
 import { parseFraction, parseInteger } from '@/lib/drawing/quantities';
 import type { WaveformDocument } from '@/lib/synth';
@@ -11,16 +11,36 @@ export interface Start {
   /** Standard and clauses, or what a bare grid or a file is. */
   source: string;
   leftOut: readonly string[];
+  /** What a preset holds, and which of its numbers were compared with no text. */
+  holds?: string;
+  fromMemory?: string | null;
   document: WaveformDocument;
 }
 
-export function presetStarts(): Start[] {
+/** A start that a list can show before its document is built. */
+export interface PresetStart extends Start {
+  group: PresetGroup;
+  numbers: PresetNumbers;
+}
+
+export const groupTitles: Record<PresetGroup, string> = {
+  'Public standards': 'Public standards, each with its clause',
+  'Bench basics': 'Bench basics, common practice',
+};
+
+export function presetStarts(): PresetStart[] {
   return presets.map((preset: Preset) => ({
     startId: preset.presetId,
     title: preset.title,
     source: preset.basedOn,
     leftOut: preset.leftOut,
-    document: preset.build(),
+    holds: preset.holds,
+    fromMemory: preset.fromMemory,
+    group: preset.group,
+    numbers: preset.numbers,
+    get document() {
+      return preset.build();
+    },
   }));
 }
 
