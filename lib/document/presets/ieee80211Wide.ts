@@ -10,7 +10,7 @@ const symbolCount = 16;
  * Pilot m of data symbol n carries Ψ at (m + n) mod P: the base values move on by one pilot in each symbol. As a list by
  * the ink's cell number P·n + m that is P² values, one turn in P symbols.
  */
-export function turningPilots(base: readonly number[]): Factor {
+function turningPilots(base: readonly number[]): Factor {
   const count = base.length;
   const values = Array.from({ length: count * count }, (_, cell) => base[(Math.floor(cell / count) + cell) % count]!);
   return { sequence: listed(values), counter: 'cell', start: 0 };

@@ -29,7 +29,7 @@ export interface Preset {
   build: () => WaveformDocument;
 }
 
-export interface PresetPlan extends Omit<Preset, 'group' | 'build'> {
+interface PresetPlan extends Omit<Preset, 'group' | 'build'> {
   /** Said in the notes before what is left out. */
   remark?: string;
   content: () => Omit<Partial<WaveformContent>, keyof PresetNumbers>;

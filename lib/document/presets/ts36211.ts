@@ -6,7 +6,7 @@ import { dataInk, nullInk, pilotInk, runningPayload } from './presetParts';
 const mostResourceBlocks = 110;
 const cellId = 150;
 
-export type Prefix = 'normal' | 'extended';
+type Prefix = 'normal' | 'extended';
 
 /** c_init of a cell's reference signals (TS 36.211, 6.10.1.1): its 7 stands for both prefixes, N_CP is 1 for the normal one. */
 export function referenceSignalInit(cell: number, slot: number, symbol: number, prefix: Prefix = 'normal'): number {
