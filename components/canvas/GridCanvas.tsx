@@ -18,7 +18,7 @@ interface PictureViewHandle {
  * are drawn by the engine, pointers go straight to the tools.
  */
 export function GridCanvas(props: TableCanvasProps & { faces: FaceFiles }) {
-  const { editor, layout, live, readOnly, label, faces, handle } = props;
+  const { editor, layout, live, label, faces, handle } = props;
   const colors = useThemeColors();
   const { name: themeName } = useTheme();
   const picture = useRef<PictureViewHandle>(null);

@@ -29,6 +29,8 @@ const fonts: Record<FontKey, { face: FaceName; size: number }> = {
 export interface StrokeOptions {
   cap?: 'butt' | 'round' | 'square';
   dash?: readonly number[];
+  /** Upright columns on whole pixels: no smoothing, which would show as stripes and cost time. */
+  crisp?: boolean;
 }
 
 /**
@@ -100,17 +102,20 @@ export function createDrawScope(files: FaceFiles): DrawScope {
         return paint;
       }),
     stroke: (color, widthPx, options = {}) =>
-      kept(`s ${color} ${widthPx} ${options.cap ?? 'butt'} ${options.dash?.join() ?? ''}`, () => {
-        const paint = Skia.Paint();
-        paint.setStyle(PaintStyle.Stroke);
-        paint.setColor(colorOf(color));
-        paint.setStrokeWidth(widthPx);
-        paint.setStrokeCap(caps[options.cap ?? 'butt']);
-        paint.setStrokeJoin(StrokeJoin.Round);
-        paint.setAntiAlias(true);
-        if (options.dash) paint.setPathEffect(Skia.PathEffect.MakeDash([...options.dash], 0));
-        return paint;
-      }),
+      kept(
+        `s ${color} ${widthPx} ${options.cap ?? 'butt'} ${options.dash?.join() ?? ''} ${options.crisp ?? false}`,
+        () => {
+          const paint = Skia.Paint();
+          paint.setStyle(PaintStyle.Stroke);
+          paint.setColor(colorOf(color));
+          paint.setStrokeWidth(widthPx);
+          paint.setStrokeCap(caps[options.cap ?? 'butt']);
+          paint.setStrokeJoin(StrokeJoin.Round);
+          paint.setAntiAlias(!options.crisp);
+          if (options.dash) paint.setPathEffect(Skia.PathEffect.MakeDash([...options.dash], 0));
+          return paint;
+        },
+      ),
     font,
     textWidth(text, key) {
       const name = `${key} ${text}`;

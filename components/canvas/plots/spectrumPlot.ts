@@ -75,6 +75,6 @@ function drawTrace(
     if (c % 2 === 0) outline.push({ x, y: low }, { x, y: high });
     else outline.push({ x, y: high }, { x, y: low });
   }
-  lines(canvas, scope.stroke(theme.plot.traceFill, Math.max(1, px * step) + 1), fill);
+  lines(canvas, scope.stroke(theme.plot.traceFill, Math.max(1, px * step) + 1, { crisp: true }), fill);
   polyline(canvas, scope.stroke(theme.plot.trace, 1.25), outline);
 }

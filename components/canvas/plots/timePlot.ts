@@ -115,8 +115,8 @@ function drawEnvelope(
     const target = washes.some(([from, to]) => x >= from! && x <= to!) ? washed : plain;
     target.push({ x, y: yOf(high) - 0.5 }, { x, y: yOf(low) + 0.5 });
   }
-  lines(canvas, scope.stroke(theme.plot.trace, Math.max(1, columnPx)), plain);
-  lines(canvas, scope.stroke(theme.wash.prefixEdge, Math.max(1, columnPx)), washed);
+  lines(canvas, scope.stroke(theme.plot.trace, Math.max(1, columnPx), { crisp: true }), plain);
+  lines(canvas, scope.stroke(theme.wash.prefixEdge, Math.max(1, columnPx), { crisp: true }), washed);
 }
 
 function drawArc(

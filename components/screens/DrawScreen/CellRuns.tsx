@@ -1,6 +1,7 @@
 import { ScrollView, StyleSheet, View } from 'react-native';
 import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
+import { useBreakpoint } from '@/components/ui/useBreakpoint';
 import { formatInteger } from '@/lib/drawing/quantities';
 import { lowestOf } from '@/lib/editor/document';
 import type { TableContext } from './tableContext';
@@ -30,6 +31,7 @@ function runsOf(row: Uint8Array, lowest: number, names: readonly string[]): stri
 export function CellRuns({ table }: { table: TableContext }) {
   const { editor } = table;
   useChangeCount(editor);
+  const isWide = useBreakpoint() === 'wide';
   const { fftSize, symbolCount, tray } = useSettings(editor);
   const names = tray.map((ink) => ink.name);
   const lowest = lowestOf(fftSize);
@@ -38,7 +40,7 @@ export function CellRuns({ table }: { table: TableContext }) {
     runs: runsOf(editor.document.cells.subarray(symbol * fftSize, (symbol + 1) * fftSize), lowest, names),
   }));
   return (
-    <View style={styles.fill}>
+    <View style={[styles.fill, isWide ? styles.wide : styles.narrow]}>
       <Text tone="strong">This browser cannot draw the grid. The forms do the same work.</Text>
       <ScrollView style={styles.scroll}>
         <View role="table" aria-label="Runs of cells by symbol">
@@ -67,7 +69,9 @@ export function CellRuns({ table }: { table: TableContext }) {
 }
 
 const styles = StyleSheet.create({
-  fill: { position: 'absolute', left: 20, top: 44, right: 460, bottom: 12, gap: 8 },
+  fill: { position: 'absolute', gap: 8 },
+  wide: { left: 20, top: 44, right: 460, bottom: 12 },
+  narrow: { left: 12, top: 8, right: 12, bottom: 8, zIndex: 1, backgroundColor: color.surface.desk },
   scroll: { flex: 1, backgroundColor: color.surface.sheet, borderWidth: 1, borderColor: color.rule.line },
   row: {
     flexDirection: 'row',

@@ -4,6 +4,7 @@ import { findLocalCopy, settleFoundCopy, type FoundCopy } from '@/lib/client/loc
 import { ask, type ProblemError } from '@/lib/client/useApi';
 import { useMay, useMe } from '@/lib/client/useSession';
 import { showRevision, showWaveform } from '@/lib/contracts/waveforms';
+import { canonicalJson } from '@/lib/document/digest';
 import { Page } from '../Page';
 import { serverStore, type DrawingStore, type OpenedDrawing } from './drawingStore';
 import { DrawTable } from './DrawTable';
@@ -30,7 +31,8 @@ async function openDrawing(
     isUnsaved: false,
   };
   const found = await findLocalCopy(personId, waveformId).catch(() => null);
-  const isSame = found?.kind === 'copy' && JSON.stringify(found.copy.document) === JSON.stringify(document);
+  // What was saved after all, with the answer lost on the way, is no copy worth a question.
+  const isSame = found?.kind === 'copy' && canonicalJson(found.copy.document) === canonicalJson(document);
   if (found?.kind === 'copy' && isSame) {
     await settleFoundCopy(personId, found.copy, false).catch(() => undefined);
     return { opened, found: null };

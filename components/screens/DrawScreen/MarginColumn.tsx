@@ -10,19 +10,20 @@ import { formatInteger, formatQuantity } from '@/lib/drawing/quantities';
 import { inkWord } from '@/lib/drawing/inkStyle';
 import { lowestOf } from '@/lib/editor/document';
 import type { LiveFigure } from '@/lib/editor/live/protocol';
-import { BLOCK_FIGURES, copyView, figureText, shortName } from './figureWords';
+import { BLOCK_FIGURES, copyFigures, copyView, figureText, shortName } from './figureWords';
 import { figureOf, useLive } from './liveReader';
 import type { TableContext } from './tableContext';
 import type { ViewPage, WidePlaces } from './tableLayout';
 import { useEditorState, useSettings } from './useEditorState';
 
-type CopiedView = 'time' | 'spectrum' | 'constellation' | 'ccdf';
+type CopiedView = 'time' | 'spectrum' | 'constellation' | 'ccdf' | 'figures';
 
 export function CopyButton({ table, view }: { table: TableContext; view: CopiedView }) {
   const copy = () => {
     const { result } = table.live.get();
     if (!result) return;
-    void copyText(copyView(view, result)).then((done) => showToast(done ? 'Figures copied' : 'Copying was refused'));
+    const words = view === 'figures' ? copyFigures(result.figures) : copyView(view, result);
+    void copyText(words).then((done) => showToast(done ? 'Figures copied' : 'Copying was refused'));
   };
   return (
     <Button kind="plain" size="small" label={`Copy the figures of ${VIEW_NAMES[view]}`} onPress={copy}>
@@ -36,6 +37,7 @@ const VIEW_NAMES: Record<CopiedView, string> = {
   spectrum: 'the spectrum',
   constellation: 'the constellation',
   ccdf: 'the CCDF',
+  figures: 'the title block',
 };
 
 /** What a view is of, in words: also what stands in for the picture where it is read aloud. */

@@ -7,6 +7,7 @@ import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
 import { OneOf } from '@/components/ui/WordsToPress';
 import { formatInteger } from '@/lib/drawing/quantities';
+import { EmptyNote } from './EmptyNote';
 import { BLOCK_FIGURES, figureText } from './figureWords';
 import { figureOf, useLive } from './liveReader';
 import { CopyButton, MeasuringNote, useViewWords } from './MarginColumn';
@@ -65,6 +66,7 @@ export function PhoneTable({
               layout={places.layout}
               fallback={fallback}
             />
+            <EmptyNote table={table} layout={places.layout} />
             <View id="views" role="region" aria-label="Views" style={[styles.tabs, { top: places.tabsY }]}>
               <OneOf bare label="View" choices={PAGES} value={page} onChange={setPage} style={styles.tabWords} />
             </View>
@@ -111,6 +113,9 @@ function ViewHead({ table, places }: { table: TableContext; places: PhonePlaces 
             />
           );
         })}
+        <View style={styles.copy}>
+          <CopyButton table={table} view="figures" />
+        </View>
       </ScrollView>
     );
   }
@@ -205,6 +210,7 @@ const styles = StyleSheet.create({
   viewWords: { flexGrow: 1, flexShrink: 1 },
   figures: { position: 'absolute', left: 0, right: 0 },
   figureRows: { paddingHorizontal: 12 },
+  copy: { alignSelf: 'flex-start' },
   sentence: {
     height: 56,
     flexDirection: 'row',

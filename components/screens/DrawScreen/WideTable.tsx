@@ -3,6 +3,7 @@ import { StyleSheet, View } from 'react-native';
 import { CanvasGate } from '@/components/canvas/CanvasGate';
 import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
+import { EmptyNote } from './EmptyNote';
 import { BLOCK_ROWS } from './figureWords';
 import { MarginColumn, SpectrumFigures } from './MarginColumn';
 import { SentenceForm } from './SentenceForm';
@@ -43,6 +44,7 @@ export function WideTable({
       {width > 0 ? (
         <>
           <CanvasGate {...canvas} editor={table.editor} live={table.live} layout={layout} fallback={fallback} />
+          <EmptyNote table={table} layout={layout} />
           <SentenceForm table={table} width={places.mainWidth} />
           <Text variant="label" weight={400} tone="quiet" style={[styles.rows, { top: layout.grid.y - 17 }]}>
             symbol
