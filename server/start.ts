@@ -1,4 +1,4 @@
-import { mkdirSync } from 'node:fs';
+import { existsSync, mkdirSync } from 'node:fs';
 import { createServer, type Server } from 'node:http';
 import path from 'node:path';
 import pino, { type Logger } from 'pino';
@@ -12,6 +12,7 @@ import type { Deps } from './deps.ts';
 import { kindOfInstallation, markInstallation, prepareFirstRun } from './features/auth/installation.ts';
 import type { OwnAddress } from './features/demo/ownClient.ts';
 import { seedDemo } from './features/demo/seed.ts';
+import { openingRefusal } from './openingRefusal.ts';
 import { createLifecycle, type StoppableLifecycle } from './lifecycle.ts';
 
 /** Connections still busy after this are cut, so that the whole stop stays within 5 s. */
@@ -38,7 +39,7 @@ export async function startServer(
   );
   const lifecycle = createLifecycle(onStopRequest);
   try {
-    const deps = openData(config, log, lifecycle);
+    const deps = openDataOrRefuse(config, log, lifecycle);
     const kind = kindOfInstallation(deps);
     if (kind === 'demo') requireDemoPlace(config);
     markInstallation(deps, kind);
@@ -51,6 +52,8 @@ export async function startServer(
     const address =
       config.publicOrigin ?? `http://${host === '0.0.0.0' || host === '[::]' ? 'localhost' : host}:${port}`;
     say(`Combwright is at ${address}`);
+    if (!existsSync(path.join(config.webDir, 'index.html')))
+      say(`The page is not in ${config.webDir}: the API answers alone. npm start makes the page.`);
     const code = kind === 'team' ? prepareFirstRun(deps) : null;
     if (code)
       say(`Nobody is here yet. Open ${address}/first-run and make the first administrator with this code: ${code}`);
@@ -58,6 +61,14 @@ export async function startServer(
   } catch (error) {
     await lifecycle.stop();
     throw error;
+  }
+}
+
+function openDataOrRefuse(config: Config, log: Logger, lifecycle: StoppableLifecycle): Deps {
+  try {
+    return openData(config, log, lifecycle);
+  } catch (error) {
+    throw openingRefusal(error, config);
   }
 }
 

@@ -1,4 +1,4 @@
-import { mkdtempSync, renameSync, rmSync } from 'node:fs';
+import { mkdtempSync, renameSync, rmSync, writeFileSync } from 'node:fs';
 import net from 'node:net';
 import os from 'node:os';
 import path from 'node:path';
@@ -68,6 +68,26 @@ describe('a start', () => {
     first.process.kill('SIGKILL');
     await first.exitCode;
     await expect(spawnServer({ DATA_DIR: dir }).ready).resolves.toContain('http://127.0.0.1:');
+  });
+
+  it.each([
+    ['a file', '', /file is a file, not a directory\. Set DATA_DIR to another directory\.$/],
+    ['a damaged database', 'combwright.db', /^A database in .* cannot be read: it is damaged or no database\. /],
+    ['a damaged lock', 'lock.db', /^A database in .* cannot be read/],
+  ])('on %s is refused with a sentence, without a stack', async (_name, file, words) => {
+    const place = path.join(dir, file === '' ? 'file' : file);
+    writeFileSync(place, 'no database at all, and longer than the head of one '.repeat(20));
+    const server = spawnServer({ DATA_DIR: file === '' ? place : dir });
+    expect(await server.exitCode).toBe(1);
+    expect(server.err().trim()).toMatch(words);
+    expect(server.err()).not.toMatch(/\n\s+at /);
+  });
+
+  it('without a page says so', async () => {
+    const server = spawnServer({ DATA_DIR: dir, WEB_DIR: path.join(dir, 'none') });
+    await server.ready;
+    while (!server.out().includes('code: ')) await new Promise((resolve) => setTimeout(resolve, 20));
+    expect(server.out()).toContain(`The page is not in ${path.join(dir, 'none')}`);
   });
 
   it('on a taken port says so', async () => {
