@@ -3,6 +3,7 @@ import { Pressable, StyleSheet, View, type GestureResponderEvent, type ViewStyle
 import { useIsBehindOverlay } from './overlayState';
 import { Text } from './Text';
 import { color } from './theme';
+import { useAriaDisabled } from './useAriaDisabled';
 import { useBreakpoint } from './useBreakpoint';
 
 export type ButtonKind = 'filled' | 'ruled' | 'plain' | 'grave' | 'graveFilled';
@@ -91,14 +92,15 @@ export function Button(props: ButtonProps) {
   const look = looks[kind];
   const height = size === 'foot' ? 48 : touch ? 44 : size === 'small' ? 28 : 36;
   const off = Boolean(disabledBecause);
+  const ref = useAriaDisabled(off || Boolean(busy));
   return (
     <View style={[fill ? styles.fill : styles.hug, style]}>
       <Pressable
+        ref={ref as never}
         id={id}
         role="button"
         aria-label={label}
         aria-expanded={expanded}
-        aria-disabled={off || busy || undefined}
         aria-busy={busy || undefined}
         onPress={(event) => {
           if (busy) return;

@@ -61,7 +61,8 @@ export function useNumberKeys(props: Pick<NumberFieldProps, 'value' | 'onSet' | 
       onText?.(text);
     },
     onBlur: set,
-    onKeyDown: (event: KeyLike) => {
+    // TextInput keeps onKeyDown to itself and hands each key to onKeyPress
+    onKeyPress: (event: KeyLike) => {
       if (event.key === 'Enter') set();
       else if (event.key === 'Escape' && typed !== null && typed !== value) {
         event.stopPropagation();

@@ -1,7 +1,8 @@
-import { useRef, useState } from 'react';
+import { useEffect, useRef, useState } from 'react';
 import { Pressable, StyleSheet, View, type ViewStyle } from 'react-native';
 import { Text } from './Text';
 import { color } from './theme';
+import { useAriaDisabled } from './useAriaDisabled';
 import { useBreakpoint } from './useBreakpoint';
 
 export interface WordChoice<T extends string> {
@@ -125,13 +126,14 @@ function Word<T extends string>(props: {
 }) {
   const { choice, chosen, role, tabbable, bare, allOff, onPress, onKey, register } = props;
   const touch = useBreakpoint() === 'phone';
+  const ref = useAriaDisabled(allOff || Boolean(choice.offBecause));
+  useEffect(() => register?.(ref.current));
   const state = role === 'radio' ? { 'aria-checked': chosen } : { 'aria-pressed': chosen };
   return (
     <Pressable
-      ref={register as never}
+      ref={ref as never}
       role={role}
       {...state}
-      aria-disabled={allOff || choice.offBecause ? true : undefined}
       tabIndex={tabbable ? 0 : -1}
       onPress={onPress}
       {...({

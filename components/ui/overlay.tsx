@@ -54,9 +54,10 @@ function useModal(onClose: () => void, trap: boolean, firstSelector?: string) {
         all[0]?.focus();
       }
     };
-    document.addEventListener('keydown', onKey);
+    // in the capture phase: text fields keep their keys from going up
+    document.addEventListener('keydown', onKey, true);
     return () => {
-      document.removeEventListener('keydown', onKey);
+      document.removeEventListener('keydown', onKey, true);
       closed();
       before?.focus?.();
     };
