@@ -33,9 +33,9 @@ export function DigestChip({ digest, same }: { digest: string; same?: boolean })
 }
 
 const styles = StyleSheet.create({
-  hug: { alignSelf: 'flex-start', flexShrink: 0 },
+  hug: { width: 'fit-content' as 'auto', flexShrink: 0 },
   // the chip stays small to the eye; a thumb gets its 44 px
-  target: { minHeight: 44, justifyContent: 'center', flexShrink: 0 },
+  target: { minHeight: 44, width: 'fit-content' as 'auto', justifyContent: 'center', flexShrink: 0 },
   chip: {
     flexDirection: 'row',
     gap: 6,

@@ -125,17 +125,25 @@ function TopLine({ person, showTeam }: FrameProps) {
           </Text>
         </Pressable>
       </View>
-      <View style={styles.person}>
-        <PlaceLink place={{ label: person, href: '/account' }} open={isOpen(path, { label: '', href: '/account' })} />
-      </View>
+      <PlaceLink
+        place={{ label: person, href: '/account' }}
+        open={isOpen(path, { label: '', href: '/account' })}
+        last
+      />
     </View>
   );
 }
 
-function PlaceLink({ place, open }: { place: Place; open: boolean }) {
+function PlaceLink({ place, open, last }: { place: Place; open: boolean; last?: boolean }) {
   return (
-    <Link href={place.href} aria-current={open ? 'page' : undefined} style={styles.place}>
-      <View style={[styles.placeInner, { borderBottomColor: open ? color.ink.strong : 'transparent' }]}>
+    <Link href={place.href} aria-current={open ? 'page' : undefined} style={[styles.place, last ? styles.last : null]}>
+      <View
+        style={[
+          styles.placeInner,
+          last ? styles.shrink : null,
+          { borderBottomColor: open ? color.ink.strong : 'transparent' },
+        ]}
+      >
         <Text weight={open ? 600 : 500} tone={open ? 'strong' : 'quiet'} numberOfLines={1} style={styles.placeText}>
           {place.label}
         </Text>
@@ -225,11 +233,12 @@ const styles = StyleSheet.create({
     borderTopWidth: 2,
     borderTopColor: 'transparent',
   },
+  shrink: { flexShrink: 1, minWidth: 0 },
   placeText: { fontSize: 14, lineHeight: 20 },
   spring: { flex: 1 },
   theme: { justifyContent: 'center', marginRight: 26 },
   themeWord: { height: 36, justifyContent: 'center' },
-  person: { maxWidth: 240, marginRight: -26 },
+  last: { marginRight: 0, maxWidth: 240, minWidth: 0 },
   demo: {
     alignItems: 'center',
     backgroundColor: color.warning.wash,

@@ -30,7 +30,7 @@ const styles = StyleSheet.create({
     paddingHorizontal: 8,
     borderRadius: 2,
     borderWidth: 1.5,
-    alignSelf: 'flex-start',
+    width: 'fit-content' as 'auto',
     justifyContent: 'center',
     flexShrink: 0,
   },

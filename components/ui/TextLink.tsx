@@ -18,7 +18,7 @@ export function TextLink({ href, children, label }: { href: Href; children: stri
 }
 
 const styles = StyleSheet.create({
-  link: { display: 'flex', alignSelf: 'flex-start', textDecorationLine: 'none' },
+  link: { display: 'flex', width: 'fit-content' as 'auto', textDecorationLine: 'none' },
   target: { minHeight: 36, justifyContent: 'center' },
   touch: { minHeight: 44, minWidth: 44 },
 });
