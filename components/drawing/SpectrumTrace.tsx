@@ -78,11 +78,6 @@ export function SpectrumTrace({
             y2={Math.round(y(db)) + 0.5}
             stroke={color.plot.grid}
           />
-          {db % 20 === 0 ? (
-            <text x={4} y={y(db) - 3} fontSize={11} fontFamily={figureFace} fill={color.plot.axis}>
-              {db < 0 ? `−${-db}` : db}
-            </text>
-          ) : null}
         </g>
       ))}
       {lines.map((line, i) =>
@@ -104,6 +99,21 @@ export function SpectrumTrace({
           </g>
         ),
       )}
+      {[0, -20, -40, -60].map((db) => (
+        <text
+          key={db}
+          x={4}
+          y={y(db) - 3}
+          fontSize={11}
+          fontFamily={figureFace}
+          fill={color.plot.axis}
+          stroke={color.plot.background}
+          strokeWidth={3}
+          paintOrder="stroke"
+        >
+          {db < 0 ? `−${-db}` : db}
+        </text>
+      ))}
       <rect
         x={0.5}
         y={0.5}

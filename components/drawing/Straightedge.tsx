@@ -43,22 +43,37 @@ export function Straightedge({
         stroke={color.rule.line}
       />
       {upper.map((tick) => (
-        <Tick key={tick.value} tick={tick} edge={0} length={tick.label ? 6 : 3} textAt={16} />
+        <Tick key={tick.value} tick={tick} edge={0} length={tick.label ? 6 : 3} textAt={16} widthPx={widthPx} />
       ))}
       {lower.map((tick) => (
-        <Tick key={tick.value} tick={tick} edge={heightPx} length={-6} textAt={heightPx - 8} />
+        <Tick key={tick.value} tick={tick} edge={heightPx} length={-6} textAt={heightPx - 8} widthPx={widthPx} />
       ))}
     </svg>
   );
 }
 
-function Tick({ tick, edge, length, textAt }: { tick: AxisTick; edge: number; length: number; textAt: number }) {
+function Tick({
+  tick,
+  edge,
+  length,
+  textAt,
+  widthPx,
+}: {
+  tick: AxisTick;
+  edge: number;
+  length: number;
+  textAt: number;
+  widthPx: number;
+}) {
   const x = Math.round(tick.atPx) + 0.5;
+  // half a label would stand beyond the rule's end
+  const half = (tick.label?.length ?? 0) * 3.5;
+  const fits = x >= half + 1 && x <= widthPx - half - 1;
   const isZeroMhz = length < 0 && tick.isZero;
   return (
     <g>
       <line x1={x} x2={x} y1={edge} y2={edge + length} stroke={color.canvas.ruleTick} />
-      {tick.label && !isZeroMhz ? (
+      {tick.label && fits && !isZeroMhz ? (
         <text
           x={x}
           y={textAt}
