@@ -1,5 +1,5 @@
 import type { ReactNode } from 'react';
-import { Pressable, StyleSheet, View } from 'react-native';
+import { Pressable, StyleSheet, View, type ViewStyle } from 'react-native';
 import { NumberField } from '@/components/ui/NumberField';
 import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
@@ -126,16 +126,15 @@ export const fieldStyles = StyleSheet.create({
   fieldsPhone: { gap: 8, paddingBottom: 8 },
   groupName: { width: 112, flexShrink: 0, paddingTop: 24 },
   fields: {
-    flexDirection: 'row',
-    flexWrap: 'wrap',
-    flexGrow: 1,
-    flexShrink: 1,
-    flexBasis: 0,
+    // three to a row, as long as each keeps 200 px
+    display: 'grid' as 'flex',
+    gridTemplateColumns: 'repeat(auto-fill, minmax(200px, 1fr))',
+    flex: 1,
     minWidth: 0,
-    gap: 16,
+    columnGap: 16,
     rowGap: 8,
-  },
-  field: { flexGrow: 1, flexShrink: 1, flexBasis: 'auto', minWidth: 200 },
-  two: { flexGrow: 2, flexShrink: 1, flexBasis: 'auto', minWidth: 200 },
+  } as ViewStyle,
+  field: { minWidth: 0 },
+  two: { minWidth: 0, gridColumnEnd: 'span 2' } as ViewStyle,
   label: { marginBottom: 4 },
 });

@@ -51,7 +51,7 @@ export function BenchForm(props: BenchFormProps) {
             readOnly={readOnly}
             onChangeText={(name) => onChange({ ...profile, about: { ...profile.about, name } })}
             error={errors['/about/name'] ?? null}
-            style={fieldStyles.two}
+            style={fieldStyles.field}
           />
           <TextField
             label="Notes"

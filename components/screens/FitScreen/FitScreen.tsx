@@ -5,7 +5,7 @@ import { Button } from '@/components/ui/Button';
 import { ChoiceField } from '@/components/ui/ChoiceField';
 import { DigestChip } from '@/components/ui/DigestChip';
 import { FigureRow } from '@/components/ui/Figure';
-import { Empty, Failing, Loading, NotThere } from '@/components/ui/states';
+import { Empty, Failing, Forbidden, Loading, NotThere } from '@/components/ui/states';
 import { Notice } from '@/components/ui/Notice';
 import { Stamp } from '@/components/ui/Stamp';
 import { Text } from '@/components/ui/Text';
@@ -24,8 +24,9 @@ import { useRemedies } from './useRemedies';
 
 /** A revision against a bench: what misses, by how much, and the remedy that is one press away. */
 export function FitScreen({ waveformId, revisionId }: { waveformId: string; revisionId: string | null }) {
-  const waveform = useApi(showWaveform, { params: { waveformId } });
-  const benches = useApi(listBenches, {});
+  const mayRead = useMay('readWaveforms');
+  const waveform = useApi(showWaveform, { params: { waveformId } }, { enabled: mayRead });
+  const benches = useApi(listBenches, {}, { enabled: mayRead });
   const [benchId, setBenchId] = useState<string | null>(null);
   const wanted = revisionId ?? waveform.data?.head?.revisionId ?? null;
   const revision = useApi(showRevision, { params: { revisionId: wanted ?? '' } }, { enabled: wanted !== null });
@@ -41,6 +42,12 @@ export function FitScreen({ waveformId, revisionId }: { waveformId: string; revi
   );
   const failure = waveform.error ?? benches.error ?? revision.error;
   const back = { pathname: '/waveforms/[waveformId]' as const, params: { waveformId } };
+  if (!mayRead)
+    return (
+      <Page title="Fit" backTo="/waveforms">
+        <Forbidden />
+      </Page>
+    );
   if (failure)
     return (
       <Page title="Fit" backTo="/waveforms">

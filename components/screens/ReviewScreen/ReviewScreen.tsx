@@ -7,7 +7,7 @@ import { TrayList } from '@/components/drawing/TrayList';
 import { useSpectrum } from '@/components/drawing/useSpectrum';
 import { Button } from '@/components/ui/Button';
 import { DigestChip } from '@/components/ui/DigestChip';
-import { Empty, Failing, Loading, NotThere } from '@/components/ui/states';
+import { Empty, Failing, Forbidden, Loading, NotThere } from '@/components/ui/states';
 import { Notice } from '@/components/ui/Notice';
 import { Stamp } from '@/components/ui/Stamp';
 import { Text } from '@/components/ui/Text';
@@ -28,12 +28,19 @@ import { ReviewFit } from './ReviewFit';
 
 /** What was painted, what it makes, and whether it fits: released or returned by somebody who did not draw it. */
 export function ReviewScreen({ waveformId }: { waveformId: string }) {
-  const review = useApi(showReview, { params: { waveformId } }, { refetchInterval: 20_000 });
-  const waveform = useApi(showWaveform, { params: { waveformId } });
+  const mayRead = useMay('readWaveforms');
+  const review = useApi(showReview, { params: { waveformId } }, { enabled: mayRead, refetchInterval: 20_000 });
+  const waveform = useApi(showWaveform, { params: { waveformId } }, { enabled: mayRead });
   const open = review.data?.openReview ?? null;
   const revision = useApi(showRevision, { params: { revisionId: open?.revisionId ?? '' } }, { enabled: open !== null });
   const failure = review.error ?? waveform.error ?? revision.error;
   const back = { pathname: '/waveforms/[waveformId]' as const, params: { waveformId } };
+  if (!mayRead)
+    return (
+      <Page title="Review" backTo="/waveforms">
+        <Forbidden />
+      </Page>
+    );
   if (open && revision.data) return <OpenedReview waveformId={waveformId} review={open} opened={revision.data} />;
   return (
     <Page title={waveform.data?.title ?? 'Review'} backTo={back}>

@@ -40,7 +40,7 @@ export function BareGridSentence({
         <Text>points,</Text>
         {blank('spacing', 'Spacing', 76)}
         <Text>apart,</Text>
-        {blank('symbols', 'Symbols', 40)}
+        {blank('symbols', 'Symbols', 46)}
         <Text>symbols, prefix</Text>
         {blank('prefix', 'Prefix', 48)}
         <Button kind="plain" onPress={onChoose}>

@@ -2,7 +2,8 @@ import { useRef } from 'react';
 import { Pressable, StyleSheet, View } from 'react-native';
 import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
-import { formatFraction } from '@/lib/drawing/quantities';
+import { useBreakpoint } from '@/components/ui/useBreakpoint';
+import { formatFraction, formatInteger } from '@/lib/drawing/quantities';
 import { StartPicture } from './StartPicture';
 import type { PresetStart } from './starts';
 
@@ -75,7 +76,10 @@ function Entry({
   register: (node: { focus: () => void } | null) => void;
 }) {
   const { fftSize, subcarrierSpacingHz, symbolCount } = start.numbers;
+  const phone = useBreakpoint() === 'phone';
   const spacing = formatFraction(subcarrierSpacingHz);
+  const size = `${formatInteger(fftSize)} · ${spacing.value} ${spacing.unit}`;
+  const symbols = symbolCount === 1 ? '1 symbol' : `${formatInteger(symbolCount)} symbols`;
   return (
     <Pressable
       ref={register as never}
@@ -94,25 +98,35 @@ function Entry({
         !chosen && (state as { hovered?: boolean }).hovered ? styles.hovered : null,
       ]}
     >
-      <View style={styles.picture}>
+      <View style={phone ? styles.smallPicture : styles.picture}>
         <StartPicture start={start} />
       </View>
       <View style={styles.words}>
-        <Text variant="bodyStrong" tone={chosen ? 'onSelected' : 'strong'} numberOfLines={1}>
+        <Text variant="bodyStrong" tone={chosen ? 'onSelected' : 'strong'} numberOfLines={phone ? 2 : 1}>
           {start.title}
         </Text>
         <Text variant="small" tone={chosen ? 'onSelected' : 'quiet'} numberOfLines={1}>
           {start.source}
         </Text>
+        {phone ? (
+          <Text variant="small" tone={chosen ? 'onSelected' : 'quiet'}>
+            <Text variant="figureSmall" weight={600} tone={chosen ? 'onSelected' : 'strong'}>
+              {size}
+            </Text>
+            {`, ${symbols}`}
+          </Text>
+        ) : null}
       </View>
-      <View style={styles.numbers}>
-        <Text variant="figureSmall" weight={600} tone={chosen ? 'onSelected' : 'strong'}>
-          {`${fftSize} · ${spacing.value} ${spacing.unit}`}
-        </Text>
-        <Text variant="small" tone={chosen ? 'onSelected' : 'quiet'}>
-          {symbolCount === 1 ? '1 symbol' : `${symbolCount} symbols`}
-        </Text>
-      </View>
+      {phone ? null : (
+        <View style={styles.numbers}>
+          <Text variant="figureSmall" weight={600} tone={chosen ? 'onSelected' : 'strong'}>
+            {size}
+          </Text>
+          <Text variant="small" tone={chosen ? 'onSelected' : 'quiet'}>
+            {symbols}
+          </Text>
+        </View>
+      )}
     </Pressable>
   );
 }
@@ -136,7 +150,8 @@ const styles = StyleSheet.create({
   },
   chosen: { backgroundColor: color.surface.selected, borderLeftColor: color.ink.strong },
   hovered: { backgroundColor: color.surface.hover },
-  picture: { width: 112, flexShrink: 0 },
+  picture: { width: 144, flexShrink: 0 },
+  smallPicture: { width: 80, flexShrink: 0 },
   words: { flexGrow: 1, flexShrink: 1, minWidth: 0 },
   numbers: { alignItems: 'flex-end', flexShrink: 0 },
 });

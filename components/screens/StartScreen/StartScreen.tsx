@@ -5,6 +5,7 @@ import { Button } from '@/components/ui/Button';
 import { FindField } from '@/components/ui/FindField';
 import { Notice } from '@/components/ui/Notice';
 import { Forbidden } from '@/components/ui/states';
+import { Sheet } from '@/components/ui/overlay';
 import { Text } from '@/components/ui/Text';
 import { TextField } from '@/components/ui/TextField';
 import { color } from '@/components/ui/theme';
@@ -32,6 +33,7 @@ export function StartScreen() {
   const [chosen, setChosen] = useState<Start>(presets[0]!);
   const [title, setTitle] = useState<string | null>(null);
   const [find, setFind] = useState('');
+  const [looking, setLooking] = useState(false);
   const [bare, setBare] = useState<BareGridText>(bareGridDefaults);
   const [bareError, setBareError] = useState<string | null>(null);
   const create = useAct(createWaveform, [listWaveforms], (waveform) =>
@@ -50,6 +52,7 @@ export function StartScreen() {
 
   const choose = (start: Start) => {
     setChosen(start);
+    setLooking(size === 'phone');
     setTitle(null);
     create.reset();
   };
@@ -84,12 +87,42 @@ export function StartScreen() {
     </Button>
   );
 
+  const about = (
+    <>
+      <View style={wide ? styles.titleRow : null}>
+        <TextField
+          label="Title of the new waveform"
+          value={name}
+          onChangeText={setTitle}
+          maxLength={130}
+          error={
+            title !== null && name.trim() === ''
+              ? 'A waveform needs a title.'
+              : name.trim().length > 120
+                ? 'At most 120 characters.'
+                : null
+          }
+          style={styles.grow}
+        />
+        {wide ? <View style={styles.use}>{useButton}</View> : null}
+      </View>
+      {create.error ? (
+        <Notice kind="danger" title="The waveform was not made.">
+          {create.error.problem?.issues?.[0]
+            ? `${create.error.problem.issues[0].pointer}: ${create.error.problem.issues[0].message}`
+            : create.error.message}
+        </Notice>
+      ) : null}
+      <StartSheet start={chosen} />
+    </>
+  );
   return (
     <Page
       title="Start from"
       backTo="/waveforms"
       bare
-      foot={wide ? undefined : <View style={styles.foot}>{useButton}</View>}
+      // on a phone the sheet has the same button while it is open
+      foot={wide ? undefined : <View style={styles.foot}>{size === 'phone' && looking ? null : useButton}</View>}
     >
       <View style={wide ? styles.wide : styles.narrow}>
         <View style={wide ? styles.left : null}>
@@ -128,34 +161,13 @@ export function StartScreen() {
           />
           <DocumentDrop onChoose={choose} chosen={chosen.startId === 'file' ? chosen.source : null} />
         </View>
-        <View style={[styles.sheet, wide ? styles.right : null]}>
-          <View style={wide ? styles.titleRow : null}>
-            <TextField
-              label="Title of the new waveform"
-              value={name}
-              onChangeText={setTitle}
-              maxLength={130}
-              error={
-                title !== null && name.trim() === ''
-                  ? 'A waveform needs a title.'
-                  : name.trim().length > 120
-                    ? 'At most 120 characters.'
-                    : null
-              }
-              style={styles.grow}
-            />
-            {wide ? <View style={styles.use}>{useButton}</View> : null}
-          </View>
-          {create.error ? (
-            <Notice kind="danger" title="The waveform was not made.">
-              {create.error.problem?.issues?.[0]
-                ? `${create.error.problem.issues[0].pointer}: ${create.error.problem.issues[0].message}`
-                : create.error.message}
-            </Notice>
-          ) : null}
-          <StartSheet start={chosen} />
-        </View>
+        {size === 'phone' ? null : <View style={[styles.sheet, wide ? styles.right : null]}>{about}</View>}
       </View>
+      {size === 'phone' && looking ? (
+        <Sheet title={chosen.title} onClose={() => setLooking(false)} foot={useButton}>
+          <View style={styles.about}>{about}</View>
+        </Sheet>
+      ) : null}
     </Page>
   );
 }
@@ -176,10 +188,12 @@ const styles = StyleSheet.create({
     gap: 8,
     minWidth: 0,
   },
+  about: { gap: 8 },
   right: { flexGrow: 1, flexShrink: 1, flexBasis: 600, padding: 24 },
   titleRow: { flexDirection: 'row', alignItems: 'flex-start', gap: 16 },
   use: { paddingTop: 22 },
   foot: {
+    minHeight: 68,
     padding: 10,
     flexDirection: 'row',
     backgroundColor: color.surface.trough,

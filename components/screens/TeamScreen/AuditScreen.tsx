@@ -7,6 +7,7 @@ import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
 import { useBreakpoint } from '@/components/ui/useBreakpoint';
 import { ask, useApi } from '@/lib/client/useApi';
+import { useMay } from '@/lib/client/useSession';
 import { listAudit, type AuditAct } from '@/lib/contracts/audit';
 import { listPeople } from '@/lib/contracts/people';
 import { clockTime, when } from '../when';
@@ -18,7 +19,8 @@ const words = (act: string) => act.replaceAll('.', ', ').replaceAll('_', ' ');
 /** Who did what, newest first. */
 export function AuditScreen() {
   const phone = useBreakpoint() === 'phone';
-  const people = useApi(listPeople, {});
+  const may = useMay('readAudit');
+  const people = useApi(listPeople, {}, { enabled: may });
   const [personId, setPersonId] = useState('');
   const [act, setAct] = useState('');
   const [older, setOlder] = useState<{ key: string; acts: AuditAct[]; nextBefore: number | null } | null>(null);
@@ -26,7 +28,7 @@ export function AuditScreen() {
   const [problem, setProblem] = useState<string | null>(null);
   const query = { ...(personId ? { personId } : {}), ...(act ? { act } : {}) };
   const key = JSON.stringify(query);
-  const audit = useApi(listAudit, { query }, { placeholderData: (before) => before });
+  const audit = useApi(listAudit, { query }, { enabled: may, placeholderData: (before) => before });
   const more = older?.key === key ? older : null;
   const acts = [...(audit.data?.acts ?? []), ...(more?.acts ?? [])];
   const nextBefore = more ? more.nextBefore : (audit.data?.nextBefore ?? null);

@@ -10,7 +10,7 @@ import { useBreakpoint } from '@/components/ui/useBreakpoint';
 import { AnyOf } from '@/components/ui/WordsToPress';
 import { Sheet } from '@/components/ui/overlay';
 import { useAct, useApi } from '@/lib/client/useApi';
-import { useMe } from '@/lib/client/useSession';
+import { useMay, useMe } from '@/lib/client/useSession';
 import { getSession } from '@/lib/contracts/auth';
 import { roleSchema, type Role } from '@/lib/contracts/common';
 import { listPeople, setRoles, type Person } from '@/lib/contracts/people';
@@ -26,7 +26,8 @@ export function PeopleScreen() {
   const size = useBreakpoint();
   const wide = size === 'wide';
   const phone = size === 'phone';
-  const people = useApi(listPeople, {});
+  const may = useMay('managePeople');
+  const people = useApi(listPeople, {}, { enabled: may });
   const [chosenId, setChosenId] = useState<string | null>(null);
   const [inviting, setInviting] = useState(false);
   const chosen = people.data?.people.find((person) => person.personId === chosenId) ?? null;
