@@ -47,7 +47,10 @@ function dbm(value: number, decimals: number): string {
 }
 
 function highest(card: LevelCard): [string, boolean] {
-  const means = `The setting on the generator is ${card.settingWords}.`;
+  const means =
+    card.levelMeans === 'unknown'
+      ? 'What the setting on the generator means is not known: the highest of three readings counts.'
+      : `The setting on the generator is ${card.settingWords}.`;
   const limits = [
     card.peakLimitDbm === null ? 'no peak limit given' : `peak limit ${dbm(card.peakLimitDbm, 2)}`,
     card.meanLimitDbm === null ? 'no mean limit given' : `mean limit ${dbm(card.meanLimitDbm, 2)}`,

@@ -201,6 +201,9 @@ describe('cautions', () => {
     expect(over[9]!.text).toBe('Draft: not for the bench. Digest b63d1be9.');
     const none = cautions(card('unknown', { devicePeakLimitDbm: null, deviceMeanLimitDbm: null }), CONTEXT);
     expect(none[0]).toMatchObject({ severe: true, text: expect.stringContaining('No limit given') as string });
+    expect(none[0]!.text).toContain(
+      'What the setting on the generator means is not known: the highest of three readings counts.',
+    );
     expect(none[3]!.text).toContain('no limit is given');
     expect(cautions(card('activeRms'), { ...CONTEXT, state: 'withdrawn' })[9]!.text).toContain('do not use it');
   });
