@@ -23,8 +23,8 @@ export function ChoiceField({
   const touch = useBreakpoint() === 'phone';
   return (
     <View style={style}>
-      <label htmlFor={id}>
-        <Text variant="small" weight={500} style={{ marginBottom: 4 }}>
+      <label htmlFor={id} style={{ display: 'block', marginBottom: 4 }}>
+        <Text variant="small" weight={500}>
           {label}
         </Text>
       </label>

@@ -111,7 +111,10 @@ function TopLine({ person, showTeam }: FrameProps) {
       </View>
       <View style={styles.spring} />
       {showTeam ? (
-        <PlaceLink place={{ label: 'Team', href: '/people' }} open={isOpen(path, { label: '', href: '/people' })} />
+        <PlaceLink
+          place={{ label: 'Team', href: '/people' }}
+          open={path.startsWith('/people') || path.startsWith('/audit')}
+        />
       ) : null}
       <View style={styles.theme}>
         <Pressable

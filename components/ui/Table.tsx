@@ -109,12 +109,11 @@ function Head({
   return (
     <View
       role="columnheader"
-      aria-label={column.label}
       {...({ 'aria-sort': column.sortBy ? (sorted ?? 'none') : undefined } as object)}
       style={cellStyle(column)}
     >
       {column.sortBy ? (
-        <Pressable role="button" aria-label={`Sort by ${column.label}`} onPress={onSort} style={styles.sort}>
+        <Pressable role="button" onPress={onSort} style={styles.sort}>
           {words}
         </Pressable>
       ) : (

@@ -27,7 +27,7 @@ export function TextField(props: TextFieldProps) {
   return (
     <View style={style}>
       {quietLabel ? null : (
-        <label htmlFor={id} style={{ marginBottom: 4 }}>
+        <label htmlFor={id} style={{ display: 'block', marginBottom: 4 }}>
           <Text variant="small" weight={500}>
             {label}
           </Text>

@@ -51,8 +51,8 @@ export function BytePicture({ content }: { content: BenchContent }) {
     );
   const { bytes, values, bytesPerWord } = words;
   const order = content.byteOrder === 'little' ? 'Little-endian' : 'Big-endian';
-  const one = Array.from(bytes.subarray(0, bytesPerWord), hex).join(' ');
-  const minus = Array.from(bytes.subarray(bytesPerWord, 2 * bytesPerWord), hex).join(' ');
+  const one = Array.from(bytes.subarray(0, bytesPerWord), hex).join('\u00a0');
+  const minus = Array.from(bytes.subarray(bytesPerWord, 2 * bytesPerWord), hex).join('\u00a0');
   const spoken = Array.from(
     bytes.subarray(0, shownBytes),
     (byte, i) =>

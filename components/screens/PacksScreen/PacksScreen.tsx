@@ -50,7 +50,7 @@ export function PacksScreen() {
       <View style={phone ? styles.stack : styles.filters}>
         {benchNames.length > 1 ? (
           <ChoiceField
-            label="Bench profile"
+            label="Bench"
             value={bench}
             onChange={setBench}
             choices={[{ value: '', label: 'Every bench' }, ...benchNames.map((name) => ({ value: name, label: name }))]}
