@@ -33,6 +33,19 @@ function LengthRule({ finding }: { finding: Finding }) {
   );
 }
 
+/** Arrows go from finding to finding, by the first remedy of each. */
+function moveFinding(event: { key: string; target: HTMLElement; preventDefault: () => void }): void {
+  if (event.key !== 'ArrowDown' && event.key !== 'ArrowUp') return;
+  const cards = [...document.querySelectorAll<HTMLElement>('[data-finding]')].filter((card) =>
+    card.querySelector('[role=button]'),
+  );
+  const at = cards.findIndex((card) => card.contains(event.target));
+  const next = cards[at + (event.key === 'ArrowDown' ? 1 : -1)];
+  if (!next) return;
+  event.preventDefault();
+  next.querySelector<HTMLElement>('[role=button]')?.focus();
+}
+
 /** What misses, by how much, one sentence, and what mends it. */
 export function FindingCard({
   finding,
@@ -46,7 +59,10 @@ export function FindingCard({
 }) {
   const misses = finding.verdict === 'misses';
   return (
-    <View style={[styles.card, misses ? styles.misses : null]}>
+    <View
+      style={[styles.card, misses ? styles.misses : null]}
+      {...({ dataSet: { finding: finding.check }, onKeyDown: moveFinding } as object)}
+    >
       <View style={styles.head}>
         <Text variant="bodyStrong" heading={3} tone="strong" style={styles.grow}>
           {finding.title}
