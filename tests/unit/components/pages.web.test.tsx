@@ -7,6 +7,7 @@ import { newBenchContent } from '@/components/screens/BenchScreen/fields';
 import { FindingCard, type Finding } from '@/components/screens/FitScreen/FindingCard';
 import { HistoryScreen } from '@/components/screens/HistoryScreen/HistoryScreen';
 import { SignInScreen } from '@/components/screens/SignInScreen/SignInScreen';
+import { noteAnswer } from '@/lib/client/connection';
 import { MeContext } from '@/lib/client/useSession';
 import type { BenchProfile } from '@/lib/synth';
 
@@ -106,6 +107,26 @@ describe('FindingCard', () => {
     expect(screen.getByText('2048 samples short')).toBeInTheDocument();
     await userEvent.click(screen.getByRole('button', { name: 'Repeat the frame 2 times: 61 440' }));
     expect(onApply).toHaveBeenCalledWith(finding.remedies[0]);
+  });
+
+  it('goes from finding to finding by arrows and applies by Enter', async () => {
+    const onApply = jest.fn();
+    const second = {
+      ...finding,
+      check: 'headroom' as const,
+      remedies: [{ ...finding.remedies[0]!, label: 'Keep 1.1 dB' }],
+    };
+    show(
+      <>
+        <FindingCard finding={finding} onApply={onApply} busy={false} />
+        <FindingCard finding={second} onApply={onApply} busy={false} />
+      </>,
+    );
+    await userEvent.tab();
+    await userEvent.keyboard('{ArrowDown}');
+    expect(screen.getByRole('button', { name: 'Keep 1.1 dB' })).toHaveFocus();
+    await userEvent.keyboard('{Enter}');
+    expect(onApply).toHaveBeenCalledWith(second.remedies[0]);
   });
 
   it('offers no button where the revision cannot change, and says when a pack is refused', () => {
@@ -245,5 +266,11 @@ describe('HistoryScreen', () => {
     expect(screen.getByText('Revision 1')).toBeInTheDocument();
     await waitFor(() => expect(screen.getByRole('button', { name: 'Ask for review' })).toBeInTheDocument());
     expect(screen.getAllByRole('heading', { level: 1 })).toHaveLength(1);
+    // the page stays to be read and says how old it is; the next answer takes the words away
+    act(() => noteAnswer(false));
+    expect(screen.getByText(/^No connection\. What you see was loaded at \d\d:\d\d\.$/)).toBeInTheDocument();
+    expect(screen.getByText('Revision 2')).toBeInTheDocument();
+    act(() => noteAnswer(true));
+    expect(screen.queryByText(/^No connection/)).toBeNull();
   });
 });
