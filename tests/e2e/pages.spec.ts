@@ -2,7 +2,9 @@ import type { Page } from '@playwright/test';
 import { listBenches } from '@/lib/contracts/benches';
 import { ask, signIn, type DemoName } from './support/api.ts';
 import { expectAccessible } from './support/axe.ts';
+import { smallDocument } from '../helpers/documents.ts';
 import { demoPack, demoWaveform } from './support/demo.ts';
+import { drawnDocument, expectMeasured } from './support/table.ts';
 import { expect, test } from './support/test.ts';
 
 interface Screen {
@@ -222,4 +224,52 @@ test('a list that does not load says what the server answered, and tries again',
   isBroken = false;
   await page.getByRole('button', { name: 'Try again' }).click();
   await expect(page.getByText(/PA ladder 20 MHz/).first()).toBeVisible();
+});
+
+test('a document is imported from JSON, and a broken one says where it is wrong', async ({ as }, info) => {
+  const ines = await as('Ines Okoro');
+  await ines.goto('/start');
+  const file = (name: string, text: string) => ({ name, mimeType: 'application/json', buffer: Buffer.from(text) });
+  const choose = ines.getByLabel('Choose a document');
+  const document = smallDocument();
+  document.about.title = `Imported on a ${info.project.name}`;
+  const broken = { ...document, content: { ...document.content, fftSize: 7, powerDb: 3 } };
+  for (const [name, text, words] of [
+    ['cut.json', JSON.stringify(document).slice(0, 200), /cut\.json was not taken\./],
+    ['empty.json', '', /empty\.json was not taken\./],
+    ['broken.json', JSON.stringify(broken), /^\/content\/fftSize: /],
+    ['newer.json', JSON.stringify({ ...document, version: 7 }), /version/],
+  ] as const) {
+    await choose.setInputFiles(file(name, text));
+    await expect(ines.getByText(words).first(), name).toBeVisible();
+  }
+  await choose.setInputFiles(file('whole.json', JSON.stringify(document)));
+  await expect(ines.getByText('broken.json was not taken.')).toHaveCount(0);
+  await expect(ines.getByRole('textbox', { name: 'Title of the new waveform' })).toHaveValue(document.about.title);
+  await ines.getByRole('button', { name: 'Use this start' }).click();
+  await expectMeasured(ines);
+  expect(await drawnDocument(ines)).toEqual(document);
+});
+
+test('without a connection, signing in says that it needs the server', async ({ page, watch }) => {
+  watch.allow(/ERR_INTERNET_DISCONNECTED/);
+  await page.goto('/sign-in');
+  await page.getByRole('textbox', { name: 'E-mail' }).fill('ada@team.invalid');
+  await page.getByRole('textbox', { name: 'Password' }).fill('three plain words');
+  await page.context().setOffline(true);
+  await page.getByRole('button', { name: 'Sign in' }).click();
+  await expect(page.getByText('No connection. Signing in needs the server.').first()).toBeVisible();
+});
+
+test('only the drawing table loads the drawing engine', async ({ as, baseURL }) => {
+  const ines = await as('Ines Okoro');
+  const engine: string[] = [];
+  ines.on('request', (request) => void (request.url().endsWith('.wasm') && engine.push(request.url())));
+  const { waveformId } = await demoWaveform(ines.context().request, baseURL!, 'inReview');
+  for (const address of ['/waveforms', '/start', `/waveforms/${waveformId}/review`]) {
+    await ines.goto(address);
+    await expect(ines.locator('svg').first()).toBeAttached();
+    await ines.waitForLoadState('networkidle');
+  }
+  expect(engine).toEqual([]);
 });
