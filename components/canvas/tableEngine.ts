@@ -174,7 +174,7 @@ export function createTableEngine(
         { view, fftSize, spacingHz, plotX: layout.grid.x, plotWidth: layout.grid.width, reading },
         theme,
       );
-      if (peaks && result && !reading)
+      if (peaks && result && !reading && !view.turned)
         drawPeakScale(on, scope, { ...bar, x: peaks.x, width: peaks.width }, result.symbolPaprDb, theme);
     });
     const { band } = layout;

@@ -45,7 +45,7 @@ export function WideTable({
         <>
           <CanvasGate {...canvas} editor={table.editor} live={table.live} layout={layout} fallback={fallback} />
           <EmptyNote table={table} layout={layout} />
-          <SentenceForm table={table} width={places.mainWidth} />
+          {table.rights.canDraw ? <SentenceForm table={table} width={places.mainWidth} /> : null}
           <Text variant="label" weight={400} tone="quiet" style={[styles.rows, { top: layout.grid.y - 17 }]}>
             symbol
           </Text>
