@@ -78,17 +78,15 @@ function picture(
   const range = { positionFrom: 0, positionTo: grid.fftSize, symbolFrom: 0, symbolTo: grid.symbolCount };
   const reduced =
     cellPx < 1
-      ? kit
-          .createReducer(late)
-          .image(grid, fills, {
-            firstPosition: 0,
-            cellPx,
-            columns: along,
-            symbolFrom: 0,
-            symbolTo: grid.symbolCount,
-            rowsMost: height,
-            toothPx: 2,
-          })
+      ? kit.createReducer(late).image(grid, fills, {
+          firstPosition: 0,
+          cellPx,
+          columns: along,
+          symbolFrom: 0,
+          symbolTo: grid.symbolCount,
+          rowsMost: height,
+          toothPx: 2,
+        })
       : null;
   const tiles = reduced ? [] : kit.createTileStore(late).shown(grid, fills, range);
   return {
