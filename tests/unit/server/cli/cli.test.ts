@@ -150,6 +150,27 @@ test('a disk that is full while rendering: a clear word, and nothing is left', (
   expect(readdirSync(folder).sort()).toEqual(['b.json', 'w.json']);
 });
 
+test('a long vector takes no more memory than a short one: it passes in blocks', () => {
+  const says = 'process.on("exit", () => process.stderr.write(String(process.resourceUsage().maxRSS)))';
+  const mostMegabytes = (document: WaveformDocument) => {
+    const { status, stderr } = spawnSync('node', [cli, 'render', ...inputs(document), '--out', 'pack.zip'], {
+      cwd: folder,
+      encoding: 'utf8',
+      env: {
+        ...process.env,
+        NODE_OPTIONS: `--import ${JSON.stringify(`data:text/javascript,${encodeURIComponent(says)}`)}`,
+      },
+    });
+    expect(status).toBe(0);
+    return Number(stderr) / 1000;
+  };
+  const short = mostMegabytes(smallDocument());
+  // 102 MB as complex doubles, 26 MB as words: either would show.
+  const long = mostMegabytes(longDocument());
+  expect(long).toBeLessThan(300);
+  expect(long - short).toBeLessThan(60);
+});
+
 async function untilWorking(): Promise<void> {
   for (let tries = 0; tries < 2000; tries++) {
     const part = readdirSync(folder).find((name) => name.startsWith('.combwright-part-'));
