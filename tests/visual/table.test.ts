@@ -263,7 +263,7 @@ describe('axes and plots', () => {
         scope,
         { x: 0, y: 0, width: 260, height: 120 },
         { thresholdsDb, probability, gaussian, atOneInThousandDb: 7.6 },
-        themes.night as (typeof themes)['paper'],
+        themes.night as unknown as (typeof themes)['paper'],
       ),
     );
     expect(differingPixels(mockSkia, 'ccdf-night', made)).toBeLessThanOrEqual(BUDGET * 260 * 120);
