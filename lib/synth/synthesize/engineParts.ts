@@ -3,7 +3,7 @@ import type { EngineExports, SampleEngine } from '../engine/types';
 import type { BitWindow } from './bitWindow';
 import type { RunSink } from './cellValues';
 import { LEVEL_STATE_LENGTH } from './levelState';
-import type { PartPlan, SampleWork, UsefulParts } from './usefulParts';
+import type { PartPlan, SampleWork, UsefulParts } from './partTypes';
 
 const BLOCK_SAMPLES = 4096;
 const RUNS_MOST = 512;

@@ -172,13 +172,13 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
     return count;
   }
 
-  /** Calls `use` with up to `most` samples, a row at a time: where it lies, how many they are, how many came before. */
-  function eachSpan(most: number, use: (at: number, count: number, done: number) => void): number {
+  /** Calls `visit` with up to `most` samples, a row at a time: where it lies, how many they are, how many came before. */
+  function eachSpan(most: number, visit: (at: number, count: number, done: number) => void): number {
     let done = 0;
     while (done < most) {
       const count = nextSpan(most - done);
       if (count === 0) break;
-      use(spanAt, count, done);
+      visit(spanAt, count, done);
       done += count;
     }
     if (position === samples) parts.rest();

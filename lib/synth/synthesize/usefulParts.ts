@@ -1,45 +1,11 @@
-import { createMixedRadix } from '../fft/mixedRadix';
-import type { WordWriter } from '../files/wordWriter';
-import type { WaveformContent } from '../types';
-import { createPlacedValues, type Placement, type PlacedValues } from './cellValues';
-import { frameLayout } from './layout';
 import { isEngineSize } from '../engine/transformPlan';
+import { createMixedRadix } from '../fft/mixedRadix';
+import type { WaveformContent } from '../types';
+import { createPlacedValues, type Placement } from './cellValues';
 import { createEngineParts } from './engineParts';
-import type { FrameLayout, RenderOptions, StatsCollector } from './types';
-
-/** Useful parts of symbols, some of them kept. */
-export interface UsefulParts {
-  /** To be called before the first part of each call from outside; false: views of parts given before are void. */
-  enter(): boolean;
-  /** Nothing more is wanted for now. */
-  rest(): void;
-  /**
-   * The useful part of a symbol, interleaved, to be read only; valid until the next call (`slot` below the kept ones: until
-   * enter gives false). Equal slots are equal parts.
-   */
-  part(repeat: number, symbol: number, slot: number): Float64Array;
-  /** What the engine does with samples in its memory; null without an engine. */
-  readonly onSamples: SampleWork | null;
-}
-
-/** The engine's work on samples that lie in its memory, `at` bytes from its beginning. */
-export interface SampleWork {
-  /** Room for some samples that were put together here; valid until enter gives false. */
-  readonly block: Float64Array;
-  measure(collector: StatsCollector, at: number, count: number): void;
-  /** Writes `count` samples as words to bytes[to…]. */
-  write(writer: WordWriter, at: number, count: number, bytes: Uint8Array, to: number): void;
-}
-
-/** What parts are made of. */
-export interface PartPlan {
-  values: PlacedValues;
-  layout: FrameLayout;
-  placement: Placement;
-  /** Bins that cells reach: 0…low − 1 and the last `high`. */
-  low: number;
-  high: number;
-}
+import { frameLayout } from './layout';
+import type { PartPlan, UsefulParts } from './partTypes';
+import type { RenderOptions } from './types';
 
 /** Throws SynthError as frameLayout and createCellValues do. */
 export function planParts(content: WaveformContent, options: RenderOptions): PartPlan {
