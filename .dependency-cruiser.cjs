@@ -50,7 +50,10 @@ module.exports = {
     never('server-has-no-client', '^(server|db)/', '^(app|components|lib/(client|editor))/'),
     never(
       'drizzle-only-in-db-and-repos',
-      { path: '.', pathNot: '^(db/|server/.*[rR]epo\\.ts$|server/auth/hashedIdAdapter\\.ts$|drizzle\\.config\\.ts$|tests/)' },
+      {
+        path: '.',
+        pathNot: '^(db/|server/.*[rR]epo\\.ts$|server/auth/hashedIdAdapter\\.ts$|drizzle\\.config\\.ts$|tests/)',
+      },
       pkg('drizzle-orm', '@lucia-auth/adapter-drizzle'),
     ),
     never('routes-not-to-repo', '^server/features/[^/]+/routes\\.ts$', '[rR]epo\\.ts$'),

@@ -132,11 +132,11 @@ export function createEngineParts(plan: PartPlan, engine: SampleEngine, slots: n
 
   const work: SampleWork & { block: Float64Array } = {
     block: spectrum,
-    measure(collector, at, count) {
-      const state = start + map.state;
-      numbers.set(collector.state, state / 8);
-      kernel.measure(state, at, count);
-      for (let i = 0; i < LEVEL_STATE_LENGTH; i++) collector.state[i] = numbers[state / 8 + i]!;
+    lend: (collector) => numbers.set(collector.state, (start + map.state) / 8),
+    measure: (at, count) => kernel.measure(start + map.state, at, count),
+    giveBack(collector) {
+      const state = (start + map.state) / 8;
+      collector.state.set(numbers.subarray(state, state + LEVEL_STATE_LENGTH));
     },
     write(writer, at, count, bytes, to) {
       const { direct, bytesPerSample } = writer;

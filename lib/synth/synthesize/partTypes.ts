@@ -21,7 +21,10 @@ export interface UsefulParts {
 export interface SampleWork {
   /** Room for some samples that were put together here; valid until enter gives false. */
   readonly block: Float64Array;
-  measure(collector: StatsCollector, at: number, count: number): void;
+  /** Takes a collector's levels into the engine; samples are measured into them until they are given back. */
+  lend(collector: StatsCollector): void;
+  measure(at: number, count: number): void;
+  giveBack(collector: StatsCollector): void;
   /** Writes `count` samples as words to bytes[to…]. */
   write(writer: WordWriter, at: number, count: number, bytes: Uint8Array, to: number): void;
 }

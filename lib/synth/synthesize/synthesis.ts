@@ -186,7 +186,13 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
   }
 
   function collect(collector: StatsCollector, most: number): number {
-    if (onSamples !== null) return eachSpan(most, (at, count) => onSamples.measure(collector, at, count));
+    if (onSamples !== null) {
+      if (!parts.enter()) useful = null;
+      onSamples.lend(collector);
+      const measured = eachSpan(most, onSamples.measure);
+      onSamples.giveBack(collector);
+      return measured;
+    }
     block ??= new Float64Array(2 * BLOCK_SAMPLES);
     const count = read(most < BLOCK_SAMPLES ? block.subarray(0, 2 * most) : block);
     collector.add(block, 0, count);

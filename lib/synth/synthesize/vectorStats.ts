@@ -4,7 +4,7 @@ import { addSamples, closePart, LEVEL_STATE_LENGTH } from './levelState';
 import { createSynthesis } from './synthesis';
 import type { RenderOptions, StatsCollector, Synthesis, VectorStats } from './types';
 
-const BLOCK_SAMPLES = 4096;
+const BLOCK_SAMPLES = 65536;
 
 /**
  * Levels of samples given in order: mean power by sums over 128 samples, added with compensation. Silent samples add
