@@ -65,7 +65,7 @@ module.exports = {
     combinedDependencies: true, // else a package.json with a type alone makes each package below it look undeclared
     tsConfig: { fileName: 'tsconfig.json' }, // the @/* alias
     doNotFollow: { path: 'node_modules' },
-    exclude: { path: ['^tests/fixtures/', '\\.(ttf|css)$'] },
+    exclude: { path: ['^tests/fixtures/', '^lib/synth/assembly/', '\\.(ttf|css)$'] },
     enhancedResolveOptions: { exportsFields: ['exports'], conditionNames: ['import', 'require', 'default', 'types'] },
   },
 };

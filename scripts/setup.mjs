@@ -78,6 +78,11 @@ once('public/.stamp', hash(['scripts/copy-assets.mjs', 'package-lock.json']), ()
   run('node', 'scripts/copy-assets.mjs'),
 );
 
+// the sample engine beside it, compiled from its source
+once('public/wasm/.stamp', hash(['lib/synth/assembly', 'scripts/build-engine.mjs', 'package-lock.json']), () =>
+  run('node', 'scripts/build-engine.mjs'),
+);
+
 // 3. web app: exported beside the old one, then swapped in
 const web = [
   'app',

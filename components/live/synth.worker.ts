@@ -1,5 +1,6 @@
 import type { LiveRequest } from '@/lib/editor/live/protocol';
 import { createLiveWorker, transfersOf } from '@/lib/editor/live/worker';
+import { createSampleEngine, type EngineExports, type SampleEngine } from '@/lib/synth/index';
 
 // The thread that synthesizes while somebody draws. All it does stands in lib/editor/live; here are only its ear and its voice.
 interface WorkerScope {
@@ -14,12 +15,26 @@ const channel = new MessageChannel();
 const tasks: (() => void)[] = [];
 channel.port1.onmessage = () => tasks.shift()?.();
 
-const worker = createLiveWorker({
-  post: (answer) => scope.postMessage(answer, transfersOf(answer)),
-  later(task) {
-    tasks.push(task);
-    channel.port2.postMessage(null);
-  },
-});
+/** The engine's module from our own origin. Without it the page's samples have the same bits, slower. */
+async function loadEngine(): Promise<SampleEngine | undefined> {
+  try {
+    const module = await WebAssembly.compileStreaming(fetch('/wasm/engine.wasm'));
+    return createSampleEngine(() => new WebAssembly.Instance(module).exports as unknown as EngineExports);
+  } catch {
+    return undefined;
+  }
+}
 
-scope.onmessage = ({ data }) => worker.receive(data);
+const starting = loadEngine().then((engine) =>
+  createLiveWorker({
+    post: (answer) => scope.postMessage(answer, transfersOf(answer)),
+    later(task) {
+      tasks.push(task);
+      channel.port2.postMessage(null);
+    },
+    engine,
+  }),
+);
+
+// messages wait for the engine in their order
+scope.onmessage = ({ data }) => void starting.then((worker) => worker.receive(data));

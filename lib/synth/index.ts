@@ -37,14 +37,17 @@ export { createSequence, sequenceValue, type ValueSequence } from './sequences/s
 export { createTransform, isFiveSmooth, type Transform } from './fft/transform';
 export { frameLayout, interpolationOf } from './synthesize/layout';
 export { createCellValues } from './synthesize/cellValues';
+export { createSampleEngine } from './engine/sampleEngine';
+export type { EngineExports, SampleEngine } from './engine/types';
 export { createRamp } from './synthesize/ramp';
 export { createSymbolSynthesis } from './synthesize/symbolSynthesis';
 export { createSynthesis } from './synthesize/synthesis';
-export { createStatsCollector, interpolatedPeak, vectorStats, type StatsCollector } from './synthesize/vectorStats';
+export { createStatsCollector, interpolatedPeak, vectorStats } from './synthesize/vectorStats';
 export type {
   CellValues,
   FrameLayout,
   RenderOptions,
+  StatsCollector,
   SymbolSynthesis,
   Synthesis,
   VectorStats,

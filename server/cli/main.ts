@@ -1,3 +1,5 @@
+import path from 'node:path';
+import { loadSampleEngine } from '../sampleEngine.ts';
 import { helpText, parseCommand, type Command } from './arguments.ts';
 import { inspect } from './inspect.ts';
 import { done, refused, usage, type Outcome } from './outcome.ts';
@@ -44,6 +46,7 @@ async function outcomeOf(argv: string[]): Promise<Outcome> {
   }
 }
 
+loadSampleEngine(path.resolve(import.meta.dirname, '..', 'public', 'wasm', 'engine.wasm')); // beside build/
 const argv = process.argv.slice(2);
 const outcome = await outcomeOf(argv);
 // A reader that closes early (head) is no failure of ours.

@@ -7,6 +7,7 @@ import {
   type FrameMeasuring,
   type WaveformContent,
 } from '@/lib/synth';
+import { sampleEngine } from '../sampleEngine.ts';
 
 /** Levels of a whole rendering in units of x, before any scale: what the fit makes dBFS of. */
 export interface RenderedLevels {
@@ -38,13 +39,14 @@ function finish(measuring: FrameMeasuring) {
 }
 
 export function measureContent(content: WaveformContent): ContentMeasures {
-  let measuring = createFrameMeasure(content);
+  const options = { engine: sampleEngine() };
+  let measuring = createFrameMeasure(content, options);
   const { repeats } = content.timing;
   let measuredRepeats = repeats;
   const samples = measuring.totalSteps * STEP_SAMPLES;
   if (samples > MEASURED_SAMPLES_MOST && repeats > 1) {
     measuredRepeats = Math.max(1, Math.floor((repeats * MEASURED_SAMPLES_MOST) / samples));
-    measuring = createFrameMeasure({ ...content, timing: { ...content.timing, repeats: measuredRepeats } });
+    measuring = createFrameMeasure({ ...content, timing: { ...content.timing, repeats: measuredRepeats } }, options);
   }
   const { power, symbolPaprDb } = finish(measuring);
   let worstSymbol: number | null = null;
@@ -64,7 +66,7 @@ export function measureContent(content: WaveformContent): ContentMeasures {
 }
 
 function renderedLevels(content: WaveformContent, interpolatedPeak: number): RenderedLevels | null {
-  const synthesis = createSynthesis(content);
+  const synthesis = createSynthesis(content, { engine: sampleEngine() });
   if (synthesis.samples > HELD_SAMPLES_MOST) return null;
   const stats = vectorStats(synthesis);
   const held = new Float64Array(2 * synthesis.samples);

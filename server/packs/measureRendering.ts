@@ -8,6 +8,7 @@ import {
   type VectorStats,
   type WaveformContent,
 } from '@/lib/synth';
+import { sampleEngine } from '../sampleEngine.ts';
 import { throwIfCancelled } from './packError.ts';
 import { createYielder } from './yielder.ts';
 
@@ -30,13 +31,11 @@ const blockSamples = 1 << 15;
  * drawing table's words are scaled by.
  */
 async function collect(content: WaveformContent, oversampling: number, options: StepOptions): Promise<VectorStats> {
-  const synthesis = createSynthesis(content, { oversampling });
+  const synthesis = createSynthesis(content, { oversampling, engine: sampleEngine() });
   const collector = createStatsCollector();
-  const block = new Float64Array(2 * blockSamples);
   const giveWay = createYielder();
   const { repeats, activeSamples, lastActiveSamples } = synthesis.layout;
-  for (let count = synthesis.read(block); count > 0; count = synthesis.read(block)) {
-    collector.add(block, 0, count);
+  while (synthesis.collect(collector, blockSamples) > 0) {
     throwIfCancelled(options.signal);
     options.onProgress?.(synthesis.position / synthesis.samples);
     await giveWay();
@@ -56,7 +55,7 @@ export async function measureRendering(content: WaveformContent, options: StepOp
   const middle = own + (1 - own) / 2;
   const interpolated =
     interpolation === content.oversampling ? stats : await collect(content, interpolation, part(own, middle));
-  const measuring = createFrameMeasure(content);
+  const measuring = createFrameMeasure(content, { engine: sampleEngine() });
   const giveWay = createYielder();
   const last = part(middle, 1);
   while (measuring.step()) {

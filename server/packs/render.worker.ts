@@ -1,4 +1,6 @@
+import path from 'node:path';
 import { parentPort, workerData } from 'node:worker_threads';
+import { loadSampleEngine } from '../sampleEngine.ts';
 import { makePack } from './makePack.ts';
 import type { FromRenderWorker, RenderTask, ToRenderWorker } from './workerProtocol.ts';
 
@@ -9,6 +11,8 @@ import type { FromRenderWorker, RenderTask, ToRenderWorker } from './workerProto
 const port = parentPort;
 if (!port) throw new Error('render.worker runs as a worker thread only.');
 const send = (message: FromRenderWorker) => port.postMessage(message);
+
+loadSampleEngine(path.resolve(import.meta.dirname, '..', 'public', 'wasm', 'engine.wasm')); // beside build/
 
 const task = workerData as RenderTask;
 const stop = new AbortController();

@@ -18,6 +18,7 @@ import {
   type WaveformContent,
   type WordScale,
 } from '@/lib/synth';
+import { sampleEngine } from '../sampleEngine.ts';
 import type { StepOptions } from './measureRendering.ts';
 import { throwIfCancelled } from './packError.ts';
 import { createYielder } from './yielder.ts';
@@ -66,7 +67,7 @@ export async function proveVector(
   place: VectorPlace,
   options: StepOptions = {},
 ): Promise<VectorProof> {
-  const synthesis = createSynthesis(content);
+  const synthesis = createSynthesis(content, { engine: sampleEngine() });
   const values = createCellValues(content);
   const { fftSize } = content;
   const writer = createWordWriter(bench, scale);
@@ -89,7 +90,6 @@ export async function proveVector(
     if (symbol === content.symbolCount - 1) meter.endFrame();
   });
   const size = reader.bytesPerSample;
-  const rendered = new Float64Array(2 * blockSamples);
   const words = new Float64Array(2 * blockSamples);
   const expected = new Uint8Array(blockSamples * size);
   const found = new Uint8Array(blockSamples * size);
@@ -110,8 +110,7 @@ export async function proveVector(
     sha256.update(stored);
     sha512.update(stored);
     if (samplesRead === 0) head = stored.slice(0, headBytes);
-    const got = readBlock(synthesis, rendered, count);
-    writer.write(rendered, got, expected);
+    const got = synthesis.readWords(writer, count, expected);
     // A file longer than the synthesis has words that nothing rendered: each counts as different.
     wordsDifferent +=
       countDifferent(stored.subarray(0, got * size), expected.subarray(0, got * size), size / 2) + 2 * (count - got);
@@ -234,17 +233,6 @@ async function readInto(handle: FileHandle, into: Uint8Array, bytes: number, pos
     if (bytesRead === 0) throw new Error('The vector ended before its size.');
     done += bytesRead;
   }
-}
-
-/** Fills a block as far as the rendering goes; a single read may give fewer than asked. */
-export function readBlock(synthesis: { read(out: Float64Array): number }, block: Float64Array, count: number): number {
-  let done = 0;
-  while (done < count) {
-    const read = synthesis.read(block.subarray(2 * done, 2 * count));
-    if (read === 0) break;
-    done += read;
-  }
-  return done;
 }
 
 function countDifferent(a: Uint8Array, b: Uint8Array, wordBytes: number): number {

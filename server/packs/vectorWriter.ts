@@ -7,9 +7,9 @@ import {
   type WaveformContent,
   type WordScale,
 } from '@/lib/synth';
+import { sampleEngine } from '../sampleEngine.ts';
 import type { StepOptions } from './measureRendering.ts';
 import { throwIfCancelled } from './packError.ts';
-import { readBlock } from './vectorProof.ts';
 
 const blockSamples = 1 << 16;
 
@@ -29,17 +29,16 @@ export async function writeVector(
   scale: WordScale,
   options: StepOptions = {},
 ): Promise<SaturationCount> {
-  const synthesis = createSynthesis(content);
+  const synthesis = createSynthesis(content, { engine: sampleEngine() });
   const writer = createWordWriter(bench, scale);
-  const samples = new Float64Array(2 * blockSamples);
   const bytes = new Uint8Array(blockSamples * writer.bytesPerSample);
   const handle = await open(file, 'wx');
   try {
     for (;;) {
       throwIfCancelled(options.signal);
-      const count = readBlock(synthesis, samples, blockSamples);
+      const count = synthesis.readWords(writer, blockSamples, bytes);
       if (count === 0) break;
-      await writeAll(handle, bytes.subarray(0, writer.write(samples, count, bytes)));
+      await writeAll(handle, bytes.subarray(0, count * writer.bytesPerSample));
       options.onProgress?.(synthesis.position / synthesis.samples);
     }
     await handle.sync();

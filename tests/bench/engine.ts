@@ -2,13 +2,23 @@
  * Our side of the bench: reads lines "W1", "W1 file", … and answers with one line of JSON per round:
  * { ms, peak, meanPower, firstWords }. The peers speak the same.
  */
-import { closeSync, fsyncSync, openSync, writeSync } from 'node:fs';
+import { closeSync, fsyncSync, openSync, readFileSync, writeSync } from 'node:fs';
 import { createInterface } from 'node:readline';
-import { createSynthesis, createWordWriter, vectorStats, wordScale, type BenchContent } from '@/lib/synth';
+import {
+  createSampleEngine,
+  createSynthesis,
+  createWordWriter,
+  vectorStats,
+  wordScale,
+  type BenchContent,
+  type EngineExports,
+} from '@/lib/synth';
 import { workload, type WorkloadName } from './workloads';
 
 const BLOCK_SAMPLES = 16384;
 const outputPath = process.argv[2]!;
+const module = new WebAssembly.Module(readFileSync('public/wasm/engine.wasm'));
+const engine = createSampleEngine(() => new WebAssembly.Instance(module).exports as unknown as EngineExports);
 
 const bench: BenchContent = {
   sampleClockHz: { least: 1, most: 1e12, step: null },
@@ -34,24 +44,23 @@ const bench: BenchContent = {
 // the words of a job are kept in memory up to W1's and W2's size; W3 goes through one block, as its peer's repeats do
 const words = new Uint8Array(4 * 400000);
 const view = new DataView(words.buffer);
-const block = new Float64Array(2 * BLOCK_SAMPLES);
 
 function round(name: WorkloadName, toFile: boolean): object {
   const content = workload(name);
   const file = toFile ? openSync(outputPath, 'w') : null;
   const start = performance.now();
-  const synthesis = createSynthesis(content);
+  const synthesis = createSynthesis(content, { engine });
   const stats = vectorStats(synthesis);
   const scale = wordScale(content.level, { ...stats, interpolatedPeak: stats.samplePeak }, bench);
   const writer = createWordWriter(bench, scale);
   let at = 0;
   let firstWords: number[] | null = null;
-  for (let count = synthesis.read(block); count > 0; count = synthesis.read(block)) {
-    if (at + 4 * count > words.length) {
+  while (synthesis.position < synthesis.samples) {
+    if (at + 4 * BLOCK_SAMPLES > words.length) {
       if (file !== null) writeSync(file, words, 0, at);
       at = 0;
     }
-    at += writer.write(block, count, words, at);
+    at += 4 * synthesis.readWords(writer, BLOCK_SAMPLES, words, at);
     firstWords ??= [0, 1, 2, 3, 4, 5, 6, 7].map((i) => view.getInt16(2 * i, true));
   }
   if (file !== null) {

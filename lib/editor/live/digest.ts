@@ -1,7 +1,7 @@
 import { sha256 } from '@noble/hashes/sha2.js';
 import { bytesToHex } from '@noble/hashes/utils.js';
 import { createStatsCollector, createSynthesis, createWordWriter, interpolationOf, wordScale } from '@/lib/synth/index';
-import type { BenchContent, Synthesis, VectorStats, WaveformContent } from '@/lib/synth/index';
+import type { BenchContent, SampleEngine, Synthesis, VectorStats, WaveformContent } from '@/lib/synth/index';
 
 const BLOCK_SAMPLES = 1 << 14;
 
@@ -14,13 +14,12 @@ export interface DigestJob {
 }
 
 /** Levels of a rendering, block by block; done when step gives false. */
-function createStatsPass(synthesis: Synthesis, block: Float64Array): { step(): boolean; stats(): VectorStats } {
+function createStatsPass(synthesis: Synthesis): { step(): boolean; stats(): VectorStats } {
   const collector = createStatsCollector();
   const { repeats, activeSamples, lastActiveSamples } = synthesis.layout;
   return {
     step() {
-      const count = synthesis.read(block);
-      collector.add(block, 0, count);
+      synthesis.collect(collector, BLOCK_SAMPLES);
       return synthesis.position < synthesis.samples;
     },
     stats: () => collector.stats((repeats - 1) * activeSamples + lastActiveSamples),
@@ -28,13 +27,12 @@ function createStatsPass(synthesis: Synthesis, block: Float64Array): { step(): b
 }
 
 /** Throws SynthError for a profile or content that cannot be rendered yet. */
-export function createDigestJob(content: WaveformContent, bench: BenchContent): DigestJob {
-  const block = new Float64Array(2 * BLOCK_SAMPLES);
-  const synthesis = createSynthesis(content);
+export function createDigestJob(content: WaveformContent, bench: BenchContent, engine?: SampleEngine): DigestJob {
+  const synthesis = createSynthesis(content, { engine });
   const oversampling = interpolationOf(content.oversampling);
   const isOwn = oversampling === content.oversampling;
-  const own = createStatsPass(synthesis, block);
-  const interpolated = isOwn ? null : createStatsPass(createSynthesis(content, { oversampling }), block);
+  const own = createStatsPass(synthesis);
+  const interpolated = isOwn ? null : createStatsPass(createSynthesis(content, { oversampling, engine }));
   const hash = sha256.create();
   let phase: 'own' | 'interpolated' | 'words' | 'done' = 'own';
   let writer: ReturnType<typeof createWordWriter> | null = null;
@@ -63,8 +61,7 @@ export function createDigestJob(content: WaveformContent, bench: BenchContent): 
       } else if (phase === 'interpolated') {
         if (!interpolated!.step()) startWords();
       } else if (phase === 'words') {
-        const count = synthesis.read(block);
-        const size = writer!.write(block, count, bytes);
+        const size = writer!.bytesPerSample * synthesis.readWords(writer!, BLOCK_SAMPLES, bytes);
         hash.update(bytes.subarray(0, size));
         written += size;
         if (synthesis.position >= synthesis.samples) phase = 'done';

@@ -1,5 +1,5 @@
 import { createCellCensus, createFrameTally, createSymbolTally, tallySymbol, tallyTail } from '@/lib/synth/index';
-import type { CellCensus, FrameTally, WaveformContent, WaveformDocument } from '@/lib/synth/index';
+import type { CellCensus, FrameTally, SampleEngine, WaveformContent, WaveformDocument } from '@/lib/synth/index';
 import { openDocument } from '../document';
 import type { EditorDocument } from '../document';
 import { applyPatch, touchedSymbols } from '../patch';
@@ -52,7 +52,7 @@ function bareContent(settings: Settings): WaveformContent {
   return { ...settings, grid: { rows: [], rowOfSymbol: [] } };
 }
 
-export function createMirror(stored: WaveformDocument, startCount: number): Mirror {
+export function createMirror(stored: WaveformDocument, startCount: number, engine?: SampleEngine): Mirror {
   const document = openDocument(stored);
   let count = startCount;
   let kept: Kept | null = null;
@@ -94,7 +94,7 @@ export function createMirror(stored: WaveformDocument, startCount: number): Mirr
     }
     return {
       content,
-      waveform: createWaveform(content, cells),
+      waveform: createWaveform(content, cells, engine),
       census: createCellCensus(content, cells),
       reach,
       pilots,

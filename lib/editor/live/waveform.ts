@@ -1,5 +1,5 @@
 import { createCellValues, createRamp, createSymbolSynthesis, interpolationOf } from '@/lib/synth/index';
-import type { CellValues, WaveformContent } from '@/lib/synth/index';
+import type { CellValues, SampleEngine, WaveformContent } from '@/lib/synth/index';
 
 /** Useful parts kept: the symbols round the one being drawn stay at hand. */
 const KEPT = 6;
@@ -33,9 +33,9 @@ export interface Waveform {
   synthesized(): number;
 }
 
-export function createWaveform(content: WaveformContent, cells: Uint8Array): Waveform {
+export function createWaveform(content: WaveformContent, cells: Uint8Array, engine?: SampleEngine): Waveform {
   const interpolation = interpolationOf(content.oversampling);
-  const synthesis = createSymbolSynthesis(content, { cells, oversampling: interpolation });
+  const synthesis = createSymbolSynthesis(content, { cells, oversampling: interpolation, engine });
   const { layout } = synthesis;
   const values = createCellValues(content, cells);
   const { symbolCount, oversampling, timing } = content;

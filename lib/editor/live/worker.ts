@@ -1,3 +1,4 @@
+import type { SampleEngine } from '@/lib/synth/index';
 import { contentOf, openDocument, storedDocument } from '../document';
 import { createDigestJob } from './digest';
 import type { DigestJob } from './digest';
@@ -11,6 +12,8 @@ import { ccdfTrace, constellationTrace, spectrumTrace, timeTrace } from './views
 export interface LiveHost {
   post(answer: LiveAnswer): void;
   later(task: () => void): void;
+  /** What samples are computed with; without it the same bits, slower. */
+  engine?: SampleEngine | undefined;
 }
 
 export interface LiveWorker {
@@ -106,7 +109,7 @@ export function createLiveWorker(host: LiveHost): LiveWorker {
   }
 
   function open(request: Extract<LiveRequest, { kind: 'open' }>): void {
-    mirror = createMirror(request.document, request.changeCount);
+    mirror = createMirror(request.document, request.changeCount, host.engine);
     view = request.view;
     nextSequence = 1;
     isAsking = false;
@@ -131,7 +134,7 @@ export function createLiveWorker(host: LiveHost): LiveWorker {
     try {
       // Its own copy: the document goes on changing while the digest is taken.
       const content = contentOf(openDocument(storedDocument(mirror.document)));
-      digests.push({ requestId, changeCount: mirror.changeCount(), job: createDigestJob(content, bench) });
+      digests.push({ requestId, changeCount: mirror.changeCount(), job: createDigestJob(content, bench, host.engine) });
     } catch (error) {
       host.post({ kind: 'digestFailed', requestId, message: error instanceof Error ? error.message : String(error) });
     }

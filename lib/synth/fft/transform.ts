@@ -41,7 +41,7 @@ function reverseInPlace(data: Float64Array, size: number): void {
  */
 export function createTransform(size: number): Transform {
   demand(isFiveSmooth(size) && size <= 4194304, 'bad_size', `No transform of size ${size}: factors 2, 3 and 5 only.`);
-  const forward = size >= 4 && (size & (size - 1)) === 0 ? powerOfTwoPlan(size) : createMixedRadix(size);
+  const forward = size >= 4 && (size & (size - 1)) === 0 ? powerOfTwoPlan(size) : createMixedRadix(size, 'forward');
   return {
     size,
     forward,

@@ -14,6 +14,15 @@ export interface WordWriter {
    * with `samples`.
    */
   write(samples: Float64Array, count: number, bytes: Uint8Array, at?: number): number;
+  /** How the engine makes the same bytes: interleaved words in its own byte order, saturated at −most−1 and most. */
+  readonly direct: DirectWords | null;
+}
+
+/** Words that are the file's bytes as they are. */
+export interface DirectWords {
+  word: 'int16' | 'float32';
+  scale: number;
+  most: number;
 }
 
 /**
@@ -31,9 +40,13 @@ export function createWordWriter(bench: BenchContent, scale: WordScale): WordWri
     bench.word === 'float32'
       ? createFloatBlock(scale, isLittle, saturated)
       : createIntegerBlock(bench, scale, isLittle, saturated);
+  const isDirect = bench.word !== 'int8' && isLittle && (bench.word === 'float32' || shiftOf(bench) === 0);
   return {
     bytesPerSample: size,
     saturated,
+    direct: isDirect
+      ? { word: bench.word === 'int16' ? 'int16' : 'float32', scale: scale.scale, most: scale.fullScale }
+      : null,
     write(samples, count, bytes, at = 0) {
       demand(samples.length >= 2 * count, 'buffer_too_small', 'Fewer samples than said.');
       demand(bytes.length - at >= count * size, 'buffer_too_small', 'No room for the words.');
@@ -41,6 +54,11 @@ export function createWordWriter(bench: BenchContent, scale: WordScale): WordWri
       return count * size;
     },
   };
+}
+
+/** Places that a word is moved up: left-aligned words of fewer than 16 bits. */
+function shiftOf(bench: BenchContent): number {
+  return bench.word === 'int16' && bench.align === 'left' ? 16 - bench.bits : 0;
 }
 
 type BlockWriter = (samples: Float64Array, count: number, bytes: Uint8Array, at: number) => void;
@@ -51,7 +69,7 @@ function createIntegerBlock(
   isLittle: boolean,
   saturated: SaturationCount,
 ): BlockWriter {
-  const shift = bench.word === 'int16' && bench.align === 'left' ? 16 - bench.bits : 0;
+  const shift = shiftOf(bench);
   const isDirect = bench.word === 'int16' && shift === 0 && isLittle === isHostLittleEndian;
   let words = new Int16Array(0);
   return (samples, count, bytes, at) => {

@@ -1,6 +1,7 @@
 import { log10 } from '../math/exponential';
 import { interpolationOf } from '../synthesize/layout';
 import { createSynthesis } from '../synthesize/synthesis';
+import type { RenderOptions } from '../synthesize/types';
 import type { WaveformContent } from '../types';
 import { ccdfThresholds, sampleCcdf } from './ccdf';
 import { binOfPower, createHistogram } from './histogram';
@@ -50,7 +51,10 @@ interface Running {
  * `cells` (L·N inks) replaces the document's grid. Where all repeats have the same values, the first, one between and the last are
  * measured and the one between counted for the rest.
  */
-export function createFrameMeasure(content: WaveformContent, options: { cells?: Uint8Array } = {}): FrameMeasuring {
+export function createFrameMeasure(
+  content: WaveformContent,
+  options: Pick<RenderOptions, 'cells' | 'engine'> = {},
+): FrameMeasuring {
   const interpolation = interpolationOf(content.oversampling);
   const repeats = content.timing.repeats;
   const render = (times: number) =>

@@ -6,6 +6,8 @@ const AHEAD_WORDS = 512;
 export interface BitWindow {
   /** Packed words, most significant bit first; valid after `hold`. One word more than was asked for may be read. */
   words: Uint32Array;
+  /** Another number than before says that `words` changed. */
+  version: number;
   /** Makes bits startBit…endBit−1 available and returns where in `words` (counted in bits) startBit lies. */
   hold(startBit: number, endBit: number): number;
 }
@@ -16,6 +18,7 @@ export function createBitWindow(source: BitSource): BitWindow {
   let held = 0;
   const window: BitWindow = {
     words: new Uint32Array(AHEAD_WORDS + 2),
+    version: 0,
     hold(startBit, endBit) {
       const from = Math.floor(startBit / 32);
       const to = Math.floor((endBit + 31) / 32) + 1;
@@ -32,6 +35,7 @@ export function createBitWindow(source: BitSource): BitWindow {
         if (kept < count) source.readWords(from + kept, count - kept, window.words, kept);
         first = from;
         held = count;
+        window.version++;
       }
       return startBit - 32 * first;
     },

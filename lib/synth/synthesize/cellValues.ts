@@ -4,6 +4,7 @@ import { createRootsOfUnity } from '../math/turns';
 import { createBitSource } from '../sequences/bitSource';
 import type { WaveformContent } from '../types';
 import { createBitWindow, type BitWindow } from './bitWindow';
+import { runsOfCells, runsOfGrid, type CellRuns } from './cellRuns';
 import { createCellCounts } from './counts';
 import { planInks, type InkPlan } from './inkPlan';
 import { frameLayout } from './layout';
@@ -12,18 +13,28 @@ import type { CellValues } from './types';
 
 const ANCHOR_BITS = 12; // an anchored cell's place in its source: room for 4096-QAM
 
-/** Where position p of a symbol goes: out[2·(low − p)] up to p = ⌊N/2⌋, then out[2·(high − p)]; or p itself. */
+/** Where position p of a symbol goes: out[2·(low + p)] for p < split, then out[2·(high + p)]. */
 export interface Placement {
   split: number;
   low: number;
   high: number;
-  stride: 1 | -1;
+}
+
+/** Takes runs of payload cells instead of their points being written at once. */
+export interface RunSink {
+  /** `count` cells of an ink go to out[2·to…]: cell i takes its bits at offset + i·step of the window's words. */
+  take(ink: number, window: BitWindow, offset: number, step: number, to: number, count: number, parity: number): void;
 }
 
 /** What the renderer needs beside CellValues: values straight into a transform's input. */
 export interface PlacedValues extends CellValues {
-  /** Writes the values of the symbol's cells that are not silent; all others must be 0 already. */
-  writePlaced(repeat: number, symbol: number, out: Float64Array, placement: Placement): void;
+  readonly inks: readonly InkPlan[];
+  /** As CellRuns.rowOf: symbols of one row differ in no silent cell. */
+  rowOf(symbol: number): number;
+  /** Positions first…end−1 hold every cell that may not be silent. */
+  readonly painted: { first: number; end: number };
+  /** Writes the values of the symbol's cells that are not silent (payload cells: to `sink`, where given); all others must be 0. */
+  writePlaced(repeat: number, symbol: number, out: Float64Array, placement: Placement, sink?: RunSink): void;
 }
 
 /**
@@ -40,7 +51,9 @@ export function createPlacedValues(
   const cells = givenCells ?? expandGrid(content.grid, fftSize);
   demand(cells.length === fftSize * symbolCount, 'bad_size', 'Cells do not fill the grid.');
   const inks = planInks(content, gain);
-  const counts = createCellCounts(cells, fftSize, symbolCount, inks);
+  const openRuns = () => (givenCells === undefined ? runsOfGrid(content.grid) : runsOfCells(cells, fftSize));
+  const cellRuns = openRuns();
+  const counts = createCellCounts(openRuns(), symbolCount, inks); // of its own: it counts while runs are in use
   const base = frameLayout({ ...content, oversampling: 1, timing: { ...timing, padSamples: 0 } }, 1);
   const windows: (BitWindow | undefined)[] = streams.map(() => undefined);
   const taken = new Float64Array(streams.length); // next bit of each running stream
@@ -49,7 +62,7 @@ export function createPlacedValues(
   const values = new Float64Array(2 * fftSize);
   const lowest = lowestSubcarrier(fftSize);
   let roots: Float64Array | null = null;
-  const natural: Placement = { split: fftSize, low: 0, high: 0, stride: 1 };
+  const natural: Placement = { split: fftSize, low: 0, high: 0 };
 
   function windowOf(stream: number): BitWindow {
     return (windows[stream] ??= createBitWindow(createBitSource(streams[stream]!.source)));
@@ -87,18 +100,18 @@ export function createPlacedValues(
     count: number,
     out: Float64Array,
     to: number,
-    stride: number,
+    sink: RunSink | undefined,
   ): void {
     const window = windowOf(plan.stream);
     const isRunning = streams[plan.stream]!.fill === 'running';
     const step = isRunning ? plan.bits : ANCHOR_BITS;
     const start = isRunning ? taken[plan.stream]! : taken[plan.stream]! + ANCHOR_BITS * p;
     const offset = window.hold(start, start + step * count);
-    if (plan.isHalfTurning) {
-      const index = isRunning ? inkTaken[ink]! : p;
-      mapHalfTurningRun(window.words, offset, step, plan.points, index, out, to, stride, count);
-      inkTaken[ink]! += count;
-    } else mapRun(window.words, offset, step, plan.bits, plan.points, out, to, stride, count);
+    const index = isRunning ? inkTaken[ink]! : p;
+    if (sink !== undefined) sink.take(ink, window, offset, step, to, count, plan.isHalfTurning ? index % 2 : -1);
+    else if (plan.isHalfTurning) mapHalfTurningRun(window.words, offset, step, plan.points, index, out, to, count);
+    else mapRun(window.words, offset, step, plan.bits, plan.points, out, to, count);
+    if (plan.isHalfTurning) inkTaken[ink]! += count;
     if (isRunning) taken[plan.stream]! += step * count;
   }
 
@@ -111,7 +124,6 @@ export function createPlacedValues(
     count: number,
     out: Float64Array,
     to: number,
-    stride: number,
   ): void {
     for (let i = 0; i < count; i++) {
       values[2 * i] = plan.re;
@@ -133,7 +145,7 @@ export function createPlacedValues(
     if (plan.isContinuous) turnContinuously(repeat, symbol, p, count);
     inkTaken[ink]! += count;
     inSymbol[ink]! += count;
-    for (let i = 0, at = 2 * to; i < count; i++, at += 2 * stride) {
+    for (let i = 0, at = 2 * to; i < count; i++, at += 2) {
       out[at] = values[2 * i]! + 0; // no negative zeros
       out[at + 1] = values[2 * i + 1]! + 0;
     }
@@ -163,29 +175,27 @@ export function createPlacedValues(
     end: number,
     out: Float64Array,
     origin: number,
-    stride: number,
+    sink: RunSink | undefined,
   ): void {
-    if (plan.kind === 'data') writeData(ink, plan, p, end - p, out, origin + stride * p, stride);
-    else if (plan.kind === 'value') {
-      writeValues(ink, plan, repeat, symbol, p, end - p, out, origin + stride * p, stride);
-    }
+    if (plan.kind === 'data') writeData(ink, plan, p, end - p, out, origin + p, sink);
+    else if (plan.kind === 'value') writeValues(ink, plan, repeat, symbol, p, end - p, out, origin + p);
   }
 
-  function writePlaced(repeat: number, symbol: number, out: Float64Array, placement: Placement): void {
-    const { split, low, high, stride } = placement;
-    const from = symbol * fftSize;
+  function writePlaced(repeat: number, symbol: number, out: Float64Array, placement: Placement, sink?: RunSink): void {
+    const { split, low, high } = placement;
     isReady.fill(0);
     isStreamReady.fill(0);
-    for (let p = 0; p < fftSize;) {
-      const ink = cells[from + p]!;
-      let end = p + 1;
-      while (end < fftSize && cells[from + end] === ink) end++;
+    const runs = cellRuns.of(symbol);
+    const { numbers } = cellRuns;
+    for (let i = 0, p = 0; i < numbers; i += 2) {
+      const end = runs[i]!;
+      const ink = runs[i + 1]!;
       const plan = inks[ink];
       if (plan === undefined) throw new SynthError('bad_content', `The tray has no ink ${ink}.`);
       if (plan.kind !== 'silent') {
         if (isReady[ink] === 0) prepare(ink, plan, repeat, symbol);
-        if (p < split) writePart(ink, plan, repeat, symbol, p, Math.min(end, split), out, low, stride);
-        if (end > split) writePart(ink, plan, repeat, symbol, Math.max(p, split), end, out, high, stride);
+        if (p < split) writePart(ink, plan, repeat, symbol, p, Math.min(end, split), out, low, sink);
+        if (end > split) writePart(ink, plan, repeat, symbol, Math.max(p, split), end, out, high, sink);
       }
       p = end;
     }
@@ -230,6 +240,9 @@ export function createPlacedValues(
   return {
     content,
     cells,
+    inks,
+    rowOf: cellRuns.rowOf,
+    painted: givenCells === undefined ? paintedPart(cellRuns, content, inks) : { first: 0, end: fftSize },
     writePlaced,
     write(repeat, symbol, out) {
       demand(out.length >= 2 * fftSize, 'buffer_too_small', 'A symbol has 2·N numbers.');
@@ -256,6 +269,26 @@ export function createPlacedValues(
     },
     touch: counts.touch,
   };
+}
+
+/** Where the grid's rows have cells that are not silent. */
+function paintedPart(runs: CellRuns, { fftSize, grid }: WaveformContent, inks: readonly InkPlan[]) {
+  let first = fftSize;
+  let end = 0;
+  const seen = new Set<number>();
+  grid.rowOfSymbol.forEach((rowNumber, symbol) => {
+    if (seen.has(rowNumber)) return;
+    seen.add(rowNumber);
+    const row = runs.of(symbol);
+    for (let i = 0, start = 0; i < row.length; i += 2) {
+      if (inks[row[i + 1]!]?.kind !== 'silent') {
+        first = Math.min(first, start);
+        end = Math.max(end, row[i]!);
+      }
+      start = row[i]!;
+    }
+  });
+  return { first: Math.min(first, end), end };
 }
 
 /** The values of a content's cells, as CellValues describes; see createPlacedValues for what it throws. */

@@ -1,3 +1,4 @@
+import type { CellRuns } from './cellRuns';
 import type { InkPlan } from './inkPlan';
 
 /** How many cells of each ink stand before a symbol (in a repeat), kept up to date under edits. */
@@ -10,12 +11,7 @@ export interface CellCounts {
 }
 
 /** Counts lazily: nothing is scanned until a count is asked for. */
-export function createCellCounts(
-  cells: Uint8Array,
-  fftSize: number,
-  symbolCount: number,
-  inks: readonly InkPlan[],
-): CellCounts {
+export function createCellCounts(cellRuns: CellRuns, symbolCount: number, inks: readonly InkPlan[]): CellCounts {
   const kinds = inks.length;
   let before: Float64Array | null = null;
   let valid = 0; // before[] holds for symbols 0…valid
@@ -25,8 +21,12 @@ export function createCellCounts(
     before ??= new Float64Array((symbolCount + 1) * kinds);
     for (; valid < symbol; valid++) {
       row.fill(0);
-      const end = (valid + 1) * fftSize;
-      for (let i = valid * fftSize; i < end; i++) row[cells[i]!]!++;
+      const runs = cellRuns.of(valid);
+      const { numbers } = cellRuns;
+      for (let i = 0, start = 0; i < numbers; i += 2) {
+        row[runs[i + 1]!]! += runs[i]! - start;
+        start = runs[i]!;
+      }
       for (let ink = 0; ink < kinds; ink++) {
         before[(valid + 1) * kinds + ink] = before[valid * kinds + ink]! + row[ink]!;
       }

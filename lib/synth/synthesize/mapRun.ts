@@ -1,6 +1,6 @@
 /**
  * Puts `count` data cells on their points: cell i takes the `bits` bits at offset + i·step of the packed `words` (most
- * significant first) and goes to out[2·(to + i·stride)]. The inner loop of every rendering: no calls, no objects.
+ * significant first) and goes to out[2·(to + i)]. The inner loop of every rendering: no calls, no objects.
  */
 export function mapRun(
   words: Uint32Array,
@@ -10,13 +10,11 @@ export function mapRun(
   points: Float64Array,
   out: Float64Array,
   to: number,
-  stride: number,
   count: number,
 ): void {
   const drop = 32 - bits;
   let bit = offset;
   let at = 2 * to;
-  const hop = 2 * stride;
   for (let i = 0; i < count; i++) {
     const word = bit >>> 5;
     const shift = bit & 31;
@@ -25,7 +23,7 @@ export function mapRun(
     out[at] = points[from]!;
     out[at + 1] = points[from + 1]!;
     bit += step;
-    at += hop;
+    at += 2;
   }
 }
 
@@ -38,7 +36,6 @@ export function mapHalfTurningRun(
   firstIndex: number,
   out: Float64Array,
   to: number,
-  stride: number,
   count: number,
 ): void {
   let parity = firstIndex % 2;
@@ -46,7 +43,7 @@ export function mapHalfTurningRun(
     const bit = offset + i * step;
     const value = (words[bit >>> 5]! >>> (31 - (bit & 31))) & 1;
     const from = 4 * parity + 2 * value;
-    out[2 * (to + i * stride)] = points[from]!;
-    out[2 * (to + i * stride) + 1] = points[from + 1]!;
+    out[2 * (to + i)] = points[from]!;
+    out[2 * (to + i) + 1] = points[from + 1]!;
   }
 }

@@ -1,10 +1,13 @@
+import { demand } from '../errors';
+import type { WordWriter } from '../files/wordWriter';
 import type { WaveformContent } from '../types';
 import { createFrequencyOffset } from './frequencyOffset';
 import { createRamp } from './ramp';
-import { createSymbolSynthesis } from './symbolSynthesis';
-import type { RenderOptions, Synthesis } from './types';
+import type { RenderOptions, StatsCollector, Synthesis } from './types';
+import { createUsefulParts, planParts } from './usefulParts';
 
 const KEEP_BYTES = 50331648; // 48 MiB
+const BLOCK_SAMPLES = 4096;
 
 /**
  * A rendering of the whole content, read in blocks: symbols with prefixes, ramps and overlap, gaps, pad, the loop's wrap or
@@ -14,8 +17,8 @@ const KEEP_BYTES = 50331648; // 48 MiB
  * Convention: x_l[n] = (1/√N) Σ_k a(k, l) e^{+j2πkn/(N·M)}, prefix = copied tail.
  */
 export function createSynthesis(content: WaveformContent, options: RenderOptions = {}): Synthesis {
-  const renderer = createSymbolSynthesis(content, options);
-  const { layout, values } = renderer;
+  const plan = planParts(content, options);
+  const { layout, values } = plan;
   const { usefulSamples, overlapSamples, symbolCount, repeats, repeatSamples, prefixes, symbolStarts, samples } =
     layout;
   const offset = createFrequencyOffset(content, layout.oversampling);
@@ -23,24 +26,14 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
   const isAlike = repeats > 1 && values.isRepeatAlike;
   // the first useful parts are kept for a second pass or for equal repeats, as many as fit
   const keptMost = Math.floor((options.keepBytes ?? KEEP_BYTES) / (16 * usefulSamples));
-  const kept: (Float64Array | undefined)[] = [];
-  let scratch: Float64Array | null = null;
+  const parts = createUsefulParts(plan, options, Math.min(keptMost, isAlike ? symbolCount : repeats * symbolCount));
+  const { onSamples } = parts;
+  // samples of which nothing is weighted or turned lie in the useful parts as they are
+  const isPlain = overlapSamples === 0 && offset === null;
 
   /** The useful part of symbol `symbol` of `repeat`; valid until the next call. */
   function usefulPart(repeat: number, symbol: number): Float64Array {
-    const slot = isAlike ? symbol : repeat * symbolCount + symbol;
-    if (slot >= keptMost) {
-      scratch ??= new Float64Array(2 * usefulSamples);
-      renderer.useful(repeat, symbol, scratch);
-      return scratch;
-    }
-    let part = kept[slot];
-    if (part === undefined) {
-      part = new Float64Array(2 * usefulSamples);
-      renderer.useful(repeat, symbol, part);
-      kept[slot] = part;
-    }
-    return part;
+    return parts.part(repeat, symbol, isAlike ? symbol : repeat * symbolCount + symbol);
   }
 
   let position = 0;
@@ -72,6 +65,7 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
     // in a loop, what the last suffix has beyond the file's end stands at its beginning
     const lastEnd = (repeats - 1) * repeatSamples + layout.frameSamples;
     if (lastEnd + overlapSamples <= samples) return;
+    parts.enter();
     keepSuffix(usefulPart(repeats - 1, symbolCount - 1), lastEnd - samples);
   }
 
@@ -117,6 +111,7 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
     const wanted = Math.min(Math.floor(out.length / 2), samples - position);
     const first = position;
     let done = 0;
+    if (!parts.enter()) useful = null;
     while (done < wanted) {
       const repeatStart = repeat * repeatSamples;
       let count: number;
@@ -148,7 +143,81 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
       done += count;
     }
     if (offset !== null) offset.apply(out, 0, wanted, first);
+    if (position === samples) parts.rest();
     return wanted;
+  }
+
+  let block: Float64Array | null = null;
+  let spanAt = 0;
+
+  /** Moves on by at most `most` samples that lie in a row in the engine's memory at spanAt; returns how many. */
+  function nextSpan(most: number): number {
+    if (!parts.enter()) useful = null;
+    if (!isPlain || symbol >= symbolCount) {
+      const { block: room } = onSamples!;
+      spanAt = room.byteOffset;
+      return read(most < BLOCK_SAMPLES ? room.subarray(0, 2 * most) : room);
+    }
+    useful ??= usefulPart(repeat, symbol);
+    const prefix = prefixes[symbol]!;
+    const from = position - repeat * repeatSamples - symbolStarts[symbol]!;
+    const start = from < prefix ? usefulSamples - prefix + from : from - prefix;
+    const count = Math.min(most, usefulSamples - start);
+    spanAt = useful.byteOffset + 16 * start;
+    position += count;
+    if (from >= prefix && start + count === usefulSamples) {
+      useful = null;
+      symbol++;
+    }
+    return count;
+  }
+
+  /** Calls `visit` with up to `most` samples, a row at a time: where it lies, how many they are, how many came before. */
+  function eachSpan(most: number, visit: (at: number, count: number, done: number) => void): number {
+    let done = 0;
+    while (done < most) {
+      const count = nextSpan(most - done);
+      if (count === 0) break;
+      visit(spanAt, count, done);
+      done += count;
+    }
+    if (position === samples) parts.rest();
+    return done;
+  }
+
+  function collect(collector: StatsCollector, most: number): number {
+    if (onSamples !== null) {
+      if (!parts.enter()) useful = null;
+      onSamples.lend(collector);
+      const measured = eachSpan(most, onSamples.measure);
+      onSamples.giveBack(collector);
+      return measured;
+    }
+    block ??= new Float64Array(2 * BLOCK_SAMPLES);
+    const count = read(most < BLOCK_SAMPLES ? block.subarray(0, 2 * most) : block);
+    collector.add(block, 0, count);
+    return count;
+  }
+
+  function readWords(writer: WordWriter, most: number, bytes: Uint8Array, at = 0): number {
+    const size = writer.bytesPerSample;
+    demand(
+      bytes.length - at >= size * Math.min(most, samples - position),
+      'buffer_too_small',
+      'No room for the words.',
+    );
+    if (onSamples !== null) {
+      return eachSpan(most, (from, count, done) => onSamples.write(writer, from, count, bytes, at + done * size));
+    }
+    block ??= new Float64Array(2 * BLOCK_SAMPLES);
+    let done = 0;
+    while (done < most) {
+      const count = read(most - done < BLOCK_SAMPLES ? block.subarray(0, 2 * (most - done)) : block);
+      if (count === 0) break;
+      writer.write(block, count, bytes, at + done * size);
+      done += count;
+    }
+    return done;
   }
 
   rewind();
@@ -161,6 +230,8 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
       return position;
     },
     read,
+    collect,
+    readWords,
     rewind,
   };
 }

@@ -1,3 +1,5 @@
+import type { SampleEngine } from '../engine/types';
+import type { WordWriter } from '../files/wordWriter';
 import type { WaveformContent } from '../types';
 
 /** What every rendering function takes beside the content. */
@@ -8,6 +10,8 @@ export interface RenderOptions {
   cells?: Uint8Array;
   /** Most bytes of rendered symbols that a Synthesis may keep for its second pass; 48 MiB by default. Decides no bit. */
   keepBytes?: number;
+  /** The engine to compute with; without one (undefined) the same bits are computed here, slower. */
+  engine?: SampleEngine | undefined;
 }
 
 /**
@@ -82,6 +86,10 @@ export interface Synthesis {
   readonly position: number;
   /** Fills `out` (interleaved re, im) with the next samples; returns how many samples were written, 0 at the end. */
   read(out: Float64Array): number;
+  /** As read, but at most `most` samples into a collector of levels; nothing is copied out of the engine. */
+  collect(collector: StatsCollector, most: number): number;
+  /** As read, but at most `most` samples as words to bytes[at…], which must have room for them. */
+  readWords(writer: WordWriter, most: number, bytes: Uint8Array, at?: number): number;
   /** Back to the first sample. */
   rewind(): void;
 }
@@ -95,6 +103,16 @@ export interface SymbolSynthesis {
    * offset; mean power Σ|a|²/N.
    */
   useful(repeat: number, symbol: number, out: Float64Array): void;
+}
+
+/** Collects levels over samples given in order. The blocks' sizes decide no bit: partial sums end at fixed samples. */
+export interface StatsCollector {
+  /** Takes `count` interleaved samples from data[2·at…]. */
+  add(data: Float64Array, at: number, count: number): void;
+  /** The levels of all samples so far; `activeSamples` of them are in active spans (the others are zeros). */
+  stats(activeSamples: number): VectorStats;
+  /** The running numbers, as levelState lays them out; the engine works on a copy. */
+  readonly state: Float64Array;
 }
 
 /** Levels of a whole rendering; amplitudes in units of x (0 dB cell in a full symbol: RMS 1). */

@@ -1,0 +1,36 @@
+/** What the sample engine's module exports, as far as it is used. Addresses and sizes are bytes in its own memory. */
+export interface EngineExports {
+  readonly memory: { readonly buffer: ArrayBuffer; grow(pages: number): number };
+  /** The first byte that is free. */
+  freeFrom(): number;
+  /** Interleaved samples at `to` from `from`'s bins, of which only 0…low−1 and size−high…size−1 may differ from 0. */
+  transform(plan: number, from: number, to: number, low: number, high: number): void;
+  /** Puts `count` runs of payload cells on their points. */
+  mapRuns(runs: number, count: number): void;
+  /** Adds `count` samples to a level state. */
+  measure(state: number, at: number, count: number): void;
+  /** Samples as 16-bit words; adds to the two counts (components, samples). Writes up to 3 samples' words more. */
+  integerWords(at: number, count: number, to: number, scale: number, least: number, most: number, counts: number): void;
+  /** Samples as single precision numbers; adds to the two counts what lies beyond ±1. */
+  floatWords(at: number, count: number, to: number, scale: number, counts: number): void;
+}
+
+/** A tenant's place in the engine. */
+export interface EngineRoom {
+  readonly exports: EngineExports;
+  /** Where the tenant's bytes begin, a multiple of 64. */
+  readonly start: number;
+  /** Grows with each new tenant: another number than before says that nothing of the tenant's is left in it. */
+  readonly tenancy: number;
+}
+
+/**
+ * Instances of the engine's module, a few at most. A tenant may lose its room to another between two calls; it then asks
+ * again and lays everything out anew. What it had can always be computed again, so that no bit depends on it.
+ */
+export interface SampleEngine {
+  /** The tenant's room of at least `bytes`, its own as long as nobody else needed it. */
+  rent(tenant: object, bytes: number): EngineRoom;
+  /** The tenant has no work for now: its room is the first that another may take. It may rent again at any time. */
+  rest(tenant: object): void;
+}

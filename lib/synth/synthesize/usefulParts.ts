@@ -1,0 +1,51 @@
+import { isEngineSize } from '../engine/transformPlan';
+import { createMixedRadix } from '../fft/mixedRadix';
+import type { WaveformContent } from '../types';
+import { createPlacedValues, type Placement } from './cellValues';
+import { createEngineParts } from './engineParts';
+import { frameLayout } from './layout';
+import type { PartPlan, UsefulParts } from './partTypes';
+import type { RenderOptions } from './types';
+
+/** Throws SynthError as frameLayout and createCellValues do. */
+export function planParts(content: WaveformContent, options: RenderOptions): PartPlan {
+  const layout = frameLayout(content, options.oversampling);
+  const { fftSize } = content;
+  const values = createPlacedValues(content, options.cells, 1 / Math.sqrt(fftSize));
+  const half = Math.floor(fftSize / 2);
+  // k < 0 at bin size + k, k ≥ 0 at bin k
+  const placement: Placement = { split: half, low: layout.usefulSamples - half, high: -half };
+  const { first, end } = values.painted;
+  return { values, layout, placement, low: Math.max(0, end - half), high: Math.max(0, half - first) };
+}
+
+/** Parts by the engine where there is one that knows the size, else by the same operations here. */
+export function createUsefulParts(plan: PartPlan, options: RenderOptions, slots: number): UsefulParts {
+  const { engine } = options;
+  if (engine !== undefined && isEngineSize(plan.layout.usefulSamples)) return createEngineParts(plan, engine, slots);
+  return createPlainParts(plan, slots);
+}
+
+function createPlainParts({ values, layout, placement, low, high }: PartPlan, slots: number): UsefulParts {
+  const size = layout.usefulSamples;
+  const inverse = createMixedRadix(size, 'inverse');
+  const spectrum = new Float64Array(2 * size);
+  const kept: (Float64Array | undefined)[] = [];
+  let scratch: Float64Array | null = null;
+  return {
+    onSamples: null,
+    enter: () => true,
+    rest: () => undefined,
+    part(repeat, symbol, slot) {
+      const known = kept[slot];
+      if (known !== undefined) return known;
+      const part = slot < slots ? new Float64Array(2 * size) : (scratch ??= new Float64Array(2 * size));
+      spectrum.fill(0, 0, 2 * low);
+      spectrum.fill(0, 2 * (size - high));
+      values.writePlaced(repeat, symbol, spectrum, placement);
+      inverse(spectrum, part);
+      if (slot < slots) kept[slot] = part;
+      return part;
+    },
+  };
+}
