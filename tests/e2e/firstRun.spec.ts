@@ -8,7 +8,7 @@ test('an empty installation: its code, its first administrator, and a second per
   watch,
 }, info) => {
   test.setTimeout(120_000);
-  watch.allow(/status of 4(01|22|04)/);
+  watch.allow(/status of 4(01|22|04)|ERR_CONNECTION_REFUSED/);
   const server = await startOwnServer(info.outputPath('data'), { DEMO: 'no' });
   await expect.poll(() => server.out()).toMatch(/with this code: \S+/);
   const code = /with this code: (\S+)/.exec(server.out())![1]!;

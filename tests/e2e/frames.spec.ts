@@ -21,7 +21,11 @@ test('an answer of the worker is painted in the second frame after it at the lat
 }, info) => {
   test.setTimeout(90_000);
   await signIn(context.request, baseURL!, 'Ines Okoro');
-  const { waveformId } = await ask(context.request, baseURL!, createWaveform, { query: {}, body: paLadder() });
+  const ladder = paLadder();
+  const { waveformId } = await ask(context.request, baseURL!, createWaveform, {
+    query: {},
+    body: { ...ladder, about: { ...ladder.about, title: 'Counted in frames' } },
+  });
   await page.goto(`/waveforms/${waveformId}`);
   await expectMeasured(page);
   // What stands at the start of every frame: the document's count, the newest answer's, and those of the picture on the screen.

@@ -13,7 +13,7 @@ export async function demoWaveform(
   which: keyof typeof DEMO_TITLES,
 ): Promise<WaveformItem> {
   const { items } = await ask(request, origin, listWaveforms, { query: {} });
-  const found = items.find((item) => item.title.startsWith(DEMO_TITLES[which]));
+  const found = items.find((item) => item.title.startsWith(DEMO_TITLES[which]) && item.stamp.state === which);
   expect(found, `${DEMO_TITLES[which]} among ${items.map((item) => item.title).join(', ')}`).toBeDefined();
   return found!;
 }
