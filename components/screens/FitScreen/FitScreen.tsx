@@ -148,6 +148,9 @@ function LoadedFit({ waveformId, opened, benches, benchId, onBench, fit, failure
         kind="filled"
         size={phone ? 'foot' : 'usual'}
         fill={phone}
+        disabledBecause={
+          misses.some((finding) => finding.hard) ? 'A hard limit of this bench is missed: choose another bench.' : null
+        }
         onPress={() => router.push({ pathname: '/packs', params: { revisionId: current.revisionId } })}
       >
         Make a pack

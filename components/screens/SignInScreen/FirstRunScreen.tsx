@@ -17,8 +17,6 @@ export function FirstRunScreen() {
   const [values, setValues] = useState({ code: '', name: '', email: '', password: '' });
   const act = useAct(firstRun, [getSession], () => router.replace('/waveforms'));
   const errors = fieldErrors(act.error);
-  const code = act.error?.problem?.code;
-  const wrongCode = code === 'action_forbidden' || code === 'sign_in_refused';
   const set = (key: keyof typeof values) => (text: string) => setValues({ ...values, [key]: text });
   const session = useSession();
   const fields = useRef<HTMLElement>(null);
@@ -47,7 +45,7 @@ export function FirstRunScreen() {
           onChangeText={set('code')}
           autoCapitalize="none"
           autoComplete="one-time-code"
-          error={wrongCode ? 'That is not the code. It stands where the server was started.' : errors.code}
+          error={errors.code}
         />
         <TextField
           label="Name"
@@ -76,7 +74,7 @@ export function FirstRunScreen() {
           error={errors.password}
         />
       </View>
-      {act.error && !wrongCode && Object.keys(errors).length === 0 ? (
+      {act.error && Object.keys(errors).length === 0 ? (
         <Notice kind="danger">
           {act.error.problem === null ? 'No connection. Signing in needs the server.' : act.error.message}
         </Notice>
