@@ -256,13 +256,12 @@ export function useSentenceAct(table: TableContext): {
   const { tool, comb, rectangle, brush, cursor, ink } = state;
   const count = useMemo(
     () => (tool === 'pick' || tool === 'pan' ? 0 : sentenceCells(editor)),
-    // The count follows the blanks and the grid's size alone.
-    // eslint-disable-next-line react-hooks/exhaustive-deps
+    // eslint-disable-next-line react-hooks/exhaustive-deps -- the count follows the blanks and the grid's size alone
     [editor, tool, comb, rectangle, brush, cursor, editor.document.settings],
   );
   const reach = useMemo(
     () => (tool === 'comb' ? reachOfComb(editor.document, comb, ink) : null),
-    // eslint-disable-next-line react-hooks/exhaustive-deps
+    // eslint-disable-next-line react-hooks/exhaustive-deps -- the document is one object; changeCount tells that it changed
     [editor, tool, comb, ink, changeCount],
   );
   return {
