@@ -25,7 +25,6 @@ export default defineConfig({
   testDir: './tests/e2e',
   outputDir: process.env.E2E_OUTPUT_DIR ?? 'test-results/browser',
   workers: 1, // one server, one demo, two cores
-  retries: process.env.CI ? 1 : 0, // a machine may be slow for a moment; what needed a second try is said at the end
   timeout: 60_000,
   expect: { timeout: 15_000 },
   reporter: [['list']],

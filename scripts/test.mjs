@@ -61,7 +61,5 @@ count(
   },
 );
 
-const again = read('browser.json', (r) => r.stats.flaky) ?? 0;
-if (again > 0) console.log(`\n${again} of the browser tests needed a second try`);
 console.log(`\n${passed} passed, ${failed} failed`);
 process.exit(failed === 0 ? 0 : 1);
