@@ -43,7 +43,6 @@ function project(name, presetPath, extra) {
   };
 }
 module.exports = {
-  testTimeout: 30_000, // two cores, and some tests start processes
   projects: [
     project('node', 'jest-expo/node/jest-preset', {
       testMatch: ['<rootDir>/tests/{unit,property,golden,api,visual}/**/!(*.web).test.ts'],
