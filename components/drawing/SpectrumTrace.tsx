@@ -30,6 +30,11 @@ function columnsOf(line: SpectrumLine, band: Band, fftSize: number, spacingHz: n
   return columns;
 }
 
+function yOf(db: number, heightPx: number): number {
+  const shown = Math.max(floorDb, Math.min(topDb, db));
+  return Math.round(((topDb - shown) / (topDb - floorDb)) * heightPx * 10) / 10;
+}
+
 /** Spectra under a grid, on the grid's own pixels a subcarrier; 0 dB is the mean of the painted cells. */
 export function SpectrumTrace({
   lines,
@@ -46,8 +51,7 @@ export function SpectrumTrace({
   widthPx: number;
   heightPx: number;
 }) {
-  const y = (db: number) =>
-    Math.round(((topDb - Math.max(floorDb, Math.min(topDb, db))) / (topDb - floorDb)) * heightPx * 10) / 10;
+  const y = (db: number) => yOf(db, heightPx);
   const paths = useMemo(
     () =>
       lines.map((line) => {
@@ -55,11 +59,10 @@ export function SpectrumTrace({
         let path = '';
         columns.forEach((db, x) => {
           if (db === -Infinity) return;
-          path += `${path === '' ? 'M' : 'L'}${x + 0.5} ${y(db)}`;
+          path += `${path === '' ? 'M' : 'L'}${x + 0.5} ${yOf(db, heightPx)}`;
         });
         return path;
       }),
-    // eslint-disable-next-line react-hooks/exhaustive-deps -- y follows heightPx
     [lines, band, fftSize, spacingHz, widthPx, heightPx],
   );
   return (
