@@ -1,33 +1,14 @@
 import type { BenchContent, BenchProfile, MeasuredLevels, WaveformContent, WaveformDocument } from '@/lib/synth';
+import { openBench } from './documents';
 
-/** A wide, forgiving 16-bit profile; `changes` replace whole keys. Invented. */
+/** The open bench with bytes for markers and a setting that means the active part's mean; `changes` replace whole keys. */
 export function wideBench(changes: Partial<BenchContent> = {}): BenchProfile {
-  return {
-    format: 'combwright.bench',
-    version: 1,
-    about: { name: 'Bench W', notes: 'Invented for tests.' },
-    content: {
-      sampleClockHz: { least: 1, most: 1e12, step: null },
-      word: 'int16',
-      bits: 16,
-      align: 'right',
-      numberFormat: 'twosComplement',
-      byteOrder: 'little',
-      layout: 'interleaved',
-      container: 'raw',
-      swapIq: false,
-      negateQ: false,
-      granularitySamples: 1,
-      leastSamples: 1,
-      mostSamples: 1099511627776,
-      leastHeadroomDb: 0,
-      levelMeans: 'activeRms',
-      markers: { count: 4, packing: 'bytes', leastSamples: 1, stepSamples: 1 },
-      modes: ['loop', 'burst'],
-      fileName: { most: 32, extension: 'bin' },
-      ...changes,
-    },
-  };
+  return openBench({
+    mostSamples: 2 ** 40,
+    levelMeans: 'activeRms',
+    markers: { count: 4, packing: 'bytes', leastSamples: 1, stepSamples: 1 },
+    ...changes,
+  });
 }
 
 /** A whole document around a content. */
