@@ -56,7 +56,7 @@ function slot(plan: SlotPlan): Preset {
       'scrambling, coding and precoding; phase tracking; ports and code groups but the first',
       'the other slots of the frame: slot 0 is what a loop repeats',
     ],
-    fromMemory: `the blocks of the bandwidth (TS 38.101-1), the DM-RS' c_init${groupsWithoutData === 2 ? ' and their 3 dB (TS 38.214)' : ''}`,
+    fromMemory: `the blocks of the bandwidth (TS 38.101-1), the DM-RS' cells and c_init${groupsWithoutData === 2 ? ' and their 3 dB (TS 38.214)' : ''}`,
     numbers: { fftSize, subcarrierSpacingHz: [spacingKilohertz * 1000, 1], symbolCount },
     content: () => ({
       prefixSamples: firstSlotPrefixes(numerology, fftSize),
