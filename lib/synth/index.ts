@@ -42,6 +42,8 @@ export type { EngineExports, SampleEngine } from './engine/types';
 export { createRamp } from './synthesize/ramp';
 export { createSymbolSynthesis } from './synthesize/symbolSynthesis';
 export { createSynthesis } from './synthesize/synthesis';
+export { addLevelParts, collectLevelParts, type LevelParts } from './synthesize/levelParts';
+export { repeatCopies, type RepeatCopies } from './synthesize/repeatCopies';
 export { createStatsCollector, interpolatedPeak, vectorStats } from './synthesize/vectorStats';
 export type {
   CellValues,

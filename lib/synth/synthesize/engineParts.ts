@@ -2,7 +2,7 @@ import { createTransformPlan } from '../engine/transformPlan';
 import type { EngineExports, SampleEngine } from '../engine/types';
 import type { BitWindow } from './bitWindow';
 import type { RunSink } from './cellValues';
-import { LEVEL_STATE_LENGTH } from './levelState';
+import { LEVEL_STATE_LENGTH, PART_SAMPLES, takePart, type PartSums } from './levelState';
 import type { PartPlan, SampleWork, UsefulParts } from './partTypes';
 
 const BLOCK_SAMPLES = 4096;
@@ -81,6 +81,7 @@ export function createEngineParts(plan: PartPlan, engine: SampleEngine, slots: n
   let spectrum: Float64Array = new Float64Array(0);
   let runs = 0;
   let lastRow = -1;
+  let partSums: PartSums | undefined;
 
   const view = (at: number, length: number): Float64Array => new Float64Array(memory, start + at, length);
 
@@ -130,10 +131,28 @@ export function createEngineParts(plan: PartPlan, engine: SampleEngine, slots: n
     },
   };
 
+  /** As the kernel's measure, a part at a time, so that each one's sums can be taken away. */
+  function measureParts(sums: PartSums, at: number, count: number): void {
+    const state = (start + map.state) / 8;
+    for (let done = 0; done < count;) {
+      const room = PART_SAMPLES - numbers[state + 8]!;
+      const part = Math.min(count - done, room);
+      kernel.measure(start + map.state, at + 16 * done, part);
+      if (part === room) takePart(numbers, state, sums);
+      done += part;
+    }
+  }
+
   const work: SampleWork & { block: Float64Array } = {
     block: spectrum,
-    lend: (collector) => numbers.set(collector.state, (start + map.state) / 8),
-    measure: (at, count) => kernel.measure(start + map.state, at, count),
+    lend(collector) {
+      ({ partSums } = collector);
+      numbers.set(collector.state, (start + map.state) / 8);
+    },
+    measure(at, count) {
+      if (partSums === undefined) kernel.measure(start + map.state, at, count);
+      else measureParts(partSums, at, count);
+    },
     giveBack(collector) {
       const state = (start + map.state) / 8;
       collector.state.set(numbers.subarray(state, state + LEVEL_STATE_LENGTH));

@@ -22,9 +22,9 @@ export interface SampleWork {
   /** Room for some samples that were put together here; valid until enter gives false. */
   readonly block: Float64Array;
   /** Takes a collector's levels into the engine; samples are measured into them until they are given back. */
-  lend(collector: StatsCollector): void;
+  lend(collector: Omit<StatsCollector, 'stats'>): void;
   measure(at: number, count: number): void;
-  giveBack(collector: StatsCollector): void;
+  giveBack(collector: Omit<StatsCollector, 'stats'>): void;
   /** Writes `count` samples as words to bytes[to…]. */
   write(writer: WordWriter, at: number, count: number, bytes: Uint8Array, to: number): void;
 }

@@ -55,18 +55,38 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
     suffixLength = overlapSamples;
   }
 
-  function rewind(): void {
-    position = 0;
-    repeat = 0;
-    symbol = 0;
-    useful = null;
+  /** The pending suffix of the symbol before (repeat, symbol), which stands at the file's end for the loop's first one. */
+  function takeSuffixBefore(): void {
     suffixLength = 0;
-    if (layout.mode !== 'loop' || overlapSamples === 0) return;
+    if (overlapSamples === 0) return;
+    const isFirst = repeat === 0 && symbol === 0;
+    if (isFirst && layout.mode !== 'loop') return;
+    const before = symbol > 0 ? symbol - 1 : symbolCount - 1;
+    const beforeRepeat = symbol > 0 ? repeat : isFirst ? repeats - 1 : repeat - 1;
+    const start = beforeRepeat * repeatSamples + symbolStarts[before]! + prefixes[before]! + usefulSamples;
     // in a loop, what the last suffix has beyond the file's end stands at its beginning
-    const lastEnd = (repeats - 1) * repeatSamples + layout.frameSamples;
-    if (lastEnd + overlapSamples <= samples) return;
+    const suffixAt = isFirst ? start - samples : start;
+    if (suffixAt + overlapSamples <= position) return;
     parts.enter();
-    keepSuffix(usefulPart(repeats - 1, symbolCount - 1), lastEnd - samples);
+    keepSuffix(usefulPart(beforeRepeat, before), suffixAt);
+  }
+
+  function seek(sample: number): void {
+    demand(Number.isInteger(sample) && sample >= 0 && sample <= samples, 'bad_index', 'No such sample.');
+    position = sample;
+    repeat = Math.min(repeats - 1, Math.floor(sample / repeatSamples));
+    const inRepeat = sample - repeat * repeatSamples;
+    symbol = 0;
+    if (inRepeat >= layout.frameSamples) symbol = symbolCount;
+    else {
+      for (let end = symbolCount; end - symbol > 1;) {
+        const middle = (symbol + end) >> 1;
+        if (symbolStarts[middle]! <= inRepeat) symbol = middle;
+        else end = middle;
+      }
+    }
+    useful = null;
+    takeSuffixBefore();
   }
 
   /** Adds the pending suffix to out[2·at…], which holds `count` samples from file sample `first` on. */
@@ -185,7 +205,7 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
     return done;
   }
 
-  function collect(collector: StatsCollector, most: number): number {
+  function collect(collector: Omit<StatsCollector, 'stats'>, most: number): number {
     if (onSamples !== null) {
       if (!parts.enter()) useful = null;
       onSamples.lend(collector);
@@ -220,7 +240,7 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
     return done;
   }
 
-  rewind();
+  seek(0);
   return {
     samples,
     oversampling: layout.oversampling,
@@ -232,6 +252,7 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
     read,
     collect,
     readWords,
-    rewind,
+    seek,
+    rewind: () => seek(0),
   };
 }
