@@ -48,7 +48,7 @@ export const fitSchema = z
       isNewest: z.boolean(),
     }),
     findings: z.array(fitFindingSchema),
-    /** Parts of the profile no pack can be written in yet; a pack is refused. */
+    /** Why no file can be written in the profile's layout (a WAV file of 4 GiB); a pack is refused. */
     notSupportedYet: z.array(issueSchema),
     /**
      * Headroom and level can be judged only once the levels are `measured`. `measuring`: ask again soon. `unknown`: the file is too long to

@@ -59,7 +59,11 @@ export { fullScaleOf, wordScale } from './quantize/wordScale';
 export type { ReferenceLevels, SaturationCount, WordScale } from './quantize/types';
 export { createWordWriter, type WordWriter } from './files/wordWriter';
 export { createWordReader, type WordReader } from './files/wordReader';
-export { bytesPerSample } from './files/layout';
+export { bytesPerSample, bytesPerWord, offsetOf, shiftBits } from './files/layout';
+export { npyType } from './files/fileHeads';
+export { freeMarkerBits, layoutRefusals, vectorRefusals, type LayoutRefusal } from './files/layoutRules';
+export { vectorBytes, vectorFiles, vectorFilesOf, type VectorFile } from './files/vectorFiles';
+export { createVectorForm, createVectorGather, type VectorForm, type VectorGather } from './files/vectorForm';
 export { markerBytes, markerRanges, type MarkerBytes, type MarkerRange } from './files/markers';
 export { synthVersion } from './version';
 

@@ -1,5 +1,6 @@
 import type { Issue } from '@/lib/document/issues';
-import { benchNotSupportedYet, notSupportedYet } from '@/lib/document/notSupportedYet';
+import { layoutIssues } from '@/lib/document/layoutIssues';
+import { notSupportedYet } from '@/lib/document/notSupportedYet';
 import { checkFit, type BenchProfile, type FitFinding, type MeasuredLevels, type WaveformDocument } from '@/lib/synth';
 import { PackError, type PackIssue } from './packError.ts';
 
@@ -30,12 +31,15 @@ const at =
   });
 
 /**
- * What refuses a pack before anything is rendered: a part that is not built yet, or a hard limit of the profile that is missed (clock,
- * length, granularity, mode, markers). Headroom and level are said, not refused: they may be meant.
+ * What refuses a pack before anything is rendered: a part that is not built yet, a file that cannot be written (a WAV file of 4 GiB), or a hard
+ * limit of the profile that is missed (clock, length, granularity, mode, markers). Headroom and level are said, not refused: they may be meant.
  */
 export function refusalOf(document: WaveformDocument, profile: BenchProfile): PackError | null {
-  const missing = [...notSupportedYet(document).map(at('document')), ...benchNotSupportedYet(profile).map(at('bench'))];
+  const missing = notSupportedYet(document).map(at('document'));
   if (missing.length > 0) return new PackError('not_supported_yet', 'This version cannot make the pack yet.', missing);
+  const unwritten = layoutIssues(profile.content, document.content);
+  if (unwritten.length > 0)
+    return new PackError('limit_missed', unwritten.map(({ message }) => message).join(' '), unwritten.map(at('bench')));
   const missed = checkFit(document, profile, unmeasured).filter(
     (finding) => finding.hard && finding.verdict === 'misses',
   );

@@ -1,11 +1,26 @@
 import { sha256 } from '@noble/hashes/sha2.js';
 import { bytesToHex } from '@noble/hashes/utils.js';
-import { createStatsCollector, createSynthesis, createWordWriter, interpolationOf, wordScale } from '@/lib/synth/index';
-import type { BenchContent, SampleEngine, Synthesis, VectorStats, WaveformContent } from '@/lib/synth/index';
+import {
+  createStatsCollector,
+  createSynthesis,
+  createVectorForm,
+  createWordWriter,
+  interpolationOf,
+  wordScale,
+} from '@/lib/synth/index';
+import type {
+  BenchContent,
+  SampleEngine,
+  Synthesis,
+  VectorForm,
+  VectorStats,
+  WaveformContent,
+  WordWriter,
+} from '@/lib/synth/index';
 
 const BLOCK_SAMPLES = 1 << 14;
 
-/** The vector's digest, taken block by block: the bytes are those that a pack of the same content and profile holds. */
+/** The vector's digest, of two files together I's before Q's, block by block: the bytes are those of a pack's vector. */
 export interface DigestJob {
   /** One block on; false when done. */
   step(): boolean;
@@ -26,7 +41,7 @@ function createStatsPass(synthesis: Synthesis): { step(): boolean; stats(): Vect
   };
 }
 
-/** Throws SynthError for a profile or content that cannot be rendered yet. */
+/** Throws SynthError for a content that cannot be rendered, or a layout that no file can have. */
 export function createDigestJob(content: WaveformContent, bench: BenchContent, engine?: SampleEngine): DigestJob {
   const synthesis = createSynthesis(content, { engine });
   const oversampling = interpolationOf(content.oversampling);
@@ -35,7 +50,9 @@ export function createDigestJob(content: WaveformContent, bench: BenchContent, e
   const interpolated = isOwn ? null : createStatsPass(createSynthesis(content, { oversampling, engine }));
   const hash = sha256.create();
   let phase: 'own' | 'interpolated' | 'words' | 'done' = 'own';
-  let writer: ReturnType<typeof createWordWriter> | null = null;
+  let writer: WordWriter | null = null;
+  let form: VectorForm | null = null;
+  let file = 0; // which of the vector's files is being hashed: one behind the other, each in a pass of its own
   let bytes = new Uint8Array(0);
   let written = 0;
   let isSilent = false;
@@ -47,8 +64,20 @@ export function createDigestJob(content: WaveformContent, bench: BenchContent, e
     isSilent = scale.isSilent;
     writer = createWordWriter(bench, scale);
     bytes = new Uint8Array(BLOCK_SAMPLES * writer.bytesPerSample);
-    synthesis.rewind();
+    form = createVectorForm(content, bench);
     phase = isSilent ? 'done' : 'words';
+    startFile();
+  }
+
+  function startFile(): void {
+    synthesis.rewind();
+    form!.rewind();
+    take(form!.files[file]!.head);
+  }
+
+  function take(part: Uint8Array): void {
+    hash.update(part);
+    written += part.length;
   }
 
   return {
@@ -61,10 +90,13 @@ export function createDigestJob(content: WaveformContent, bench: BenchContent, e
       } else if (phase === 'interpolated') {
         if (!interpolated!.step()) startWords();
       } else if (phase === 'words') {
-        const size = writer!.bytesPerSample * synthesis.readWords(writer!, BLOCK_SAMPLES, bytes);
-        hash.update(bytes.subarray(0, size));
-        written += size;
-        if (synthesis.position >= synthesis.samples) phase = 'done';
+        const count = synthesis.readWords(writer!, BLOCK_SAMPLES, bytes);
+        take(form!.form(bytes, count)[file]!);
+        if (synthesis.position >= synthesis.samples) {
+          file++;
+          if (file < form!.files.length) startFile();
+          else phase = 'done';
+        }
       }
       return phase !== 'done';
     },

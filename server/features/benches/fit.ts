@@ -1,5 +1,6 @@
 import type { Fit } from '@/lib/contracts/fit';
-import { benchNotSupportedYet } from '@/lib/document/notSupportedYet';
+import type { Issue } from '@/lib/document/issues';
+import { layoutIssues } from '@/lib/document/layoutIssues';
 import {
   checkFit,
   levelsInDbfs,
@@ -37,7 +38,7 @@ const KEPT_MOST = 200;
 /** The fit of a revision on a bench. Kept by the digests that it follows from, since both pages and remedies ask for it again and again. */
 export function createFitReader(deps: Deps, figures: Figures) {
   const { db } = deps.store;
-  const kept = new Map<string, FitFinding[]>();
+  const kept = new Map<string, { findings: FitFinding[]; unwritten: Issue[] }>();
 
   return async (actor: Actor, revisionId: string, benchId: string, version?: number): Promise<Fit> => {
     const revision = visibleRevision(db, actor, revisionId);
@@ -46,19 +47,22 @@ export function createFitReader(deps: Deps, figures: Figures) {
     const levels = figures.levelsOf(revision.contentDigest);
     const hasLevels = levels !== 'measuring' && levels !== null;
     const key = `${revision.documentDigest} ${row.fileDigest} ${hasLevels}`;
-    let findings = kept.get(key);
-    if (!findings) {
+    let judged = kept.get(key);
+    if (!judged) {
       const document = await readDocument(db, revision);
-      findings = checkFit(document, bench, hasLevels ? levelsOn(bench, document.content, levels) : null);
-      kept.set(key, findings);
+      judged = {
+        findings: checkFit(document, bench, hasLevels ? levelsOn(bench, document.content, levels) : null),
+        unwritten: layoutIssues(bench.content, document.content),
+      };
+      kept.set(key, judged);
       const [oldest] = kept.keys();
       if (kept.size > KEPT_MOST && oldest !== undefined) kept.delete(oldest);
     }
     return {
       revisionId,
       bench: { benchId, version: row.version, name: row.name, isNewest: row.isNewest },
-      findings,
-      notSupportedYet: benchNotSupportedYet(bench),
+      findings: judged.findings,
+      notSupportedYet: judged.unwritten,
       levels: hasLevels ? 'measured' : (levels ?? 'unknown'),
     };
   };

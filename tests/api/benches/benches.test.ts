@@ -84,9 +84,10 @@ test('a contradiction is saved and said; a wrong value is refused', async () => 
   expect(refused.body.issues[0].pointer).toBe('/content/bits');
 });
 
-test('what no pack can be written in yet is saved whole all the same', async () => {
-  const bench = await create('Split', { layout: 'split', container: 'wav', swapIq: true });
-  expect(bench.shown.profile.content).toMatchObject({ layout: 'split', container: 'wav', swapIq: true });
+test('a layout that no file can have is refused, each contradiction at its field', async () => {
+  const body = openBench({ layout: 'split', container: 'wav', byteOrder: 'big' });
+  const refused = (await admin.post('/api/v1/benches', body).expect(422)).body as { issues: { pointer: string }[] };
+  expect(refused.issues.map(({ pointer }) => pointer)).toEqual(['/content/layout', '/content/byteOrder']);
 });
 
 test('a version counts the packs that were made for it', async () => {
