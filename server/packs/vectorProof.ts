@@ -21,7 +21,7 @@ import {
 } from '@/lib/synth';
 import { sampleEngine } from '../sampleEngine.ts';
 import type { StepOptions } from './measureRendering.ts';
-import { throwIfCancelled } from './packError.ts';
+import { PackError, throwIfCancelled } from './packError.ts';
 import { readVector, type VectorPlace, type VectorReading } from './vectorPlaces.ts';
 import { createYielder } from './yielder.ts';
 
@@ -109,6 +109,7 @@ export async function proveVector(
   let sumI = 0;
   let sumQ = 0;
   const wholeSamples = reading.samples;
+  if (wholeSamples === 0) throw new PackError('proof_failed', 'Not offered: the file has no whole sample.');
   while (samplesRead < wholeSamples) {
     throwIfCancelled(options.signal);
     const count = Math.min(blockSamples, wholeSamples - samplesRead);
