@@ -13,7 +13,7 @@ import { BLOCK_FIGURES, copyFigures, copyView, figureText, shortName } from './f
 import { figureOf, useLive } from './liveReader';
 import type { TableContext } from './tableContext';
 import type { ViewPage, WidePlaces } from './tableLayout';
-import { useEditorState, useSettings } from './useEditorState';
+import { useEditorState, useShownSettings } from './useEditorState';
 
 type CopiedView = 'time' | 'spectrum' | 'constellation' | 'ccdf' | 'figures';
 
@@ -44,7 +44,7 @@ export function useViewWords(
   table: TableContext,
 ): Record<'time' | 'constellation' | 'ccdf' | 'spectrum' | 'cells', string> {
   const { editor } = table;
-  const { tray, fftSize } = useSettings(editor);
+  const { tray, fftSize } = useShownSettings(editor);
   const symbol = useEditorState(editor, (state) => state.chosenSymbol);
   const ink = useEditorState(editor, (state) => state.ink);
   const cursor = useEditorState(editor, (state) => state.cursor);
