@@ -16,7 +16,19 @@ export type {
   WindowKind,
   WindowTable,
 } from './measure/types';
-export type { FitCheck, FitFinding, FitVerdict, MeasuredLevels, PlainChange, Remedy } from './fit/types';
+export type {
+  FitCheck,
+  FitFinding,
+  FitKnowledge,
+  FitVerdict,
+  MeasuredLevels,
+  MeasuredWave,
+  PlainChange,
+  Remedy,
+  RemedyKind,
+  SeamMeasure,
+  SymbolPeaks,
+} from './fit/types';
 export type { CardOverrides, CardReading, Caution, LevelCard } from './level/types';
 
 // synthesis, words, markers
@@ -104,6 +116,8 @@ export {
   type FrameStretch,
   type FrameStretches,
 } from './measure/frameMeasure';
+export { createSeamCollector } from './measure/seam';
+export { symbolPeaksOf } from './measure/symbolPeaks';
 export { createWindow } from './measure/window';
 export {
   createWelch,
@@ -143,7 +157,8 @@ export {
 export { createDemodulator, type Demodulator, type FoundSymbol } from './receive/demodulate';
 
 // fit and level card
-export { checkFit, levelsAfter } from './fit/remedies';
+export { checkFit } from './fit/checkFit';
+export { levelsAfter, waveAfter } from './fit/levelsAfter';
 export { applyChanges } from './fit/changes';
 export {
   loopClosing,
