@@ -53,7 +53,9 @@ export { createSampleEngine } from './engine/sampleEngine';
 export type { EngineExports, SampleEngine } from './engine/types';
 export { createRamp } from './synthesize/ramp';
 export { createSymbolSynthesis } from './synthesize/symbolSynthesis';
-export { createSynthesis } from './synthesize/synthesis';
+export { createSynthesis, meanPowerBefore } from './synthesize/synthesis';
+export { createSentValues, type SentValues } from './synthesize/sentValues';
+export { createReductionMeasure, type ReductionMeasuring, type ReductionReport } from './peak/reductionMeasure';
 export { addLevelParts, collectLevelParts, type LevelParts } from './synthesize/levelParts';
 export { stretchEnd } from './synthesize/stretches';
 export { repeatCopies, type RepeatCopies } from './synthesize/repeatCopies';
@@ -74,6 +76,7 @@ export { createWordReader, type WordReader } from './files/wordReader';
 export { bytesPerSample, bytesPerWord, offsetOf, shiftBits } from './files/layout';
 export { npyType } from './files/fileHeads';
 export { freeMarkerBits, layoutRefusals, vectorRefusals, type LayoutRefusal } from './files/layoutRules';
+export { sidednessPlan, type SidednessPlan } from './files/sidedness';
 export { vectorBytes, vectorFiles, vectorFilesOf, type VectorFile } from './files/vectorFiles';
 export { createVectorForm, createVectorGather, type VectorForm, type VectorGather } from './files/vectorForm';
 export { markerBytes, markerRanges, type MarkerBytes, type MarkerRange } from './files/markers';
@@ -155,6 +158,42 @@ export {
   type TapEstimate,
 } from './measure/evm';
 export { createDemodulator, type Demodulator, type FoundSymbol } from './receive/demodulate';
+
+// reception of captures
+export { createReception, type CaptureOptions, type CaptureStage, type Reception } from './receive/receiveCapture';
+export { causeWords, measuredSymbolsWords, recipeWords } from './receive/words';
+export { createLookAlikes, type Likeness, type LookAlikes } from './receive/lookAlike';
+export type {
+  BoundedDb,
+  CaptureResult,
+  ChannelReport,
+  ChannelSource,
+  ConstellationPoints,
+  ImbalanceReport,
+  MeasuredCapture,
+  NullPower,
+  RefusedCapture,
+  UnrecognisedCapture,
+} from './receive/types';
+export {
+  layoutOfBench,
+  layoutWords,
+  plainLayout,
+  type ByteSource,
+  type CaptureLayout,
+  type LayoutOutcome,
+} from './receive/files/captureLayout';
+export { readSigmfMeta } from './receive/files/containers';
+export { guessLayout } from './receive/files/guessLayout';
+export { captureReadings, type CaptureReading, type ReadingsOutcome } from './receive/files/captureSource';
+export {
+  createImpairedCapture,
+  noImpairments,
+  type ChannelTap,
+  type Impairments,
+  type ImpairedCapture,
+  type ImpairedVector,
+} from './receive/impair';
 
 // fit and level card
 export { checkFit } from './fit/checkFit';

@@ -1,4 +1,5 @@
 import { canonicalJson } from '@/lib/document/digest';
+import { sidednessWords } from '@/lib/document/sidedness';
 import type { Manifest } from '@/lib/document/manifestSchema';
 import {
   deriveFigures,
@@ -50,19 +51,25 @@ export interface EntryInput {
   cardText: string;
 }
 
+export const vectorNameOf = (baseName: string, ending: string, profile: BenchProfile): string =>
+  `${baseName}${ending}.${profile.content.fileName.extension}`;
+
 /** The vector's entries, one or two, as the manifest lists them. */
 export function vectorEntriesOf(baseName: string, profile: BenchProfile, proof: VectorProof): Manifest['files'] {
-  const { extension } = profile.content.fileName;
   return proof.files.map(({ role, ending, bytes, sha256 }) => ({
-    name: `${baseName}${ending}.${extension}`,
+    name: vectorNameOf(baseName, ending, profile),
     role,
     bytes,
     sha256,
   }));
 }
 
-export const stateWordsOf = (state: PackState): string =>
-  state === 'draft' ? 'Draft, not for the bench.' : `Released, edition ${state}.`;
+/** What a pack is to those who hold it; a draft that is its profile's sidedness waveform is no draft of anything. */
+export function stateWordsOf(state: PackState, document: WaveformDocument, profile: BenchProfile): string {
+  if (state !== 'draft') return `Released, edition ${state}.`;
+  if (sidednessWords(document, profile) !== null) return 'Sidedness check of a bench profile, no released waveform.';
+  return 'Draft, not for the bench.';
+}
 
 /** Saturation that the document asked for is said wherever the vector is described. */
 export function saturatedWordsOf({ saturated }: VectorProof): string | null {
@@ -96,7 +103,8 @@ function readme(input: EntryInput): string {
   const type = sigmfDatatype(profile.content);
   return readmeText({
     baseName,
-    stateWords: stateWordsOf(input.state),
+    stateWords: stateWordsOf(input.state, document, profile),
+    sidednessWords: sidednessWords(document, profile),
     versions: `Made by Combwright, synthesis ${synthVersion}, pack ${packVersion}.`,
     vectors: vectorEntriesOf(baseName, profile, input.proof),
     vectorSha256Hex: input.proof.sha256,
@@ -130,7 +138,7 @@ function metaOf(input: EntryInput): object | null {
     datasetName: vectorEntriesOf(baseName, profile, input.proof)[0]!.name,
     baseName,
     title: document.about.title,
-    packNote: stateWordsOf(input.state),
+    packNote: stateWordsOf(input.state, document, profile),
     symbols: Array.from({ length: layout.symbolCount }, (_, symbol) => ({
       startSample: layout.symbolStarts[symbol]!,
       samples: layout.prefixes[symbol]! + layout.usefulSamples,

@@ -4,6 +4,8 @@ import { wordWords } from './wordWords.ts';
 export interface ReadmeInput {
   baseName: string;
   stateWords: string;
+  /** What to see of a sidedness waveform, null for any other. */
+  sidednessWords: string | null;
   versions: string;
   /** One, or I's and Q's. */
   vectors: { name: string; bytes: number; sha256: string }[];
@@ -108,7 +110,7 @@ export function readmeText(input: ReadmeInput): string {
     '  level-card.txt  what to set, what not to exceed',
   ];
   return `${input.baseName}
-${input.stateWords}
+${input.stateWords}${input.sidednessWords === null ? '' : `\n${input.sidednessWords}`}
 ${input.versions}
 
 This vector makes radio energy. Read level-card.txt before a generator's output is switched on.
