@@ -6,7 +6,6 @@ export type SynthErrorCode =
   | 'bad_layout'
   | 'buffer_too_small'
   | 'marker_outside'
-  | 'not_supported_yet'
   | 'nothing_painted'
   | 'too_large';
 

@@ -43,7 +43,6 @@ const synthCodes: Partial<Record<SynthErrorCode, PackErrorCode>> = {
   bad_layout: 'invalid',
   marker_outside: 'invalid',
   nothing_painted: 'invalid',
-  not_supported_yet: 'not_supported_yet',
   too_large: 'too_large',
 };
 

@@ -1,6 +1,5 @@
 import { exampleBenches } from '@/lib/document/examples/exampleBenches';
 import { layoutIssues } from '@/lib/document/layoutIssues';
-import { notSupportedYet } from '@/lib/document/notSupportedYet';
 import { parseBenchProfile } from '@/lib/document/parse';
 import type { BenchContent } from '@/lib/synth/index';
 import { openBench, smallDocument } from '@/tests/helpers/documents';
@@ -75,16 +74,6 @@ test.each<[string, string, object]>([
   expect(issuesOf(overrides as Partial<BenchContent>)).toContainEqual(
     expect.objectContaining({ pointer, code: 'invalid' }),
   );
-});
-
-describe('what is not built yet', () => {
-  test('of documents: peak reduction', () => {
-    expect(notSupportedYet(smallDocument())).toEqual([]);
-    const reduced = smallDocument({ peakReduction: { kind: 'toneReservation', targetPaprDb: 8, iterations: 4 } });
-    expect(notSupportedYet(reduced)).toEqual([
-      { code: 'not_supported_yet', pointer: '/content/peakReduction/kind', message: expect.any(String) },
-    ]);
-  });
 });
 
 describe('why no file can be written', () => {
