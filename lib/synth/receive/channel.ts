@@ -75,7 +75,7 @@ export interface ImpulseResponse {
 const PATH_LEAST_DB = -40;
 
 /**
- * The impulse response of taps over positions first…last (filled), with a Blackman-Harris taper whose sides lie below −92 dB, and the paths
+ * The impulse response of taps over positions first…last (filled), with a Hamming taper whose sides lie below −42 dB, and the paths
  * in it: maxima above −40 dB of the largest and 14 dB above `noisePower`, the mean square error of a tap.
  */
 export function impulseResponse(
@@ -90,7 +90,7 @@ export function impulseResponse(
   const spectrum = new Float64Array(2 * fftSize);
   let sum = 0;
   let squares = 0;
-  const taper = createWindow('blackmanHarris', span + 1).weights;
+  const taper = createWindow('hamming', span + 1).weights;
   for (let p = first; p <= last; p++) {
     const weight = taper[p - first + 1]!;
     const k = p - half;

@@ -42,7 +42,7 @@ export interface Reception {
 const MEASURED_SAMPLES = 8388608;
 
 /** The file's clock N·M·Δf in Hz. */
-function vectorClock(content: WaveformContent): number {
+export function vectorClock(content: WaveformContent): number {
   const [numerator, denominator] = content.subcarrierSpacingHz;
   return (content.fftSize * content.oversampling * numerator) / denominator;
 }
@@ -222,6 +222,7 @@ function reportOf(
     offsetHz: offsetTurns * captureHz,
     offsetSigmaHz: drift === null ? null : drift.turnsPerSampleSigma * fileHz,
     offsetSubcarriers: (offsetTurns * captureHz) / spacing,
+    startSamples: startOf(tracked, cycle),
     delaySec: delaySamples / captureHz,
     delaySamples,
     levelDbfs: 10 * log10(cells.levelPower),
@@ -247,6 +248,14 @@ function reportOf(
     windowAdvanceSamples: cells.advanceSamples,
     lostSubcarriers: lost.filter(Boolean).length,
   };
+}
+
+/** Samples of the file from the frame's first sample to the capture's; negative where a burst begins later. */
+function startOf({ fit, places }: TrackedCapture, cycle: Cycle): number {
+  const first = places[0]!;
+  const frame = first.usefulStart - cycle.usefulStarts[first.symbol]!;
+  const start = -fit.originSamples / fit.ratio - frame;
+  return start >= 0 || cycle.layout.mode === 'burst' ? start : start + cycle.periodSamples;
 }
 
 /** The first frame that begins in the capture; a burst's may begin before it. */

@@ -98,7 +98,9 @@ export interface MeasuredCapture {
   offsetHz: number;
   offsetSigmaHz: number | null;
   offsetSubcarriers: number;
-  /** From the capture's first sample to the first frame's first sample, s and capture samples. */
+  /** The capture's first sample stands so many samples of the file into the frame; negative where a burst begins later. */
+  startSamples: number;
+  /** From the capture's first sample to the first frame's first sample, s and capture samples; beyond its end where none begins in it. */
   delaySec: number;
   delaySamples: number;
   /** RMS of the measured symbols and largest sample, dB to full scale; the signal's gain, dB full scale per unit of the document. */
