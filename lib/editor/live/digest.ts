@@ -10,9 +10,9 @@ import {
 } from '@/lib/synth/index';
 import type {
   BenchContent,
+  ReferenceLevels,
   SampleEngine,
   Synthesis,
-  VectorForm,
   VectorStats,
   WaveformContent,
   WordWriter,
@@ -28,7 +28,7 @@ export interface DigestJob {
   result(): { sha256: string; bytes: number } | null;
 }
 
-/** Levels of a rendering, block by block; done when step gives false. */
+/** One rendering's levels, block by block; done when step gives false. */
 function createStatsPass(synthesis: Synthesis): { step(): boolean; stats(): VectorStats } {
   const collector = createStatsCollector();
   const { repeats, activeSamples, lastActiveSamples } = synthesis.layout;
@@ -41,65 +41,84 @@ function createStatsPass(synthesis: Synthesis): { step(): boolean; stats(): Vect
   };
 }
 
+/** What a level can refer to, of the whole rendering and between its samples, block by block. */
+export interface LevelsJob {
+  /** One block on; false when done. */
+  step(): boolean;
+  /** After the last step. */
+  levels(): VectorStats & ReferenceLevels;
+}
+
+/** Throws SynthError for a content that cannot be rendered. */
+export function createLevelsJob(content: WaveformContent, engine?: SampleEngine): LevelsJob {
+  const oversampling = interpolationOf(content.oversampling);
+  const own = createStatsPass(createSynthesis(content, { engine }));
+  const interpolated =
+    oversampling === content.oversampling ? null : createStatsPass(createSynthesis(content, { oversampling, engine }));
+  let isOwnDone = false;
+  return {
+    step() {
+      if (isOwnDone) return interpolated!.step();
+      isOwnDone = !own.step();
+      return !isOwnDone || interpolated !== null;
+    },
+    levels() {
+      const stats = own.stats();
+      return { ...stats, interpolatedPeak: interpolated ? interpolated.stats().samplePeak : stats.samplePeak };
+    },
+  };
+}
+
 /** Throws SynthError for a content that cannot be rendered, or a layout that no file can have. */
 export function createDigestJob(content: WaveformContent, bench: BenchContent, engine?: SampleEngine): DigestJob {
+  const levels = createLevelsJob(content, engine);
   const synthesis = createSynthesis(content, { engine });
-  const oversampling = interpolationOf(content.oversampling);
-  const isOwn = oversampling === content.oversampling;
-  const own = createStatsPass(synthesis);
-  const interpolated = isOwn ? null : createStatsPass(createSynthesis(content, { oversampling, engine }));
+  const form = createVectorForm(content, bench);
   const hash = sha256.create();
-  let phase: 'own' | 'interpolated' | 'words' | 'done' = 'own';
+  let phase: 'levels' | 'words' | 'done' = 'levels';
   let writer: WordWriter | null = null;
-  let form: VectorForm | null = null;
-  let file = 0; // which of the vector's files is being hashed: one behind the other, each in a pass of its own
   let bytes = new Uint8Array(0);
   let written = 0;
-  let isSilent = false;
-
-  function startWords(): void {
-    const stats = own.stats();
-    const interpolatedPeak = interpolated ? interpolated.stats().samplePeak : stats.samplePeak;
-    const scale = wordScale(content.level, { ...stats, interpolatedPeak }, bench);
-    isSilent = scale.isSilent;
-    writer = createWordWriter(bench, scale);
-    bytes = new Uint8Array(BLOCK_SAMPLES * writer.bytesPerSample);
-    form = createVectorForm(content, bench);
-    phase = isSilent ? 'done' : 'words';
-    startFile();
-  }
-
-  function startFile(): void {
-    synthesis.rewind();
-    form!.rewind();
-    take(form!.files[file]!.head);
-  }
+  let file = 0; // which of the vector's files is being hashed: one behind the other, each in a pass of its own
 
   function take(part: Uint8Array): void {
     hash.update(part);
     written += part.length;
   }
 
+  function startFile(): void {
+    synthesis.rewind();
+    form.rewind();
+    take(form.files[file]!.head);
+  }
+
+  function startWords(): void {
+    const scale = wordScale(content.level, levels.levels(), bench);
+    if (scale.isSilent) {
+      phase = 'done';
+      return;
+    }
+    writer = createWordWriter(bench, scale);
+    bytes = new Uint8Array(BLOCK_SAMPLES * writer.bytesPerSample);
+    phase = 'words';
+    startFile();
+  }
+
   return {
     step() {
-      if (phase === 'own') {
-        if (!own.step()) {
-          if (interpolated) phase = 'interpolated';
-          else startWords();
-        }
-      } else if (phase === 'interpolated') {
-        if (!interpolated!.step()) startWords();
+      if (phase === 'levels') {
+        if (!levels.step()) startWords();
       } else if (phase === 'words') {
         const count = synthesis.readWords(writer!, BLOCK_SAMPLES, bytes);
-        take(form!.form(bytes, count)[file]!);
+        take(form.form(bytes, count)[file]!);
         if (synthesis.position >= synthesis.samples) {
           file++;
-          if (file < form!.files.length) startFile();
+          if (file < form.files.length) startFile();
           else phase = 'done';
         }
       }
       return phase !== 'done';
     },
-    result: () => (isSilent ? null : { sha256: bytesToHex(hash.digest()), bytes: written }),
+    result: () => (writer === null ? null : { sha256: bytesToHex(hash.digest()), bytes: written }),
   };
 }

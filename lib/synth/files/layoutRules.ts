@@ -7,7 +7,10 @@ import { vectorBytes } from './vectorFiles';
 export interface LayoutRefusal {
   /** Keys from the profile's content down. */
   path: string[];
+  /** What the field must be and why; of a vector that does not fit a right profile, a whole sentence. */
   words: string;
+  /** Why alone, as a sentence. */
+  reason: string;
 }
 
 type Layout = Pick<
@@ -22,37 +25,43 @@ type Layout = Pick<
  */
 export function layoutRefusals(bench: Layout): LayoutRefusal[] {
   const refusals: LayoutRefusal[] = [];
-  const refuse = (isRefused: boolean, key: string | string[], words: string): void => {
-    if (isRefused) refusals.push({ path: Array.isArray(key) ? key : [key], words });
+  const refuse = (isRefused: boolean, key: string | string[], demand: string, reason: string): void => {
+    if (isRefused)
+      refusals.push({ path: Array.isArray(key) ? key : [key], words: `${demand}: ${reason}`, reason: `${reason}.` });
   };
   if (bench.container === 'wav') {
+    const isOffset = bench.numberFormat === 'offsetBinary';
     refuse(
       bench.layout === 'split',
       'layout',
-      'must be "interleaved" in WAV: I and Q are the two channels of one file',
+      'must be "interleaved" in WAV',
+      'I and Q are the two channels of one WAV file',
     );
-    refuse(bench.byteOrder === 'big', 'byteOrder', 'must be "little" in WAV: it stores the low byte first');
-    const isOffset = bench.numberFormat === 'offsetBinary';
+    refuse(bench.byteOrder === 'big', 'byteOrder', 'must be "little" in WAV', 'WAV stores the low byte first');
     refuse(
       bench.word === 'int8' && !isOffset,
       'numberFormat',
-      'must be "offsetBinary": 8-bit words in WAV are unsigned',
+      'must be "offsetBinary"',
+      '8-bit words in WAV are unsigned',
     );
     refuse(
       bench.word === 'int16' && isOffset,
       'numberFormat',
-      'must be "twosComplement": 16-bit words in WAV are signed',
+      'must be "twosComplement"',
+      '16-bit words in WAV are signed',
     );
   }
   refuse(
     bench.container === 'csv' && bench.word !== 'float32',
     'word',
-    'must be "float32" in CSV: it holds decimal numbers, full scale 1.0',
+    'must be "float32" in CSV',
+    'CSV holds decimal numbers, full scale 1.0, which are floats',
   );
   refuse(
     bench.fileName.extension === 'sigmf-meta',
     ['fileName', 'extension'],
-    'must not be "sigmf-meta": the metadata beside the vector has that name',
+    'must not be "sigmf-meta"',
+    'the metadata beside the vector has that name',
   );
   return refusals;
 }
@@ -75,17 +84,17 @@ export function vectorRefusals(content: WaveformContent, bench: BenchContent): L
     const bytes = vectorBytes(content, bench);
     if (bytes >= WAV_BYTES) {
       const words = `The vector would have ${bytes} bytes, a WAV file has at most ${WAV_BYTES - 1}: choose raw or npy, or fewer samples.`;
-      refusals.push({ path: ['container'], words });
+      refusals.push({ path: ['container'], words, reason: words });
     }
     const { sampleClockHz } = deriveFigures(content);
     if (Math.round(sampleClockHz) >= WAV_BYTES || sampleClockHz < 0.5) {
       const words = `A WAV header holds clocks of 1 to ${WAV_BYTES - 1} whole hertz, this one is ${sampleClockHz} Hz: choose raw or npy.`;
-      refusals.push({ path: ['container'], words });
+      refusals.push({ path: ['container'], words, reason: words });
     }
   }
   if (bench.markers.packing === 'lowBits' && content.markers.length > freeMarkerBits(bench)) {
     const words = `${content.markers.length} markers need as many low bits, the two words of a sample leave ${freeMarkerBits(bench)}: use fewer markers, fewer bits, or markers as bytes.`;
-    refusals.push({ path: ['markers', 'packing'], words });
+    refusals.push({ path: ['markers', 'packing'], words, reason: words });
   }
   return refusals;
 }

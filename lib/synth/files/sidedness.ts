@@ -1,7 +1,6 @@
 import { compareFractions, decimalFraction, divideFractions, multiplyFractions, nearestWhole } from '../fit/exact';
 import type { ExactFraction } from '../numerology';
 import type { BenchContent, WaveformContent } from '../types';
-import type { LayoutRefusal } from './layoutRules';
 
 const SIZE = 16;
 const SUBCARRIER = 2; // N/8
@@ -28,6 +27,12 @@ export interface SidednessPlan {
   >;
   /** How far above the carrier the tone stands. */
   toneHz: ExactFraction;
+}
+
+/** Why a profile has no room for it; `path` leads into its content. */
+export interface SidednessRefusal {
+  path: string[];
+  words: string;
 }
 
 function clockFor({ least, most, step }: BenchContent['sampleClockHz']): ExactFraction | null {
@@ -68,7 +73,7 @@ function lengthFor(bench: BenchContent): { symbolCount: number; repeats: number 
  * at +N/8, 16 samples, repeated to the profile's least length. A tone below the carrier says that I and Q are taken the other
  * way round, or Q with the other sign. Where the profile leaves no clock or length for it, that in words.
  */
-export function sidednessPlan(bench: BenchContent): SidednessPlan | LayoutRefusal {
+export function sidednessPlan(bench: BenchContent): SidednessPlan | SidednessRefusal {
   const clock = clockFor(bench.sampleClockHz);
   const spacing = clock && multiplyFractions(clock, { numerator: 1n, denominator: BigInt(SIZE) });
   if (spacing === null)

@@ -59,13 +59,13 @@ test('the table of what is possible: each refused combination says why', () => {
   const words = new Map<string, number>();
   for (const { refusals } of every) for (const one of refusals) words.set(one, (words.get(one) ?? 0) + 1);
   expect([...words.keys()].sort()).toEqual([
-    '/content/byteOrder must be "little" in WAV: it stores the low byte first',
-    '/content/layout must be "interleaved" in WAV: I and Q are the two channels of one file',
+    '/content/byteOrder must be "little" in WAV: WAV stores the low byte first',
+    '/content/layout must be "interleaved" in WAV: I and Q are the two channels of one WAV file',
     '/content/markers/packing must not be "lowBits": that needs left-aligned int16 words with free low bits',
     '/content/numberFormat must be "offsetBinary": 8-bit words in WAV are unsigned',
     '/content/numberFormat must be "twosComplement" with float32 words',
     '/content/numberFormat must be "twosComplement": 16-bit words in WAV are signed',
-    '/content/word must be "float32" in CSV: it holds decimal numbers, full scale 1.0',
+    '/content/word must be "float32" in CSV: CSV holds decimal numbers, full scale 1.0, which are floats',
   ]);
   // counted by hand. raw and npy: 8 order, layout × swap, negate each; 4 for WAV, which leaves swap and negate alone
   const plain = 1 * 2 * 2 + 18 * 2 * 2 + 1 * 2; // none, bytes: word spellings × format × packing

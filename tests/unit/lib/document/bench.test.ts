@@ -83,7 +83,7 @@ describe('why no file can be written', () => {
       {
         code: 'invalid',
         pointer: '/content/layout',
-        message: 'The profile\'s layout must be "interleaved" in WAV: I and Q are the two channels of one file.',
+        message: 'The profile\'s layout must be "interleaved" in WAV: I and Q are the two channels of one WAV file.',
       },
     ]);
   });
