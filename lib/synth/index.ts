@@ -201,6 +201,7 @@ export {
 
 // fit and level card
 export { checkFit } from './fit/checkFit';
+export { judge as judgeFit } from './fit/findings';
 export { levelsAfter, waveAfter } from './fit/levelsAfter';
 export { applyChanges } from './fit/changes';
 export {

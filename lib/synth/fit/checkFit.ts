@@ -1,10 +1,11 @@
 import { fileSamples, fractionToNumber, sampleClock } from '../numerology';
-import type { BenchProfile, WaveformDocument } from '../types';
+import type { BenchProfile, WaveformContent, WaveformDocument } from '../types';
 import { applyChanges } from './changes';
 import { createFacts } from './facts';
 import { CHECKS, judgeOne, type Judged } from './findings';
 import { levelsAfter, waveAfter } from './levelsAfter';
 import { HEADROOM_MOST_DB, MARKER_REACH, OVERSAMPLING_MOST, PAD_MOST, REPEATS_MOST, SAMPLES_MOST } from './limits';
+import { markerStarts } from './markerFinding';
 import { clockAdvice, clockRemedies } from './remedies/clockRemedies';
 import { priceOf, type Alternatives, type Case, type Draft } from './remedies/draft';
 import { lengthRemedies, memoryRemedies } from './remedies/lengthRemedies';
@@ -162,6 +163,13 @@ function isInRange({ content }: WaveformDocument): boolean {
         marker.lengthSamples >= 1 &&
         marker.lengthSamples <= MARKER_REACH,
     ) &&
-    fileSamples(content) <= SAMPLES_MOST
+    fileSamples(content) <= SAMPLES_MOST &&
+    (timing.mode === 'loop' || markers.every((marker) => isInside(content, marker)))
   );
+}
+
+/** A burst has no marks past its ends; in a loop they wrap. */
+function isInside(content: WaveformContent, marker: WaveformContent['markers'][number]): boolean {
+  const most = fileSamples(content) - marker.lengthSamples;
+  return markerStarts(content, marker).every((start) => start >= 0 && start <= most);
 }
