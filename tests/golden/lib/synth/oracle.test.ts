@@ -43,14 +43,15 @@ const MOST_DB = -290;
 const BLOCK_SAMPLES = 3000;
 
 /** Single precision numbers in steps of 2^−20, half to even: they keep what doubles round where a sample is nothing. */
-function floatSteps(bytes: Uint8Array, isLittle: boolean): Uint8Array {
+function floatSteps(bytes: Uint8Array, bench: BenchContent): Uint8Array {
   const view = new DataView(bytes.buffer, bytes.byteOffset, bytes.length);
-  const steps = new Uint8Array(bytes.length);
-  const out = new DataView(steps.buffer);
+  const numbers =
+    bench.container === 'csv'
+      ? Buffer.from(bytes).toString('latin1').trim().split(/[,\n]/).map(Number)
+      : Array.from({ length: bytes.length / 4 }, (_, i) => view.getFloat32(4 * i, bench.byteOrder === 'little'));
   const rounder = 1.5 * 2 ** 52;
-  for (let at = 0; at < bytes.length; at += 4)
-    out.setInt32(at, view.getFloat32(at, isLittle) * 2 ** 20 + rounder - rounder, true);
-  return steps;
+  const steps = Int32Array.from(numbers, (number) => Math.fround(number) * 2 ** 20 + rounder - rounder);
+  return new Uint8Array(steps.buffer);
 }
 
 /** Digests of the bytes behind the heads of a vector's files. */
@@ -65,7 +66,7 @@ function digestsOf(content: WaveformContent, bench: BenchContent, engine?: Sampl
   for (let count = synthesis.read(block); count > 0; count = synthesis.read(block)) {
     writer.write(block, count, words);
     form.form(words, count).forEach((part, i) => {
-      hashes[i]!.update(bench.word === 'float32' ? floatSteps(part, bench.byteOrder === 'little') : part);
+      hashes[i]!.update(bench.word === 'float32' ? floatSteps(part, bench) : part);
     });
   }
   return hashes.map((hash) => hash.digest('hex'));
@@ -82,6 +83,7 @@ test('the documents are valid, and hold every feature', () => {
     const used = new Set(cells);
     expect(isFiveSmooth(fftSize)).toBe(true);
     met.add(Number.isInteger(Math.log2(fftSize)) ? 'power of two' : fftSize % 2 === 1 ? 'odd size' : 'even size');
+    met.add(`reduced ${content.peakReduction.kind}`);
     met.add(timing.mode).add(level.reference).add(`oversampling ${content.oversampling}`);
     if (timing.repeats > 1) met.add('repeats');
     if (timing.gapSamples > 0) met.add(`gap in a ${timing.mode}`);
@@ -129,10 +131,11 @@ test('the documents are valid, and hold every feature', () => {
     ...['constant', 'alternating', 'pn', 'goldbpsk', 'goldqpsk', 'zadoffChu', 'newman', 'schroeder', 'listed'],
     ...['cell', 'symbolCell', 'subcarrier', 'symbol'].map((counter) => `counter ${counter}`),
     ...['continuous true', 'continuous false', 'pilot of 1', 'pilot of 2', 'pilot of 3', 'tone of 0', 'tone of 3'],
+    ...['none', 'clipAndFilter', 'toneReservation'].map((kind) => `reduced ${kind}`),
     ...['interpolatedPeak', 'samplePeak', 'componentPeak', 'rms', 'narrow right'],
     ...[1, 2, 3, 4, 5, 8].map((factor) => `oversampling ${factor}`),
     ...['int8', 'int16', 'float32', 'left', 'right', 'twosComplement', 'offsetBinary', 'little', 'big'],
-    ...['interleaved', 'split', 'raw', 'npy', 'wav'],
+    ...['interleaved', 'split', 'raw', 'npy', 'wav', 'csv'],
   ];
   expect(wanted.filter((feature) => !met.has(feature))).toEqual([]);
 });
