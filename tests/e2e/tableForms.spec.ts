@@ -158,6 +158,14 @@ test('who is no author looks, and is told so', async ({ as, baseURL }, info) => 
   const from = { symbol: 3, subcarrier: isPhone(info) ? 2 : 150 };
   await paint(reviewer, from, { ...from, subcarrier: from.subcarrier + 2 }, isPhone(info));
   expect(await drawnDocument(reviewer)).toEqual(before);
+  // The forms are there to look at, and say why they change nothing.
+  if (isPhone(info)) await reviewer.getByRole('button', { name: 'More', exact: true }).click();
+  await reviewer.getByRole('button', { name: /^Level, / }).click();
+  const headroom = reviewer.getByRole('textbox', { name: /^Headroom/ });
+  await headroom.fill('7');
+  await headroom.press('Enter');
+  await expect(reviewer.getByText('You can look. Drawing needs the author role.')).toHaveCount(2);
+  expect(await drawnDocument(reviewer)).toEqual(before);
 });
 
 test('moves that arrive together are painted in one frame', async ({ as, baseURL }, info) => {

@@ -6,7 +6,7 @@ import { useMay, useMe } from '@/lib/client/useSession';
 import { showRevision, showWaveform } from '@/lib/contracts/waveforms';
 import { canonicalJson } from '@/lib/document/digest';
 import { Page } from '../Page';
-import { serverStore, type DrawingStore, type OpenedDrawing } from './drawingStore';
+import { serverStore, takeHandedOver, type DrawingStore, type OpenedDrawing } from './drawingStore';
 import { DrawTable } from './DrawTable';
 
 type Opening =
@@ -14,22 +14,29 @@ type Opening =
   | { kind: 'failed'; error: ProblemError }
   | { kind: 'open'; opened: OpenedDrawing; found: FoundCopy | null; times: number };
 
-/** Fetches a waveform's newest revision (or its newest edition, for people who read editions only) and what this device kept of it. */
+/**
+ * Fetches a waveform's newest revision (or its newest edition, for people who read editions only) and what this device kept of it; or the
+ * one asked for, as it was.
+ */
 async function openDrawing(
   waveformId: string,
+  asked: string | null,
   personId: string,
 ): Promise<{ opened: OpenedDrawing; found: FoundCopy | null }> {
   const waveform = await ask(showWaveform, { params: { waveformId } });
   const edition = waveform.editions.find((one) => one.withdrawn === null) ?? waveform.editions[0];
-  const revisionId = waveform.head?.revisionId ?? edition?.revisionId ?? '';
-  const { revision, document } = await ask(showRevision, { params: { revisionId } });
+  const newestId = waveform.head?.revisionId ?? edition?.revisionId ?? '';
+  const { revision, document } = await ask(showRevision, { params: { revisionId: asked ?? newestId } });
   const opened: OpenedDrawing = {
     revision,
     document,
     editionNumber: revision.stamp.editionNumber,
     openReview: waveform.openReview,
     isUnsaved: false,
+    newestNumber: waveform.head && revision.revisionId !== newestId ? waveform.head.number : null,
+    drawsOn: false,
   };
+  if (opened.newestNumber !== null) return { opened, found: null };
   const found = await findLocalCopy(personId, waveformId).catch(() => null);
   // What was saved after all, with the answer lost on the way, is no copy worth a question.
   const isSame = found?.kind === 'copy' && canonicalJson(found.copy.document) === canonicalJson(document);
@@ -40,24 +47,37 @@ async function openDrawing(
   return { opened, found };
 }
 
-/** The drawing table of one waveform. */
-export function DrawScreen({ waveformId, store }: { waveformId: string; store?: DrawingStore }) {
+/** The drawing table of one waveform: its newest revision, or the one named. */
+export function DrawScreen({
+  waveformId,
+  revisionId = null,
+  store,
+}: {
+  waveformId: string;
+  revisionId?: string | null;
+  store?: DrawingStore;
+}) {
   const { personId } = useMe();
   const mayDraw = useMay('saveWaveforms');
   const [times, setTimes] = useState(0);
   const [opening, setOpening] = useState<Opening>({ kind: 'loading' });
+  const [handed] = useState(() => (revisionId === null ? takeHandedOver(waveformId) : null));
   const server = useMemo(() => store ?? serverStore(waveformId), [store, waveformId]);
 
   useEffect(() => {
     let isCurrent = true;
-    openDrawing(waveformId, personId).then(
-      (drawing) => isCurrent && setOpening({ kind: 'open', ...drawing, times }),
+    openDrawing(waveformId, revisionId, personId).then(
+      ({ opened, found }) => {
+        if (!isCurrent) return;
+        const taken = times === 0 && handed ? { ...opened, document: handed, isUnsaved: true, drawsOn: true } : opened;
+        setOpening({ kind: 'open', opened: taken, found, times });
+      },
       (error: ProblemError) => isCurrent && setOpening({ kind: 'failed', error }),
     );
     return () => {
       isCurrent = false;
     };
-  }, [waveformId, personId, times]);
+  }, [waveformId, revisionId, personId, times, handed]);
 
   const reopen = () => {
     setOpening({ kind: 'loading' });

@@ -16,7 +16,7 @@ import { createEditor, type Editor } from '@/lib/editor/store';
 import { formatInteger } from '@/lib/drawing/quantities';
 import { Page } from '../Page';
 import { CellRuns } from './CellRuns';
-import type { DrawingStore, OpenedDrawing } from './drawingStore';
+import { handOverDrawing, type DrawingStore, type OpenedDrawing } from './drawingStore';
 import { downloadText } from './downloadText';
 import { NumbersStrip } from './NumbersStrip';
 import { PhoneTable } from './PhoneTable';
@@ -60,7 +60,7 @@ export function DrawTable({ opened, store, mayDraw, onReopen, found, onFound }: 
   const [sheet, setSheet] = useState<OpenSheet | null>(null);
   const [question, setQuestion] = useState<Question | null>(null);
   const [page, setPage] = useState<ViewPage>('time');
-  const [drawsOn, setDrawsOn] = useState(false);
+  const [drawsOn, setDrawsOn] = useState(opened.drawsOn);
   const [isCanvasMissing, setCanvasMissing] = useState(false);
   const [isCopying, setCopying] = useState(false);
   const [oneFingerMoves, setOneFingerMoves] = useState(false);
@@ -73,23 +73,27 @@ export function DrawTable({ opened, store, mayDraw, onReopen, found, onFound }: 
   useEffect(() => attachTestHook(editor, client, saver, probe), [editor, client, saver, probe]);
 
   const { revision } = opened;
+  const isOlder = opened.newestNumber !== null;
   const isFixed = revision.stamp.state !== 'draft' && !drawsOn;
   const rights: TableRights = {
-    canDraw: mayDraw && !isFixed,
-    canAsk: mayDraw && revision.stamp.state === 'draft' && opened.openReview === null,
-    because: !mayDraw ? 'role' : isFixed ? 'state' : null,
+    canDraw: mayDraw && !isFixed && !isOlder,
+    canAsk: mayDraw && revision.stamp.state === 'draft' && opened.openReview === null && !isOlder,
+    because: isOlder ? 'older' : !mayDraw ? 'role' : isFixed ? 'state' : null,
   };
+  const openNewest = () => router.replace(`/waveforms/${revision.waveformId}` as never);
 
+  const { canDraw, because } = rights;
   const perform = useCallback(
     (outcome: Outcome): string | null => {
+      // The forms stay open to look at: what they would change is refused in one place.
+      if (!canDraw && (outcome?.kind === 'patch' || outcome?.kind === 'question')) return LOOK_ONLY[because ?? 'role'];
       const done = performOutcome(editor, outcome);
       if (done?.kind === 'question') setQuestion(done.question);
       return done?.kind === 'refused' ? done.message : null;
     },
-    [editor],
+    [editor, canDraw, because],
   );
 
-  const { canDraw } = rights;
   const runCommand = useCallback(
     (id: string): boolean => {
       if (!canDraw && /^(paint|history)\./.test(id)) return false;
@@ -206,6 +210,18 @@ export function DrawTable({ opened, store, mayDraw, onReopen, found, onFound }: 
             },
             keepMine: () => void keepMine(),
             drawOn: () => setDrawsOn(true),
+            older: isOlder
+              ? {
+                  words: `This is revision ${revision.number}${revision.isSide ? ', kept beside' : ''}. Revision ${opened.newestNumber} is the newest.`,
+                  openNewest,
+                  drawOnFromHere: mayDraw
+                    ? () => {
+                        handOverDrawing(revision.waveformId, opened.document);
+                        openNewest();
+                      }
+                    : null,
+                }
+              : null,
             copy: found,
             takeCopy: () => onFound(true),
             leaveCopy: () => onFound(false),
@@ -241,6 +257,12 @@ export function DrawTable({ opened, store, mayDraw, onReopen, found, onFound }: 
     </Page>
   );
 }
+
+const LOOK_ONLY = {
+  role: 'You can look. Drawing needs the author role.',
+  state: 'This revision cannot change. Draw on in a new draft.',
+  older: 'This is not the newest revision. Draw on from here first.',
+} as const;
 
 const STATE_WORDS = { draft: 'draft', inReview: 'in review', released: 'released', withdrawn: 'withdrawn' } as const;
 

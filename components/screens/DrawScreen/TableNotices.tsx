@@ -11,6 +11,8 @@ export interface NoticeActs {
   openTheirs: () => void;
   keepMine: () => void;
   drawOn: () => void;
+  /** An earlier revision stands open. */
+  older: { words: string; openNewest: () => void; drawOnFromHere: (() => void) | null } | null;
   copy: FoundCopy | null;
   takeCopy: () => void;
   leaveCopy: () => void;
@@ -25,6 +27,25 @@ export function TableNotices({ table, acts }: { table: TableContext; acts: Notic
   const message = useLive(live, (state) => state.message);
   const notices = [
     rights.because === 'role' ? <Notice key="role">You can look. Drawing needs the author role.</Notice> : null,
+    acts.older ? (
+      <Notice
+        key="older"
+        actions={
+          <>
+            {acts.older.drawOnFromHere ? (
+              <Button size="small" onPress={acts.older.drawOnFromHere}>
+                Draw on from here
+              </Button>
+            ) : null}
+            <Button size="small" onPress={acts.older.openNewest}>
+              Open the newest
+            </Button>
+          </>
+        }
+      >
+        {acts.older.words}
+      </Notice>
+    ) : null,
     rights.because === 'state' ? (
       <Notice
         key="state"
@@ -65,7 +86,7 @@ export function TableNotices({ table, acts }: { table: TableContext; acts: Notic
         {`Not saved. ${saveState.problem.detail || saveState.problem.title} Request ${saveState.problem.instance}.`}
       </Notice>
     ) : null,
-    acts.copy?.kind === 'copy' && rights.because !== 'role' ? (
+    acts.copy?.kind === 'copy' && rights.because !== 'role' && rights.because !== 'older' ? (
       <Notice
         key="copy"
         kind="warning"

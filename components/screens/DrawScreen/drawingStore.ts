@@ -34,6 +34,23 @@ export interface OpenedDrawing {
   document: WaveformDocument;
   editionNumber: number | null;
   openReview: OpenReview | null;
-  /** A copy from this device: the server has not got it yet. */
+  /** A copy from this device, or an older revision to draw on from: the newest revision does not hold it yet. */
   isUnsaved: boolean;
+  /** An earlier revision, or one kept beside: it is looked at, and the newest one has this number. */
+  newestNumber: number | null;
+  /** Drawing goes on although the newest revision is in review or released: a new draft. */
+  drawsOn: boolean;
+}
+
+let handedOver: { waveformId: string; document: WaveformDocument } | null = null;
+
+/** Takes an older revision's drawing along to the table of the newest one, where it is drawn on. */
+export function handOverDrawing(waveformId: string, document: WaveformDocument): void {
+  handedOver = { waveformId, document };
+}
+
+export function takeHandedOver(waveformId: string): WaveformDocument | null {
+  const document = handedOver?.waveformId === waveformId ? handedOver.document : null;
+  handedOver = null;
+  return document;
 }

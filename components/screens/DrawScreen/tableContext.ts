@@ -14,7 +14,7 @@ export interface TableRights {
   canDraw: boolean;
   canAsk: boolean;
   /** Why nothing can be drawn: said in a notice; null where drawing is possible. */
-  because: 'role' | 'state' | null;
+  because: 'role' | 'state' | 'older' | null;
 }
 
 /** The parts of the drawing table share one value: the editor, what stands open, and the acts of the page. */

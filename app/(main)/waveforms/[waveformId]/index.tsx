@@ -2,6 +2,6 @@ import { useLocalSearchParams } from 'expo-router';
 import { DrawScreen } from '@/components/screens/DrawScreen/DrawScreen';
 
 export default function Route() {
-  const { waveformId } = useLocalSearchParams<{ waveformId: string }>();
-  return <DrawScreen key={waveformId} waveformId={waveformId} />;
+  const { waveformId, revision } = useLocalSearchParams<{ waveformId: string; revision?: string }>();
+  return <DrawScreen key={`${waveformId} ${revision ?? ''}`} waveformId={waveformId} revisionId={revision ?? null} />;
 }
