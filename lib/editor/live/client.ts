@@ -5,6 +5,7 @@ import { storedDocument } from '../document';
 import { invertPatch } from '../patch';
 import type { Editor } from '../store';
 import type { Patch } from '../types';
+import type { PeakAsk, PeakProgress, PeakResult } from './peakJob';
 import type { LiveAnswer, LiveRequest, LiveResult, LiveView } from './protocol';
 
 /** A worker as the client sees it. */
@@ -35,6 +36,13 @@ export interface VectorDigest {
   bytes: number;
 }
 
+export interface PeakHandlers {
+  onProgress(progress: PeakProgress): void;
+  onDone(result: PeakResult): void;
+  /** In words. */
+  onFailed(message: string): void;
+}
+
 /** Keeps a worker fed with the editor's patches and its answers at hand. */
 export interface LiveClient {
   readonly state: StoreApi<LiveState>;
@@ -44,6 +52,8 @@ export interface LiveClient {
   setView(view: LiveView): void;
   /** The digest of the vector as a pack for this profile would hold it. Rejects with a sentence. */
   digest(bench: BenchContent): Promise<VectorDigest>;
+  /** Tries a way to a lower peak on the document as it is now, previews left out. Told in steps; cancel ends it unheard. */
+  peak(ask: PeakAsk, handlers: PeakHandlers): { cancel(): void };
   /** Ends the worker; start() begins again. */
   end(): void;
 }
@@ -63,6 +73,7 @@ export const LIVE_VIEWS_STOPPED = 'The live views stopped. Your drawing is safe.
 export function createLiveClient(editor: Editor, startPort: (handlers: LivePortHandlers) => LivePort): LiveClient {
   const state = createStore<LiveState>()(() => ({ status: 'starting', result: null, progress: null, message: null }));
   const waiting = new Map<number, { resolve(digest: VectorDigest): void; reject(error: Error): void }>();
+  const peaks = new Map<number, PeakHandlers>();
   let port: LivePort | null = null;
   let view = FIRST_VIEW;
   let stopListening: (() => void) | null = null;
@@ -74,6 +85,9 @@ export function createLiveClient(editor: Editor, startPort: (handlers: LivePortH
   function refuseWaiting(message: string): void {
     for (const { reject } of waiting.values()) reject(new Error(message));
     waiting.clear();
+    const asked = [...peaks.values()];
+    peaks.clear();
+    for (const { onFailed } of asked) onFailed(message);
   }
 
   function post(patch: Patch, changeCount: number): void {
@@ -127,6 +141,15 @@ export function createLiveClient(editor: Editor, startPort: (handlers: LivePortH
         waiting.get(answer.requestId)?.reject(new Error(answer.message));
         waiting.delete(answer.requestId);
         return;
+      case 'peakProgress':
+        return peaks.get(answer.requestId)?.onProgress(answer.progress);
+      case 'peakDone':
+      case 'peakFailed': {
+        const handlers = peaks.get(answer.requestId);
+        peaks.delete(answer.requestId);
+        if (answer.kind === 'peakDone') return handlers?.onDone(answer.result);
+        return handlers?.onFailed(answer.message);
+      }
       case 'failed':
         // The document is at fault, not the worker: it goes on listening for the change that mends it.
         return state.setState({ status: 'running', progress: null, message: answer.message });
@@ -154,6 +177,18 @@ export function createLiveClient(editor: Editor, startPort: (handlers: LivePortH
         waiting.set(requestId, { resolve, reject });
         port.post({ kind: 'digest', requestId, bench });
       });
+    },
+    peak(ask, handlers) {
+      const requestId = nextRequestId++;
+      if (port) {
+        peaks.set(requestId, handlers);
+        port.post({ kind: 'peak', requestId, document: storedDocument(editor.document), ask });
+      } else handlers.onFailed(LIVE_VIEWS_STOPPED);
+      return {
+        cancel() {
+          if (peaks.delete(requestId)) port?.post({ kind: 'peakCancel', requestId });
+        },
+      };
     },
     end() {
       stopListening?.();

@@ -1,4 +1,4 @@
-import { createCellCensus, createFrameTally, createSymbolTally, tallySymbol, tallyTail } from '@/lib/synth/index';
+import { createCellCensus, createFrameTally } from '@/lib/synth/index';
 import type { CellCensus, FrameTally, SampleEngine, WaveformContent, WaveformDocument } from '@/lib/synth/index';
 import { openDocument } from '../document';
 import type { EditorDocument } from '../document';
@@ -8,6 +8,8 @@ import { createAverageSpectrum } from './averageSpectrum';
 import type { AverageSpectrum } from './averageSpectrum';
 import { createPilotRows } from './pilotRows';
 import type { PilotRows } from './pilotRows';
+import { createPlainFrame, refreshFrame } from './plainFrame';
+import type { PlainFrame } from './plainFrame';
 import { createEditReach } from './touched';
 import type { EditReach } from './touched';
 import { createWaveform } from './waveform';
@@ -22,6 +24,8 @@ export interface Kept {
   census: CellCensus;
   reach: EditReach;
   pilots: PilotRows;
+  /** The frame before its peak is lowered; null where it is not. */
+  plain: PlainFrame | null;
 }
 
 /**
@@ -60,7 +64,11 @@ export function createMirror(stored: WaveformDocument, startCount: number, engin
   let isStale = new Uint8Array(0);
   let staleCount = 0;
   let cursor = 0;
-  const tally = createSymbolTally();
+  /** The same of the frame before its peak is lowered: done first, since the limit stands over its mean. */
+  let isPlainStale = new Uint8Array(0);
+  let plainStaleCount = 0;
+  let plainCursor = 0;
+  let plainMean = 0;
 
   const rowOf = (symbol: number) => {
     const { fftSize } = document.settings;
@@ -68,15 +76,19 @@ export function createMirror(stored: WaveformDocument, startCount: number, engin
   };
 
   function markStale(symbol: number | null): void {
-    if (symbol === null || isStale[symbol] === 1) return;
+    if (symbol === null) return;
+    staleCount += 1 - isStale[symbol]!;
     isStale[symbol] = 1;
-    staleCount++;
+    if (!kept?.plain) return;
+    plainStaleCount += 1 - isPlainStale[symbol]!;
+    isPlainStale[symbol] = 1;
   }
 
   /** A moved symbol, and its neighbours: its suffix falls into the next prefix, segments before it reach into it. */
   function markMoved(symbol: number): void {
-    const { waveform } = keep();
+    const { waveform, plain } = keep();
     waveform.forget(symbol);
+    plain?.waveform.forget(symbol);
     markStale(symbol);
     markStale(waveform.previousOf(symbol));
     if (waveform.overlapSamples > 0) markStale(waveform.nextOf(symbol));
@@ -94,7 +106,8 @@ export function createMirror(stored: WaveformDocument, startCount: number, engin
     }
     return {
       content,
-      waveform: createWaveform(content, cells, engine),
+      plain: createPlainFrame(content, cells, engine),
+      waveform: createWaveform(content, cells, engine, () => plainMean),
       census: createCellCensus(content, cells),
       reach,
       pilots,
@@ -108,9 +121,13 @@ export function createMirror(stored: WaveformDocument, startCount: number, engin
     const fresh = readings();
     const [numerator, denominator] = settings.subcarrierSpacingHz;
     const clockHz = (numerator / denominator) * settings.fftSize * settings.oversampling;
-    isStale = new Uint8Array(settings.symbolCount).fill(1);
+    const stale = () => new Uint8Array(settings.symbolCount).fill(1);
+    isStale = stale();
     staleCount = settings.symbolCount;
     cursor = 0;
+    isPlainStale = stale();
+    plainStaleCount = fresh.plain ? settings.symbolCount : 0;
+    plainCursor = 0;
     kept = {
       ...fresh,
       frame: createFrameTally(settings.symbolCount + 1),
@@ -127,7 +144,7 @@ export function createMirror(stored: WaveformDocument, startCount: number, engin
   function applyCells(patch: Patch): void {
     // Nothing kept yet: all is made of the new cells when it is asked for.
     if (!kept) return applyPatch(document, patch);
-    const { reach, census, pilots, waveform } = kept;
+    const { reach, census, pilots, waveform, plain } = kept;
     const before = new Map<number, Uint8Array>();
     for (const change of patch.changes) {
       if (change.kind !== 'cells') continue;
@@ -143,6 +160,7 @@ export function createMirror(stored: WaveformDocument, startCount: number, engin
       pilots.note(symbol, after);
       census.replaceSymbol(row, after);
       waveform.touch(symbol);
+      plain?.waveform.touch(symbol);
     }
     for (const [symbol, row] of before) {
       reach.markLater(symbol, row, rowOf(symbol), later);
@@ -171,24 +189,22 @@ export function createMirror(stored: WaveformDocument, startCount: number, engin
     if (!kept) return;
     const isMoved = document.cells !== cells || patch.changes.some(({ kind }) => kind === 'cells');
     if (!isMoved && !isAudible(settings, document.settings)) kept.content = bareContent(document.settings);
-    else if (!isMoved && spareInksOnly(settings, document.settings, kept)) kept = { ...kept, ...readings() };
+    else if (!isMoved && !kept.plain && spareInksOnly(settings, document.settings, kept))
+      kept = { ...kept, ...readings() };
     else kept = null;
   }
 
-  function refreshTally(symbol: number, { waveform, frame }: Kept): void {
-    const { symbolCount, oversampling } = document.settings;
-    const step = waveform.interpolation / oversampling;
-    const previous = waveform.previousOf(symbol);
-    const isRamped = waveform.overlapSamples > 0;
-    const overlap = isRamped
-      ? { ramp: waveform.ramp, previousUseful: previous === null ? null : waveform.useful(previous) }
-      : undefined;
-    const useful = waveform.useful(symbol);
-    tallySymbol(tally, useful, waveform.prefixOf(symbol) * step, overlap);
-    frame.replace(symbol, tally);
-    if (symbol !== symbolCount - 1 || waveform.tailSamples === 0) return;
-    tallyTail(tally, useful, waveform.ramp, waveform.tailSamples);
-    frame.replace(symbolCount, tally);
+  /** One symbol of the frame before its peak is lowered; after the last one, all symbols are lowered anew if their limit moved. */
+  function stepPlain({ plain, waveform }: Kept): void {
+    while (isPlainStale[plainCursor] !== 1) plainCursor = plainCursor + 1 < isPlainStale.length ? plainCursor + 1 : 0;
+    plain!.refresh(plainCursor);
+    isPlainStale[plainCursor] = 0;
+    plainStaleCount--;
+    if (plainStaleCount > 0 || plain!.meanPower() === plainMean) return;
+    plainMean = plain!.meanPower();
+    for (let symbol = 0; symbol < isStale.length; symbol++) waveform.forget(symbol);
+    isStale.fill(1);
+    staleCount = isStale.length;
   }
 
   return {
@@ -201,14 +217,18 @@ export function createMirror(stored: WaveformDocument, startCount: number, engin
     },
     toDo() {
       keep();
-      return staleCount;
+      return staleCount + plainStaleCount;
     },
     step() {
       const now = keep();
+      if (plainStaleCount > 0) {
+        stepPlain(now);
+        return true;
+      }
       if (staleCount === 0) return false;
       while (isStale[cursor] !== 1) cursor = cursor + 1 < isStale.length ? cursor + 1 : 0;
       const symbol = cursor;
-      refreshTally(symbol, now);
+      refreshFrame(now.frame, now.waveform, symbol, document.settings);
       now.spectrum.refresh(symbol, now.waveform);
       isStale[symbol] = 0;
       staleCount--;

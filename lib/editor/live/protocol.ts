@@ -1,5 +1,6 @@
 import type { BenchContent, WaveformDocument } from '@/lib/synth/index';
 import type { Patch } from '../types';
+import type { PeakAsk, PeakProgress, PeakResult } from './peakJob';
 
 /** What the views want to see; the worker measures no more than this. */
 export interface LiveView {
@@ -21,7 +22,10 @@ export type LiveRequest =
   | { kind: 'open'; document: WaveformDocument; changeCount: number; view: LiveView }
   | { kind: 'patch'; sequence: number; changeCount: number; patch: Patch }
   | { kind: 'view'; view: LiveView }
-  | { kind: 'digest'; requestId: number; bench: BenchContent };
+  | { kind: 'digest'; requestId: number; bench: BenchContent }
+  /** A way to a lower peak, tried on a copy of the document while it goes on being drawn. */
+  | { kind: 'peak'; requestId: number; document: WaveformDocument; ask: PeakAsk }
+  | { kind: 'peakCancel'; requestId: number };
 
 /** Lowest and highest value of each column, left to right: no peak is skipped. */
 export interface MinMaxTrace {
@@ -110,6 +114,8 @@ export interface LiveResult {
   changeCount: number;
   /** PAPR of each symbol in dB; NaN where a symbol is silent. */
   symbolPaprDb: Float32Array;
+  /** The same before the document's peak reduction; null where it has none. */
+  symbolPaprBeforeDb: Float32Array | null;
   /** The symbol with the highest peak over the frame's mean; null when nothing is painted. */
   worstSymbol: number | null;
   time: TimeTrace | null;
@@ -128,6 +134,9 @@ export type LiveAnswer =
   | { kind: 'documentWanted' }
   | { kind: 'digest'; requestId: number; changeCount: number; sha256: string; bytes: number }
   | { kind: 'digestFailed'; requestId: number; message: string }
+  | { kind: 'peakProgress'; requestId: number; progress: PeakProgress }
+  | { kind: 'peakDone'; requestId: number; result: PeakResult }
+  | { kind: 'peakFailed'; requestId: number; message: string }
   | { kind: 'failed'; message: string };
 
 export const CONSTELLATION_POINTS_MOST = 4096;

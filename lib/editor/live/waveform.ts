@@ -1,4 +1,4 @@
-import { createCellValues, createRamp, createSymbolSynthesis, interpolationOf } from '@/lib/synth/index';
+import { createRamp, createSentValues, createSymbolSynthesis, interpolationOf } from '@/lib/synth/index';
 import type { CellValues, SampleEngine, WaveformContent } from '@/lib/synth/index';
 
 /** Useful parts kept: the symbols round the one being drawn stay at hand. */
@@ -33,11 +33,17 @@ export interface Waveform {
   synthesized(): number;
 }
 
-export function createWaveform(content: WaveformContent, cells: Uint8Array, engine?: SampleEngine): Waveform {
+/** `powerBefore`: what targets of peak reduction stand over; what it gives may change where all symbols are forgotten. */
+export function createWaveform(
+  content: WaveformContent,
+  cells: Uint8Array,
+  engine?: SampleEngine,
+  powerBefore: () => number = () => 0,
+): Waveform {
   const interpolation = interpolationOf(content.oversampling);
-  const synthesis = createSymbolSynthesis(content, { cells, oversampling: interpolation, engine });
+  const synthesis = createSymbolSynthesis(content, { cells, oversampling: interpolation, engine, powerBefore });
   const { layout } = synthesis;
-  const values = createCellValues(content, cells);
+  const values = createSentValues(content, { cells, powerBefore });
   const { symbolCount, oversampling, timing } = content;
   const step = interpolation / oversampling;
   const usefulSamples = content.fftSize * oversampling;

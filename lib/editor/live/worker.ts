@@ -1,10 +1,10 @@
 import type { SampleEngine } from '@/lib/synth/index';
 import { contentOf, openDocument, storedDocument } from '../document';
 import { createDigestJob } from './digest';
-import type { DigestJob } from './digest';
 import { liveFigures } from './figures';
 import { createMirror } from './mirror';
 import type { Mirror } from './mirror';
+import { createPeakJob } from './peakJob';
 import type { LiveAnswer, LiveRequest, LiveResult, LiveView } from './protocol';
 import { ccdfTrace, constellationTrace, spectrumTrace, timeTrace } from './views';
 
@@ -20,8 +20,21 @@ export interface LiveWorker {
   receive(request: LiveRequest): void;
 }
 
-/** Progress is told after so many symbols. */
+/** Work beside the views: done in pieces whenever the views have nothing to do, one after another. */
+interface Task {
+  requestId: number;
+  step(): boolean;
+  /** What to answer after the last piece, and after a failure. */
+  finished(): LiveAnswer;
+  failed(message: string): LiveAnswer;
+  /** What to tell after so many pieces; null: nothing. */
+  progress: (() => LiveAnswer) | null;
+}
+
+/** Progress is told after so many symbols or pieces. */
 const PROGRESS_EVERY = 32;
+
+const wordsOf = (error: unknown) => (error instanceof Error ? error.message : String(error));
 
 /** The live views' worker without its thread: hears patches, works a symbol at a time, answers when all is up to date. */
 export function createLiveWorker(host: LiveHost): LiveWorker {
@@ -33,7 +46,8 @@ export function createLiveWorker(host: LiveHost): LiveWorker {
   let isScheduled = false;
   let doneBefore = 0;
   let stepsSinceTold = 0;
-  const digests: { requestId: number; changeCount: number; job: DigestJob }[] = [];
+  let piecesSinceTold = 0;
+  const tasks: Task[] = [];
 
   function schedule(): void {
     if (isScheduled) return;
@@ -43,7 +57,7 @@ export function createLiveWorker(host: LiveHost): LiveWorker {
 
   function fail(error: unknown): void {
     isResultDue = false;
-    host.post({ kind: 'failed', message: error instanceof Error ? error.message : String(error) });
+    host.post({ kind: 'failed', message: wordsOf(error) });
   }
 
   function result(from: Mirror, of: LiveView): LiveResult {
@@ -60,6 +74,7 @@ export function createLiveWorker(host: LiveHost): LiveWorker {
     return {
       changeCount: from.changeCount(),
       symbolPaprDb: Float32Array.from(frame.symbolPaprDb.subarray(0, symbolCount)),
+      symbolPaprBeforeDb: kept.plain && Float32Array.from(kept.plain.symbolPaprDb.subarray(0, symbolCount)),
       worstSymbol: power.paprDb === null ? null : Math.min(power.peakSlot, symbolCount - 1),
       time,
       spectrum: spectrumTrace(kept, of, average),
@@ -84,16 +99,17 @@ export function createLiveWorker(host: LiveHost): LiveWorker {
       isResultDue = false;
       stepsSinceTold = 0;
       host.post({ kind: 'result', result: result(mirror, view) });
-      return digests.length > 0;
+      return tasks.length > 0;
     }
-    const first = digests[0];
+    const first = tasks[0];
     if (!first) return false;
-    if (first.job.step()) return true;
-    digests.shift();
-    const digest = first.job.result();
-    if (digest) host.post({ kind: 'digest', requestId: first.requestId, changeCount: first.changeCount, ...digest });
-    else host.post({ kind: 'digestFailed', requestId: first.requestId, message: 'Nothing is painted.' });
-    return digests.length > 0;
+    if (first.step()) {
+      if (first.progress && ++piecesSinceTold % PROGRESS_EVERY === 0) host.post(first.progress());
+      return true;
+    }
+    tasks.shift();
+    host.post(first.finished());
+    return tasks.length > 0;
   }
 
   function work(): void {
@@ -101,10 +117,10 @@ export function createLiveWorker(host: LiveHost): LiveWorker {
     try {
       if (piece()) schedule();
     } catch (error) {
-      const digest = isResultDue ? undefined : digests.shift();
-      if (digest) host.post({ kind: 'digestFailed', requestId: digest.requestId, message: String(error) });
+      const task = isResultDue ? undefined : tasks.shift();
+      if (task) host.post(task.failed(wordsOf(error)));
       else fail(error);
-      if (digests.length > 0) schedule();
+      if (tasks.length > 0) schedule();
     }
   }
 
@@ -130,14 +146,42 @@ export function createLiveWorker(host: LiveHost): LiveWorker {
   }
 
   function digest({ requestId, bench }: Extract<LiveRequest, { kind: 'digest' }>): void {
-    if (!mirror) return host.post({ kind: 'digestFailed', requestId, message: 'No document is open.' });
+    const failed = (message: string): LiveAnswer => ({ kind: 'digestFailed', requestId, message });
+    if (!mirror) return host.post(failed('No document is open.'));
     try {
       // Its own copy: the document goes on changing while the digest is taken.
       const content = contentOf(openDocument(storedDocument(mirror.document)));
-      digests.push({ requestId, changeCount: mirror.changeCount(), job: createDigestJob(content, bench, host.engine) });
+      const changeCount = mirror.changeCount();
+      const job = createDigestJob(content, bench, host.engine);
+      const finished = (): LiveAnswer => {
+        const found = job.result();
+        return found ? { kind: 'digest', requestId, changeCount, ...found } : failed('Nothing is painted.');
+      };
+      tasks.push({ requestId, step: job.step, finished, failed, progress: null });
     } catch (error) {
-      host.post({ kind: 'digestFailed', requestId, message: error instanceof Error ? error.message : String(error) });
+      host.post(failed(wordsOf(error)));
     }
+  }
+
+  function peak({ requestId, document, ask }: Extract<LiveRequest, { kind: 'peak' }>): void {
+    const failed = (message: string): LiveAnswer => ({ kind: 'peakFailed', requestId, message });
+    try {
+      const job = createPeakJob(document.content, ask, host.engine);
+      tasks.push({
+        requestId,
+        step: job.step,
+        finished: () => ({ kind: 'peakDone', requestId, result: job.result() }),
+        failed,
+        progress: () => ({ kind: 'peakProgress', requestId, progress: job.progress() }),
+      });
+    } catch (error) {
+      host.post(failed(wordsOf(error)));
+    }
+  }
+
+  function cancel(requestId: number): void {
+    const at = tasks.findIndex((task) => task.requestId === requestId);
+    if (at >= 0) tasks.splice(at, 1);
   }
 
   return {
@@ -146,6 +190,8 @@ export function createLiveWorker(host: LiveHost): LiveWorker {
         if (request.kind === 'open') open(request);
         else if (request.kind === 'patch') patch(request);
         else if (request.kind === 'digest') digest(request);
+        else if (request.kind === 'peak') peak(request);
+        else if (request.kind === 'peakCancel') cancel(request.requestId);
         else {
           view = request.view;
           isResultDue = mirror !== null;
@@ -161,10 +207,11 @@ export function createLiveWorker(host: LiveHost): LiveWorker {
 /** The buffers of an answer, to be handed over instead of copied. */
 export function transfersOf(answer: LiveAnswer): ArrayBuffer[] {
   if (answer.kind !== 'result') return [];
-  const { symbolPaprDb, time, spectrum, ccdf, constellation } = answer.result;
+  const { symbolPaprDb, symbolPaprBeforeDb, time, spectrum, ccdf, constellation } = answer.result;
   const traces = [time?.envelope, time?.i, time?.q, spectrum?.db];
   const arrays = [
     symbolPaprDb,
+    ...(symbolPaprBeforeDb ? [symbolPaprBeforeDb] : []),
     ...traces.flatMap((trace) => (trace ? [trace.min, trace.max] : [])),
     ...(ccdf ? [ccdf.thresholdsDb, ccdf.probability, ccdf.gaussian] : []),
     ...(constellation ? [constellation.points] : []),

@@ -57,6 +57,15 @@ const shapes: [string, Partial<WaveformContent>][] = [
     { overlapSamples: 2, timing: { mode: 'burst', repeats: 1, gapSamples: 20, padSamples: 0 } },
   ],
   ['oversampled, uneven prefixes', { oversampling: 3, prefixSamples: [9, 4, 4, 4], overlapSamples: 4 }],
+  ['a lowered peak', { overlapSamples: 2, peakReduction: { kind: 'clipAndFilter', targetPaprDb: 5, iterations: 3 } }],
+  [
+    'a lowered peak in a burst',
+    {
+      overlapSamples: 2,
+      timing: { mode: 'burst', repeats: 1, gapSamples: 20, padSamples: 0 },
+      peakReduction: { kind: 'clipAndFilter', targetPaprDb: 4, iterations: 2 },
+    },
+  ],
 ];
 
 describe('live figures', () => {
@@ -288,13 +297,14 @@ describe('live worker', () => {
     const it = painted();
     const desk = liveDesk(it.editor, wholeView(32));
     desk.settle();
-    const clip = { kind: 'clipAndFilter', targetPaprDb: 8, iterations: 4 } as const;
-    performOutcome(it.editor, planSettings(it.editor.document, { peakReduction: clip }, 'Clip'));
+    // a patch that no form plans: the payload goes, its inks stay
+    const { streams } = it.editor.document.settings;
+    it.editor.apply({ label: 'Lose', changes: [{ kind: 'streams', before: streams, after: [] }] });
     desk.settle();
     expect(desk.answers.at(-1)).toMatchObject({ kind: 'failed' });
     it.tool('brush', 2).pointerDown(6, 4).pointerUp();
     desk.settle();
-    performOutcome(it.editor, planSettings(it.editor.document, { peakReduction: { kind: 'none' } }, 'None'));
+    it.editor.apply({ label: 'Find', changes: [{ kind: 'streams', before: [], after: streams }] });
     const result = desk.settle().result();
     const fresh = liveDesk(createEditor(storedDocument(it.editor.document)), wholeView(32))
       .settle()
