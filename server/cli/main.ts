@@ -1,4 +1,6 @@
 import path from 'node:path';
+import { readRenderWorkers, StartRefused } from '../config.ts';
+import { defaultThreadCount, type WorkThreads } from '../packs/pool/workPool.ts';
 import { loadSampleEngine } from '../sampleEngine.ts';
 import { helpText, parseCommand, type Command } from './arguments.ts';
 import { impair } from './impair.ts';
@@ -6,6 +8,7 @@ import { inspect } from './inspect.ts';
 import { done, refused, usage, type Outcome } from './outcome.ts';
 import { receive } from './receive.ts';
 import { render } from './render.ts';
+import { sidedness } from './sidedness.ts';
 import { verify } from './verify.ts';
 import { versionLine } from './version.ts';
 
@@ -21,6 +24,12 @@ function cancelSignal(): AbortSignal {
   return controller.signal;
 }
 
+/** Of the pool that renders long packs, beside this bundle. */
+function threads(): WorkThreads {
+  const file = path.join(import.meta.dirname, 'work.worker.mjs');
+  return { file, count: readRenderWorkers(process.env) ?? defaultThreadCount() };
+}
+
 async function run(command: Command): Promise<Outcome> {
   switch (command.name) {
     case 'help':
@@ -28,9 +37,11 @@ async function run(command: Command): Promise<Outcome> {
     case 'version':
       return done([versionLine], { version: versionLine });
     case 'render':
-      return render(command, cancelSignal());
+      return render(command, { signal: cancelSignal(), threads: threads() });
+    case 'sidedness':
+      return sidedness(command, { signal: cancelSignal(), threads: threads() });
     case 'verify':
-      return verify(command, cancelSignal());
+      return verify(command, { signal: cancelSignal(), threads: threads() });
     case 'inspect':
       return inspect(command);
     case 'receive':
@@ -47,6 +58,7 @@ async function outcomeOf(argv: string[]): Promise<Outcome> {
   try {
     return await run(parsed.command);
   } catch (error) {
+    if (error instanceof StartRefused) return refused('invalid', error.message);
     const words = error instanceof Error ? error.message.split('\n')[0] : String(error);
     return refused('internal', `The program failed: ${words}`);
   }
