@@ -41,6 +41,11 @@ export const settings: readonly Setting[] = [
     default: '8589934592 (8 GiB)',
     words: 'The largest pack that may be asked for, in bytes.',
   },
+  {
+    name: 'RENDER_WORKERS',
+    default: 'one less than there are cores',
+    words: 'How many threads render a long pack, 1 to 64; the command line reads it too. The bytes are the same.',
+  },
   { name: 'WEB_DIR', default: './dist', words: 'The exported page.' },
   { name: 'LOG_LEVEL', default: 'info', words: 'fatal, error, warn, info, debug or silent.' },
   {
@@ -76,6 +81,7 @@ export const envSchema = z.object({
     .min(1)
     .max(2 ** 43)
     .default(8 * 2 ** 30),
+  RENDER_WORKERS: wholeNumber.min(1).max(64).optional(),
   WEB_DIR: z.string().min(1).default('dist'),
   LOG_LEVEL: z.enum(['fatal', 'error', 'warn', 'info', 'debug', 'silent']).default('info'),
   NODE_ENV: z.string().optional(),
@@ -90,6 +96,8 @@ export interface Config {
   readonly publicOrigin: string | null;
   readonly trustsProxy: boolean;
   readonly packBytesMost: number;
+  /** Threads that render a long pack; as many as the machine suggests where undefined. */
+  readonly renderWorkers: number | undefined;
   readonly webDir: string;
   /** Bundled server, threads and command line. */
   readonly buildDir: string;
@@ -101,16 +109,24 @@ export interface Config {
 /** A start refused with a sentence for the person at the terminal; no stack is shown. */
 export class StartRefused extends Error {}
 
-/** Reads the environment once. `rootDir` is the folder of package.json; relative directories hang on it. */
-export function readConfig(env: Readonly<Record<string, string | undefined>>, rootDir: string): Config {
+type Environment = Readonly<Record<string, string | undefined>>;
+
+function readSettings<Schema extends z.ZodType>(schema: Schema, env: Environment): z.output<Schema> {
   // An empty value is what a compose file leaves behind: it means "not set".
   const given = Object.fromEntries(Object.entries(env).filter(([, value]) => value !== ''));
-  const parsed = envSchema.safeParse(given, { error: schemaWords });
-  if (!parsed.success) {
-    const words = parsed.error.issues.map((issue) => `${issue.path.join('.')}: ${issue.message}`).join('; ');
-    throw new StartRefused(`The settings are not right. ${words}`);
-  }
-  const e = parsed.data;
+  const parsed = schema.safeParse(given, { error: schemaWords });
+  if (parsed.success) return parsed.data;
+  const words = parsed.error.issues.map((issue) => `${issue.path.join('.')}: ${issue.message}`).join('; ');
+  throw new StartRefused(`The settings are not right. ${words}`);
+}
+
+/** The one setting that the command line has as well. Throws StartRefused. */
+export const readRenderWorkers = (env: Environment): number | undefined =>
+  readSettings(envSchema.pick({ RENDER_WORKERS: true }), env).RENDER_WORKERS;
+
+/** Reads the environment once. `rootDir` is the folder of package.json; relative directories hang on it. */
+export function readConfig(env: Environment, rootDir: string): Config {
+  const e = readSettings(envSchema, env);
   const isProduction = e.NODE_ENV === 'production';
   const wantsDemo = e.DEMO ?? (e.DATA_DIR === undefined && !isProduction);
   return {
@@ -121,6 +137,7 @@ export function readConfig(env: Readonly<Record<string, string | undefined>>, ro
     publicOrigin: e.PUBLIC_URL ?? null,
     trustsProxy: e.TRUST_PROXY,
     packBytesMost: e.PACK_BYTES_MOST,
+    renderWorkers: e.RENDER_WORKERS,
     webDir: path.resolve(rootDir, e.WEB_DIR),
     buildDir: path.resolve(rootDir, 'build'),
     migrationsDir: path.resolve(rootDir, 'db/migrations'),

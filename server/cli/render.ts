@@ -1,6 +1,8 @@
 import { access, mkdir } from 'node:fs/promises';
 import path from 'node:path';
+import type { BenchProfile, WaveformDocument } from '@/lib/synth';
 import { makePack } from '../packs/makePack.ts';
+import type { WorkThreads } from '../packs/pool/workPool.ts';
 import type { PackProgress } from '../packs/packTypes.ts';
 import { sweepWorkFolders } from '../packs/tmpFiles.ts';
 import { done, refused, type Outcome } from './outcome.ts';
@@ -24,32 +26,54 @@ function progressLine(): { show: (progress: PackProgress) => void; clear: () => 
   };
 }
 
+/** Where a pack goes and what it may not overwrite. */
+export interface PackTarget {
+  out: string | null;
+  inputs: string[];
+  signal: AbortSignal;
+  threads: WorkThreads;
+}
+
 /** render document.json bench.json [--out pack.zip]: a draft's pack, proven, or nothing at all. */
-export async function render(command: RenderCommand, signal: AbortSignal): Promise<Outcome> {
+export async function render(
+  command: RenderCommand,
+  { signal, threads }: { signal: AbortSignal; threads: WorkThreads },
+): Promise<Outcome> {
   const document = await readDocument(command.document);
   if (!document.ok) return document.outcome;
   const profile = await readProfile(command.bench);
   if (!profile.ok) return profile.outcome;
-  const folder = path.resolve(command.out === null ? '.' : path.dirname(command.out));
+  const inputs = [command.document, command.bench];
+  return packDocument(document.value, profile.value, { out: command.out, inputs, signal, threads });
+}
+
+/** The pack of a document, as a draft; `more` are lines that stand behind what was made. */
+export async function packDocument(
+  document: WaveformDocument,
+  profile: BenchProfile,
+  { out, inputs, signal, threads }: PackTarget,
+  more: string[] = [],
+): Promise<Outcome> {
+  const folder = path.resolve(out === null ? '.' : path.dirname(out));
   try {
     await mkdir(folder, { recursive: true });
     await access(folder);
   } catch (error) {
     return refused('io_failed', `${folder}: ${reasonOf(error)}.`);
   }
-  const out = command.out;
-  if (out !== null && [command.document, command.bench].some((input) => path.resolve(input) === path.resolve(out)))
+  if (out !== null && inputs.some((input) => path.resolve(input) === path.resolve(out)))
     return refused('invalid', `${out} is one of the inputs; nothing was written.`);
   await sweepWorkFolders(folder);
   const progress = progressLine();
   const result = await makePack({
-    document: document.value,
-    profile: profile.value,
+    document,
+    profile,
     state: 'draft',
     tmpFolder: folder,
     outFile: (fileName) => (out === null ? path.join(folder, fileName) : path.resolve(out)),
     onProgress: progress.show,
     signal,
+    threads,
   });
   progress.clear();
   if (!result.ok) return refused(result.code, result.message, result.issues);
@@ -60,10 +84,11 @@ export async function render(command: RenderCommand, signal: AbortSignal): Promi
   return done(
     [
       `${file}: ${pack.fileBytes} bytes, a draft`,
-      `vector ${pack.vectorName}`,
+      ...manifest.files.filter(({ role }) => role.startsWith('vector')).map(({ name }) => `vector ${name}`),
       `  ${manifest.samples.fileSamples} samples at ${manifest.clock.sampleClockHz} Hz, SHA-256 ${pack.vectorSha256}`,
       `  read back: ${proof.wordsCompared} words equal, EVM ${proof.evmDb === null ? 'none' : `${proof.evmDb.toFixed(2)} dB`} over ${proof.cells} cells`,
       ...pack.notices.map((notice) => `  ${notice}`),
+      ...more,
     ],
     {
       file,

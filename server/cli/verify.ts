@@ -1,16 +1,16 @@
 import { access } from 'node:fs/promises';
-import { verifyPack } from '../packs/verifyPack.ts';
+import { verifyPack, type VerifyOptions } from '../packs/verifyPack.ts';
 import { done, refused, type Outcome } from './outcome.ts';
 import { reasonOf } from './readInputs.ts';
 
 /** verify pack.zip: whether the pack is what its document and profile give, word for word. */
-export async function verify(command: { pack: string }, signal: AbortSignal): Promise<Outcome> {
+export async function verify(command: { pack: string }, options: VerifyOptions): Promise<Outcome> {
   try {
     await access(command.pack);
   } catch (error) {
     return refused('io_failed', `${command.pack}: ${reasonOf(error)}.`);
   }
-  const result = await verifyPack(command.pack, signal);
+  const result = await verifyPack(command.pack, options);
   if (!result.ok) return refused(result.code, `${command.pack}: ${result.message}`, result.issues);
   const { manifest, entries, wordsCompared, evmDb, madeAgain } = result.verified;
   const state = manifest.edition === null ? 'a draft' : `edition ${manifest.edition}`;

@@ -1,6 +1,4 @@
 import { createHash } from 'node:crypto';
-import { createReadStream } from 'node:fs';
-import { open, stat, type FileHandle } from 'node:fs/promises';
 import path from 'node:path';
 import { baseName as baseNameOf } from '@/lib/document/packNames';
 import type { Manifest } from '@/lib/document/manifestSchema';
@@ -9,7 +7,9 @@ import {
   createCellValues,
   frameLayout,
   levelCard,
+  vectorFiles,
   wordScale,
+  symbolPeaksOf,
   type BenchProfile,
   type WaveformDocument,
   type WordScale,
@@ -20,20 +20,24 @@ import {
   sideEntries,
   stateWordsOf,
   vectorEntriesOf,
+  vectorNameOf,
   type EntryInput,
   type SideEntry,
 } from './entries.ts';
+import { packBytesOf } from './estimate.ts';
+import { digestPlace } from './fileDigest.ts';
 import { levelCardText } from './levelCardText.ts';
 import { makeManifest } from './manifest/manifest.ts';
 import { measureRendering, type RenderingMeasure } from './measureRendering.ts';
 import { PackError, throwIfCancelled, toPackError } from './packError.ts';
 import { packLevels } from './packLevels.ts';
 import type { MadePack, PackProgress, PackRequest, PackResult, PackState, PackStep } from './packTypes.ts';
+import { openPool, type WorkPool } from './pool/workPool.ts';
 import { noticesOf, refusalOf } from './refusals.ts';
 import { makeWorkFolder, publishFile, removeWorkFolder } from './tmpFiles.ts';
 import { proveVector, type VectorProof } from './vectorProof.ts';
-import { writeChunks, writeVector } from './vectorWriter.ts';
-import { writeZip, type ZipSource } from './zipWriter.ts';
+import { writeVector } from './vectorWriter.ts';
+import { createZipFile, type ZipFile, type ZipRoom } from './zipFile.ts';
 
 /** Where each step ends on the bar of the whole job. */
 const stepEnds: Record<PackStep, [from: number, to: number]> = {
@@ -81,6 +85,19 @@ export function requireProof(proof: VectorProof, samples: number): void {
     throw failed('what was read back does not look like what was painted');
 }
 
+const baseNameFor = (
+  document: WaveformDocument,
+  profile: BenchProfile,
+  state: PackState,
+  vectorSha256: string,
+): string =>
+  baseNameOf({
+    title: document.about.title,
+    edition: state === 'draft' ? null : state,
+    vectorSha256,
+    most: profile.content.fileName.most,
+  });
+
 /** Card, names and entries that follow from a proven vector; the same for making a pack and for verifying one. */
 export function describePack(given: {
   document: WaveformDocument;
@@ -92,12 +109,7 @@ export function describePack(given: {
 }) {
   const { document, profile, state, scale, measure, proof } = given;
   const levels = packLevels(measure, scale, proof);
-  const baseName = baseNameOf({
-    title: document.about.title,
-    edition: state === 'draft' ? null : state,
-    vectorSha256: proof.sha256,
-    most: profile.content.fileName.most,
-  });
+  const baseName = baseNameFor(document, profile, state, proof.sha256);
   const card = levelCard(document, profile, levels);
   const points = cautions(card, {
     state: state === 'draft' ? 'draft' : 'released',
@@ -105,17 +117,20 @@ export function describePack(given: {
     digest: proof.sha256,
     fetched: null,
   });
+  const stateWords = stateWordsOf(state, document, profile);
+  const notices = noticesOf(document, profile, levels, symbolPeaksOf(measure.frame.symbolPeakPower));
   const payloads = new Map<number, PayloadCount>();
   const layout = frameLayout(document.content);
   const values = createCellValues(document.content);
   const cardText = levelCardText(
     {
       baseName,
-      stateWords: stateWordsOf(state),
+      stateWords,
       title: document.about.title,
       benchName: profile.about.name,
       vectorSha256: proof.sha256,
       saturatedWords: saturatedWordsOf(proof),
+      notices,
     },
     card,
     points,
@@ -133,13 +148,14 @@ export function describePack(given: {
     cardText,
   };
   const { before, after } = sideEntries(input);
-  const safety = [...(state === 'draft' ? [stateWordsOf(state)] : []), ...points.map(({ text }) => text)];
+  const safety = [...(state === 'draft' ? [stateWords] : []), ...points.map(({ text }) => text), ...notices];
   return {
     baseName,
     vectors: vectorEntriesOf(baseName, profile, proof),
     before,
     after,
     levels,
+    notices,
     /** `files` in the order of the entries, the manifest left out. */
     manifestOf: (files: Manifest['files']): Manifest =>
       makeManifest({
@@ -178,104 +194,116 @@ export function createTally() {
   };
 }
 
-async function sha256Of(file: string, signal: AbortSignal | undefined): Promise<string> {
-  const hash = createHash('sha256');
-  for await (const chunk of createReadStream(file, { highWaterMark: 1 << 20 })) {
-    throwIfCancelled(signal);
-    hash.update(chunk as Buffer);
-  }
-  return hash.digest('hex');
+/** Rooms for the vector's files at the beginning of the zip: their names' lengths are known before their digests are. */
+function reserveVector(zip: ZipFile, { document, profile, state }: PackRequest): ZipRoom[] {
+  const baseName = baseNameFor(document, profile, state, '0'.repeat(64));
+  return vectorFiles(document.content, profile.content).map(({ ending, bytes }) =>
+    zip.reserve(vectorNameOf(baseName, ending, profile).length, bytes),
+  );
 }
 
-async function make(request: PackRequest, folder: string): Promise<MadePack> {
+async function make(request: PackRequest, zip: ZipFile, pool: WorkPool): Promise<Omit<MadePack, 'file' | 'fileName'>> {
   const { document, profile, state, signal, onProgress } = request;
   const { content } = document;
   const bench = profile.content;
+  const step = (name: PackStep) => ({ signal, onProgress: stepProgress(onProgress, name) });
+  const check = () => throwIfCancelled(signal);
 
-  const measure = await measureRendering(content, { signal, onProgress: stepProgress(onProgress, 'rendering') });
+  const measure = await measureRendering(pool, content, step('rendering'));
   const scale = scaleOf(document, profile, measure);
-
-  const { saturated, written: vectorFiles } = await writeVector(folder, content, bench, scale, {
-    signal,
-    onProgress: stepProgress(onProgress, 'quantizing'),
-  });
-  refuseSaturation(document, saturated);
-
-  const handles: FileHandle[] = [];
-  let proof: VectorProof;
-  try {
-    for (const { file } of vectorFiles) handles.push(await open(file, 'r'));
-    const places = await Promise.all(
-      handles.map(async (handle) => ({ handle, offsetBytes: 0, bytes: (await handle.stat()).size })),
-    );
-    const progress = stepProgress(onProgress, 'readingBack');
-    proof = await proveVector(content, bench, scale, places, { signal, onProgress: progress });
-  } finally {
-    for (const handle of handles) await handle.close();
-  }
+  const rooms = reserveVector(zip, request);
+  refuseSaturation(document, await writeVector(pool, content, bench, scale, rooms, step('quantizing')));
+  const proof = await proveVector(pool, content, bench, scale, rooms, step('readingBack'));
   requireProof(proof, measure.stats.samples);
 
-  const writing = stepProgress(onProgress, 'writing');
+  const { onProgress: writing } = step('writing');
   const pack = describePack({ document, profile, state, scale, measure, proof });
+  for (const [i, { name }] of pack.vectors.entries()) await zip.settle(rooms[i]!, name, proof.files[i]!.crc32);
+  // The zip's own digest is begun while the other entries are made.
+  const { fd } = zip.handle;
+  const settledBytes = zip.bytes;
+  const place = (from: number, end: number) => ({ fd, offsetBytes: from, bytes: end - from });
+  const begun = digestPlace(pool, 'zip', 'sha256', place(0, settledBytes), check, false);
+  begun.catch(() => undefined); // waited for below, unless something fails before
   const files: Manifest['files'] = [...pack.vectors];
-  const sources: ZipSource[] = pack.vectors.map(({ name }, i) => ({ name, from: vectorFiles[i]!.file }));
   const add = async (entry: SideEntry) => {
-    const file = path.join(folder, `entry-${sources.length}`);
     const tally = createTally();
-    await writeChunks(file, tally.through(entry.chunks()), signal);
+    await zip.append(entry.name, tally.through(entry.chunks()), {
+      isLarge: isLargeEntry(entry, document, profile),
+      signal,
+    });
     files.push({ name: entry.name, role: entry.role, ...tally.result() });
-    sources.push({ name: entry.name, from: file });
   };
-  for (const entry of pack.before) await add(entry);
-  const manifestPlace = sources.length;
-  for (const entry of pack.after) await add(entry);
-  const manifest = pack.manifestOf(files);
-  const manifestText = manifestTextOf(manifest);
-  sources.splice(manifestPlace, 0, { name: 'manifest.json', from: Buffer.from(manifestText, 'utf8') });
+  try {
+    for (const entry of pack.before) await add(entry);
+    // The manifest lists what stands behind it, which is small: texts and the two inputs.
+    const behind = pack.after.map((entry) => {
+      const tally = createTally();
+      const chunks = [...tally.through(entry.chunks())];
+      files.push({ name: entry.name, role: entry.role, ...tally.result() });
+      return { name: entry.name, chunks };
+    });
+    const manifest = pack.manifestOf(files);
+    const manifestText = manifestTextOf(manifest);
+    await zip.append('manifest.json', [Buffer.from(manifestText, 'utf8')], { signal });
+    for (const { name, chunks } of behind) await zip.append(name, chunks, { signal });
+    const fileBytes = await zip.finish();
+    writing(0.5);
+    await begun;
+    writing(0.9);
+    const fileSha256 = await digestPlace(pool, 'zip', 'sha256', place(settledBytes, fileBytes), check);
+    return {
+      fileBytes,
+      fileSha256,
+      baseName: pack.baseName,
+      vectorName: pack.vectors[0]!.name,
+      vectorSha256: proof.sha256,
+      manifest,
+      manifestText,
+      notices: pack.notices,
+    };
+  } finally {
+    await begun.catch(() => undefined); // it reads the file, which is closed next
+  }
+}
 
-  const total = files.reduce((sum, file) => sum + file.bytes, manifestText.length);
-  let written = 0;
-  const zipFile = path.join(folder, 'pack.zip');
-  await writeZip(zipFile, sources, {
-    ...(signal ? { signal } : {}),
-    onBytes: (bytes) => writing((0.9 * (written += bytes)) / total),
-  });
-  const fileSha256 = await sha256Of(zipFile, signal);
-  const fileName = `${pack.baseName}.zip`;
-  const file = request.outFile(fileName);
-  throwIfCancelled(signal);
-  await publishFile(zipFile, file);
-  writing(1);
-  return {
-    file,
-    fileName,
-    fileBytes: (await stat(file)).size,
-    fileSha256,
-    baseName: pack.baseName,
-    vectorName: pack.vectors[0]!.name,
-    vectorSha256: proof.sha256,
-    manifest,
-    manifestText,
-    notices: noticesOf(document, profile, pack.levels),
-  };
+/** Markers, references: what may grow with the repeats, beside the vector. */
+function isLargeEntry({ role }: SideEntry, document: WaveformDocument, profile: BenchProfile): boolean {
+  const canGrow = role === 'markers' || role === 'reference' || role === 'referenceSent';
+  return canGrow && packBytesOf(document.content, profile.content) >= 2 ** 32 - 1;
 }
 
 /**
- * Renders, writes, reads back, proves and zips. Either a whole pack stands under its name afterwards, or nothing does and the answer says
- * why: temporaries lie in a folder of their own, which goes in both cases.
+ * Renders, writes, reads back, proves and zips. The vector is written where it stands in the zip, and read back there. Either a whole pack
+ * stands under its name afterwards, or nothing does and the answer says why: temporaries lie in a folder of their own, which goes in both
+ * cases.
  */
 export async function makePack(request: PackRequest): Promise<PackResult> {
+  const { document, profile, signal } = request;
   let folder: string | null = null;
+  let pool: WorkPool | null = null;
+  let zip: ZipFile | null = null;
   try {
-    const refusal = refusalOf(request.document, request.profile);
+    const refusal = refusalOf(document, profile);
     if (refusal) throw refusal;
-    throwIfCancelled(request.signal);
+    throwIfCancelled(signal);
     folder = await makeWorkFolder(request.tmpFolder);
-    return { ok: true, pack: await make(request, folder) };
+    const zipFile = path.join(folder, 'pack.zip');
+    pool = openPool(document.content, profile.content, request.threads);
+    zip = await createZipFile(zipFile);
+    const made = await make(request, zip, pool);
+    const fileName = `${made.baseName}.zip`;
+    const file = request.outFile(fileName);
+    throwIfCancelled(signal);
+    await publishFile(zipFile, file);
+    request.onProgress?.({ step: 'writing', doneRatio: 1 });
+    return { ok: true, pack: { ...made, file, fileName } };
   } catch (error) {
     const { code, message, issues } = toPackError(error);
     return { ok: false, code, message, issues };
   } finally {
+    await pool?.close();
+    await zip?.close();
     if (folder !== null) await removeWorkFolder(folder);
   }
 }

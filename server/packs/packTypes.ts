@@ -1,5 +1,6 @@
 import type { Manifest } from '@/lib/document/manifestSchema';
 import type { BenchProfile, WaveformDocument } from '@/lib/synth';
+import type { WorkThreads } from './pool/workPool.ts';
 import type { PackErrorCode, PackIssue } from './packError.ts';
 
 /** What a pack is made from: a revision that nobody released, or the number of an edition. */
@@ -23,6 +24,8 @@ export interface PackRequest {
   outFile: (fileName: string) => string;
   onProgress?: (progress: PackProgress) => void;
   signal?: AbortSignal;
+  /** Threads for the rendering; without any it is done in this one. The bytes are the same. */
+  threads?: WorkThreads | undefined;
 }
 
 export interface MadePack {

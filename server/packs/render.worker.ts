@@ -28,6 +28,7 @@ const result = await makePack({
   state: task.state,
   tmpFolder: task.tmpFolder,
   outFile: () => task.outFile,
+  threads: task.threads,
   signal: stop.signal,
   onProgress: (progress) => {
     const shown = `${progress.step} ${Math.floor(100 * progress.doneRatio)}`;

@@ -1,5 +1,6 @@
 import path from 'node:path';
 import { Worker } from 'node:worker_threads';
+import { defaultThreadCount } from './pool/workPool.ts';
 import type { PackProgress, PackResult } from './packTypes.ts';
 import type { FromRenderWorker, RenderTask, ToRenderWorker } from './workerProtocol.ts';
 
@@ -8,13 +9,22 @@ const CANCEL_MS = 3000;
 
 export interface Rendering {
   /** Rejects where the thread fails (out of memory, killed); what the pack's makers refuse is in the answer. */
-  render(task: RenderTask, onProgress: (progress: PackProgress) => void, signal: AbortSignal): Promise<PackResult>;
+  render(
+    task: Omit<RenderTask, 'threads'>,
+    onProgress: (progress: PackProgress) => void,
+    signal: AbortSignal,
+  ): Promise<PackResult>;
 }
 
-/** One thread a rendering: its memory goes with it, and nothing of one pack can reach the next. */
-export function createRenderThread(buildDir: string): Rendering {
+/**
+ * One thread a rendering, which opens `workers` more where the rendering is long: their memory goes with them, and nothing of one pack can
+ * reach the next.
+ */
+export function createRenderThread(buildDir: string, workers = defaultThreadCount()): Rendering {
+  const threads = { file: path.join(buildDir, 'work.worker.mjs'), count: workers };
   return {
-    render(task, onProgress, signal) {
+    render(given, onProgress, signal) {
+      const task: RenderTask = { ...given, threads };
       return new Promise((resolve, reject) => {
         const worker = new Worker(path.join(buildDir, 'render.worker.mjs'), {
           workerData: task,

@@ -1,38 +1,32 @@
-import { readSync } from 'node:fs';
 import type { FileHandle } from 'node:fs/promises';
 import type { VectorFile } from '@/lib/synth';
 
-/** Where one of a finished vector's files lies: a file, or a stored entry of a pack. */
+/** Where one of a vector's files lies in an open file: in a pack, behind the head of its entry. */
 export interface VectorPlace {
   handle: FileHandle;
   offsetBytes: number;
   bytes: number;
 }
 
-const endedEarly = () => new Error('The vector ended before its size.');
-
-async function readInto(handle: FileHandle, into: Uint8Array, bytes: number, position: number): Promise<void> {
+/** Fills the first `bytes` bytes of a buffer from a file's `position` on. */
+export async function readInto(handle: FileHandle, into: Uint8Array, bytes: number, position: number): Promise<void> {
   for (let done = 0; done < bytes;) {
     const { bytesRead } = await handle.read(into, done, bytes - done, position + done);
-    if (bytesRead === 0) throw endedEarly();
+    if (bytesRead === 0) throw new Error('The vector ended before its size.');
     done += bytesRead;
   }
 }
 
-/** The vector's files side by side, read by samples: heads are left out, bytes that are no whole sample behind the last too. */
+/** The vector's files side by side. */
 export interface VectorReading {
   /** Whole samples that every file has. */
   readonly samples: number;
   /** How many files begin otherwise than `files` says, or end before their head does. */
   headsDiffer(): Promise<number>;
-  /** Bytes of each file behind its last whole sample, all of them wrong. */
-  rests(): Promise<Uint8Array[]>;
-  /** The heads as they are. */
-  heads(): Promise<Uint8Array[]>;
-  /** Samples from…from+count−1 of each file; valid until the next call. */
-  read(from: number, count: number): Promise<Uint8Array[]>;
-  /** The same at once, for callers that cannot wait; in buffers of its own. */
-  readNow(from: number, count: number, into: Uint8Array[], at: number): void;
+  /** How many files have bytes behind their last whole sample, all of them wrong. */
+  readonly rests: number;
+  /** The first `count` samples of each file. */
+  first(count: number): Promise<Uint8Array[]>;
 }
 
 export function readVector(files: readonly VectorFile[], places: readonly VectorPlace[]): VectorReading {
@@ -40,50 +34,41 @@ export function readVector(files: readonly VectorFile[], places: readonly Vector
   const samples = Math.min(
     ...files.map(({ bytesPerSample }, i) => Math.floor((places[i]!.bytes - headBytes[i]!) / bytesPerSample)),
   );
-  let buffers: Uint8Array[] = [];
-
   async function part(i: number, from: number, bytes: number): Promise<Uint8Array> {
     const found = new Uint8Array(bytes);
     await readInto(places[i]!.handle, found, bytes, places[i]!.offsetBytes + from);
     return found;
   }
-  const heads = () => Promise.all(files.map((_, i) => part(i, 0, headBytes[i]!)));
-
   return {
     samples,
-    heads,
     async headsDiffer() {
-      const found = await heads();
+      const found = await Promise.all(files.map((_, i) => part(i, 0, headBytes[i]!)));
       return files.filter(({ head }, i) => Buffer.compare(head, found[i]!) !== 0).length;
     },
-    rests: () =>
+    rests: files.filter(({ bytesPerSample }, i) => places[i]!.bytes > headBytes[i]! + samples * bytesPerSample).length,
+    first: (count) =>
       Promise.all(
-        files.map(({ bytesPerSample }, i) => {
-          const from = headBytes[i]! + samples * bytesPerSample;
-          return part(i, from, places[i]!.bytes - from);
-        }),
+        files.map(({ bytesPerSample }, i) => part(i, headBytes[i]!, Math.min(count, samples) * bytesPerSample)),
       ),
-    async read(from, count) {
-      if (buffers.length === 0 || buffers[0]!.length < count * files[0]!.bytesPerSample)
-        buffers = files.map(({ bytesPerSample }) => new Uint8Array(count * bytesPerSample));
-      const parts = files.map(({ bytesPerSample }, i) => buffers[i]!.subarray(0, count * bytesPerSample));
-      for (const [i, { bytesPerSample }] of files.entries()) {
-        const { handle, offsetBytes } = places[i]!;
-        await readInto(handle, parts[i]!, parts[i]!.length, offsetBytes + headBytes[i]! + from * bytesPerSample);
-      }
-      return parts;
-    },
-    readNow(from, count, into, at) {
-      files.forEach(({ bytesPerSample }, i) => {
-        const { handle, offsetBytes } = places[i]!;
-        const bytes = count * bytesPerSample;
-        const position = offsetBytes + headBytes[i]! + from * bytesPerSample;
-        for (let done = 0; done < bytes;) {
-          const got = readSync(handle.fd, into[i]!, at * bytesPerSample + done, bytes - done, position + done);
-          if (got === 0) throw endedEarly();
-          done += got;
-        }
-      });
-    },
   };
+}
+
+/** Bytes from…end−1 of a file in blocks, the next one read while the present one is worked on; each is valid until the next. */
+export async function* readAhead(handle: FileHandle, from: number, end: number): AsyncGenerator<Uint8Array> {
+  const size = Math.min(1 << 20, end - from);
+  const blocks = [new Uint8Array(size), new Uint8Array(size)];
+  const begin = (at: number, i: number): Promise<void> | null => {
+    if (at >= end) return null;
+    const reading = readInto(handle, blocks[i]!, Math.min(size, end - at), at);
+    reading.catch(() => undefined); // whoever stops early does not wait for it
+    return reading;
+  };
+  let i = 0;
+  let reading = begin(from, i);
+  for (let at = from; at < end; at += size) {
+    await reading;
+    reading = begin(at + size, 1 - i);
+    yield blocks[i]!.subarray(0, Math.min(size, end - at));
+    i = 1 - i;
+  }
 }

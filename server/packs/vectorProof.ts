@@ -1,15 +1,9 @@
-import { createHash, type Hash } from 'node:crypto';
+import { createHash } from 'node:crypto';
+import { crc32 } from 'node:zlib';
 import {
   createCellPower,
   createCellValues,
-  createDemodulator,
-  createEvmMeter,
-  createReconstructedPeak,
-  createSynthesis,
-  createVectorForm,
-  createVectorGather,
-  createWordReader,
-  createWordWriter,
+  vectorFiles,
   type BenchContent,
   type EvmReport,
   type ReconstructedPeak,
@@ -19,11 +13,14 @@ import {
   type WaveformContent,
   type WordScale,
 } from '@/lib/synth';
-import { sampleEngine } from '../sampleEngine.ts';
+import { digestPlace } from './fileDigest.ts';
 import type { StepOptions } from './measureRendering.ts';
 import { PackError, throwIfCancelled } from './packError.ts';
-import { readVector, type VectorPlace, type VectorReading } from './vectorPlaces.ts';
-import { createYielder } from './yielder.ts';
+import { comparedInksOf, countDifferent, createProofMeter } from './pool/stretchProof.ts';
+import { cutPiece, planVector, type FilePiece, type FilePlan } from './pool/stretchPlan.ts';
+import { inOrder, type WorkPool } from './pool/workPool.ts';
+import type { BytePlace } from './pool/workTasks.ts';
+import { readAhead, readInto, readVector, type VectorPlace } from './vectorPlaces.ts';
 
 /** What reading the finished file, or both files, back gave. */
 export interface VectorProof {
@@ -31,7 +28,13 @@ export interface VectorProof {
   sha256: string;
   /** Of the first file. */
   sha512: string;
-  files: { role: VectorFile['role']; ending: VectorFile['ending']; bytes: number; sha256: string }[];
+  files: {
+    role: VectorFile['role'];
+    ending: VectorFile['ending'];
+    bytes: number;
+    sha256: string;
+    crc32: number;
+  }[];
   /** The first four samples of each file, heads left out. */
   firstParts: Uint8Array[];
   /** Files whose head is not the one that their samples ask for. */
@@ -51,215 +54,191 @@ export interface VectorProof {
   reconstructedPeak: ReconstructedPeak;
 }
 
-const blockSamples = 1 << 16;
 const firstSamples = 4;
-/** The demodulation's part of the whole reading, the rest is the peak between the samples. */
-const demodulationShare = 0.7;
+/** The comparing threads' part of the whole reading; the rest is reading for the digests. */
+const comparingShare = 0.7;
 
 /**
  * Reads a vector from its bytes, compares every word with a second synthesis and demodulates it with known timing, no fit of gain,
- * phase or channel. Nothing of the first pass is used but the scale, so that a mistake in writing cannot hide itself.
+ * phase or channel. Nothing of the first pass is used but the scale, so that a mistake in writing cannot hide itself. The words of a
+ * repeat that is a copy are compared with the bytes of the repeat that it copies, down to the one that was compared with the synthesis.
  */
 export async function proveVector(
+  pool: WorkPool,
   content: WaveformContent,
   bench: BenchContent,
   scale: WordScale,
   places: readonly VectorPlace[],
   options: StepOptions = {},
 ): Promise<VectorProof> {
-  const synthesis = createSynthesis(content, { engine: sampleEngine() });
-  const values = createCellValues(content);
-  const { fftSize } = content;
-  const writer = createWordWriter(bench, scale);
-  const reader = createWordReader(bench);
-  const comparedInks = content.tray.flatMap(({ role }, ink) => (role === 'null' || role === 'reserved' ? [] : [ink]));
-  const meter = createEvmMeter({
-    fftSize,
-    symbolCount: content.symbolCount,
-    inkCount: content.tray.length,
-    inks: comparedInks,
-    estimate: 'none',
-    cellsWords: 'all cells of data, pilot and tone inks',
-  });
-  const lines = createCellPower(content, values.cells);
-  const meant = new Float64Array(2 * fftSize);
-  const demodulator = createDemodulator(content, (repeat, symbol, foundValues) => {
-    values.write(repeat, symbol, meant);
-    meter.add(symbol, values.cells.subarray(symbol * fftSize, (symbol + 1) * fftSize), foundValues, meant);
-    lines.add(symbol, foundValues);
-    if (symbol === content.symbolCount - 1) meter.endFrame();
-  });
-  const form = createVectorForm(content, bench);
-  const gather = createVectorGather(bench);
-  const { files } = form;
+  const files = vectorFiles(content, bench);
   const reading = readVector(files, places);
-  const words = new Float64Array(2 * blockSamples);
-  const expected = new Uint8Array(blockSamples * writer.bytesPerSample);
-  const hashes = files.map(() => createHash('sha256'));
-  const sha512 = createHash('sha512');
-  const digest = (parts: readonly Uint8Array[]) => {
-    parts.forEach((part, i) => hashes[i]!.update(part));
-    sha512.update(parts[0]!);
-  };
+  const { samples } = reading;
+  if (samples === 0) throw new PackError('proof_failed', 'Not offered: the file has no whole sample.');
+  const plan = clipPlan(planVector(content, bench), samples);
+  const stop = new AbortController();
+  const shares = [comparingShare, 1 - comparingShare];
+  const done = [0, 0];
+  const part = (number: 0 | 1) => ({
+    check() {
+      throwIfCancelled(stop.signal);
+      throwIfCancelled(options.signal);
+    },
+    onProgress(ratio: number) {
+      done[number] = ratio;
+      options.onProgress?.(shares[0]! * done[0]! + shares[1]! * done[1]!);
+    },
+  });
   const headsDiffer = await reading.headsDiffer();
-  digest(await reading.heads());
-  let firstParts: Uint8Array[] = [];
-  let samplesRead = 0;
-  let wordsDifferent = 0;
-  let sumI = 0;
-  let sumQ = 0;
-  const wholeSamples = reading.samples;
-  if (wholeSamples === 0) throw new PackError('proof_failed', 'Not offered: the file has no whole sample.');
-  while (samplesRead < wholeSamples) {
-    throwIfCancelled(options.signal);
-    const count = Math.min(blockSamples, wholeSamples - samplesRead);
-    const stored = await reading.read(samplesRead, count);
-    digest(stored);
-    if (samplesRead === 0)
-      firstParts = files.map(({ bytesPerSample }, i) => stored[i]!.slice(0, firstSamples * bytesPerSample));
-    const got = synthesis.readWords(writer, count, expected);
-    // A file longer than the synthesis has words that nothing rendered: each counts as different.
-    wordsDifferent += 2 * (count - got);
-    form.form(expected, got).forEach((meant, i) => {
-      const { bytesPerSample, wordsPerSample } = files[i]!;
-      wordsDifferent += countDifferent(stored[i]!.subarray(0, meant.length), meant, bytesPerSample / wordsPerSample);
-    });
-    reader.readWords(gather.gather(stored, count), 0, count, words);
-    for (let i = 0; i < 2 * count; i += 2) {
-      sumI += words[i]!;
-      sumQ += words[i + 1]!;
-    }
-    for (let i = 0; i < 2 * count; i++) words[i] = words[i]! / scale.scale;
-    demodulator.push(words, count);
-    samplesRead += count;
-    options.onProgress?.((demodulationShare * samplesRead) / wholeSamples);
-  }
-  // A rest that is no whole sample belongs to the digest and is a wrong word.
-  const rests = await reading.rests();
-  digest(rests);
-  wordsDifferent += rests.filter(({ length }) => length > 0).length;
-  const isExpected = wordsDifferent === 0 && wholeSamples === synthesis.samples;
-  const excerpt = excerptOf(content, isExpected && values.isRepeatAlike, wholeSamples, synthesis.layout.repeatSamples);
-  const perWord = Math.max(1, samplesRead) * scale.fullScale;
+  const firstParts = await reading.first(firstSamples);
+  const bytePlaces = places.map(({ handle: { fd }, offsetBytes, bytes }) => ({ fd, offsetBytes, bytes }));
+
+  const [compared, digests, sha512] = await together(stop, [
+    compareStretches(pool, content, scale, plan, { samples, places: bytePlaces }, part(0)),
+    digestFiles(files, places, plan, part(1)),
+    digestPlace(pool, 'vector', 'sha512', bytePlaces[0]!, part(1).check),
+  ]);
+
+  // A file longer than the synthesis has words that nothing rendered: each counts as different, a rest that is no sample as one.
+  const tooMany = 2 * Math.max(0, samples - plan.layout.samples);
+  const perWord = Math.max(1, samples) * scale.fullScale;
   return {
-    sha256: await jointDigest(hashes, places),
-    sha512: sha512.digest('hex'),
-    files: files.map(({ role, ending }, i) => ({
-      role,
-      ending,
-      bytes: places[i]!.bytes,
-      sha256: hashes[i]!.digest('hex'),
-    })),
+    sha256: digests.sha256,
+    sha512,
+    files: digests.files,
     firstParts,
     headsDiffer,
-    samplesRead,
-    wordsCompared: 2 * samplesRead,
-    wordsDifferent,
-    saturated: { ...writer.saturated },
-    dcI: sumI / perWord,
-    dcQ: sumQ / perWord,
-    evm: meter.report(),
-    comparedInks,
-    worstUnpainted: lines.worstUnpainted(),
-    reconstructedPeak: await findPeak(content, bench, scale, reading, files, excerpt, {
-      signal: options.signal,
-      onProgress: (ratio) => options.onProgress?.(demodulationShare + (1 - demodulationShare) * ratio),
-    }),
+    samplesRead: samples,
+    wordsCompared: 2 * samples,
+    wordsDifferent: compared.wordsDifferent + digests.wordsDifferent + tooMany + reading.rests,
+    saturated: compared.saturated,
+    dcI: compared.sumI / perWord,
+    dcQ: compared.sumQ / perWord,
+    evm: compared.evm,
+    comparedInks: comparedInksOf(content),
+    worstUnpainted: compared.worstUnpainted,
+    reconstructedPeak: compared.reconstructedPeak,
   };
 }
 
-/** The digest of all files, one behind the other: the first one's goes on with the second's bytes, read once more. */
-async function jointDigest(hashes: Hash[], places: readonly VectorPlace[]): Promise<string> {
-  const joint = hashes[0]!.copy();
-  const block = new Uint8Array(1 << 20);
-  for (const { handle, offsetBytes, bytes } of places.slice(1)) {
-    for (let done = 0; done < bytes;) {
-      const { bytesRead } = await handle.read(block, 0, Math.min(block.length, bytes - done), offsetBytes + done);
-      if (bytesRead === 0) throw new Error('The vector ended before its size.');
-      joint.update(block.subarray(0, bytesRead));
-      done += bytesRead;
-    }
+/** Waits for all. The first one that fails gives the others up, and is thrown when they have ended: none reads a file that is closed by then. */
+async function together<Results extends unknown[]>(
+  stop: AbortController,
+  works: { [I in keyof Results]: Promise<Results[I]> },
+): Promise<Results> {
+  let failure: { error: unknown } | null = null;
+  for (const work of works) {
+    work.catch((error: unknown) => {
+      failure ??= { error };
+      stop.abort();
+    });
   }
-  return joint.digest('hex');
+  await Promise.allSettled(works);
+  if (failure) throw (failure as { error: unknown }).error;
+  return Promise.all(works) as Promise<Results>;
 }
 
-interface Excerpt {
-  samples: number;
-  /** Where a sample of the excerpt lies in the file, and how many follow it there. */
-  placeOf: (sample: number) => { at: number; following: number };
-}
-
-/**
- * The part of a file that holds all of its waveform. Where every repeat has the same words (each was just compared with a rendering whose
- * repeats are alike), a loop without pad is its first repeat played again and again, and any other file its first two repeats and its last
- * one: a thousand repeats cost no more than three.
- */
-function excerptOf(content: WaveformContent, isRepeatAlike: boolean, samples: number, repeatSamples: number): Excerpt {
-  const whole: Excerpt = { samples, placeOf: (at) => ({ at, following: samples - at }) };
-  const { repeats, mode, padSamples } = content.timing;
-  if (!isRepeatAlike || content.frequencyOffsetHz !== 0 || samples < repeats * repeatSamples) return whole;
-  if (mode === 'loop' && padSamples === 0)
-    return { samples: repeatSamples, placeOf: (at) => ({ at, following: repeatSamples - at }) };
-  if (repeats <= 3) return whole;
-  const border = 2 * repeatSamples;
-  const left = (repeats - 3) * repeatSamples;
+/** What there is of a plan in a file of so many samples. */
+function clipPlan({ layout, head, copies, tail }: FilePlan, samples: number): FilePlan {
+  const clip = (pieces: FilePiece[]) =>
+    pieces.map((piece) => ({ ...piece, end: Math.min(piece.end, samples) })).filter(({ from, end }) => end > from);
+  const isCopied = copies !== null && samples > copies.from;
   return {
-    samples: samples - left,
-    placeOf: (at) =>
-      at < border ? { at, following: border - at } : { at: at + left, following: samples - (at + left) },
+    layout,
+    head: clip(head),
+    copies: isCopied ? { ...copies, end: Math.min(copies.end, samples) } : null,
+    tail: clip(tail),
   };
 }
 
-/** The peak between the samples of the file as it is, by lib/synth's own method; reads where that asks. */
-async function findPeak(
+interface PartOptions {
+  /** Throws once the work is given up. */
+  check(): void;
+  onProgress(ratio: number): void;
+}
+
+/** What the pool finds: every rendered stretch against a second synthesis, its cells, and the peak between the samples. */
+async function compareStretches(
+  pool: WorkPool,
   content: WaveformContent,
-  bench: BenchContent,
   scale: WordScale,
-  reading: VectorReading,
-  files: readonly VectorFile[],
-  excerpt: Excerpt,
-  options: StepOptions,
-): Promise<ReconstructedPeak> {
-  const reader = createWordReader(bench);
-  const gather = createVectorGather(bench);
-  let parts: Uint8Array[] = [];
-  let room = 0;
-  const source = {
-    samples: excerpt.samples,
-    read(first: number, count: number, out: Float64Array) {
-      if (room < count) {
-        parts = files.map(({ bytesPerSample }) => new Uint8Array(count * bytesPerSample));
-        room = count;
-      }
-      for (let done = 0; done < count;) {
-        const { at, following } = excerpt.placeOf(first + done);
-        const part = Math.min(count - done, following);
-        reading.readNow(at, part, parts, done);
-        done += part;
-      }
-      reader.readWords(gather.gather(parts, count), 0, count, out);
-      for (let i = 0; i < 2 * count; i++) out[i] = out[i]! / scale.fullScale;
-    },
-  };
-  const measuring = createReconstructedPeak(source, content.timing.mode);
-  const giveWay = createYielder();
-  while (measuring.step()) {
-    throwIfCancelled(options.signal);
-    options.onProgress?.(measuring.doneSteps / measuring.totalSteps);
-    await giveWay();
+  { layout, head, tail }: FilePlan,
+  { samples, places: files }: { samples: number; places: BytePlace[] },
+  { check, onProgress }: PartOptions,
+) {
+  const meter = createProofMeter(content);
+  const lines = createCellPower(content, createCellValues(content).cells);
+  const found = { wordsDifferent: 0, saturated: { components: 0, samples: 0 }, sumI: 0, sumQ: 0 };
+  const pieces = [...head, ...tail];
+  const all = pieces.reduce((sum, { from, end }) => sum + end - from, 0);
+  let compared = 0;
+  for (const piece of pieces) {
+    const tasks = (function* () {
+      for (const stretch of cutPiece(layout, piece)) yield { task: { kind: 'proof' as const, scale, stretch, files } };
+    })();
+    await inOrder<'proof'>(pool, tasks, (proof, { stretch: { from, end } }) => {
+      found.wordsDifferent += proof.wordsDifferent;
+      found.saturated.components += piece.times * proof.saturated.components;
+      found.saturated.samples += piece.times * proof.saturated.samples;
+      found.sumI += piece.times * proof.sumI;
+      found.sumQ += piece.times * proof.sumQ;
+      meter.take(proof.evm, piece.times);
+      lines.take(proof.lines, piece.times);
+      compared += end - from;
+      onProgress((0.9 * compared) / all);
+      check();
+    });
   }
-  return measuring.result();
+  const reconstructedPeak = await pool.run<'peak'>({ kind: 'peak', scale, files, samples });
+  onProgress(1);
+  return { ...found, evm: meter.report(), worstUnpainted: lines.worstUnpainted(), reconstructedPeak };
 }
 
-function countDifferent(a: Uint8Array, b: Uint8Array, wordBytes: number): number {
-  if (Buffer.compare(a, b) === 0) return 0;
-  let different = 0;
-  for (let at = 0; at < a.length; at += wordBytes) {
-    for (let i = 0; i < wordBytes; i++) {
-      if (a[at + i] === b[at + i]) continue;
-      different += 1;
-      break;
+/** SHA-256 and the zip's sum of every byte, in order; on the way, copied samples are compared with what they copy. */
+async function digestFiles(
+  files: readonly VectorFile[],
+  places: readonly VectorPlace[],
+  { copies }: FilePlan,
+  { check, onProgress }: PartOptions,
+) {
+  const all = places.reduce((sum, { bytes }) => sum + bytes, 0);
+  let joint = createHash('sha256');
+  let wordsDifferent = 0;
+  let read = 0;
+  const found: VectorProof['files'] = [];
+  for (const [i, { role, ending, head, bytesPerSample, wordsPerSample }] of files.entries()) {
+    const { handle, offsetBytes, bytes } = places[i]!;
+    const own = createHash('sha256');
+    let sum = 0;
+    const end = offsetBytes + bytes;
+    const at = (sample: number): number => offsetBytes + head.length + sample * bytesPerSample;
+    const copied =
+      copies === null
+        ? { from: end, end, back: 0 }
+        : { from: at(copies.from), end: at(copies.end), back: copies.cycleSamples * bytesPerSample };
+    const earlier = new Uint8Array(1 << 20);
+    for (const [from, to] of [
+      [offsetBytes, copied.from],
+      [copied.from, copied.end],
+      [copied.end, end],
+    ] as const) {
+      let position = from;
+      for await (const block of readAhead(handle, from, to)) {
+        check();
+        own.update(block);
+        if (i > 0) joint.update(block);
+        sum = crc32(block, sum);
+        if (from === copied.from && to === copied.end) {
+          await readInto(handle, earlier, block.length, position - copied.back);
+          const words = bytesPerSample / wordsPerSample;
+          wordsDifferent += countDifferent(block, earlier.subarray(0, block.length), words);
+        }
+        position += block.length;
+        onProgress((read += block.length) / all);
+      }
     }
+    if (i === 0) joint = own.copy();
+    found.push({ role, ending, bytes, sha256: own.digest('hex'), crc32: sum });
   }
-  return different;
+  return { files: found, sha256: joint.digest('hex'), wordsDifferent };
 }

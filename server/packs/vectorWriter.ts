@@ -1,84 +1,113 @@
-import { open, type FileHandle } from 'node:fs/promises';
-import path from 'node:path';
+import type { FileHandle } from 'node:fs/promises';
 import {
-  createSynthesis,
   createVectorForm,
   createWordWriter,
   type BenchContent,
   type SaturationCount,
-  type VectorFile,
   type WaveformContent,
   type WordScale,
 } from '@/lib/synth';
-import { sampleEngine } from '../sampleEngine.ts';
 import type { StepOptions } from './measureRendering.ts';
 import { throwIfCancelled } from './packError.ts';
+import { cutPiece, planVector, stretchMost, type FilePiece } from './pool/stretchPlan.ts';
+import { inOrder, type WorkPool } from './pool/workPool.ts';
+import type { TaskOf } from './pool/workTasks.ts';
+import { readInto, type VectorPlace } from './vectorPlaces.ts';
+import { writeAll } from './zipFile.ts';
 
-const blockSamples = 1 << 16;
-
-/** Writes all of a buffer: a nearly full disk takes a part without an error, and refuses only the next write. */
-async function writeAll(
-  handle: { write(b: Uint8Array, o: number, l: number): Promise<{ bytesWritten: number }> },
-  bytes: Uint8Array,
-): Promise<void> {
-  for (let done = 0; done < bytes.length;) done += (await handle.write(bytes, done, bytes.length - done)).bytesWritten;
-}
-
-/** A finished file of a vector in the work folder. */
-export interface WrittenFile {
-  file: string;
-  role: VectorFile['role'];
-  bytes: number;
-}
+const copyBytes = 1 << 22;
 
 /**
- * Pass two of a pack: the words, block by block, in the profile's form, flushed to the disk at the end. The files lie in
- * `folder`, in the order of vectorFiles.
+ * Pass two of a pack: the words, stretch by stretch in the profile's form, to the places of the vector's files, which are in the order of
+ * vectorFiles. Repeats that are copies are written from the file's own earlier bytes.
  */
 export async function writeVector(
-  folder: string,
+  pool: WorkPool,
   content: WaveformContent,
   bench: BenchContent,
   scale: WordScale,
+  places: readonly VectorPlace[],
   options: StepOptions = {},
-): Promise<{ saturated: SaturationCount; written: WrittenFile[] }> {
-  const synthesis = createSynthesis(content, { engine: sampleEngine() });
-  const writer = createWordWriter(bench, scale);
+): Promise<SaturationCount> {
   const form = createVectorForm(content, bench);
-  const bytes = new Uint8Array(blockSamples * writer.bytesPerSample);
-  const written = form.files.map(({ role, ending, bytes }) => ({
-    file: path.join(folder, `vector${ending}`),
-    role,
-    bytes,
-  }));
-  const handles: FileHandle[] = [];
-  try {
-    for (const { file } of written) handles.push(await open(file, 'wx'));
-    for (const [i, { head }] of form.files.entries()) await writeAll(handles[i]!, head);
-    for (;;) {
-      throwIfCancelled(options.signal);
-      const count = synthesis.readWords(writer, blockSamples, bytes);
-      if (count === 0) break;
-      const parts = form.form(bytes.subarray(0, count * writer.bytesPerSample), count);
-      for (const [i, part] of parts.entries()) await writeAll(handles[i]!, part);
-      options.onProgress?.(synthesis.position / synthesis.samples);
+  const { bytesPerSample: wordBytes } = createWordWriter(bench, scale);
+  const { layout, head, copies, tail } = planVector(content, bench);
+  const saturated: SaturationCount = { components: 0, samples: 0 };
+  const freeRooms: ArrayBuffer[] = [];
+  const positionOf = (file: number, sample: number): number => {
+    const { head: fileHead, bytesPerSample } = form.files[file]!;
+    return places[file]!.offsetBytes + fileHead.length + sample * bytesPerSample;
+  };
+  const note = (sample: number): void => {
+    throwIfCancelled(options.signal);
+    options.onProgress?.(sample / layout.samples);
+  };
+
+  function* tasksOf(piece: FilePiece): Generator<{ task: TaskOf<'words'>; transfer: ArrayBuffer[] }> {
+    for (const stretch of cutPiece(layout, piece)) {
+      const bytes = (stretch.end - stretch.from) * wordBytes;
+      const at = freeRooms.findIndex(({ byteLength }) => byteLength >= bytes);
+      const room =
+        at >= 0 ? freeRooms.splice(at, 1)[0]! : new ArrayBuffer(Math.max(bytes, stretchMost(layout) * wordBytes));
+      yield { task: { kind: 'words', scale, stretch, room }, transfer: [room] };
     }
-    for (const handle of handles) await handle.sync();
-  } finally {
-    for (const handle of handles) await handle.close();
   }
-  return { saturated: writer.saturated, written };
+
+  async function writePieces(pieces: readonly FilePiece[]): Promise<void> {
+    for (const piece of pieces) {
+      form.seek(piece.from);
+      await inOrder<'words'>(pool, tasksOf(piece), async (found, { stretch: { from, end } }) => {
+        saturated.components += piece.times * found.saturated.components;
+        saturated.samples += piece.times * found.saturated.samples;
+        const words = new Uint8Array(found.room, 0, (end - from) * wordBytes);
+        for (const [file, part] of form.form(words, end - from).entries())
+          await writeAll(places[file]!.handle, part, positionOf(file, from));
+        freeRooms.push(found.room);
+        note(end);
+      });
+    }
+  }
+
+  for (const [file, { head: fileHead }] of form.files.entries())
+    await writeAll(places[file]!.handle, fileHead, places[file]!.offsetBytes);
+  await writePieces(head);
+  if (copies !== null) {
+    for (const [file, { bytesPerSample }] of form.files.entries()) {
+      await repeatBytes(places[file]!.handle, {
+        from: positionOf(file, copies.from),
+        end: positionOf(file, copies.end),
+        cycleBytes: copies.cycleSamples * bytesPerSample,
+        onWritten: (bytes) => note(copies.from + bytes / bytesPerSample / form.files.length),
+      });
+    }
+  }
+  await writePieces(tail);
+  return saturated;
 }
 
-/** Writes an entry's chunks as they are made. */
-export async function writeChunks(file: string, chunks: Iterable<Uint8Array>, signal?: AbortSignal): Promise<void> {
-  const handle = await open(file, 'wx');
-  try {
-    for (const chunk of chunks) {
-      throwIfCancelled(signal);
-      await writeAll(handle, chunk);
-    }
-  } finally {
-    await handle.close();
+/** Writes the bytes from…end−1 of a file, each equal to the one `cycleBytes` before it. */
+async function repeatBytes(
+  handle: FileHandle,
+  {
+    from,
+    end,
+    cycleBytes,
+    onWritten,
+  }: { from: number; end: number; cycleBytes: number; onWritten(bytes: number): void },
+): Promise<void> {
+  const isShort = 2 * cycleBytes <= copyBytes;
+  const block = new Uint8Array(
+    isShort ? Math.floor(copyBytes / cycleBytes) * cycleBytes : Math.min(copyBytes, cycleBytes),
+  );
+  if (isShort) {
+    await readInto(handle, block, cycleBytes, from - cycleBytes);
+    for (let filled = cycleBytes; filled < block.length; filled *= 2) block.copyWithin(filled, 0, filled);
+  }
+  for (let at = from; at < end;) {
+    const count = Math.min(block.length, end - at);
+    if (!isShort) await readInto(handle, block, count, at - cycleBytes);
+    await writeAll(handle, block.subarray(0, count), at);
+    at += count;
+    onWritten(at - from);
   }
 }

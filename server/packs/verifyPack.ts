@@ -5,14 +5,15 @@ import { contentDigest, documentDigest, intentDigest, profileDigest, profileFile
 import type { Manifest } from '@/lib/document/manifestSchema';
 import { parseBenchProfile, parseManifest, parseWaveformDocument } from '@/lib/document/parse';
 import type { ParseResult } from '@/lib/document/issues';
-import { synthVersion, vectorFiles, type BenchProfile, type WaveformDocument } from '@/lib/synth';
+import { synthVersion, vectorFiles, type BenchProfile, type WaveformDocument, type WordScale } from '@/lib/synth';
 import { createTally, describePack, manifestTextOf, scaleOf } from './makePack.ts';
 import { packKeyOf } from './manifest/manifest.ts';
-import { measureRendering } from './measureRendering.ts';
+import { measureRendering, type RenderingMeasure } from './measureRendering.ts';
 import { PackError, throwIfCancelled, toPackError, type PackErrorCode, type PackIssue } from './packError.ts';
 import type { PackState } from './packTypes.ts';
+import { openPool, type WorkThreads } from './pool/workPool.ts';
 import { packVersion } from './packVersion.ts';
-import { proveVector } from './vectorProof.ts';
+import { proveVector, type VectorProof } from './vectorProof.ts';
 import { readSmallEntry, readZipEntries, type ZipEntry } from './zipReader.ts';
 
 export interface VerifiedPack {
@@ -125,7 +126,7 @@ function checkDigests(
   return sameVersions;
 }
 
-async function verify(handle: FileHandle, signal: AbortSignal | undefined): Promise<VerifiedPack> {
+async function verify(handle: FileHandle, { signal, threads }: VerifyOptions): Promise<VerifiedPack> {
   const entries = await readZipEntries(handle);
   const manifest = await readParsed(handle, entries, 'manifest.json', mostManifestBytes, parseManifest);
   const document = await readParsed(
@@ -149,10 +150,18 @@ async function verify(handle: FileHandle, signal: AbortSignal | undefined): Prom
     return entry;
   });
 
-  const measure = await measureRendering(document.content, { signal });
-  const scale = scaleOf(document, profile, measure);
-  const places = vectors.map(({ offsetBytes, bytes }) => ({ handle, offsetBytes, bytes }));
-  const proof = await proveVector(document.content, profile.content, scale, places, { signal });
+  const pool = openPool(document.content, profile.content, threads);
+  let measure: RenderingMeasure;
+  let scale: WordScale;
+  let proof: VectorProof;
+  try {
+    measure = await measureRendering(pool, document.content, { signal });
+    scale = scaleOf(document, profile, measure);
+    const places = vectors.map(({ offsetBytes, bytes }) => ({ handle, offsetBytes, bytes }));
+    proof = await proveVector(pool, document.content, profile.content, scale, places, { signal });
+  } finally {
+    await pool.close();
+  }
   const { name } = vectors[0]!;
   if (proof.headsDiffer > 0) findings.add(name, `begins otherwise than a file of ${measure.stats.samples} samples`);
   if (proof.samplesRead !== measure.stats.samples)
@@ -196,13 +205,18 @@ async function verify(handle: FileHandle, signal: AbortSignal | undefined): Prom
   };
 }
 
+export interface VerifyOptions {
+  signal?: AbortSignal | undefined;
+  threads?: WorkThreads | undefined;
+}
+
 /** Reads a pack again: the zip's sums, every digest, every word against a new synthesis, and every other entry made anew. Writes nothing. */
-export async function verifyPack(file: string, signal?: AbortSignal): Promise<VerifyResult> {
+export async function verifyPack(file: string, options: VerifyOptions = {}): Promise<VerifyResult> {
   let handle: FileHandle | null = null;
   try {
     handle = await open(file, 'r');
     if (!(await handle.stat()).isFile()) throw damaged('it is no file');
-    return { ok: true, verified: await verify(handle, signal) };
+    return { ok: true, verified: await verify(handle, options) };
   } catch (error) {
     const { code, message, issues } = toPackError(error);
     return { ok: false, code, message, issues };

@@ -1,4 +1,5 @@
 import type { BenchProfile, WaveformDocument } from '@/lib/synth';
+import type { WorkThreads } from './pool/workPool.ts';
 import type { PackProgress, PackResult, PackState } from './packTypes.ts';
 
 /** What the thread is started with. `outFile` lies on the same disk as `tmpFolder`. */
@@ -8,6 +9,7 @@ export interface RenderTask {
   state: PackState;
   tmpFolder: string;
   outFile: string;
+  threads: WorkThreads;
 }
 
 export type ToRenderWorker = { kind: 'cancel' };

@@ -18,7 +18,7 @@ export interface Packs {
 
 /** All that belongs to packs: jobs with their thread, service, downloads, routes and the operator's page. */
 export function createPacks(deps: Deps, mount: Mount, events: Events, readActor: ReadActor): Packs {
-  const jobs = createPackJobs(deps, createRenderThread(deps.config.buildDir));
+  const jobs = createPackJobs(deps, createRenderThread(deps.config.buildDir, deps.config.renderWorkers));
   const service = createPacksService(deps, jobs);
   mountPacks(mount, service, createDownloads(events));
   return { jobs, service, page: serveOperatorPage(deps.config.webDir, readActor, service.show) };

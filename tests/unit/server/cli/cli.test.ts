@@ -1,5 +1,14 @@
 import { spawn, spawnSync } from 'node:child_process';
-import { existsSync, mkdtempSync, readdirSync, readFileSync, rmSync, truncateSync, writeFileSync } from 'node:fs';
+import {
+  existsSync,
+  mkdtempSync,
+  readdirSync,
+  readFileSync,
+  rmSync,
+  statSync,
+  truncateSync,
+  writeFileSync,
+} from 'node:fs';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
 import type { BenchProfile, WaveformDocument } from '@/lib/synth';
@@ -174,7 +183,8 @@ test('a long vector takes no more memory than a short one: it passes in blocks',
 async function untilWorking(): Promise<void> {
   for (let tries = 0; tries < 2000; tries++) {
     const part = readdirSync(folder).find((name) => name.startsWith('.combwright-part-'));
-    if (part && existsSync(path.join(folder, part, 'vector'))) return;
+    const file = part && path.join(folder, part, 'pack.zip');
+    if (file && existsSync(file) && statSync(file).size > 0) return; // words are being written
     await new Promise((resolve) => setTimeout(resolve, 5));
   }
   throw new Error('It never began.');

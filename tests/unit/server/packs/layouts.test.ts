@@ -3,9 +3,10 @@ import { open, truncate } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
 import { createDigestJob } from '@/lib/editor/live/digest';
-import type { BenchContent, WaveformDocument } from '@/lib/synth';
+import { vectorFiles, type BenchContent, type WaveformDocument } from '@/lib/synth';
 import { makePack, requireProof, scaleOf } from '@/server/packs/makePack';
 import { measureRendering } from '@/server/packs/measureRendering';
+import { openPool } from '@/server/packs/pool/workPool';
 import { proveVector } from '@/server/packs/vectorProof';
 import { writeVector } from '@/server/packs/vectorWriter';
 import { wordWords } from '@/server/packs/wordWords';
@@ -44,16 +45,17 @@ test.each<[string, Partial<BenchContent>]>([
 /** Writes a vector, damages it, and says why it is not offered. */
 async function whyNot(layout: Partial<BenchContent>, damage: (files: string[]) => Promise<void>): Promise<string> {
   const bench = benchOf(layout);
-  const measure = await measureRendering(document.content);
+  const pool = openPool(document.content, bench.content);
+  const measure = await measureRendering(pool, document.content);
   const scale = scaleOf(document, bench, measure);
-  const { written } = await writeVector(folder, document.content, bench.content, scale);
-  await damage(written.map(({ file }) => file));
-  const handles = await Promise.all(written.map(({ file }) => open(file, 'r')));
-  const places = await Promise.all(
-    handles.map(async (handle) => ({ handle, offsetBytes: 0, bytes: (await handle.stat()).size })),
-  );
+  const names = vectorFiles(document.content, bench.content).map(({ ending }) => path.join(folder, `vector${ending}`));
+  const handles = await Promise.all(names.map((file) => open(file, 'wx+')));
+  const placesNow = () =>
+    Promise.all(handles.map(async (handle) => ({ handle, offsetBytes: 0, bytes: (await handle.stat()).size })));
+  await writeVector(pool, document.content, bench.content, scale, await placesNow());
+  await damage(names);
   try {
-    const proof = await proveVector(document.content, bench.content, scale, places);
+    const proof = await proveVector(pool, document.content, bench.content, scale, await placesNow());
     requireProof(proof, measure.stats.samples);
   } catch (error) {
     return (error as Error).message;

@@ -4,6 +4,7 @@ import {
   collectLevelParts,
   createStatsCollector,
   createSynthesis,
+  markerBytes,
   repeatCopies,
   vectorStats,
   type WaveformContent,
@@ -159,4 +160,26 @@ describe('how many repeats make a copy', () => {
     expect(of({ frequencyOffsetHz: 62500, timing: repeats(16) })).toBeNull();
     expect(of({ frequencyOffsetHz: 62501, timing: repeats(65536) })).toBeNull();
   });
+});
+
+test('marker bytes from any sample on are those of the whole file', () => {
+  fc.assert(
+    fc.property(
+      arbitraryContent(),
+      fc.array(fc.tuple(fc.double({ min: 0, max: 1, noNaN: true }), fc.integer({ min: 1, max: 999 })), { maxLength: 6 }),
+      (content, places) => {
+        const source = markerBytes(content);
+        const whole = new Uint8Array(source.samples);
+        source.read(whole);
+        for (const [ratio, count] of places) {
+          const from = Math.floor(ratio * source.samples);
+          source.seek(from);
+          const out = new Uint8Array(count).fill(255);
+          const got = source.read(out);
+          expect(Buffer.compare(out.subarray(0, got), whole.subarray(from, from + got))).toBe(0);
+        }
+      },
+    ),
+    { numRuns: 60, seed: 5 },
+  );
 });
