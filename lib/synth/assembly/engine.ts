@@ -1,6 +1,6 @@
 // The sample engine: everything here works on addresses in its own memory, which its owner lays out (lib/synth/engine).
 export { transform } from './transform';
-export { closePart, floatWords, integerWords, measure } from './samples';
+export { floatWords, integerWords, measure, regroup } from './samples';
 export { mapRuns } from './points';
 
 /** The first byte that is free. */

@@ -10,7 +10,6 @@ const RUNS_MOST = 512;
 const RUN_NUMBERS = 8;
 const LEAST_WINDOW_WORDS = 514;
 const MOST_BITS = 12; // of a cell, or from an anchored cell to the next
-const APART_BYTES = 1088; // that the kernel leaves between real and imaginary parts
 const SPARE = 64; // what the kernel may read or write beyond an end
 
 /** Where everything lies in a room, in bytes from its beginning. */
@@ -20,6 +19,7 @@ interface RoomMap {
   other: number;
   spectrum: number;
   part: number;
+  flat: number;
   runs: number;
   windows: number[];
   points: number[];
@@ -43,17 +43,18 @@ function mapRoom({ values, layout }: PartPlan, planBytes: number, slots: number)
   const windowWords = Math.max(LEAST_WINDOW_WORDS, Math.ceil((MOST_BITS * content.fftSize) / 32) + 4);
   const map = {
     plan: take(planBytes),
-    scratch: take(16 * size + APART_BYTES),
-    other: take(16 * size + APART_BYTES),
+    scratch: take(16 * size),
+    other: take(16 * size),
     spectrum: take(16 * size),
     part: take(16 * size),
+    flat: take(16 * size),
     runs: take(4 * RUN_NUMBERS * RUNS_MOST),
     windows: content.streams.map(() => take(4 * windowWords)),
     points: inks.map((plan) => (plan.kind === 'data' ? take(8 * plan.points.length) : 0)),
     state: take(8 * LEVEL_STATE_LENGTH),
     counts: take(16),
     block: take(16 * BLOCK_SAMPLES),
-    words: take(8 * BLOCK_SAMPLES),
+    words: take(16 * BLOCK_SAMPLES),
     kept: take(16 * size * slots),
   };
   return { ...map, bytes: end };
@@ -81,6 +82,7 @@ export function createEngineParts(plan: PartPlan, engine: SampleEngine, slots: n
   let spectrum: Float64Array = new Float64Array(0);
   let runs = 0;
   let lastRow = -1;
+  let present = -1; // the slot whose part lies in the room for those that are not kept
 
   const view = (at: number, length: number): Float64Array => new Float64Array(memory, start + at, length);
 
@@ -99,6 +101,7 @@ export function createEngineParts(plan: PartPlan, engine: SampleEngine, slots: n
     copied.fill(-1);
     runs = 0;
     lastRow = -1;
+    present = -1;
     work.block = view(map.block, 2 * BLOCK_SAMPLES);
   }
 
@@ -130,31 +133,58 @@ export function createEngineParts(plan: PartPlan, engine: SampleEngine, slots: n
     },
   };
 
+  function rowOfPart(repeat: number, symbol: number, slot: number): number {
+    const isKeeping = slot >= 0 && slot < slots;
+    const part = start + (isKeeping ? map.kept + 16 * size * slot : map.part);
+    if (isKeeping ? isKept[slot] === 1 : slot >= 0 && slot === present) return part;
+    const row = values.rowOf(symbol);
+    if (row < 0 || row !== lastRow) {
+      spectrum.fill(0, 0, 2 * low);
+      spectrum.fill(0, 2 * (size - high));
+      lastRow = row;
+    } // else each value of the symbol before is written over
+    values.writePlaced(repeat, symbol, spectrum, placement, sink);
+    flush();
+    kernel.transform(start + map.plan, start + map.spectrum, part, low, high);
+    if (isKeeping) isKept[slot] = 1;
+    else present = slot;
+    return part;
+  }
+
   const work: SampleWork & { block: Float64Array } = {
     block: spectrum,
     lend: (collector) => numbers.set(collector.state, (start + map.state) / 8),
-    measure: (at, count) => kernel.measure(start + map.state, at, count),
+    measure: (row, from, count) => kernel.measure(start + map.state, row, from, count),
     giveBack(collector) {
       const state = (start + map.state) / 8;
       collector.state.set(numbers.subarray(state, state + LEVEL_STATE_LENGTH));
     },
-    write(writer, at, count, bytes, to) {
+    rowOfBlock(count) {
+      const row = start + map.block;
+      kernel.regroup(row, Math.ceil(count / 2), row);
+      return row;
+    },
+    rowOfPart,
+    write(writer, row, from, count, bytes, to) {
       const { direct, bytesPerSample } = writer;
-      if (direct === null) {
-        writer.write(new Float64Array(memory, at, 2 * count), count, bytes, to);
-        return;
-      }
       const counts = start + map.counts;
       const words = start + map.words;
       numbers[counts / 8] = 0;
       numbers[counts / 8 + 1] = 0;
       for (let done = 0; done < count; done += BLOCK_SAMPLES) {
         const part = Math.min(count - done, BLOCK_SAMPLES);
-        const from = at + 16 * done;
+        const first = from + done;
+        const at = to + done * bytesPerSample;
+        if (direct === null) {
+          const skipped = first % 2;
+          kernel.regroup(row + 16 * (first - skipped), Math.ceil((part + skipped) / 2), words);
+          writer.write(new Float64Array(memory, words + 16 * skipped, 2 * part), part, bytes, at);
+          continue;
+        }
         if (direct.word === 'int16') {
-          kernel.integerWords(from, part, words, direct.scale, -direct.most - 1, direct.most, counts);
-        } else kernel.floatWords(from, part, words, direct.scale, counts);
-        bytes.set(new Uint8Array(memory, words, part * bytesPerSample), to + done * bytesPerSample);
+          kernel.integerWords(row, first, part, words, direct.scale, -direct.most - 1, direct.most, counts);
+        } else kernel.floatWords(row, first, part, words, direct.scale, counts);
+        bytes.set(new Uint8Array(memory, words, part * bytesPerSample), at);
       }
       writer.saturated.components += numbers[counts / 8]!;
       writer.saturated.samples += numbers[counts / 8 + 1]!;
@@ -172,20 +202,8 @@ export function createEngineParts(plan: PartPlan, engine: SampleEngine, slots: n
     },
     rest: () => engine.rest(tenant),
     part(repeat, symbol, slot) {
-      const at = slot < slots ? map.kept + 16 * size * slot : map.part;
-      const part = view(at, 2 * size);
-      if (slot < slots && isKept[slot] === 1) return part;
-      const row = values.rowOf(symbol);
-      if (row < 0 || row !== lastRow) {
-        spectrum.fill(0, 0, 2 * low);
-        spectrum.fill(0, 2 * (size - high));
-        lastRow = row;
-      } // else each value of the symbol before is written over
-      values.writePlaced(repeat, symbol, spectrum, placement, sink);
-      flush();
-      kernel.transform(start + map.plan, start + map.spectrum, part.byteOffset, low, high);
-      if (slot < slots) isKept[slot] = 1;
-      return part;
+      kernel.regroup(rowOfPart(repeat, symbol, slot), size / 2, start + map.flat);
+      return view(map.flat, 2 * size);
     },
   };
 }

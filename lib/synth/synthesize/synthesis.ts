@@ -2,6 +2,7 @@ import { demand } from '../errors';
 import type { WordWriter } from '../files/wordWriter';
 import type { WaveformContent } from '../types';
 import { createFrequencyOffset } from './frequencyOffset';
+import type { SampleWork } from './partTypes';
 import { createRamp } from './ramp';
 import type { RenderOptions, StatsCollector, Synthesis } from './types';
 import { createUsefulParts, planParts } from './usefulParts';
@@ -31,9 +32,13 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
   // samples of which nothing is weighted or turned lie in the useful parts as they are
   const isPlain = overlapSamples === 0 && offset === null;
 
+  function slotOf(repeat: number, symbol: number): number {
+    return isAlike ? symbol : repeat * symbolCount + symbol;
+  }
+
   /** The useful part of symbol `symbol` of `repeat`; valid until the next call. */
   function usefulPart(repeat: number, symbol: number): Float64Array {
-    return parts.part(repeat, symbol, isAlike ? symbol : repeat * symbolCount + symbol);
+    return parts.part(repeat, symbol, slotOf(repeat, symbol));
   }
 
   let position = 0;
@@ -148,37 +153,48 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
   }
 
   let block: Float64Array | null = null;
-  let spanAt = 0;
+  // a span: samples that lie together in the engine's memory, from number spanFrom on of the row at spanRow
+  let spanRow = 0;
+  let spanFrom = 0;
 
-  /** Moves on by at most `most` samples that lie in a row in the engine's memory at spanAt; returns how many. */
-  function nextSpan(most: number): number {
+  /** Moves on by at most `most` samples that lie together in the engine's memory; returns how many. */
+  function nextSpan(work: SampleWork, most: number): number {
     if (!parts.enter()) useful = null;
-    if (!isPlain || symbol >= symbolCount) {
-      const { block: room } = onSamples!;
-      spanAt = room.byteOffset;
-      return read(most < BLOCK_SAMPLES ? room.subarray(0, 2 * most) : room);
+    if (symbol === symbolCount && repeat < repeats - 1 && layout.gapSamples === 0) {
+      repeat++;
+      symbol = 0;
     }
-    useful ??= usefulPart(repeat, symbol);
+    if (!isPlain || symbol === symbolCount) {
+      const { block: room } = work;
+      const count = read(most < BLOCK_SAMPLES ? room.subarray(0, 2 * most) : room);
+      spanRow = work.rowOfBlock(count);
+      spanFrom = 0;
+      return count;
+    }
+    spanRow = work.rowOfPart(repeat, symbol, slotOf(repeat, symbol));
     const prefix = prefixes[symbol]!;
     const from = position - repeat * repeatSamples - symbolStarts[symbol]!;
-    const start = from < prefix ? usefulSamples - prefix + from : from - prefix;
-    const count = Math.min(most, usefulSamples - start);
-    spanAt = useful.byteOffset + 16 * start;
+    spanFrom = from < prefix ? usefulSamples - prefix + from : from - prefix;
+    const count = Math.min(most, usefulSamples - spanFrom);
     position += count;
-    if (from >= prefix && start + count === usefulSamples) {
+    if (from >= prefix && spanFrom + count === usefulSamples) {
       useful = null;
       symbol++;
     }
     return count;
   }
 
-  /** Calls `visit` with up to `most` samples, a row at a time: where it lies, how many they are, how many came before. */
-  function eachSpan(most: number, visit: (at: number, count: number, done: number) => void): number {
+  /** Calls `visit` with up to `most` samples, a span at a time: its row, first sample in it, samples, samples before it. */
+  function eachSpan(
+    work: SampleWork,
+    most: number,
+    visit: (row: number, from: number, count: number, done: number) => void,
+  ): number {
     let done = 0;
     while (done < most) {
-      const count = nextSpan(most - done);
+      const count = nextSpan(work, most - done);
       if (count === 0) break;
-      visit(spanAt, count, done);
+      visit(spanRow, spanFrom, count, done);
       done += count;
     }
     if (position === samples) parts.rest();
@@ -189,7 +205,7 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
     if (onSamples !== null) {
       if (!parts.enter()) useful = null;
       onSamples.lend(collector);
-      const measured = eachSpan(most, onSamples.measure);
+      const measured = eachSpan(onSamples, most, onSamples.measure);
       onSamples.giveBack(collector);
       return measured;
     }
@@ -207,7 +223,9 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
       'No room for the words.',
     );
     if (onSamples !== null) {
-      return eachSpan(most, (from, count, done) => onSamples.write(writer, from, count, bytes, at + done * size));
+      return eachSpan(onSamples, most, (row, from, count, done) =>
+        onSamples.write(writer, row, from, count, bytes, at + done * size),
+      );
     }
     block ??= new Float64Array(2 * BLOCK_SAMPLES);
     let done = 0;
