@@ -6,6 +6,7 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { createInterface } from 'node:readline';
 import { build } from 'esbuild';
+import { measureBrushing } from '../tests/bench/brushing.mjs';
 
 const options = process.argv.slice(2);
 const valueOf = (name, other) => (options.includes(name) ? options[options.indexOf(name) + 1] : other);
@@ -116,7 +117,8 @@ try {
   }
   for (const peer of [engine, ...peers]) peer.close();
   const liveEdit = await measureLiveEdit();
-  console.log(JSON.stringify({ ratios, liveEdit }, null, isJson ? 0 : 2));
+  const brushing = await measureBrushing();
+  console.log(JSON.stringify({ ratios, liveEdit, brushing }, null, isJson ? 0 : 2));
 } finally {
   rmSync(directory, { recursive: true, force: true });
 }

@@ -42,6 +42,7 @@ export function SpectrumTrace({
   fftSize,
   spacingHz,
   widthPx,
+  gutterPx = 0,
   heightPx,
 }: {
   lines: readonly SpectrumLine[];
@@ -49,6 +50,8 @@ export function SpectrumTrace({
   fftSize: number;
   spacingHz: number;
   widthPx: number;
+  /** Room left of the plot for the dB; without it they stand in the plot. */
+  gutterPx?: number;
   heightPx: number;
 }) {
   const y = (db: number) => yOf(db, heightPx);
@@ -70,7 +73,7 @@ export function SpectrumTrace({
       width={widthPx}
       height={heightPx}
       aria-hidden
-      style={{ display: 'block', backgroundColor: color.plot.background }}
+      style={{ display: 'block', marginLeft: gutterPx, overflow: 'visible', backgroundColor: color.plot.background }}
     >
       {[10, 0, -10, -20, -30, -40, -50, -60].map((db) => (
         <g key={db}>
@@ -105,14 +108,12 @@ export function SpectrumTrace({
       {[0, -20, -40, -60].map((db) => (
         <text
           key={db}
-          x={4}
-          y={y(db) - 3}
+          {...(gutterPx > 0
+            ? { x: -5, y: y(db) + 4, textAnchor: 'end' as const }
+            : { x: 4, y: y(db) - 3, stroke: color.plot.background, strokeWidth: 3, paintOrder: 'stroke' })}
           fontSize={11}
           fontFamily={figureFace}
           fill={color.plot.axis}
-          stroke={color.plot.background}
-          strokeWidth={3}
-          paintOrder="stroke"
         >
           {db < 0 ? `−${-db}` : db}
         </text>

@@ -16,12 +16,15 @@ export function Straightedge({
   widthPx,
   fftSize,
   spacingHz,
+  gutterPx = 0,
   heightPx = 34,
 }: {
   band: Band;
   widthPx: number;
   fftSize: number;
   spacingHz: number;
+  /** Room left of the scale, for the names of its two edges. */
+  gutterPx?: number;
   heightPx?: number;
 }) {
   const span = { ...band, lengthPx: widthPx };
@@ -29,7 +32,7 @@ export function Straightedge({
   const lower = megahertzTicks(span, fftSize, spacingHz);
   return (
     <svg
-      width={widthPx}
+      width={widthPx + gutterPx}
       height={heightPx}
       aria-hidden
       style={{ display: 'block', backgroundColor: color.canvas.ruleEdge }}
@@ -37,18 +40,34 @@ export function Straightedge({
       <rect
         x={0.5}
         y={0.5}
-        width={Math.max(0, widthPx - 1)}
+        width={Math.max(0, widthPx + gutterPx - 1)}
         height={heightPx - 1}
         fill="none"
         stroke={color.rule.line}
       />
-      {upper.map((tick) => (
-        <Tick key={tick.value} tick={tick} edge={0} length={tick.label ? 6 : 3} textAt={16} widthPx={widthPx} />
-      ))}
-      {lower.map((tick) => (
-        <Tick key={tick.value} tick={tick} edge={heightPx} length={-6} textAt={heightPx - 8} widthPx={widthPx} />
-      ))}
+      {gutterPx > 0 ? (
+        <>
+          <EdgeName x={gutterPx - 5} y={16} name="k" />
+          <EdgeName x={gutterPx - 5} y={heightPx - 8} name="MHz" />
+        </>
+      ) : null}
+      <g transform={`translate(${gutterPx})`}>
+        {upper.map((tick) => (
+          <Tick key={tick.value} tick={tick} edge={0} length={tick.label ? 6 : 3} textAt={16} widthPx={widthPx} />
+        ))}
+        {lower.map((tick) => (
+          <Tick key={tick.value} tick={tick} edge={heightPx} length={-6} textAt={heightPx - 8} widthPx={widthPx} />
+        ))}
+      </g>
     </svg>
+  );
+}
+
+function EdgeName({ x, y, name }: { x: number; y: number; name: string }) {
+  return (
+    <text x={x} y={y} textAnchor="end" fontSize={11} fontFamily={figureFace} fill={color.canvas.ruleTick}>
+      {name}
+    </text>
   );
 }
 

@@ -50,3 +50,47 @@ export function toothPitch(row: Uint8Array, ink: number): number {
   }
   return least;
 }
+
+/** As `reduceRow`, from a row's runs [length, ink, …]: costs what the runs and the columns do, not the cells. For cells below a pixel. */
+export function reduceRuns(
+  runs: readonly number[],
+  firstPosition: number,
+  subcarrierPx: number,
+  priorities: readonly number[],
+  out: Int16Array,
+): void {
+  out.fill(-1);
+  const from = Math.max(0, Math.floor(firstPosition));
+  const to = Math.ceil(firstPosition + out.length / subcarrierPx);
+  let at = 0;
+  for (let i = 0; i < runs.length && at < to; i += 2) {
+    const end = at + runs[i]!;
+    if (end > from) {
+      const ink = runs[i + 1]!;
+      const priority = priorities[ink]!;
+      const first = Math.max(0, Math.floor((Math.max(at, from) - firstPosition) * subcarrierPx));
+      const last = Math.min(out.length - 1, Math.floor((end - 1 - firstPosition) * subcarrierPx));
+      for (let column = first; column <= last; column++) {
+        const held = out[column]!;
+        if (held < 0 || priority < priorities[held]! || (priority === priorities[held] && ink > held))
+          out[column] = ink;
+      }
+    }
+    at = end;
+  }
+}
+
+/** As `toothPitch` for every ink of a row at once, from its runs. */
+export function toothPitches(runs: readonly number[], inks: number): Float64Array {
+  const pitches = new Float64Array(inks).fill(Infinity);
+  const last = new Float64Array(inks).fill(-Infinity);
+  let at = 0;
+  for (let i = 0; i < runs.length; i += 2) {
+    const length = runs[i]!;
+    const ink = runs[i + 1]!;
+    pitches[ink] = Math.min(pitches[ink]!, at - last[ink]!, length > 1 ? 1 : Infinity);
+    at += length;
+    last[ink] = at - 1;
+  }
+  return pitches;
+}

@@ -69,17 +69,23 @@ export function gridPicture(content: WaveformContent, columns: number, rows: num
   const looks = createTable();
   const patterns = createTable();
 
-  const area = Array.from({ length: columns }, () => new Float64Array(styles.length));
+  // Areas by column and style, in cells · columns: whole numbers, so that no order of adding rounds.
+  const area = new Float64Array(columns * styles.length);
   const addRow = (runs: readonly number[], times: number) => {
-    let at = 0;
+    let from = 0;
+    let column = 0;
+    let columnEnd = fftSize;
     for (let i = 0; i < runs.length; i += 2) {
-      const end = at + runs[i]!;
+      const to = from + runs[i]! * columns;
       const style = styleOfInk[runs[i + 1]!] ?? 0;
-      const from = (at * columns) / fftSize;
-      const to = (end * columns) / fftSize;
-      for (let c = Math.floor(from); c < Math.min(columns, Math.ceil(to)); c++)
-        area[c]![style]! += times * (Math.min(to, c + 1) - Math.max(from, c));
-      at = end;
+      while (to > columnEnd) {
+        area[column * styles.length + style]! += times * (columnEnd - from);
+        from = columnEnd;
+        columnEnd += fftSize;
+        column++;
+      }
+      area[column * styles.length + style]! += times * (to - from);
+      from = to;
     }
   };
 
@@ -92,12 +98,11 @@ export function gridPicture(content: WaveformContent, columns: number, rows: num
       const row = grid.rowOfSymbol[l]!;
       uses.set(row, (uses.get(row) ?? 0) + 1);
     }
-    for (const column of area) column.fill(0);
+    area.fill(0);
     for (const [row, times] of uses) addRow(grid.rows[row]!, times);
     const runs: number[] = [];
-    for (const column of area) {
-      extendRuns(runs, looks.indexOf(quantize(column)));
-    }
+    for (let at = 0; at < area.length; at += styles.length)
+      extendRuns(runs, looks.indexOf(quantize(area.subarray(at, at + styles.length))));
     extendRuns(picture, patterns.indexOf(runs));
   }
   return { columns, rowCount, styles, looks: looks.entries, patterns: patterns.entries, rows: picture };

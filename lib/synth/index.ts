@@ -42,6 +42,9 @@ export type { EngineExports, SampleEngine } from './engine/types';
 export { createRamp } from './synthesize/ramp';
 export { createSymbolSynthesis } from './synthesize/symbolSynthesis';
 export { createSynthesis } from './synthesize/synthesis';
+export { addLevelParts, collectLevelParts, type LevelParts } from './synthesize/levelParts';
+export { stretchEnd } from './synthesize/stretches';
+export { repeatCopies, type RepeatCopies } from './synthesize/repeatCopies';
 export { createStatsCollector, interpolatedPeak, vectorStats } from './synthesize/vectorStats';
 export type {
   CellValues,
@@ -88,7 +91,15 @@ export {
   sampleCcdf,
   symbolCcdf,
 } from './measure/ccdf';
-export { createFrameMeasure, type FrameMeasure, type FrameMeasuring } from './measure/frameMeasure';
+export {
+  createFrameMeasure,
+  createFrameStretches,
+  createFrameSum,
+  type FrameMeasure,
+  type FrameMeasuring,
+  type FrameStretch,
+  type FrameStretches,
+} from './measure/frameMeasure';
 export { createWindow } from './measure/window';
 export {
   createWelch,
@@ -107,6 +118,7 @@ export {
   worstUnpaintedLine,
   type CellNotch,
   type CellPower,
+  type CellPowerSums,
   type UnpaintedLine,
 } from './measure/cells';
 export { decimateEnvelope, decimateMinMax } from './measure/decimate';
@@ -116,7 +128,14 @@ export {
   type PeakMeasuring,
   type SampleSource,
 } from './measure/reconstructedPeak';
-export { createEvmMeter, createTapEstimate, type EvmMeter, type EvmOptions, type TapEstimate } from './measure/evm';
+export {
+  createEvmMeter,
+  createTapEstimate,
+  type EvmMeter,
+  type EvmOptions,
+  type EvmSums,
+  type TapEstimate,
+} from './measure/evm';
 export { createDemodulator, type Demodulator, type FoundSymbol } from './receive/demodulate';
 
 // fit and level card

@@ -15,9 +15,11 @@ export interface SpawnedServer {
 
 const running = new Set<ChildProcess>();
 
-/** The bundled server as a process of its own, on a free port. */
-export function spawnServer(env: Record<string, string>): SpawnedServer {
-  const process_ = spawn(process.execPath, [path.join(rootDir, 'build/server.mjs')], {
+/** The bundled server as a process of its own, on a free port; `before` is what a shell does first, such as a limit. */
+export function spawnServer(env: Record<string, string>, before = ''): SpawnedServer {
+  const command = [process.execPath, path.join(rootDir, 'build/server.mjs')];
+  const [program, ...args] = before === '' ? command : ['bash', '-c', `${before}; exec "$@"`, 'bash', ...command];
+  const process_ = spawn(program!, args, {
     cwd: rootDir,
     env: { PATH: process.env.PATH ?? '', PORT: '0', ...env },
     stdio: ['ignore', 'pipe', 'pipe'],

@@ -108,11 +108,54 @@ function findPeak(state: usize, row: usize, from: u32, end: u32, first: f64): vo
   return max(f64x2.extract_lane(most, 0), f64x2.extract_lane(most, 1));
 }
 
+/** What a largest power in samples from…end−1 of a row, the first of them number `first`, says about peak and components. */
+@inline function noteLargest(state: usize, row: usize, from: u32, end: u32, first: f64, largest: f64): void {
+  const component = min(load<f64>(state, COMPONENTS), load<f64>(state, COMPONENTS + 8));
+  if (largest >= component * component) findComponents(state, row, from, end);
+  if (largest > load<f64>(state, PEAK)) findPeak(state, row, from, end, first);
+}
+
+/** Whole parts of 128 samples each, none being open; the first is sample number `first`. */
+@inline function measureParts(state: usize, row: usize, from: u32, end: u32, first: f64, isOdd: bool): void {
+  for (; from < end; from += PART, first += <f64>PART) {
+    let powerA = f64x2.splat(0), powerB = f64x2.splat(0), dcRe = f64x2.splat(0), dcIm = f64x2.splat(0);
+    let most = f64x2.splat(0);
+    const start = row + ((<usize>(from >> 1)) << 5);
+    for (let at = start; at < start + ((<usize>PART) << 4); at += 64) {
+      const re = reals(at, isOdd), im = imaginaries(at, isOdd);
+      const nextRe = reals(at + 32, isOdd), nextIm = imaginaries(at + 32, isOdd);
+      const square = f64x2.add(f64x2.mul(re, re), f64x2.mul(im, im));
+      const nextSquare = f64x2.add(f64x2.mul(nextRe, nextRe), f64x2.mul(nextIm, nextIm));
+      powerA = f64x2.add(powerA, square);
+      powerB = f64x2.add(powerB, nextSquare);
+      most = f64x2.pmax(most, f64x2.pmax(square, nextSquare));
+      dcRe = f64x2.add(f64x2.add(dcRe, re), nextRe);
+      dcIm = f64x2.add(f64x2.add(dcIm, im), nextIm);
+    }
+    const sumA = f64x2.extract_lane(powerA, 0) + f64x2.extract_lane(powerA, 1);
+    const sumB = f64x2.extract_lane(powerB, 0) + f64x2.extract_lane(powerB, 1);
+    addTo(state + SUMS, sumA + sumB);
+    addTo(state + SUMS + 16, f64x2.extract_lane(dcRe, 0) + f64x2.extract_lane(dcRe, 1));
+    addTo(state + SUMS + 32, f64x2.extract_lane(dcIm, 0) + f64x2.extract_lane(dcIm, 1));
+    const largest = max(f64x2.extract_lane(most, 0), f64x2.extract_lane(most, 1));
+    noteLargest(state, row, from, from + PART, first, largest);
+  }
+}
+
 /** Adds samples from…from+count−1 of a row to the levels. */
 export function measure(state: usize, row: usize, from: u32, count: u32): void {
   let inPart = <u32>load<f64>(state, IN_PART);
   let samples = load<f64>(state, SAMPLES);
   while (count > 0) {
+    if (inPart == 0 && count >= PART) {
+      const end = from + (count & ~(PART - 1));
+      if (from & 1) measureParts(state, row, from, end, samples, true);
+      else measureParts(state, row, from, end, samples, false);
+      samples += <f64>(end - from);
+      count -= end - from;
+      from = end;
+      continue;
+    }
     const part = min(count, PART - inPart);
     const end = from + part;
     let i = from;
@@ -126,9 +169,7 @@ export function measure(state: usize, row: usize, from: u32, count: u32): void {
       inPart += fours << 2;
     }
     for (; i < end; i++) largest = max(largest, measureOne(state, placeOf(row, i), inPart++));
-    const component = min(load<f64>(state, COMPONENTS), load<f64>(state, COMPONENTS + 8));
-    if (largest >= component * component) findComponents(state, row, from, end);
-    if (largest > load<f64>(state, PEAK)) findPeak(state, row, from, end, samples);
+    noteLargest(state, row, from, end, samples, largest);
     samples += <f64>part;
     count -= part;
     from = end;

@@ -28,43 +28,39 @@
   }
 }
 
-/** Two groups of the first pass. `hasOuter`: inputs 0 and 3 may be other than zero, each by itself; `hasInner`: 1 and 2. */
+/** Two groups of the first pass; has…: that input may be other than zero. */
 @inline function firstPair(
-  x: usize, hop: usize, y: usize, table: usize, hasA: bool, hasD: bool, hasInner: bool,
+  x: usize, hop: usize, y: usize, table: usize, hasA: bool, hasB: bool, hasC: bool, hasD: bool,
 ): void {
   const zero = f64x2.splat(0);
-  let aRe = zero, aIm = zero, dRe = zero, dIm = zero;
+  let aRe = zero, aIm = zero, bRe = zero, bIm = zero, cRe = zero, cIm = zero, dRe = zero, dIm = zero;
   if (hasA) {
     const a0 = v128.load(x), a1 = v128.load(x, 16);
     aRe = lows(a0, a1);
     aIm = highs(a0, a1);
+  }
+  if (hasB) {
+    const b0 = v128.load(x + hop), b1 = v128.load(x + hop, 16);
+    bRe = lows(b0, b1);
+    bIm = highs(b0, b1);
+  }
+  if (hasC) {
+    const c0 = v128.load(x + 2 * hop), c1 = v128.load(x + 2 * hop, 16);
+    cRe = lows(c0, c1);
+    cIm = highs(c0, c1);
   }
   if (hasD) {
     const d0 = v128.load(x + 3 * hop), d1 = v128.load(x + 3 * hop, 16);
     dRe = lows(d0, d1);
     dIm = highs(d0, d1);
   }
-  let evenRe = aRe, evenIm = aIm, lessRe = aRe, lessIm = aIm, oddRe = dRe, oddIm = dIm;
-  let oddLessRe = zero, oddLessIm = zero;
-  if (hasInner) {
-    const b0 = v128.load(x + hop), b1 = v128.load(x + hop, 16);
-    const c0 = v128.load(x + 2 * hop), c1 = v128.load(x + 2 * hop, 16);
-    const bRe = lows(b0, b1), bIm = highs(b0, b1), cRe = lows(c0, c1), cIm = highs(c0, c1);
-    evenRe = add(aRe, cRe);
-    evenIm = add(aIm, cIm);
-    lessRe = sub(aRe, cRe);
-    lessIm = sub(aIm, cIm);
-    oddRe = add(bRe, dRe);
-    oddIm = add(bIm, dIm);
-    oddLessRe = sub(bRe, dRe);
-    oddLessIm = sub(bIm, dIm);
-  } else if (hasD) {
-    oddLessRe = sub(zero, dRe);
-    oddLessIm = sub(zero, dIm);
-  }
+  const evenRe = hasC ? add(aRe, cRe) : aRe, evenIm = hasC ? add(aIm, cIm) : aIm;
+  const lessRe = hasC ? sub(aRe, cRe) : aRe, lessIm = hasC ? sub(aIm, cIm) : aIm;
   let zeroRe = evenRe, zeroIm = evenIm, oneRe = lessRe, oneIm = lessIm;
   let twoRe = evenRe, twoIm = evenIm, threeRe = lessRe, threeIm = lessIm;
-  if (hasD || hasInner) {
+  if (hasB || hasD) {
+    const oddRe = hasB ? add(bRe, dRe) : dRe, oddIm = hasB ? add(bIm, dIm) : dIm;
+    const oddLessRe = sub(bRe, dRe), oddLessIm = sub(bIm, dIm);
     zeroRe = add(evenRe, oddRe);
     zeroIm = add(evenIm, oddIm);
     oneRe = sub(lessRe, oddLessIm);
@@ -97,7 +93,7 @@
 function firstFull(x: usize, y: usize, size: usize, table: usize): void {
   const hop = size << 2; // a quarter of the numbers, 16 bytes each
   const end = x + hop;
-  for (; x < end; x += 32, y += 128, table += 96) firstPair(x, hop, y, table, true, true, true);
+  for (; x < end; x += 32, y += 128, table += 96) firstPair(x, hop, y, table, true, true, true, true);
 }
 
 /** The first pass where only inputs 0…low−1 and size−high…size−1 can be other than zero, both at most a quarter. */
@@ -109,16 +105,16 @@ function firstOuter(x: usize, y: usize, size: usize, table: usize, low: usize, h
   const highStart = start + (((quarter - high) & ~1) << 4);
   const first = min(lowEnd, highStart);
   const second = max(lowEnd, highStart);
-  for (; x < first; x += 32, y += 128, table += 96) firstPair(x, hop, y, table, true, false, false);
+  for (; x < first; x += 32, y += 128, table += 96) firstPair(x, hop, y, table, true, false, false, false);
   if (lowEnd < highStart) {
     const bytes = (second - x) << 2;
     memory.fill(y, 0, bytes);
     y += bytes;
     table += (bytes >> 7) * 96;
     x = second;
-  } else for (; x < second; x += 32, y += 128, table += 96) firstPair(x, hop, y, table, true, true, false);
+  } else for (; x < second; x += 32, y += 128, table += 96) firstPair(x, hop, y, table, true, false, false, true);
   for (const end = start + hop; x < end; x += 32, y += 128, table += 96) {
-    firstPair(x, hop, y, table, false, true, false);
+    firstPair(x, hop, y, table, false, false, false, true);
   }
 }
 
@@ -128,13 +124,14 @@ function firstMost(x: usize, y: usize, size: usize, table: usize, low: usize, hi
   const quarter = size >> 2;
   const start = x;
   const end = start + hop;
-  const outerStart = start + (((low - quarter + 1) & ~1) << 4);
-  const outerEnd = start + (((2 * quarter - high) & ~1) << 4);
-  for (const to = min(end, outerStart); x < to; x += 32, y += 128, table += 96) {
-    firstPair(x, hop, y, table, true, true, true);
+  const lowEnd = start + (((low - quarter + 1) & ~1) << 4);
+  const highStart = start + (((2 * quarter - high) & ~1) << 4);
+  for (const to = min(lowEnd, highStart); x < to; x += 32, y += 128, table += 96) {
+    firstPair(x, hop, y, table, true, true, false, true);
   }
-  for (; x < outerEnd; x += 32, y += 128, table += 96) firstPair(x, hop, y, table, true, true, false);
-  for (; x < end; x += 32, y += 128, table += 96) firstPair(x, hop, y, table, true, true, true);
+  for (; x < lowEnd; x += 32, y += 128, table += 96) firstPair(x, hop, y, table, true, true, true, true);
+  for (; x < highStart; x += 32, y += 128, table += 96) firstPair(x, hop, y, table, true, false, false, true);
+  for (; x < end; x += 32, y += 128, table += 96) firstPair(x, hop, y, table, true, false, true, true);
 }
 
 /**
@@ -334,8 +331,9 @@ function last5(x: usize, y: usize, hop: usize, constants: usize): void {
 }
 
 /**
- * to[n] = Σ from[k] e^{+j2πkn/size}, not scaled; from interleaved, to in pairs. Bins low…size−high−1 must be zero; they are
- * skipped where both others fill at most a quarter each. Size: a multiple of 8 with at least two passes.
+ * to[n] = Σ from[k] e^{+j2πkn/size}, not scaled; from interleaved, to in pairs. Bins low…size−high−1 count as zero, whatever
+ * stands there, and may be written over; they are skipped where the others fill at most a quarter, or at least a quarter and at
+ * most a half, at either end. Size: a multiple of 8 with at least two passes.
  */
 export function transform(plan: usize, from: usize, to: usize, low: usize, high: usize): void {
   const passes = load<i32>(plan);
@@ -345,9 +343,18 @@ export function transform(plan: usize, from: usize, to: usize, low: usize, high:
   const constants = plan + 16;
   let pass = plan + PASSES;
   const quarter = size >> 2;
+  if (low + high < size) {
+    // a pass that skips looks at pairs, so at one bin more
+    v128.store(from + (low << 4), f64x2.splat(0));
+    v128.store(from + ((size - high - 1) << 4), f64x2.splat(0));
+  }
   if (low <= quarter && high <= quarter) firstOuter(from, scratch, size, <usize>load<u32>(pass, 12), low, high);
-  else if (low >= quarter && high >= quarter) firstMost(from, scratch, size, <usize>load<u32>(pass, 12), low, high);
-  else firstFull(from, scratch, size, <usize>load<u32>(pass, 12));
+  else if (min(low, high) >= quarter && max(low, high) <= 2 * quarter) {
+    firstMost(from, scratch, size, <usize>load<u32>(pass, 12), low, high);
+  } else {
+    if (low + high < size) memory.fill(from + (low << 4), 0, (size - low - high) << 4);
+    firstFull(from, scratch, size, <usize>load<u32>(pass, 12));
+  }
   let x = scratch;
   let y = other;
   for (let i = 1; i < passes; i++) {

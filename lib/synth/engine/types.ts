@@ -36,6 +36,11 @@ export interface EngineRoom {
   readonly start: number;
   /** Grows with each new tenant: another number than before says that nothing of the tenant's is left in it. */
   readonly tenancy: number;
+  /**
+   * Size of the transform whose plan (with its scratch room) lies at `start` as createTransformPlan lays it, 0 for none: it outlives its
+   * tenant. Who lays another one, or anything else there, says so here.
+   */
+  planSize: number;
 }
 
 /**

@@ -26,6 +26,20 @@ export interface CellPower {
   worstUnpainted(): UnpaintedLine | null;
   /** Mean |Y|² per position over what was added; owned by the caller. */
   linePower(): Float64Array;
+  /** All that was added so far, to be put into another one of the same content; owned by this one. */
+  readonly sums: CellPowerSums;
+  /** Adds what another one of the same content found, `times` as if it had been found so often. */
+  take(sums: CellPowerSums, times?: number): void;
+}
+
+/** The running sums, as plain numbers: a thread can hand them to another. */
+export interface CellPowerSums {
+  lines: Float64Array;
+  nullPower: Float64Array;
+  nullCells: Float64Array;
+  usedPower: number;
+  usedCells: number;
+  added: number;
 }
 
 /**
@@ -82,6 +96,19 @@ export function createCellPower(content: WaveformContent, cells: Uint8Array): Ce
     },
     worstUnpainted: () => worstUnpaintedLine(lines, isPainted),
     linePower: () => lines.map((value) => (added === 0 ? 0 : value / added)),
+    get sums(): CellPowerSums {
+      return { lines, nullPower, nullCells, usedPower, usedCells, added };
+    },
+    take(sums, times = 1) {
+      for (let p = 0; p < fftSize; p++) lines[p] = lines[p]! + times * sums.lines[p]!;
+      for (let l = 0; l < symbolCount; l++) {
+        nullPower[l] = nullPower[l]! + times * sums.nullPower[l]!;
+        nullCells[l] = nullCells[l]! + times * sums.nullCells[l]!;
+      }
+      usedPower += times * sums.usedPower;
+      usedCells += times * sums.usedCells;
+      added += times * sums.added;
+    },
   };
 }
 

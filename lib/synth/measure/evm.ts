@@ -27,7 +27,17 @@ export interface EvmMeter {
   add(symbol: number, row: Uint8Array, found: Float64Array, meant: Float64Array): void;
   /** Tells that a frame is complete (for the recipe alone). */
   endFrame(): void;
+  /** All that was added so far, to be put into another meter of the same options; owned by the meter. */
+  readonly sums: EvmSums;
+  /** Adds what another meter of the same options found, `times` as if it had been found so often. */
+  take(sums: EvmSums, times?: number): void;
   report(): EvmReport;
+}
+
+/** The running sums of a meter, as plain numbers: a thread can hand them to another. */
+export interface EvmSums {
+  groups: [all: Float64Array, byInk: Float64Array, bySymbol: Float64Array, bySubcarrier: Float64Array];
+  frames: number;
 }
 
 /** Below this normalised correlation no EVM is told: what was found does not look like what was meant. */
@@ -94,6 +104,16 @@ export function createEvmMeter(options: EvmOptions): EvmMeter {
     },
     endFrame() {
       frames++;
+    },
+    get sums(): EvmSums {
+      return { groups: [all, byInk, bySymbol, bySubcarrier], frames };
+    },
+    take(sums, times = 1) {
+      [all, byInk, bySymbol, bySubcarrier].forEach((own, group) => {
+        const more = sums.groups[group]!;
+        for (let i = 0; i < own.length; i++) own[i] = own[i]! + times * more[i]!;
+      });
+      frames += times * sums.frames;
     },
     report() {
       const meantAll = all[3]!;

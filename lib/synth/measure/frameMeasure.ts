@@ -1,10 +1,12 @@
 import { log10 } from '../math/exponential';
-import { interpolationOf } from '../synthesize/layout';
+import { createCellValues } from '../synthesize/cellValues';
+import { frameLayout, interpolationOf } from '../synthesize/layout';
 import { createSynthesis } from '../synthesize/synthesis';
-import type { RenderOptions } from '../synthesize/types';
+import { stretchEnd } from '../synthesize/stretches';
+import type { FrameLayout, RenderOptions } from '../synthesize/types';
 import type { WaveformContent } from '../types';
 import { ccdfThresholds, sampleCcdf } from './ccdf';
-import { binOfPower, createHistogram } from './histogram';
+import { binOfPower, createHistogram, POWER_BINS } from './histogram';
 import { framePower, outstandingSymbols } from './tally';
 import type { CcdfCurve, FramePower, PowerHistogram } from './types';
 
@@ -39,6 +41,8 @@ export interface FrameMeasuring {
 }
 
 const BLOCK_SAMPLES = 32768;
+/** Numbers that a closed span takes in a stretch. */
+const SPAN_NUMBERS = 6;
 
 /** One compensated sum (Neumaier) as plain numbers, for loops that may not call. */
 interface Running {
@@ -46,52 +50,115 @@ interface Running {
   low: number;
 }
 
-/**
- * Measures PAPR, both CCDFs and the levels of a document on the interpolated waveform, block by block in order, in little memory.
- * `cells` (L·N inks) replaces the document's grid. Where all repeats have the same values, the first, one between and the last are
- * measured and the one between counted for the rest.
- */
-export function createFrameMeasure(
-  content: WaveformContent,
-  options: Pick<RenderOptions, 'cells' | 'engine'> = {},
-): FrameMeasuring {
+function add(into: Running, value: number): void {
+  const next = into.high + value;
+  into.low += Math.abs(into.high) >= Math.abs(value) ? into.high - next + value : value - next + into.high;
+  into.high = next;
+}
+
+type FrameOptions = Pick<RenderOptions, 'cells' | 'engine' | 'keepBytes'>;
+
+/** What is rendered for a frame's measure. */
+interface FramePlan {
+  interpolation: number;
+  /** No frequency offset, since it changes no |x|²; three repeats where all are alike. */
+  content: WaveformContent;
+  /** How often the repeat between first and last counts. */
+  weightOfMiddle: number;
+}
+
+function planFrame(content: WaveformContent, options: FrameOptions): FramePlan {
   const interpolation = interpolationOf(content.oversampling);
-  const repeats = content.timing.repeats;
-  const render = (times: number) =>
-    createSynthesis(
-      { ...content, frequencyOffsetHz: 0, timing: { ...content.timing, repeats: times } },
-      { ...options, oversampling: interpolation },
-    );
-  let synthesis = render(repeats);
-  const wholeSamples = synthesis.samples;
-  if (repeats > 3 && synthesis.values.isRepeatAlike) synthesis = render(3);
+  const { repeats } = content.timing;
+  const still = (times: number): WaveformContent => ({
+    ...content,
+    frequencyOffsetHz: 0,
+    timing: { ...content.timing, repeats: times },
+  });
+  const isShort = repeats > 3 && createCellValues(content, options.cells).isRepeatAlike;
+  return {
+    interpolation,
+    content: still(isShort ? 3 : repeats),
+    weightOfMiddle: isShort ? repeats - 2 : 1,
+  };
+}
+
+/** What a stretch of the interpolated waveform adds to the measure. Plain numbers, so that a thread can hand it to another. */
+export interface FrameStretch {
+  /**
+   * Spans that end in the stretch, in order, six numbers each: slot (repeat · L + symbol; −1 for a suffix behind the last symbol), how
+   * often it counts, Σ|x|² over all of it, its samples, Σ|x|² and the largest |x|² of the useful part.
+   */
+  spans: Float64Array;
+  /** Samples by |x|², as often as they count. */
+  counts: Float64Array;
+  counted: number;
+  /** The largest |x|², and where it stands first. */
+  peakPower: number;
+  peakSlot: number;
+  peakAt: number;
+}
+
+/** Measures stretches of a document's interpolated waveform, in any order. */
+export interface FrameStretches {
+  /** Samples that have to be measured: those of the whole file, or of three of its repeats. */
+  readonly samples: number;
+  /** Where a stretch from `from` of about `most` samples ends. */
+  endOf(from: number, most: number): number;
+  /** Samples from…end−1; both are 0, `samples` or what endOf gave. */
+  measure(from: number, end: number): FrameStretch;
+}
+
+/** Stretches of a document's measure; together, in order, they make createFrameSum's figures whatever the cuts. */
+export function createFrameStretches(content: WaveformContent, options: FrameOptions = {}): FrameStretches {
+  const plan = planFrame(content, options);
+  const synthesis = createSynthesis(plan.content, { ...options, oversampling: plan.interpolation });
   const { layout } = synthesis;
-  const weightOfMiddle = repeats - layout.repeats + 1;
-
-  const symbols = layout.symbolCount;
-  const thresholds = ccdfThresholds();
-  const above = new Float64Array(thresholds.length);
-  let symbolsCounted = 0;
-  const symbolPaprDb = new Float64Array(symbols).fill(NaN);
-  const symbolPeakPower = new Float64Array(symbols);
-  const histogram = createHistogram();
-  const sums = { sum: 0, samples: 0, activeSum: 0, activeSamples: 0, peakPower: 0, peakSlot: 0, peakAt: 0 };
-  const total: Running = { high: 0, low: 0 };
-  const active: Running = { high: 0, low: 0 };
-  const span: Running = { high: 0, low: 0 };
-  const useful: Running = { high: 0, low: 0 };
-
   const block = new Float64Array(2 * Math.min(BLOCK_SAMPLES, Math.max(1, layout.samples)));
-  const totalSteps = Math.ceil(layout.samples / (block.length / 2));
-  let doneSteps = 0;
-  let position = 0;
-  let repeat = 0;
-  // Segments of a repeat in order: for each symbol its prefix and its useful part, then the last suffix, then silence.
-  let segment = 0;
+  return {
+    samples: layout.samples,
+    endOf: (from, most) => stretchEnd(layout, from, most),
+    measure(from, end) {
+      const meter = createStretchMeter(layout, plan, from);
+      if (synthesis.position !== from) synthesis.seek(from);
+      for (let at = from; at < end;) {
+        const count = synthesis.read(end - at < block.length / 2 ? block.subarray(0, 2 * (end - at)) : block);
+        meter.take(block, count);
+        at += count;
+      }
+      return meter.stretch();
+    },
+  };
+}
+
+function createStretchMeter(layout: FrameLayout, { content, weightOfMiddle }: FramePlan, from: number) {
+  const symbols = layout.symbolCount;
+  const { counts } = createHistogram();
+  const spans: number[] = [];
+  const stretch = { counted: 0, peakPower: 0, peakSlot: 0, peakAt: 0 };
+  const isWeighted = weightOfMiddle !== 1;
+  const before: Running = { high: 0, low: 0 };
+  const useful: Running = { high: 0, low: 0 };
   let usefulPeak = 0;
   let spanSamples = 0;
+  let position = from;
+  let repeat = Math.min(layout.repeats - 1, Math.floor(from / layout.repeatSamples));
+  // Segments of a repeat in order: for each symbol its prefix and its useful part, then the last suffix, then silence.
+  let segment = segmentAt(from - repeat * layout.repeatSamples);
 
-  const weight = (): number => (layout.repeats === 3 && repeat === 1 ? weightOfMiddle : 1);
+  /** A stretch begins with a symbol or in the silence. */
+  function segmentAt(inRepeat: number): number {
+    if (inRepeat >= layout.frameSamples) return 2 * symbols + 1;
+    let symbol = 0;
+    for (let end = symbols; end - symbol > 1;) {
+      const middle = (symbol + end) >> 1;
+      if (layout.symbolStarts[middle]! <= inRepeat) symbol = middle;
+      else end = middle;
+    }
+    return 2 * symbol;
+  }
+
+  const weight = (): number => (isWeighted && repeat === 1 ? weightOfMiddle : 1);
   const segmentEnd = (): number => {
     const origin = repeat * layout.repeatSamples;
     if (segment < 2 * symbols) {
@@ -104,84 +171,54 @@ export function createFrameMeasure(
     return last ? layout.samples : origin + layout.repeatSamples;
   };
 
-  function add(into: Running, value: number): void {
-    const next = into.high + value;
-    into.low += Math.abs(into.high) >= Math.abs(value) ? into.high - next + value : value - next + into.high;
-    into.high = next;
-  }
-
-  function closeSymbol(symbol: number): void {
-    const times = weight();
+  function closeSpan(slot: number): void {
     const energy = useful.high + useful.low;
-    const whole = span.high + span.low;
-    add(total, times * whole);
-    sums.samples += times * spanSamples;
-    if (energy > 0) {
-      add(active, times * whole);
-      sums.activeSamples += times * spanSamples;
-      const papr = 10 * log10((usefulPeak * layout.usefulSamples) / energy);
-      if (!(papr <= symbolPaprDb[symbol]!)) symbolPaprDb[symbol] = papr;
-      if (usefulPeak > symbolPeakPower[symbol]!) symbolPeakPower[symbol] = usefulPeak;
-      for (let i = 0; i < thresholds.length && papr > thresholds[i]!; i++) above[i] = above[i]! + times;
-      symbolsCounted += times;
-    }
-    span.high = span.low = useful.high = useful.low = usefulPeak = spanSamples = 0;
+    add(before, useful.high);
+    add(before, useful.low);
+    spans.push(slot, weight(), before.high + before.low, spanSamples, energy, usefulPeak);
+    before.high = before.low = useful.high = useful.low = usefulPeak = spanSamples = 0;
   }
 
-  /** Samples from…to−1 of the block, all in one segment. */
-  function take(from: number, to: number): void {
-    if (segment > 2 * symbols) return;
-    const isUseful = segment < 2 * symbols && segment % 2 === 1;
+  /** Where the largest power in the file so far, block[i], stands. */
+  function notePeak(power: number, i: number): void {
+    const symbol = Math.min(segment >> 1, symbols - 1);
+    stretch.peakPower = power;
+    stretch.peakSlot = (isWeighted && repeat === 2 ? content.timing.repeats - 1 : repeat) * symbols + symbol;
+    stretch.peakAt = position + i - repeat * layout.repeatSamples - layout.symbolStarts[symbol]!;
+  }
+
+  /** Samples at…end−1 of the block, all in one segment, to one of the sums. */
+  function sumUp(block: Float64Array, at: number, end: number, into: Running): void {
     const times = weight();
-    const { counts } = histogram;
-    let { high, low } = span;
-    let usefulHigh = useful.high;
-    let usefulLow = useful.low;
-    let peak = sums.peakPower;
-    for (let i = from; i < to; i++) {
+    let { high, low } = into;
+    let peak = 0;
+    let peakAt = at;
+    for (let i = at; i < end; i++) {
       const re = block[2 * i]!;
       const im = block[2 * i + 1]!;
       const power = re * re + im * im;
       const next = high + power;
       low += high >= power ? high - next + power : power - next + high;
       high = next;
-      if (isUseful) {
-        const more = usefulHigh + power;
-        usefulLow += usefulHigh >= power ? usefulHigh - more + power : power - more + usefulHigh;
-        usefulHigh = more;
-        if (power > usefulPeak) usefulPeak = power;
-      }
       if (power > peak) {
         peak = power;
-        const symbol = Math.min(segment >> 1, symbols - 1);
-        const inRepeat = position + i - repeat * layout.repeatSamples;
-        sums.peakSlot = (repeat === 2 && layout.repeats === 3 ? repeats - 1 : repeat) * symbols + symbol;
-        sums.peakAt = inRepeat - layout.symbolStarts[symbol]!;
+        peakAt = i;
       }
       const bin = binOfPower(power);
       counts[bin] = counts[bin]! + times;
     }
-    histogram.total += times * (to - from);
-    span.high = high;
-    span.low = low;
-    useful.high = usefulHigh;
-    useful.low = usefulLow;
-    sums.peakPower = peak;
-    spanSamples += to - from;
+    into.high = high;
+    into.low = low;
+    if (into === useful && peak > usefulPeak) usefulPeak = peak;
+    if (peak > stretch.peakPower) notePeak(peak, peakAt);
+    stretch.counted += times * (end - at);
+    spanSamples += end - at;
   }
 
-  /** Goes on to the next segment once the file has reached this one's end. */
+  /** Goes on to the next segment once the stretch has reached this one's end. */
   function leaveSegment(): void {
-    if (segment < 2 * symbols && segment % 2 === 1) closeSymbol(segment >> 1);
-    if (segment === 2 * symbols) {
-      // the last suffix belongs to the frame's mean, not to a symbol
-      const whole = span.high + span.low;
-      add(total, weight() * whole);
-      add(active, weight() * whole);
-      sums.samples += weight() * spanSamples;
-      sums.activeSamples += weight() * spanSamples;
-      span.high = span.low = spanSamples = 0;
-    }
+    if (segment < 2 * symbols && segment % 2 === 1) closeSpan(repeat * symbols + (segment >> 1));
+    if (segment === 2 * symbols) closeSpan(-1);
     segment++;
     if (segment > 2 * symbols + 1) {
       segment = 0;
@@ -190,24 +227,68 @@ export function createFrameMeasure(
   }
 
   return {
-    totalSteps,
-    get doneSteps() {
-      return doneSteps;
-    },
-    step() {
-      const count = synthesis.read(block);
-      if (count === 0) return false;
+    take(block: Float64Array, count: number): void {
       let at = 0;
       while (repeat < layout.repeats) {
         const end = Math.min(count, segmentEnd() - position);
-        take(at, end);
+        const isUseful = segment < 2 * symbols && segment % 2 === 1;
+        if (segment <= 2 * symbols) sumUp(block, at, end, isUseful ? useful : before);
         at = end;
         if (position + at < segmentEnd()) break;
         leaveSegment();
       }
       position += count;
-      doneSteps++;
-      return position < layout.samples;
+    },
+    stretch: (): FrameStretch => ({ ...stretch, spans: Float64Array.from(spans), counts }),
+  };
+}
+
+/** Stretches to figures. */
+export interface FrameSum {
+  /** The next stretch of the waveform, in order. */
+  add(stretch: FrameStretch): void;
+  result(): FrameMeasure;
+}
+
+/** The figures of a document from the stretches that createFrameStretches measures. */
+export function createFrameSum(content: WaveformContent): FrameSum {
+  const interpolation = interpolationOf(content.oversampling);
+  const wholeSamples = frameLayout(content, interpolation).samples;
+  const symbols = content.symbolCount;
+  const thresholds = ccdfThresholds();
+  const usefulSamples = content.fftSize * interpolation;
+  const above = new Float64Array(thresholds.length);
+  let symbolsCounted = 0;
+  const symbolPaprDb = new Float64Array(symbols).fill(NaN);
+  const symbolPeakPower = new Float64Array(symbols);
+  const histogram = createHistogram();
+  const sums = { sum: 0, samples: 0, activeSum: 0, activeSamples: 0, peakPower: 0, peakSlot: 0, peakAt: 0 };
+  const total: Running = { high: 0, low: 0 };
+  const active: Running = { high: 0, low: 0 };
+
+  function addSymbol(symbol: number, times: number, energy: number, usefulPeak: number): void {
+    const papr = 10 * log10((usefulPeak * usefulSamples) / energy);
+    if (!(papr <= symbolPaprDb[symbol]!)) symbolPaprDb[symbol] = papr;
+    if (usefulPeak > symbolPeakPower[symbol]!) symbolPeakPower[symbol] = usefulPeak;
+    for (let i = 0; i < thresholds.length && papr > thresholds[i]!; i++) above[i] = above[i]! + times;
+    symbolsCounted += times;
+  }
+
+  return {
+    add({ spans, counts, counted, peakPower, peakSlot, peakAt }) {
+      for (let at = 0; at < spans.length; at += SPAN_NUMBERS) {
+        const [slot, times, whole, samples, energy, usefulPeak] = spans.subarray(at, at + SPAN_NUMBERS);
+        add(total, times! * whole!);
+        sums.samples += times! * samples!;
+        // the last suffix belongs to the frame's mean, not to a symbol
+        if (slot! >= 0 && energy === 0) continue;
+        add(active, times! * whole!);
+        sums.activeSamples += times! * samples!;
+        if (slot! >= 0) addSymbol(slot! % symbols, times!, energy!, usefulPeak!);
+      }
+      for (let bin = 0; bin < POWER_BINS; bin++) histogram.counts[bin] = histogram.counts[bin]! + counts[bin]!;
+      histogram.total += counted;
+      if (peakPower > sums.peakPower) Object.assign(sums, { peakPower, peakSlot, peakAt });
     },
     result() {
       sums.sum = total.high + total.low;
@@ -228,5 +309,31 @@ export function createFrameMeasure(
         outstanding: outstandingSymbols(symbolPeakPower),
       };
     },
+  };
+}
+
+/**
+ * Measures PAPR, both CCDFs and the levels of a document on the interpolated waveform, block by block in order, in little memory.
+ * `cells` (L·N inks) replaces the document's grid. Where all repeats have the same values, the first, one between and the last are
+ * measured and the one between counted for the rest.
+ */
+export function createFrameMeasure(content: WaveformContent, options: FrameOptions = {}): FrameMeasuring {
+  const stretches = createFrameStretches(content, options);
+  const sum = createFrameSum(content);
+  const totalSteps = Math.ceil(stretches.samples / BLOCK_SAMPLES);
+  let position = 0;
+  return {
+    totalSteps,
+    get doneSteps() {
+      return Math.floor((totalSteps * position) / stretches.samples);
+    },
+    step() {
+      if (position === stretches.samples) return false;
+      const end = stretches.endOf(position, BLOCK_SAMPLES);
+      sum.add(stretches.measure(position, end));
+      position = end;
+      return position < stretches.samples;
+    },
+    result: sum.result,
   };
 }

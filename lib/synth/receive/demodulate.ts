@@ -10,6 +10,11 @@ export type FoundSymbol = (repeat: number, symbol: number, values: Float64Array)
 export interface Demodulator {
   /** The next `count` samples (interleaved; the whole array by default), normalised so that a 0 dB cell has |a|² = 1. Not kept. */
   push(samples: Float64Array, count?: number): void;
+  /**
+   * The next sample pushed is the file's sample `first`: symbols whose useful part begins there or later are found. Any place; what was
+   * pushed of a symbol that is not whole is forgotten.
+   */
+  seek(first: number): void;
   /** Symbols found so far, all repeats counted. */
   readonly symbolsFound: number;
 }
@@ -52,15 +57,27 @@ export function createDemodulator(
     }
     found(repeat, symbol, values);
     symbolsFound++;
+    next();
+    start = startOf();
+  }
+
+  function next(): void {
     symbol++;
     if (symbol === symbolCount) {
       symbol = 0;
       repeat++;
     }
-    start = repeat * layout.repeatSamples + layout.symbolStarts[symbol]! + layout.prefixes[symbol]!;
   }
 
+  const startOf = (): number => repeat * layout.repeatSamples + layout.symbolStarts[symbol]! + layout.prefixes[symbol]!;
+
   return {
+    seek(first) {
+      position = first;
+      repeat = Math.min(layout.repeats - 1, Math.floor(first / layout.repeatSamples));
+      symbol = 0;
+      while (repeat < layout.repeats && (start = startOf()) < first) next();
+    },
     get symbolsFound() {
       return symbolsFound;
     },

@@ -16,7 +16,10 @@ function fractionOfDouble(value: number): { numerator: bigint; denominator: bigi
 }
 
 /** Turns of f0 in one output sample as an exact fraction, reduced to 0 ≤ numerator < denominator. */
-function turnsPerSample(content: WaveformContent, oversampling: number): { numerator: bigint; denominator: bigint } {
+export function turnsPerSample(
+  content: WaveformContent,
+  oversampling: number,
+): { numerator: bigint; denominator: bigint } {
   const offset = fractionOfDouble(content.frequencyOffsetHz);
   const [spacing, per] = content.subcarrierSpacingHz;
   const clock = BigInt(content.fftSize) * BigInt(oversampling) * BigInt(spacing);

@@ -5,9 +5,10 @@
  * |im|; 14…19 compensated sums of power, re and im: value and what it lost.
  */
 export const LEVEL_STATE_LENGTH = 20;
-const PART_SAMPLES = 128;
+export const PART_SAMPLES = 128;
 
-function addTo(state: Float64Array, sum: number, value: number): void {
+/** Adds to one of the compensated sums. */
+export function addTo(state: Float64Array, sum: number, value: number): void {
   const old = state[sum]!;
   const next = old + value;
   state[sum + 1]! += Math.abs(old) >= Math.abs(value) ? old - next + value : value - next + old;
@@ -55,4 +56,21 @@ export function addSamples(state: Float64Array, data: Float64Array, at: number, 
   state[10] = peak;
   state[12] = mostRe;
   state[13] = mostIm;
+}
+
+/** Sums of closed parts in order: power, re and im of each; `count` numbers are in use. */
+export interface PartSums {
+  numbers: Float64Array;
+  count: number;
+}
+
+/**
+ * Takes the sums of the part that has just been closed out of a state whose sums were 0 before it: a first addition loses nothing.
+ * The state's numbers begin at state[at].
+ */
+export function takePart(state: Float64Array, at: number, sums: PartSums): void {
+  for (let sum = at + 14; sum < at + 20; sum += 2) {
+    sums.numbers[sums.count++] = state[sum]!;
+    state[sum] = 0;
+  }
 }

@@ -17,20 +17,27 @@ export interface UsefulParts {
   readonly onSamples: SampleWork | null;
 }
 
-/** The engine's work on samples that lie in its memory in a row of pairs, `row` bytes from its beginning. */
+/**
+ * The engine's work on samples that lie in its memory in a row of pairs, `row` bytes from its beginning. To be used after `enter`, and
+ * only until something else may have entered.
+ */
 export interface SampleWork {
-  /** Room for some samples that were put together here, interleaved; valid until enter gives false. */
-  readonly block: Float64Array;
+  /** Room for samples that are put together outside, interleaved. */
+  openBlock(): Float64Array;
   /** The first `count` samples of the block as a row; the block is void then. */
   rowOfBlock(count: number): number;
-  /** The row of a symbol's useful part; the same as `part` gives, valid as long. */
+  /** The row of a symbol's useful part: what `part` gives. */
   rowOfPart(repeat: number, symbol: number, slot: number): number;
   /** Takes a collector's levels into the engine; samples are measured into them until they are given back. */
-  lend(collector: StatsCollector): void;
+  lend(collector: Omit<StatsCollector, 'stats'>): void;
+  /** Measures samples from…from+count−1 of a row. */
   measure(row: number, from: number, count: number): void;
-  giveBack(collector: StatsCollector): void;
-  /** Writes samples from…from+count−1 of a row as words to bytes[to…]. */
-  write(writer: WordWriter, row: number, from: number, count: number, bytes: Uint8Array, to: number): void;
+  giveBack(collector: Omit<StatsCollector, 'stats'>): void;
+  /** From here on samples are written as words to bytes[at…]; all of them are there after endWords. */
+  beginWords(writer: WordWriter, bytes: Uint8Array, at: number): void;
+  /** Writes samples from…from+count−1 of a row. */
+  write(row: number, from: number, count: number): void;
+  endWords(): void;
 }
 
 /** What parts are made of. */

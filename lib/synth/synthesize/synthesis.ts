@@ -60,18 +60,38 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
     suffixLength = overlapSamples;
   }
 
-  function rewind(): void {
-    position = 0;
-    repeat = 0;
-    symbol = 0;
-    useful = null;
+  /** The pending suffix of the symbol before (repeat, symbol), which stands at the file's end for the loop's first one. */
+  function takeSuffixBefore(): void {
     suffixLength = 0;
-    if (layout.mode !== 'loop' || overlapSamples === 0) return;
+    if (overlapSamples === 0) return;
+    const isFirst = repeat === 0 && symbol === 0;
+    if (isFirst && layout.mode !== 'loop') return;
+    const before = symbol > 0 ? symbol - 1 : symbolCount - 1;
+    const beforeRepeat = symbol > 0 ? repeat : isFirst ? repeats - 1 : repeat - 1;
+    const start = beforeRepeat * repeatSamples + symbolStarts[before]! + prefixes[before]! + usefulSamples;
     // in a loop, what the last suffix has beyond the file's end stands at its beginning
-    const lastEnd = (repeats - 1) * repeatSamples + layout.frameSamples;
-    if (lastEnd + overlapSamples <= samples) return;
+    const suffixAt = isFirst ? start - samples : start;
+    if (suffixAt + overlapSamples <= position) return;
     parts.enter();
-    keepSuffix(usefulPart(repeats - 1, symbolCount - 1), lastEnd - samples);
+    keepSuffix(usefulPart(beforeRepeat, before), suffixAt);
+  }
+
+  function seek(sample: number): void {
+    demand(Number.isInteger(sample) && sample >= 0 && sample <= samples, 'bad_index', 'No such sample.');
+    position = sample;
+    repeat = Math.min(repeats - 1, Math.floor(sample / repeatSamples));
+    const inRepeat = sample - repeat * repeatSamples;
+    symbol = 0;
+    if (inRepeat >= layout.frameSamples) symbol = symbolCount;
+    else {
+      for (let end = symbolCount; end - symbol > 1;) {
+        const middle = (symbol + end) >> 1;
+        if (symbolStarts[middle]! <= inRepeat) symbol = middle;
+        else end = middle;
+      }
+    }
+    useful = null;
+    takeSuffixBefore();
   }
 
   /** Adds the pending suffix to out[2·at…], which holds `count` samples from file sample `first` on. */
@@ -157,16 +177,15 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
   let spanRow = 0;
   let spanFrom = 0;
 
-  /** Moves on by at most `most` samples that lie together in the engine's memory; returns how many. */
+  /** Moves on by at most `most` samples that lie together in the engine's memory, which was entered; returns how many. */
   function nextSpan(work: SampleWork, most: number): number {
-    if (!parts.enter()) useful = null;
     if (symbol === symbolCount && repeat < repeats - 1 && layout.gapSamples === 0) {
       repeat++;
       symbol = 0;
     }
     if (!isPlain || symbol === symbolCount) {
-      const { block: room } = work;
-      const count = read(most < BLOCK_SAMPLES ? room.subarray(0, 2 * most) : room);
+      const room = work.openBlock();
+      const count = read(2 * most < room.length ? room.subarray(0, 2 * most) : room);
       spanRow = work.rowOfBlock(count);
       spanFrom = 0;
       return count;
@@ -184,24 +203,20 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
     return count;
   }
 
-  /** Calls `visit` with up to `most` samples, a span at a time: its row, first sample in it, samples, samples before it. */
-  function eachSpan(
-    work: SampleWork,
-    most: number,
-    visit: (row: number, from: number, count: number, done: number) => void,
-  ): number {
+  /** Calls `visit` with up to `most` samples, a span at a time: its row, the first sample in it, samples. */
+  function eachSpan(work: SampleWork, most: number, visit: (row: number, from: number, count: number) => void): number {
     let done = 0;
     while (done < most) {
       const count = nextSpan(work, most - done);
       if (count === 0) break;
-      visit(spanRow, spanFrom, count, done);
+      visit(spanRow, spanFrom, count);
       done += count;
     }
     if (position === samples) parts.rest();
     return done;
   }
 
-  function collect(collector: StatsCollector, most: number): number {
+  function collect(collector: Omit<StatsCollector, 'stats'>, most: number): number {
     if (onSamples !== null) {
       if (!parts.enter()) useful = null;
       onSamples.lend(collector);
@@ -223,9 +238,11 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
       'No room for the words.',
     );
     if (onSamples !== null) {
-      return eachSpan(onSamples, most, (row, from, count, done) =>
-        onSamples.write(writer, row, from, count, bytes, at + done * size),
-      );
+      if (!parts.enter()) useful = null;
+      onSamples.beginWords(writer, bytes, at);
+      const written = eachSpan(onSamples, most, onSamples.write);
+      onSamples.endWords();
+      return written;
     }
     block ??= new Float64Array(2 * BLOCK_SAMPLES);
     let done = 0;
@@ -238,7 +255,7 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
     return done;
   }
 
-  rewind();
+  seek(0);
   return {
     samples,
     oversampling: layout.oversampling,
@@ -250,6 +267,7 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
     read,
     collect,
     readWords,
-    rewind,
+    seek,
+    rewind: () => seek(0),
   };
 }

@@ -1,6 +1,7 @@
 import type { SampleEngine } from '../engine/types';
 import type { WordWriter } from '../files/wordWriter';
 import type { WaveformContent } from '../types';
+import type { PartSums } from './levelState';
 
 /** What every rendering function takes beside the content. */
 export interface RenderOptions {
@@ -87,9 +88,14 @@ export interface Synthesis {
   /** Fills `out` (interleaved re, im) with the next samples; returns how many samples were written, 0 at the end. */
   read(out: Float64Array): number;
   /** As read, but at most `most` samples into a collector of levels; nothing is copied out of the engine. */
-  collect(collector: StatsCollector, most: number): number;
+  collect(collector: Omit<StatsCollector, 'stats'>, most: number): number;
   /** As read, but at most `most` samples as words to bytes[at…], which must have room for them. */
   readWords(writer: WordWriter, most: number, bytes: Uint8Array, at?: number): number;
+  /**
+   * Goes to a sample, 0…samples: what is read from there has the bits that reading from the first sample gives.
+   * Throws SynthError `bad_index` for another number.
+   */
+  seek(sample: number): void;
   /** Back to the first sample. */
   rewind(): void;
 }
@@ -113,6 +119,8 @@ export interface StatsCollector {
   stats(activeSamples: number): VectorStats;
   /** The running numbers, as levelState lays them out; the engine works on a copy. */
   readonly state: Float64Array;
+  /** Where given, the sums of each part are listed here as it closes and added up by somebody else. */
+  readonly partSums?: PartSums;
 }
 
 /** Levels of a whole rendering; amplitudes in units of x (0 dB cell in a full symbol: RMS 1). */

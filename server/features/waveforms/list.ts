@@ -8,7 +8,7 @@ import { listAllEditions } from '../../revisions/editionRepo.ts';
 import { peopleBarredBy } from '../../revisions/fourEyesRepo.ts';
 import { toEdition, toStamp } from '../../revisions/stamps.ts';
 import { listOpenRequests, newestStates } from '../../revisions/stateRepo.ts';
-import { listHeads, waveformsOf, type HeadRow } from './repo.ts';
+import { listHeads, waveformsOf, waveformsOfPacks, type HeadRow } from './repo.ts';
 import { shownEdition } from './show.ts';
 
 type Asked = QueryOf<typeof listWaveforms>;
@@ -17,15 +17,23 @@ type ShownItem = Omit<WaveformItem, 'figures'>;
 /** Letters compared as a person reads them. */
 const folded = (text: string) => text.normalize('NFC').toLocaleLowerCase('en');
 
-function finder(asked: string | undefined): (item: ShownItem, editions: readonly Edition[]) => boolean {
+/** By a part of the title or the first digits of a digest: of the content, of an edition's, of a pack's vector or zip that the person may see. */
+function finder(
+  db: Queryable,
+  actor: Actor,
+  asked: string | undefined,
+): (item: ShownItem, editions: readonly Edition[]) => boolean {
   if (!asked) return () => true;
   const words = folded(asked);
   const digits = words.replace(/^sha256:/, '');
-  const isDigest = /^[0-9a-f]{4,64}$/.test(digits);
+  if (!/^[0-9a-f]{4,64}$/.test(digits)) return (item) => folded(item.title).includes(words);
   const begins = (digest: string) => digest.startsWith(`sha256:${digits}`);
+  const ofPacks = waveformsOfPacks(db, digits, actor.personId);
   return (item, editions) =>
     folded(item.title).includes(words) ||
-    (isDigest && (begins(item.contentDigest) || editions.some((edition) => begins(edition.contentDigest))));
+    begins(item.contentDigest) ||
+    editions.some((edition) => begins(edition.contentDigest)) ||
+    ofPacks.has(item.waveformId);
 }
 
 /** What a row is about: the head for those who read drafts, else the edition that stands for the waveform. */
@@ -65,7 +73,7 @@ export function listWaveformsTo(db: Queryable, actor: Actor, figures: Figures, a
   );
   const waiting = waveformsWaitingFor(db, actor);
 
-  const isFound = finder(asked.find);
+  const isFound = finder(db, actor, asked.find);
   const found = shown
     .map(({ head, ...row }): ShownItem => {
       const stamp = toStamp(head, states.get(row.revisionId), numberOf.get(row.revisionId) ?? null);

@@ -1,5 +1,6 @@
-import { and, eq } from 'drizzle-orm';
+import { and, eq, isNotNull, or, sql } from 'drizzle-orm';
 import type { Queryable } from '@/db/openDatabase';
+import { packs } from '@/db/schema/packs';
 import { users } from '@/db/schema/people';
 import { revisions, waveforms } from '@/db/schema/waveforms';
 import { findRevision, type RevisionRow } from '../../revisions/revisionRepo.ts';
@@ -48,6 +49,23 @@ export function waveformsOf(db: Queryable, personId: string): ReadonlySet<string
     .selectDistinct({ waveformId: revisions.waveformId })
     .from(revisions)
     .where(eq(revisions.authorId, personId))
+    .all();
+  return new Set(rows.map((row) => row.waveformId));
+}
+
+/** Waveforms with a pack whose vector or zip has a digest that begins so: editions' packs, and those of the person's own drafts. */
+export function waveformsOfPacks(db: Queryable, digitsStart: string, personId: string): ReadonlySet<string> {
+  const startsWith = (column: unknown) => sql`substr(${column}, 1, ${digitsStart.length}) = ${digitsStart}`;
+  const rows = db
+    .selectDistinct({ waveformId: revisions.waveformId })
+    .from(packs)
+    .innerJoin(revisions, eq(revisions.id, packs.revisionId))
+    .where(
+      and(
+        or(startsWith(packs.vectorSha256), startsWith(packs.fileSha256)),
+        or(isNotNull(packs.editionId), eq(revisions.authorId, personId)),
+      ),
+    )
     .all();
   return new Set(rows.map((row) => row.waveformId));
 }

@@ -143,9 +143,11 @@ describe('the checking thread', () => {
   };
 
   it('is ended after its limit', async () => {
-    const from = performance.now();
-    await expect(threadOf('for (;;);', 300)('createWaveform', bytes())).rejects.toMatchObject({ code: 'too_large' });
-    expect(performance.now() - from).toBeLessThan(3000);
+    // The thread itself would never answer.
+    await expect(threadOf('for (;;);', 300)('createWaveform', bytes())).rejects.toMatchObject({
+      code: 'too_large',
+      message: 'The body takes longer than 0.3 s to check.',
+    });
   });
 
   it('that takes too much memory is too large, and hurts nobody', async () => {

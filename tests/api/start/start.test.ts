@@ -167,10 +167,9 @@ describe('the end', () => {
         'POST /api/v1/auth/sign-in HTTP/1.1\r\nHost: localhost\r\nContent-Length: 100\r\nContent-Type: application/json\r\n\r\n{',
       );
       await new Promise((resolve) => setTimeout(resolve, 200));
-      const from = performance.now();
       server.process.kill(signal);
+      // The server's own watch ends it after 4.9 s with code 1, so 0 says that it was done before that.
       expect(await server.exitCode).toBe(0);
-      expect(performance.now() - from).toBeLessThan(5000);
       socket.destroy();
     },
   );

@@ -1,4 +1,6 @@
 import type { WaveformList } from '@/lib/contracts/waveforms';
+import { openBench } from '../../helpers/documents';
+import { createBench, makePack } from '../../helpers/packCalls';
 import { grant } from '../../helpers/roles';
 import { startTestServer, type Client, type TestServer } from '../../helpers/testServer';
 import { ask, create, createReleased, documentOf, open, save, show, withdrawing } from '../../helpers/waveformCalls';
@@ -89,6 +91,21 @@ test('an edition is found by its digest after others drew on', async () => {
   const { waveformId, revisionId, edition } = await createReleased(author, reviewer, documentOf('Old'));
   await save(author, waveformId, revisionId, documentOf('Old', 2));
   expect(titles(await list(author, `?find=${edition.contentDigest.slice(7, 15)}`))).toEqual(['Old']);
+});
+
+test("a vector's or a zip's digest finds its waveform; a draft's pack finds it for its author alone", async () => {
+  const { benchId } = await createBench(await server.as('admin'), openBench());
+  const { revisionId } = await createReleased(author, reviewer, documentOf('Played'));
+  const played = await makePack(author, revisionId, benchId);
+  const draft = await create(author, documentOf('Tried', 2));
+  const tried = await makePack(author, draft.head!.revisionId, benchId);
+  const foundBy = async (client: Client, digest: string) => titles(await list(client, `?find=${digest.slice(7, 19)}`));
+  for (const client of [author, await server.as('operator')]) {
+    expect(await foundBy(client, played.vectorDigest)).toEqual(['Played']);
+    expect(await foundBy(client, played.fileDigest)).toEqual(['Played']);
+  }
+  expect(await foundBy(author, tried.vectorDigest)).toEqual(['Tried']);
+  expect(await foundBy(await server.as('otherAuthor'), tried.vectorDigest)).toEqual([]);
 });
 
 test('mine are those in which I saved something', async () => {

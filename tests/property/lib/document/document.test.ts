@@ -48,6 +48,18 @@ test('equal cells have one spelling: cut and shuffled runs come back to it', () 
 
 const seed = 20260417;
 const mutants = 20_000;
+const LONGEST_MS = 1000;
+
+/** Milliseconds that a parse takes; a slow one is tried again, since other work on the machine is not the document's doing. */
+function parseMs(input: unknown): number {
+  let least = Infinity;
+  for (let tries = 0; tries < 4 && least > LONGEST_MS; tries += 1) {
+    const start = performance.now();
+    parseWaveformDocument(input);
+    least = Math.min(least, performance.now() - start);
+  }
+  return least;
+}
 
 // What "half accepted" would look like: a right answer that dropped, changed or overlooked something.
 function expectWhole(input: unknown, value: WaveformDocument): void {
@@ -82,7 +94,8 @@ test(`${mutants} mutated documents, seed ${seed}: none crashes, takes over 1 s o
     }
     const start = performance.now();
     const result = parseWaveformDocument(input);
-    slowest = Math.max(slowest, performance.now() - start);
+    const took = performance.now() - start;
+    slowest = Math.max(slowest, took > LONGEST_MS ? parseMs(input) : took);
     if (result.ok) {
       accepted += 1;
       expectWhole(input, result.value);
@@ -96,7 +109,7 @@ test(`${mutants} mutated documents, seed ${seed}: none crashes, takes over 1 s o
       if (!isList || !areReadable) throw new Error(`mutant ${at}: ${JSON.stringify(result).slice(0, 500)}`);
     }
   }
-  expect(slowest).toBeLessThan(1000);
+  expect(slowest).toBeLessThanOrEqual(LONGEST_MS);
   // both answers are met often enough to mean something
   expect(accepted).toBeGreaterThan(mutants / 100);
   expect(accepted).toBeLessThan(mutants / 2);

@@ -1,10 +1,11 @@
 import { cellMark } from '@/lib/drawing/cellMarks';
-import { reduceRow, toothPitch, toothWidthPx } from '@/lib/drawing/cellReduction';
+import { reduceRow, reduceRuns, toothPitch, toothPitches, toothWidthPx } from '@/lib/drawing/cellReduction';
 import { gridPicture, pictureBlocks } from '@/lib/drawing/gridPicture';
 import { inkStyleOf, inkWord, markOf, priorityOf } from '@/lib/drawing/inkStyle';
 import type { InkStyleKey } from '@/lib/drawing/inkStyle';
 import { compressGrid } from '@/lib/synth/index';
 import { testDocument, testTray } from '../../../helpers/headlessEditor';
+import { seededRandom } from '../../../helpers/mutateDocument';
 
 const styles = testTray.map(inkStyleOf);
 
@@ -84,6 +85,24 @@ describe('cells below a pixel', () => {
     const row = Array.from({ length: 2048 }, (_, p) => (p % 12 === 0 ? 3 : 1));
     const shown = reduce(row, 0, 783 / 2048, 783).filter((ink) => ink === 3).length;
     expect(shown).toBe(171);
+  });
+
+  it('come from runs as from cells', () => {
+    const random = seededRandom(20270301);
+    for (let round = 0; round < 60; round++) {
+      const runs: number[] = [];
+      for (let ink = -1; runs.length < 2 + 60 * random(); ) {
+        ink = (ink + 1 + Math.floor(random() * (styles.length - 1))) % styles.length;
+        runs.push(1 + Math.floor(random() ** 3 * 40), ink);
+      }
+      const row = runs.flatMap((entry, i) => (i % 2 === 0 ? new Array<number>(entry).fill(runs[i + 1]!) : []));
+      const [first, px, columns] = [row.length * (random() - 0.3), 0.05 + 0.94 * random(), 1 + Math.floor(random() * 90)];
+      const out = new Int16Array(columns);
+      reduceRuns(runs, first, px, priorities, out);
+      expect([...out]).toEqual(reduce(row, first, px, columns));
+      const pitches = styles.map((_, ink) => toothPitch(Uint8Array.from(row), ink));
+      expect([...toothPitches(runs, styles.length)]).toEqual(pitches);
+    }
   });
 
   it('draw teeth two px wide where they stand 6 px apart', () => {
