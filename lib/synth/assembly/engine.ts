@@ -3,7 +3,7 @@ export { transform } from './transform';
 export { floatWords, integerWords, measure, regroup } from './samples';
 export { mapRuns } from './points';
 
-/** The first byte that is free. */
+/** The first byte that is free, a multiple of 4096. */
 export function freeFrom(): usize {
-  return (__heap_base + 63) & ~63;
+  return (__heap_base + 4095) & ~4095;
 }

@@ -1,7 +1,7 @@
 /** What the sample engine's module exports, as far as it is used. Addresses and sizes are bytes in its own memory. */
 export interface EngineExports {
   readonly memory: { readonly buffer: ArrayBuffer; grow(pages: number): number };
-  /** The first byte that is free. */
+  /** The first byte that is free, a multiple of 4096. */
   freeFrom(): number;
   /**
    * Samples at `to`, in pairs (both real parts, then both imaginary parts, 32 bytes a pair), from `from`'s interleaved bins, of
@@ -32,7 +32,7 @@ export interface EngineExports {
 /** A tenant's place in the engine. */
 export interface EngineRoom {
   readonly exports: EngineExports;
-  /** Where the tenant's bytes begin, a multiple of 64. */
+  /** Where the tenant's bytes begin, a multiple of 4096. */
   readonly start: number;
   /** Grows with each new tenant: another number than before says that nothing of the tenant's is left in it. */
   readonly tenancy: number;

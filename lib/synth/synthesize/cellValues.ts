@@ -62,7 +62,7 @@ export function createPlacedValues(
   const taken = new Float64Array(streams.length); // next bit of each running stream
   const inkTaken = new Float64Array(tray.length); // next `cell` number of each ink
   const inSymbol = new Int32Array(tray.length); // cells of each ink so far in this symbol
-  const values = new Float64Array(2 * fftSize);
+  let values: Float64Array = new Float64Array(0); // room for values with factors
   const lowest = lowestSubcarrier(fftSize);
   let roots: Float64Array | null = null;
   const natural: Placement = { split: fftSize, low: 0, high: 0 };
@@ -128,6 +128,7 @@ export function createPlacedValues(
     out: Float64Array,
     to: number,
   ): void {
+    if (values.length === 0) values = new Float64Array(2 * fftSize);
     for (let i = 0; i < count; i++) {
       values[2 * i] = plan.re;
       values[2 * i + 1] = plan.im;
