@@ -2,7 +2,7 @@ import { Skia, type SkCanvas, type SkPicture } from '@shopify/react-native-skia'
 import type { ThemeColors } from '@/components/ui/theme';
 import { inkStyleOf } from '@/lib/drawing/inkStyle';
 import { lowestOf } from '@/lib/editor/document';
-import type { Editor } from '@/lib/editor/store';
+import { createShownSettings, type Editor } from '@/lib/editor/store';
 import type { CellPoint } from '@/lib/editor/types';
 import { formatNumber } from '@/lib/drawing/quantities';
 import { drawPeakDots, drawPeakScale, drawStraightedge, drawSymbolNumbers } from './draw/drawAxes';
@@ -61,6 +61,7 @@ export function createTableEngine(
   const reducer = createReducer(late);
   const bandReducer = createReducer(late);
   const parts = new Map<string, KeptPart>();
+  const shownSettings = createShownSettings(editor);
   let fills: (InkFills & { from: readonly unknown[] }) | null = null;
   let frameRequest = 0;
   let lastPicture: SkPicture | null = null;
@@ -79,7 +80,7 @@ export function createTableEngine(
   }
 
   function fillsFor(theme: ThemeColors): InkFills {
-    const { tray } = editor.document.settings;
+    const { tray } = shownSettings();
     if (!fills || fills.from[0] !== tray || fills.from[1] !== theme) {
       const styles = tray.map(inkStyleOf);
       const pixels = new Uint32Array(256);

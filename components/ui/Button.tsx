@@ -1,6 +1,7 @@
-import { useState, type ReactNode } from 'react';
+import { useCallback, useState, type ReactNode } from 'react';
 import { Pressable, StyleSheet, View, type GestureResponderEvent, type ViewStyle } from 'react-native';
 import { useIsBehindOverlay } from './overlayState';
+import { ReasonTip } from './ReasonTip';
 import { Text } from './Text';
 import { color } from './theme';
 import { useAriaDisabled } from './useAriaDisabled';
@@ -86,13 +87,14 @@ export function Button(props: ButtonProps) {
     expanded,
   } = props;
   const touch = useBreakpoint() === 'phone';
-  const [saysWhy, setSaysWhy] = useState(false);
+  const [saysWhyAt, setSaysWhyAt] = useState<HTMLElement | null>(null);
+  const sayNoMore = useCallback(() => setSaysWhyAt(null), []);
   const behind = useIsBehindOverlay();
   const kind = asked === 'filled' && behind ? 'ruled' : asked;
   const look = looks[kind];
   const height = size === 'foot' ? 48 : touch ? 44 : size === 'small' ? 28 : 36;
   const off = Boolean(disabledBecause);
-  const ref = useAriaDisabled(off || Boolean(busy));
+  const ref = useAriaDisabled(off || Boolean(busy), disabledBecause);
   return (
     <View style={[fill ? styles.fill : styles.hug, style]}>
       <Pressable
@@ -104,10 +106,10 @@ export function Button(props: ButtonProps) {
         aria-busy={busy || undefined}
         onPress={(event) => {
           if (busy) return;
-          if (off) setSaysWhy(true);
+          if (off) setSaysWhyAt(ref.current);
           else onPress?.(event);
         }}
-        onBlur={() => setSaysWhy(false)}
+        onBlur={sayNoMore}
         style={(state) => [
           styles.button,
           {
@@ -137,10 +139,10 @@ export function Button(props: ButtonProps) {
         </Text>
         {busy ? <View style={[styles.busy, { backgroundColor: off ? color.rule.line : color.focus.ring }]} /> : null}
       </Pressable>
-      {off && saysWhy ? (
-        <Text variant="small" tone="quiet" role="status" style={styles.why}>
+      {disabledBecause && saysWhyAt ? (
+        <ReasonTip of={saysWhyAt} onGone={sayNoMore}>
           {disabledBecause}
-        </Text>
+        </ReasonTip>
       ) : null}
     </View>
   );
@@ -160,5 +162,4 @@ const styles = StyleSheet.create({
   },
   label: { fontSize: 14, lineHeight: 20 },
   busy: { position: 'absolute', left: 0, right: 0, bottom: 0, height: 2 },
-  why: { marginTop: 4 },
 });

@@ -1,8 +1,7 @@
 import { Pressable, StyleSheet, View } from 'react-native';
-import { copyText } from './copyText';
+import { copyAndSay } from './copyText';
 import { Text } from './Text';
 import { color } from './theme';
-import { showToast } from './toast';
 import { useBreakpoint } from './useBreakpoint';
 
 const bare = (digest: string) => digest.replace(/^sha256:/, '');
@@ -16,7 +15,7 @@ export function DigestChip({ digest, same }: { digest: string; same?: boolean })
     <Pressable
       role="button"
       aria-label={`Digest ${hex.slice(0, 4)}…${hex.slice(-4)}, copy`}
-      onPress={() => void copyText(hex).then((done) => showToast(done ? 'Digest copied' : 'Copying was refused'))}
+      onPress={() => void copyAndSay(hex, 'Digest copied')}
       style={touch ? styles.target : styles.hug}
       {...({ title: groups } as object)}
     >

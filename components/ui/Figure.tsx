@@ -1,6 +1,8 @@
-import { StyleSheet, View, type ViewStyle } from 'react-native';
+import { Pressable, StyleSheet, type ViewStyle } from 'react-native';
+import { copyAndSay } from './copyText';
 import { Text, type TextVariant } from './Text';
 import { color } from './theme';
+import { useBreakpoint } from './useBreakpoint';
 
 /** A value and its unit, apart: "30.72" "MHz". */
 export function Figure({
@@ -32,7 +34,22 @@ export function Figure({
   );
 }
 
-/** Label over figure, for cells of a ruled block. */
+/** What a figure that copies on press says of itself, and does. */
+function copying(name: string, value: string, unit: string | undefined, ...more: (string | undefined)[]) {
+  const words = [value, unit].filter(Boolean).join(' ');
+  return {
+    role: 'button' as const,
+    'aria-label': [name, words, ...more, 'copy'].filter(Boolean).join(', '),
+    onPress: () => void copyAndSay(words, `${name} copied`),
+  };
+}
+
+const ground = (state: object) => {
+  const { hovered, pressed } = state as { hovered?: boolean; pressed?: boolean };
+  return { backgroundColor: pressed ? color.surface.pressed : hovered ? color.surface.hover : 'transparent' };
+};
+
+/** Label over figure, for cells of a ruled block; press copies value and unit. */
 export function FigureCell({
   label,
   value,
@@ -47,16 +64,19 @@ export function FigureCell({
   style?: ViewStyle;
 }) {
   return (
-    <View style={[styles.cell, style]}>
+    <Pressable
+      {...copying(label, value, unit, stale ? 'out of date' : undefined)}
+      style={(state) => [styles.cell, ground(state), style]}
+    >
       <Text variant="label" weight={400} tone="quiet" numberOfLines={1}>
         {label}
       </Text>
       <Figure value={value} {...(unit ? { unit } : {})} {...(stale ? { stale } : {})} />
-    </View>
+    </Pressable>
   );
 }
 
-/** Name, value, unit and a verdict in words. */
+/** Name, value, unit and a verdict in words; press copies value and unit. */
 export function FigureRow({
   name,
   value,
@@ -70,8 +90,12 @@ export function FigureRow({
   verdict?: string;
   verdictTone?: 'success' | 'danger' | 'quiet';
 }) {
+  const touch = useBreakpoint() === 'phone';
   return (
-    <View style={styles.row}>
+    <Pressable
+      {...copying(name, value, unit, verdict)}
+      style={(state) => [styles.row, { minHeight: touch ? 52 : 36 }, ground(state)]}
+    >
       <Text variant="small" style={styles.name} numberOfLines={2}>
         {name}
       </Text>
@@ -81,14 +105,13 @@ export function FigureRow({
           {verdict}
         </Text>
       ) : null}
-    </View>
+    </Pressable>
   );
 }
 
 const styles = StyleSheet.create({
   cell: { paddingVertical: 6, paddingHorizontal: 8, gap: 1, minWidth: 0 },
   row: {
-    minHeight: 36,
     flexDirection: 'row',
     alignItems: 'center',
     gap: 12,

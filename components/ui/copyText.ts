@@ -1,5 +1,7 @@
+import { showToast } from './toast';
+
 /** Copies text; on a plain-http address other than localhost a browser has no clipboard, so a selection does it. */
-export async function copyText(text: string): Promise<boolean> {
+async function copyText(text: string): Promise<boolean> {
   try {
     if (navigator.clipboard) {
       await navigator.clipboard.writeText(text);
@@ -17,4 +19,9 @@ export async function copyText(text: string): Promise<boolean> {
   const done = document.execCommand('copy');
   area.remove();
   return done;
+}
+
+/** Copies and says so, or says that the browser refused. */
+export async function copyAndSay(text: string, said: string): Promise<void> {
+  showToast((await copyText(text)) ? said : 'Copying was refused');
 }

@@ -101,4 +101,17 @@ export const saveBench = defineEndpoint({
   status: 201,
 });
 
-export const benchEndpoints = [listBenches, showBench, createBench, saveBench] as const;
+/** 422 limit_missed where no clock or length of the profile holds it. */
+export const downloadSidedness = defineEndpoint({
+  name: 'downloadSidedness',
+  method: 'GET',
+  path: '/benches/:benchId/sidedness',
+  access: 'readBenches',
+  summary: 'One tone above the carrier in the layout of a bench profile, as a pack (the newest version unless asked)',
+  params: benchParams,
+  query: z.strictObject({ version: z.coerce.number().int().positive().optional() }),
+  response: z.unknown(),
+  file: { mediaType: 'application/zip' },
+});
+
+export const benchEndpoints = [listBenches, showBench, createBench, saveBench, downloadSidedness] as const;

@@ -6,6 +6,30 @@ import { issueSchema } from './problem';
 /** A plain change of the document; the editor makes it a patch. */
 const plainChangeSchema = z.object({ pointer: z.string(), before: z.unknown(), after: z.unknown() });
 
+const remedySchema = z.object({
+  kind: z.enum([
+    'repeats',
+    'dropRepeats',
+    'oversampling',
+    'spacing',
+    'fftSize',
+    'offset',
+    'tones',
+    'payload',
+    'mode',
+    'gap',
+    'pad',
+    'markers',
+    'headroom',
+    'outputLevel',
+  ]),
+  label: z.string(),
+  changes: z.array(plainChangeSchema),
+  /** Samples that the file gains, and how far frequencies move, in ppm of the sample clock. */
+  price: z.object({ samples: z.number(), ppm: z.number() }),
+  cost: z.string(),
+});
+
 export const fitFindingSchema = z
   .object({
     check: z.enum([
@@ -19,13 +43,14 @@ export const fitFindingSchema = z
       'seam',
       'toneJump',
       'payloadWrap',
+      'symbolPeak',
       'headroom',
       'level',
     ]),
     title: z.string(),
     measured: z.number().nullable(),
     limit: z.number().nullable(),
-    unit: z.enum(['samples', 'Hz', 'dB', 'dBm', 'markers', 'turns', 'repeats', 'cells', 'components']).nullable(),
+    unit: z.enum(['samples', 'Hz', 'dB', 'dBm', 'markers', 'turns', 'repeats', 'components']).nullable(),
     distance: z.number().nullable(),
     verdict: z.enum(['meets', 'misses', 'cannotJudge']),
     /** A miss refuses the pack. */
@@ -33,7 +58,8 @@ export const fitFindingSchema = z
     byHowMuch: z.string(),
     found: z.string(),
     words: z.string(),
-    remedies: z.array(z.object({ label: z.string(), changes: z.array(plainChangeSchema), cost: z.string() })),
+    /** Repeats first, then what moves clock or frequencies, then silence. Each is judged alone. */
+    remedies: z.array(remedySchema),
   })
   .meta({ id: 'FitFinding' });
 
@@ -48,13 +74,15 @@ export const fitSchema = z
       isNewest: z.boolean(),
     }),
     findings: z.array(fitFindingSchema),
-    /** Parts of the profile no pack can be written in yet; a pack is refused. */
+    /** Why no file can be written in the profile's layout (a WAV file of 4 GiB); a pack is refused. */
     notSupportedYet: z.array(issueSchema),
     /**
      * Headroom and level can be judged only once the levels are `measured`. `measuring`: ask again soon. `unknown`: the file is too long to
      * be measured here; its pack measures it.
      */
     levels: z.enum(['measured', 'measuring', 'unknown']),
+    /** Steps |x[n+1] − x[n]| and the last and first samples of the file, interleaved re, im, all over its RMS; null until measured. */
+    seam: z.object({ stepAtWrap: z.number(), stepElsewhere: z.number(), around: z.array(z.number()) }).nullable(),
   })
   .meta({ id: 'Fit' });
 export type Fit = z.infer<typeof fitSchema>;

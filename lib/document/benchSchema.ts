@@ -1,3 +1,4 @@
+import { layoutRefusals } from '@/lib/synth/index';
 import { z } from './zod';
 import { customIssue } from './issues';
 import { freeText, lineText, list, real, whole } from './schemaParts';
@@ -23,7 +24,7 @@ const markers = z
     payload.issues.push(customIssue(['packing'], text, undefined));
   });
 
-/** The limits and the byte layout of one generator. Whatever the product cannot write yet is saved whole all the same. */
+/** The limits and the byte layout of one generator: layouts that no file can have are refused in lib/synth's words. */
 export const benchContentSchema = z
   .strictObject({
     sampleClockHz: z.strictObject({ least: clockHz, most: clockHz, step: clockHz.nullable() }),
@@ -71,6 +72,7 @@ export const benchContentSchema = z
     ) {
       add(['markers', 'packing'], 'must not be "lowBits": that needs left-aligned int16 words with free low bits');
     }
+    for (const { path, words } of layoutRefusals(value)) add(path, words);
   })
   .meta({ id: 'BenchContent' });
 

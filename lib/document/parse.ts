@@ -18,13 +18,13 @@ function parseWith<T>(input: unknown, format: string, schema: z.ZodType<T>): Par
 
 /**
  * Reads a waveform document from JSON text, UTF-8 bytes or a parsed value, and judges all of it: shape, ranges and the rules
- * across fields. What the product cannot render yet passes here; `notSupportedYet` names it. Never throws.
+ * across fields. Never throws.
  */
 export function parseWaveformDocument(input: unknown): ParseResult<WaveformDocument> {
   return parseWith(input, 'combwright.waveform', waveformDocumentSchema);
 }
 
-/** The same for a bench profile; `benchNotSupportedYet` names what no pack can be written in yet. */
+/** The same for a bench profile; `layoutIssues` names what no file can be written in. */
 export function parseBenchProfile(input: unknown): ParseResult<BenchProfile> {
   return parseWith(input, 'combwright.bench', benchProfileSchema);
 }

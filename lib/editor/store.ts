@@ -14,13 +14,14 @@ import type {
   CombSettings,
   Patch,
   RectangleSettings,
+  Settings,
   ToolName,
   Viewport,
 } from './types';
 
 /** What the screen shows beside the document. No cell is ever in here. */
 export interface SessionState {
-  /** Raised by every change of the document: drawing, plots and autosave follow it. */
+  /** Raised by every change of what is shown, the document's and a preview's: drawing and plots follow it. */
   changeCount: number;
   tool: ToolName;
   ink: number;
@@ -41,6 +42,8 @@ export interface SessionState {
   notice: string | null;
   /** A stroke is under way: its changes are shown but not yet a step of the history. */
   gestureOpen: boolean;
+  /** What an open form would do to the settings: shown by canvas, tray and live views, and no part of the document. */
+  preview: Patch | null;
 }
 
 export type PatchListener = (patch: Patch, changeCount: number) => void;
@@ -56,6 +59,11 @@ export interface Editor {
   beginGesture(verb: string): Gesture;
   /** Takes back the gesture under way, if any. */
   cancelGesture(): void;
+  /**
+   * Shows what a patch of the settings would do, until null, another one, or a real change of settings. The document stays as it is: nothing
+   * to undo, to save or to take back. A patch of cells or size is not shown.
+   */
+  preview(patch: Patch | null): void;
   /** Hears every change in order, moves of a gesture and their taking back included. Returns the way to stop listening. */
   onPatch(listener: PatchListener): () => void;
   /** Changes session values (tool, ink, cursor …). */
@@ -104,8 +112,11 @@ function startSession(document: EditorDocument, viewport: Partial<Viewport>): Se
     stepsLetGo: 0,
     notice: null,
     gestureOpen: false,
+    preview: null,
   };
 }
+
+const SHOWABLE = new Set(['numbers', 'tray', 'streams', 'timing', 'level', 'markers']);
 
 export const OLDER_STEPS_LET_GO = 'The oldest steps were let go: Undo keeps 64 MB of them.';
 
@@ -135,7 +146,13 @@ export function createEditor(stored: WaveformDocument, options: EditorOptions = 
 
   function write(patch: Patch): void {
     applyPatch(document, patch);
-    session.setState((state) => ({ changeCount: state.changeCount + 1, ...keptInside(state) }));
+    // Cells and a preview of settings do not touch each other; other settings would leave it without its ground.
+    const endsPreview = patch.changes.some(({ kind }) => kind !== 'cells');
+    session.setState((state) => ({
+      changeCount: state.changeCount + 1,
+      ...(endsPreview ? { preview: null } : {}),
+      ...keptInside(state),
+    }));
     const { changeCount } = session.getState();
     for (const listener of listeners) listener(patch, changeCount);
   }
@@ -197,10 +214,38 @@ export function createEditor(stored: WaveformDocument, options: EditorOptions = 
       return gesture;
     },
     cancelGesture: () => closeGesture('cancel'),
+    preview(patch) {
+      const isShown = patch && !isEmptyPatch(patch) && patch.changes.every(({ kind }) => SHOWABLE.has(kind));
+      const next = isShown ? patch : null;
+      session.setState((state) =>
+        state.preview === next ? state : { preview: next, changeCount: state.changeCount + 1 },
+      );
+    },
     onPatch(listener) {
       listeners.add(listener);
       return () => listeners.delete(listener);
     },
     set: (changes) => session.setState(changes),
+  };
+}
+
+/** The settings as they are shown: the document's, with a preview's where a form is open. The same object while both stay. */
+export function createShownSettings(editor: Editor): () => Settings {
+  let from: readonly unknown[] = [];
+  let shown = editor.document.settings;
+  return () => {
+    const { settings } = editor.document;
+    const { preview } = editor.session.getState();
+    if (from[0] === settings && from[1] === preview) return shown;
+    from = [settings, preview];
+    const copy = {
+      settings,
+      cells: editor.document.cells,
+      about: editor.document.about,
+      intent: editor.document.intent,
+    };
+    if (preview) applyPatch(copy, preview);
+    shown = copy.settings;
+    return shown;
   };
 }

@@ -3,9 +3,9 @@ export type SynthErrorCode =
   | 'bad_size'
   | 'bad_index'
   | 'bad_content'
+  | 'bad_layout'
   | 'buffer_too_small'
   | 'marker_outside'
-  | 'not_supported_yet'
   | 'nothing_painted'
   | 'too_large';
 

@@ -16,7 +16,19 @@ export type {
   WindowKind,
   WindowTable,
 } from './measure/types';
-export type { FitCheck, FitFinding, FitVerdict, MeasuredLevels, PlainChange, Remedy } from './fit/types';
+export type {
+  FitCheck,
+  FitFinding,
+  FitKnowledge,
+  FitVerdict,
+  MeasuredLevels,
+  MeasuredWave,
+  PlainChange,
+  Remedy,
+  RemedyKind,
+  SeamMeasure,
+  SymbolPeaks,
+} from './fit/types';
 export type { CardOverrides, CardReading, Caution, LevelCard } from './level/types';
 
 // synthesis, words, markers
@@ -41,7 +53,13 @@ export { createSampleEngine } from './engine/sampleEngine';
 export type { EngineExports, SampleEngine } from './engine/types';
 export { createRamp } from './synthesize/ramp';
 export { createSymbolSynthesis } from './synthesize/symbolSynthesis';
-export { createSynthesis } from './synthesize/synthesis';
+export { createSynthesis, meanPowerBefore } from './synthesize/synthesis';
+export { createSentValues, type SentValues } from './synthesize/sentValues';
+export { createReductionMeasure, type ReductionMeasuring, type ReductionReport } from './peak/reductionMeasure';
+export { createPeakMeasure, type FiguresMeasuring, type PeakFigures } from './peak/peakMeasure';
+export type { PeakSearch } from './peak/search';
+export { createSeedSearch, seedsOf, streamsWithSeed, type SeedRange } from './peak/seedSearch';
+export { createPhaseSearch, trayWithPhases, type PhaseChoice, type PhaseReach } from './peak/phases';
 export { addLevelParts, collectLevelParts, type LevelParts } from './synthesize/levelParts';
 export { stretchEnd } from './synthesize/stretches';
 export { repeatCopies, type RepeatCopies } from './synthesize/repeatCopies';
@@ -59,7 +77,12 @@ export { fullScaleOf, wordScale } from './quantize/wordScale';
 export type { ReferenceLevels, SaturationCount, WordScale } from './quantize/types';
 export { createWordWriter, type WordWriter } from './files/wordWriter';
 export { createWordReader, type WordReader } from './files/wordReader';
-export { bytesPerSample } from './files/layout';
+export { bytesPerSample, bytesPerWord, offsetOf, shiftBits } from './files/layout';
+export { npyType } from './files/fileHeads';
+export { freeMarkerBits, layoutRefusals, vectorRefusals, type LayoutRefusal } from './files/layoutRules';
+export { sidednessPlan, type SidednessPlan } from './files/sidedness';
+export { vectorBytes, vectorFiles, vectorFilesOf, type VectorFile } from './files/vectorFiles';
+export { createVectorForm, createVectorGather, type VectorForm, type VectorGather } from './files/vectorForm';
 export { markerBytes, markerRanges, type MarkerBytes, type MarkerRange } from './files/markers';
 export { synthVersion } from './version';
 
@@ -100,6 +123,8 @@ export {
   type FrameStretch,
   type FrameStretches,
 } from './measure/frameMeasure';
+export { createSeamCollector } from './measure/seam';
+export { symbolPeaksOf } from './measure/symbolPeaks';
 export { createWindow } from './measure/window';
 export {
   createWelch,
@@ -138,8 +163,46 @@ export {
 } from './measure/evm';
 export { createDemodulator, type Demodulator, type FoundSymbol } from './receive/demodulate';
 
+// reception of captures
+export { createReception, type CaptureOptions, type CaptureStage, type Reception } from './receive/receiveCapture';
+export { causeWords, measuredSymbolsWords, recipeWords } from './receive/words';
+export { createLookAlikes, type Likeness, type LookAlikes } from './receive/lookAlike';
+export type {
+  BoundedDb,
+  CaptureResult,
+  ChannelReport,
+  ChannelSource,
+  ConstellationPoints,
+  ImbalanceReport,
+  MeasuredCapture,
+  NullPower,
+  RefusedCapture,
+  UnrecognisedCapture,
+} from './receive/types';
+export {
+  layoutOfBench,
+  layoutWords,
+  plainLayout,
+  type ByteSource,
+  type CaptureLayout,
+  type LayoutOutcome,
+} from './receive/files/captureLayout';
+export { readSigmfMeta } from './receive/files/containers';
+export { guessLayout } from './receive/files/guessLayout';
+export { captureReadings, type CaptureReading, type ReadingsOutcome } from './receive/files/captureSource';
+export {
+  createImpairedCapture,
+  noImpairments,
+  type ChannelTap,
+  type Impairments,
+  type ImpairedCapture,
+  type ImpairedVector,
+} from './receive/impair';
+
 // fit and level card
-export { checkFit, levelsAfter } from './fit/remedies';
+export { checkFit } from './fit/checkFit';
+export { judge as judgeFit } from './fit/findings';
+export { levelsAfter, waveAfter } from './fit/levelsAfter';
 export { applyChanges } from './fit/changes';
 export {
   loopClosing,

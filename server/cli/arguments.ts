@@ -1,11 +1,14 @@
 import { parseArgs } from 'node:util';
+import { captureHelp, parseCaptureCommand, type CaptureCommand } from './captureArguments.ts';
 
 export type Command =
   | { name: 'help' }
   | { name: 'version' }
   | { name: 'render'; document: string; bench: string; out: string | null; json: boolean }
+  | { name: 'sidedness'; bench: string; out: string | null; json: boolean }
   | { name: 'verify'; pack: string; json: boolean }
-  | { name: 'inspect'; document: string; json: boolean };
+  | { name: 'inspect'; document: string; json: boolean }
+  | CaptureCommand;
 
 export type Parsed = { ok: true; command: Command } | { ok: false; message: string; json: boolean };
 
@@ -15,11 +18,14 @@ export const helpText = `combwright: from a waveform document to a proven vector
       Renders the document for the bench profile, reads the finished file back,
       proves it and writes the pack (a draft). Without --out the pack gets its own
       name in the current folder.
+  combwright sidedness <bench.json> [--out <pack.zip>]
+      Writes one tone above the carrier in the profile's layout: where an analyser
+      shows it below, the profile's I and Q are not the generator's.
   combwright verify <pack.zip>
       Reads a pack again: every digest, and every word against a new synthesis.
   combwright inspect <document.json>
       Prints the document's figures and digests.
-
+${captureHelp}
   --json      one JSON object on standard output instead of lines
   --help      this text
   --version   the program's and its arithmetic's version
@@ -39,6 +45,9 @@ const options = {
 export function parseCommand(argv: string[]): Parsed {
   const json = argv.includes('--json');
   const wrong = (message: string): Parsed => ({ ok: false, message, json });
+  const isHelp = argv.includes('--help') || argv.includes('-h');
+  const capture = isHelp ? null : parseCaptureCommand(argv);
+  if (capture !== null) return capture.ok ? capture : wrong(capture.message);
   let values: { out?: string; json?: boolean; help?: boolean; version?: boolean };
   let positionals: string[];
   try {
@@ -49,8 +58,9 @@ export function parseCommand(argv: string[]): Parsed {
   if (values.help) return { ok: true, command: { name: 'help' } };
   if (values.version) return { ok: true, command: { name: 'version' } };
   const [name, ...files] = positionals;
-  if (name === undefined) return wrong('A command is missing: render, verify or inspect');
-  if (name !== 'render' && values.out !== undefined) return wrong('--out belongs to render');
+  if (name === undefined) return wrong('A command is missing: render, sidedness, verify or inspect');
+  if (name !== 'render' && name !== 'sidedness' && values.out !== undefined)
+    return wrong('--out belongs to render and sidedness');
   switch (name) {
     case 'render': {
       const [document, bench] = files;
@@ -58,6 +68,12 @@ export function parseCommand(argv: string[]): Parsed {
         return wrong('render takes a document and a bench profile');
       if (values.out === '') return wrong('--out needs a file name');
       return { ok: true, command: { name, document, bench, out: values.out ?? null, json } };
+    }
+    case 'sidedness': {
+      const [bench] = files;
+      if (bench === undefined || files.length > 1) return wrong('sidedness takes one bench profile');
+      if (values.out === '') return wrong('--out needs a file name');
+      return { ok: true, command: { name, bench, out: values.out ?? null, json } };
     }
     case 'verify': {
       const [pack] = files;

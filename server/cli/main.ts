@@ -1,8 +1,10 @@
 import path from 'node:path';
 import { loadSampleEngine } from '../sampleEngine.ts';
 import { helpText, parseCommand, type Command } from './arguments.ts';
+import { impair } from './impair.ts';
 import { inspect } from './inspect.ts';
 import { done, refused, usage, type Outcome } from './outcome.ts';
+import { receive } from './receive.ts';
 import { render } from './render.ts';
 import { verify } from './verify.ts';
 import { versionLine } from './version.ts';
@@ -31,6 +33,10 @@ async function run(command: Command): Promise<Outcome> {
       return verify(command, cancelSignal());
     case 'inspect':
       return inspect(command);
+    case 'receive':
+      return receive(command, cancelSignal());
+    case 'impair':
+      return impair(command, cancelSignal());
   }
 }
 

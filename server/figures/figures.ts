@@ -21,7 +21,10 @@ import { PICTURE_COLUMNS, PICTURE_ROWS } from './picture.ts';
 /** Up to this a grid is drawn small at once, in the server's own thread. */
 const SMALL_JSON = 64 * 1024;
 
-const version = String(synthVersion);
+/** Raised where more is measured of the same samples. */
+const MEASURES = 2;
+
+const version = `${synthVersion}.${MEASURES}`;
 
 export interface Figures {
   /** In the transaction of a save: the numbers stand at once, the rest follows. */

@@ -1,10 +1,14 @@
 import type { MeasuredFigures } from '@/lib/contracts/waveforms';
 import {
   createFrameMeasure,
+  createSeamCollector,
   createSynthesis,
   reconstructedPeak,
+  symbolPeaksOf,
   vectorStats,
   type FrameMeasuring,
+  type SeamMeasure,
+  type SymbolPeaks,
   type WaveformContent,
 } from '@/lib/synth';
 import { sampleEngine } from '../sampleEngine.ts';
@@ -19,6 +23,9 @@ export interface RenderedLevels {
   interpolatedPeak: number;
   /** Of the file's own samples between each other, eight times finer. */
   reconstructedPeak: number;
+  /** Absent in figures that an older version kept. */
+  seam?: SeamMeasure | null;
+  symbolPeaks?: SymbolPeaks | null;
 }
 
 export interface ContentMeasures {
@@ -38,17 +45,29 @@ function finish(measuring: FrameMeasuring) {
   return measuring.result();
 }
 
+/** What a very long file is measured by: without its pad and with no more gap than a suffix needs, then fewer repeats. */
+function shortened(content: WaveformContent, samples: number): WaveformContent {
+  if (samples <= MEASURED_SAMPLES_MOST) return content;
+  const { timing, overlapSamples } = content;
+  return {
+    ...content,
+    timing: { ...timing, padSamples: 0, gapSamples: Math.min(timing.gapSamples, overlapSamples) },
+  };
+}
+
 export function measureContent(content: WaveformContent): ContentMeasures {
   const options = { engine: sampleEngine() };
-  let measuring = createFrameMeasure(content, options);
   const { repeats } = content.timing;
+  const samplesOf = (measuring: FrameMeasuring) => measuring.totalSteps * STEP_SAMPLES;
+  let measuring = createFrameMeasure(content, options);
+  const measured = shortened(content, samplesOf(measuring));
+  if (measured !== content) measuring = createFrameMeasure(measured, options);
   let measuredRepeats = repeats;
-  const samples = measuring.totalSteps * STEP_SAMPLES;
-  if (samples > MEASURED_SAMPLES_MOST && repeats > 1) {
-    measuredRepeats = Math.max(1, Math.floor((repeats * MEASURED_SAMPLES_MOST) / samples));
-    measuring = createFrameMeasure({ ...content, timing: { ...content.timing, repeats: measuredRepeats } }, options);
+  if (samplesOf(measuring) > MEASURED_SAMPLES_MOST && repeats > 1) {
+    measuredRepeats = Math.max(1, Math.floor((repeats * MEASURED_SAMPLES_MOST) / samplesOf(measuring)));
+    measuring = createFrameMeasure({ ...measured, timing: { ...measured.timing, repeats: measuredRepeats } }, options);
   }
-  const { power, symbolPaprDb } = finish(measuring);
+  const { power, symbolPaprDb, symbolPeakPower } = finish(measuring);
   let worstSymbol: number | null = null;
   symbolPaprDb.forEach((paprDb, symbol) => {
     if (Number.isNaN(paprDb)) return;
@@ -61,18 +80,27 @@ export function measureContent(content: WaveformContent): ContentMeasures {
       worstSymbol,
       measuredRepeats,
     },
-    levels: measuredRepeats === repeats ? renderedLevels(content, Math.sqrt(power.peakPower)) : null,
+    levels:
+      measuredRepeats === repeats && measured === content
+        ? renderedLevels(content, Math.sqrt(power.peakPower), symbolPeaksOf(symbolPeakPower))
+        : null,
   };
 }
 
-function renderedLevels(content: WaveformContent, interpolatedPeak: number): RenderedLevels | null {
+function renderedLevels(
+  content: WaveformContent,
+  interpolatedPeak: number,
+  symbolPeaks: SymbolPeaks | null,
+): RenderedLevels | null {
   const synthesis = createSynthesis(content, { engine: sampleEngine() });
   if (synthesis.samples > HELD_SAMPLES_MOST) return null;
   const stats = vectorStats(synthesis);
   const held = new Float64Array(2 * synthesis.samples);
+  const seam = createSeamCollector();
   for (let at = 0; at < held.length;) {
     const count = synthesis.read(held.subarray(at, at + 2 * STEP_SAMPLES));
     if (count === 0) break;
+    seam.add(held.subarray(at, at + 2 * count), count);
     at += 2 * count;
   }
   const source = {
@@ -86,5 +114,7 @@ function renderedLevels(content: WaveformContent, interpolatedPeak: number): Ren
     componentPeak: stats.componentPeak,
     interpolatedPeak,
     reconstructedPeak: Math.sqrt(reconstructedPeak(source, content.timing.mode).power),
+    seam: content.timing.mode === 'loop' ? seam.result() : null,
+    symbolPeaks,
   };
 }

@@ -1,9 +1,11 @@
 import { canonicalJson } from '@/lib/document/digest';
+import { sidednessWords } from '@/lib/document/sidedness';
 import type { Manifest } from '@/lib/document/manifestSchema';
 import {
   deriveFigures,
   markerBytes,
   synthVersion,
+  vectorFiles,
   type BenchProfile,
   type CellValues,
   type FrameLayout,
@@ -23,7 +25,7 @@ import { payloadName } from './manifest/describeInks.ts';
 import type { PackState } from './packTypes.ts';
 import { packVersion } from './packVersion.ts';
 import { readmeText } from './readme.ts';
-import { sigmfMeta } from './sigmfMeta.ts';
+import { sigmfDatatype, sigmfMeta } from './sigmfMeta.ts';
 import type { VectorProof } from './vectorProof.ts';
 
 export type FileRole = Manifest['files'][number]['role'];
@@ -44,17 +46,30 @@ export interface EntryInput {
   values: CellValues;
   scale: WordScale;
   proof: VectorProof;
-  vectorBytes: number;
   /** Filled as the payload entries are made. */
   payloads: Map<number, PayloadCount>;
   cardText: string;
 }
 
-export const vectorNameOf = (baseName: string, profile: BenchProfile): string =>
-  `${baseName}.${profile.content.fileName.extension}`;
+export const vectorNameOf = (baseName: string, ending: string, profile: BenchProfile): string =>
+  `${baseName}${ending}.${profile.content.fileName.extension}`;
 
-export const stateWordsOf = (state: PackState): string =>
-  state === 'draft' ? 'Draft, not for the bench.' : `Released, edition ${state}.`;
+/** The vector's entries, one or two, as the manifest lists them. */
+export function vectorEntriesOf(baseName: string, profile: BenchProfile, proof: VectorProof): Manifest['files'] {
+  return proof.files.map(({ role, ending, bytes, sha256 }) => ({
+    name: vectorNameOf(baseName, ending, profile),
+    role,
+    bytes,
+    sha256,
+  }));
+}
+
+/** What a pack is to those who hold it; a draft that is its profile's sidedness waveform is no draft of anything. */
+export function stateWordsOf(state: PackState, document: WaveformDocument, profile: BenchProfile): string {
+  if (state !== 'draft') return `Released, edition ${state}.`;
+  if (sidednessWords(document, profile) !== null) return 'Sidedness check of a bench profile, no released waveform.';
+  return 'Draft, not for the bench.';
+}
 
 /** Saturation that the document asked for is said wherever the vector is described. */
 export function saturatedWordsOf({ saturated }: VectorProof): string | null {
@@ -77,20 +92,24 @@ function* markerChunks(input: EntryInput): Generator<Uint8Array> {
 const wantsMarkers = ({ document, profile }: EntryInput): boolean =>
   document.content.markers.length > 0 && profile.content.markers.packing === 'bytes';
 
+const headBytesOf = ({ document, profile }: EntryInput): number =>
+  vectorFiles(document.content, profile.content)[0]!.head.length;
+
 function readme(input: EntryInput): string {
   const { document, profile, layout, values, baseName } = input;
   const { content } = document;
   const { sampleClock, sampleClockHz } = deriveFigures(content);
   const { numerator, denominator } = sampleClock;
-  const hasMeta = metaOf(input) !== null;
+  const type = sigmfDatatype(profile.content);
   return readmeText({
     baseName,
-    stateWords: stateWordsOf(input.state),
+    stateWords: stateWordsOf(input.state, document, profile),
+    sidednessWords: sidednessWords(document, profile),
     versions: `Made by Combwright, synthesis ${synthVersion}, pack ${packVersion}.`,
-    vectorName: vectorNameOf(baseName, profile),
-    vectorBytes: input.vectorBytes,
+    vectors: vectorEntriesOf(baseName, profile, input.proof),
     vectorSha256Hex: input.proof.sha256,
-    metaWritten: hasMeta,
+    headBytes: headBytesOf(input),
+    metaMissing: 'missing' in type ? type.missing : null,
     markersName: wantsMarkers(input) ? `${baseName}-markers.bin` : null,
     bench: profile.content,
     scale: input.scale.scale,
@@ -115,10 +134,11 @@ function metaOf(input: EntryInput): object | null {
     bench: profile.content,
     sampleClockHz: deriveFigures(document.content).sampleClockHz,
     sha512Hex: input.proof.sha512,
-    datasetName: vectorNameOf(baseName, profile),
+    headBytes: headBytesOf(input),
+    datasetName: vectorEntriesOf(baseName, profile, input.proof)[0]!.name,
     baseName,
     title: document.about.title,
-    packNote: stateWordsOf(input.state),
+    packNote: stateWordsOf(input.state, document, profile),
     symbols: Array.from({ length: layout.symbolCount }, (_, symbol) => ({
       startSample: layout.symbolStarts[symbol]!,
       samples: layout.prefixes[symbol]! + layout.usefulSamples,

@@ -1,8 +1,8 @@
 import {
   bitsPerCell,
-  bytesPerSample,
   createCellCensus,
   deriveFigures,
+  vectorBytes,
   type BenchContent,
   type WaveformContent,
 } from '@/lib/synth';
@@ -30,5 +30,5 @@ export function packBytesOf(content: WaveformContent, bench: BenchContent): numb
   const repeats =
     restarts || bits === 0 ? 1 : Math.max(1, Math.min(content.timing.repeats, Math.floor(mostPayloadBits / bits)));
   const markerBytes = content.markers.length > 0 && bench.markers.packing === 'bytes' ? fileSamples : 0;
-  return fileSamples * bytesPerSample(bench) + markerBytes + repeats * (usedCells * 8 + bits / 8) + textBytes;
+  return vectorBytes(content, bench) + markerBytes + repeats * (usedCells * 8 + bits / 8) + textBytes;
 }

@@ -1,6 +1,6 @@
 import { createHash } from 'node:crypto';
 import { createReadStream } from 'node:fs';
-import { open, stat } from 'node:fs/promises';
+import { open, stat, type FileHandle } from 'node:fs/promises';
 import path from 'node:path';
 import { baseName as baseNameOf } from '@/lib/document/packNames';
 import type { Manifest } from '@/lib/document/manifestSchema';
@@ -19,7 +19,7 @@ import {
   saturatedWordsOf,
   sideEntries,
   stateWordsOf,
-  vectorNameOf,
+  vectorEntriesOf,
   type EntryInput,
   type SideEntry,
 } from './entries.ts';
@@ -73,6 +73,7 @@ export function refuseSaturation(document: WaveformDocument, saturated: { compon
 /** What decides whether a pack may be offered: every word equal, the reader's sample count, a finite EVM. */
 export function requireProof(proof: VectorProof, samples: number): void {
   const failed = (message: string) => new PackError('proof_failed', `Not offered: ${message}.`);
+  if (proof.headsDiffer > 0) throw failed(`${proof.headsDiffer} of its files begin with another head`);
   if (proof.samplesRead !== samples) throw failed(`the file has ${proof.samplesRead} samples instead of ${samples}`);
   if (proof.wordsDifferent > 0)
     throw failed(`${proof.wordsDifferent} of ${proof.wordsCompared} words differ from a second rendering`);
@@ -88,7 +89,6 @@ export function describePack(given: {
   scale: WordScale;
   measure: RenderingMeasure;
   proof: VectorProof;
-  vectorBytes: number;
 }) {
   const { document, profile, state, scale, measure, proof } = given;
   const levels = packLevels(measure, scale, proof);
@@ -129,7 +129,6 @@ export function describePack(given: {
     values,
     scale,
     proof,
-    vectorBytes: given.vectorBytes,
     payloads,
     cardText,
   };
@@ -137,7 +136,7 @@ export function describePack(given: {
   const safety = [...(state === 'draft' ? [stateWordsOf(state)] : []), ...points.map(({ text }) => text)];
   return {
     baseName,
-    vectorName: vectorNameOf(baseName, profile),
+    vectors: vectorEntriesOf(baseName, profile, proof),
     before,
     after,
     levels,
@@ -196,31 +195,30 @@ async function make(request: PackRequest, folder: string): Promise<MadePack> {
   const measure = await measureRendering(content, { signal, onProgress: stepProgress(onProgress, 'rendering') });
   const scale = scaleOf(document, profile, measure);
 
-  const vectorFile = path.join(folder, 'vector');
-  const saturated = await writeVector(vectorFile, content, bench, scale, {
+  const { saturated, written: vectorFiles } = await writeVector(folder, content, bench, scale, {
     signal,
     onProgress: stepProgress(onProgress, 'quantizing'),
   });
   refuseSaturation(document, saturated);
 
-  const vectorBytes = (await stat(vectorFile)).size;
-  const handle = await open(vectorFile, 'r');
+  const handles: FileHandle[] = [];
   let proof: VectorProof;
   try {
-    const place = { handle, offsetBytes: 0, bytes: vectorBytes };
+    for (const { file } of vectorFiles) handles.push(await open(file, 'r'));
+    const places = await Promise.all(
+      handles.map(async (handle) => ({ handle, offsetBytes: 0, bytes: (await handle.stat()).size })),
+    );
     const progress = stepProgress(onProgress, 'readingBack');
-    proof = await proveVector(content, bench, scale, place, { signal, onProgress: progress });
+    proof = await proveVector(content, bench, scale, places, { signal, onProgress: progress });
   } finally {
-    await handle.close();
+    for (const handle of handles) await handle.close();
   }
   requireProof(proof, measure.stats.samples);
 
   const writing = stepProgress(onProgress, 'writing');
-  const pack = describePack({ document, profile, state, scale, measure, proof, vectorBytes });
-  const files: Manifest['files'] = [
-    { name: pack.vectorName, role: 'vector', bytes: vectorBytes, sha256: proof.sha256 },
-  ];
-  const sources: ZipSource[] = [{ name: pack.vectorName, from: vectorFile }];
+  const pack = describePack({ document, profile, state, scale, measure, proof });
+  const files: Manifest['files'] = [...pack.vectors];
+  const sources: ZipSource[] = pack.vectors.map(({ name }, i) => ({ name, from: vectorFiles[i]!.file }));
   const add = async (entry: SideEntry) => {
     const file = path.join(folder, `entry-${sources.length}`);
     const tally = createTally();
@@ -254,7 +252,7 @@ async function make(request: PackRequest, folder: string): Promise<MadePack> {
     fileBytes: (await stat(file)).size,
     fileSha256,
     baseName: pack.baseName,
-    vectorName: pack.vectorName,
+    vectorName: pack.vectors[0]!.name,
     vectorSha256: proof.sha256,
     manifest,
     manifestText,

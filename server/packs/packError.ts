@@ -40,9 +40,9 @@ export function throwIfCancelled(signal: AbortSignal | undefined): void {
 /** What lib/synth refuses and no check before it found; the rest of its codes are mistakes of ours. */
 const synthCodes: Partial<Record<SynthErrorCode, PackErrorCode>> = {
   bad_content: 'invalid',
+  bad_layout: 'invalid',
   marker_outside: 'invalid',
   nothing_painted: 'invalid',
-  not_supported_yet: 'not_supported_yet',
   too_large: 'too_large',
 };
 

@@ -31,7 +31,9 @@ export interface MadePack {
   fileBytes: number;
   fileSha256: string;
   baseName: string;
+  /** Of the one file, or of the first of two. */
   vectorName: string;
+  /** Of the one file; of two: of I's bytes with Q's behind them. */
   vectorSha256: string;
   manifest: Manifest;
   /** manifest.json as it stands in the pack. */

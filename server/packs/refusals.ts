@@ -1,5 +1,5 @@
 import type { Issue } from '@/lib/document/issues';
-import { benchNotSupportedYet, notSupportedYet } from '@/lib/document/notSupportedYet';
+import { layoutIssues } from '@/lib/document/layoutIssues';
 import { checkFit, type BenchProfile, type FitFinding, type MeasuredLevels, type WaveformDocument } from '@/lib/synth';
 import { PackError, type PackIssue } from './packError.ts';
 
@@ -30,21 +30,17 @@ const at =
   });
 
 /**
- * What refuses a pack before anything is rendered: a part that is not built yet, or a hard limit of the profile that is missed (clock,
- * length, granularity, mode, markers). Headroom and level are said, not refused: they may be meant.
+ * What refuses a pack before anything is rendered: a file that cannot be written (a WAV file of 4 GiB), or a hard
+ * limit of the profile that is missed (clock, length, granularity, mode, markers). Headroom and level are said, not refused: they may be meant.
  */
 export function refusalOf(document: WaveformDocument, profile: BenchProfile): PackError | null {
-  const missing = [...notSupportedYet(document).map(at('document')), ...benchNotSupportedYet(profile).map(at('bench'))];
-  if (missing.length > 0) return new PackError('not_supported_yet', 'This version cannot make the pack yet.', missing);
-  const missed = checkFit(document, profile, unmeasured).filter(
-    (finding) => finding.hard && finding.verdict === 'misses',
-  );
-  if (missed.length === 0) return null;
-  return new PackError(
-    'limit_missed',
-    missed.map((finding) => finding.words).join(' '),
-    missed.map((finding) => ({ where: 'bench', pointer: limitPointer[finding.check] ?? '', message: finding.words })),
-  );
+  const unwritten = layoutIssues(profile.content, document.content).map(at('bench'));
+  const missed = checkFit(document, profile, unmeasured)
+    .filter(({ check, hard, verdict }) => hard && verdict === 'misses' && !(check === 'word' && unwritten.length > 0))
+    .map(({ check, words }): PackIssue => ({ where: 'bench', pointer: limitPointer[check] ?? '', message: words }));
+  const issues = [...unwritten, ...missed];
+  if (issues.length === 0) return null;
+  return new PackError('limit_missed', issues.map(({ message }) => message).join(' '), issues);
 }
 
 /** What a person should know though the pack was made: soft findings, and saturation that the document asked for. */

@@ -10,6 +10,8 @@ export interface SigmfInput {
   bench: BenchContent;
   sampleClockHz: number;
   sha512Hex: string;
+  /** Of the file before its first sample. */
+  headBytes: number;
   datasetName: string;
   baseName: string;
   title: string;
@@ -21,14 +23,23 @@ export interface SigmfInput {
 export const sigmfVersion = '1.0.0';
 
 /**
- * SigMF's name for the words of a profile, or null where SigMF has none: it knows I before Q, interleaved or not at all,
- * and no mirrored spectrum, so that swapped or negated components would be misread in silence.
+ * SigMF's name for the words of a profile, or in words why it has none: it knows I before Q, interleaved or not at all, no
+ * mirrored spectrum and no bits beside the number, so that other words would be misread in silence. Unsigned types have
+ * their zero in the middle of the word. A head is named in bytes (core:header_bytes).
  */
-export function sigmfDatatype(bench: BenchContent): string | null {
-  const plain = bench.container === 'raw' && bench.layout === 'interleaved' && bench.numberFormat === 'twosComplement';
-  if (!plain || bench.swapIq || bench.negateQ || bench.markers.packing === 'lowBits') return null;
-  if (bench.word === 'int8') return 'ci8';
-  return `${bench.word === 'float32' ? 'cf32' : 'ci16'}_${bench.byteOrder === 'little' ? 'le' : 'be'}`;
+export function sigmfDatatype(bench: BenchContent): { datatype: string } | { missing: string } {
+  if (bench.container === 'csv') return { missing: 'SigMF has no type for text' };
+  if (bench.layout === 'split') return { missing: 'SigMF has no type for I and Q in two files' };
+  if (bench.swapIq) return { missing: 'SigMF has no type for Q before I' };
+  if (bench.negateQ) return { missing: 'SigMF has no type for a negated Q' };
+  if (bench.markers.packing === 'lowBits') return { missing: 'SigMF has no type for markers in the words' };
+  const isOffset = bench.numberFormat === 'offsetBinary';
+  const order = bench.byteOrder === 'little' ? 'le' : 'be';
+  if (bench.word === 'int8') return { datatype: isOffset ? 'cu8' : 'ci8' };
+  if (bench.word === 'float32') return { datatype: `cf32_${order}` };
+  if (isOffset && bench.bits < 16 && bench.align === 'right')
+    return { missing: `SigMF has no type for ${bench.bits}-bit offset binary aligned to the right` };
+  return { datatype: `${isOffset ? 'cu16' : 'ci16'}_${order}` };
 }
 
 /**
@@ -36,12 +47,12 @@ export function sigmfDatatype(bench: BenchContent): string | null {
  * whatever carrier the bench sets. Null where SigMF has no type for the words.
  */
 export function sigmfMeta(input: SigmfInput): object | null {
-  const datatype = sigmfDatatype(input.bench);
-  if (datatype === null) return null;
+  const found = sigmfDatatype(input.bench);
+  if ('missing' in found) return null;
   const standardName = `${input.baseName}.sigmf-data`;
   return {
     global: {
-      'core:datatype': datatype,
+      'core:datatype': found.datatype,
       'core:version': sigmfVersion,
       'core:sample_rate': input.sampleClockHz,
       'core:num_channels': 1,
@@ -50,7 +61,7 @@ export function sigmfMeta(input: SigmfInput): object | null {
       'core:recorder': 'Combwright',
       'core:description': `${input.title}. ${input.packNote}`,
     },
-    captures: [{ 'core:sample_start': 0 }],
+    captures: [{ 'core:sample_start': 0, ...(input.headBytes > 0 ? { 'core:header_bytes': input.headBytes } : {}) }],
     annotations: input.symbols.map((symbol, l) => ({
       'core:sample_start': symbol.startSample,
       'core:sample_count': symbol.samples,

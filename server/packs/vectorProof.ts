@@ -1,6 +1,4 @@
-import { createHash } from 'node:crypto';
-import { readSync } from 'node:fs';
-import type { FileHandle } from 'node:fs/promises';
+import { createHash, type Hash } from 'node:crypto';
 import {
   createCellPower,
   createCellValues,
@@ -8,6 +6,8 @@ import {
   createEvmMeter,
   createReconstructedPeak,
   createSynthesis,
+  createVectorForm,
+  createVectorGather,
   createWordReader,
   createWordWriter,
   type BenchContent,
@@ -15,27 +15,27 @@ import {
   type ReconstructedPeak,
   type SaturationCount,
   type UnpaintedLine,
+  type VectorFile,
   type WaveformContent,
   type WordScale,
 } from '@/lib/synth';
 import { sampleEngine } from '../sampleEngine.ts';
 import type { StepOptions } from './measureRendering.ts';
-import { throwIfCancelled } from './packError.ts';
+import { PackError, throwIfCancelled } from './packError.ts';
+import { readVector, type VectorPlace, type VectorReading } from './vectorPlaces.ts';
 import { createYielder } from './yielder.ts';
 
-/** Where a finished vector lies: a file, or a stored entry of a pack. */
-export interface VectorPlace {
-  handle: FileHandle;
-  offsetBytes: number;
-  bytes: number;
-}
-
-/** What reading the finished file back gave. */
+/** What reading the finished file, or both files, back gave. */
 export interface VectorProof {
+  /** Of the one file; of two: of I's bytes with Q's behind them. */
   sha256: string;
+  /** Of the first file. */
   sha512: string;
-  /** Its first bytes, as many as eight words of any kind take. */
-  head: Uint8Array;
+  files: { role: VectorFile['role']; ending: VectorFile['ending']; bytes: number; sha256: string }[];
+  /** The first four samples of each file, heads left out. */
+  firstParts: Uint8Array[];
+  /** Files whose head is not the one that their samples ask for. */
+  headsDiffer: number;
   samplesRead: number;
   wordsCompared: number;
   wordsDifferent: number;
@@ -52,7 +52,7 @@ export interface VectorProof {
 }
 
 const blockSamples = 1 << 16;
-const headBytes = 32;
+const firstSamples = 4;
 /** The demodulation's part of the whole reading, the rest is the peak between the samples. */
 const demodulationShare = 0.7;
 
@@ -64,7 +64,7 @@ export async function proveVector(
   content: WaveformContent,
   bench: BenchContent,
   scale: WordScale,
-  place: VectorPlace,
+  places: readonly VectorPlace[],
   options: StepOptions = {},
 ): Promise<VectorProof> {
   const synthesis = createSynthesis(content, { engine: sampleEngine() });
@@ -89,32 +89,42 @@ export async function proveVector(
     lines.add(symbol, foundValues);
     if (symbol === content.symbolCount - 1) meter.endFrame();
   });
-  const size = reader.bytesPerSample;
+  const form = createVectorForm(content, bench);
+  const gather = createVectorGather(bench);
+  const { files } = form;
+  const reading = readVector(files, places);
   const words = new Float64Array(2 * blockSamples);
-  const expected = new Uint8Array(blockSamples * size);
-  const found = new Uint8Array(blockSamples * size);
-  const sha256 = createHash('sha256');
+  const expected = new Uint8Array(blockSamples * writer.bytesPerSample);
+  const hashes = files.map(() => createHash('sha256'));
   const sha512 = createHash('sha512');
-  let head = new Uint8Array(0);
+  const digest = (parts: readonly Uint8Array[]) => {
+    parts.forEach((part, i) => hashes[i]!.update(part));
+    sha512.update(parts[0]!);
+  };
+  const headsDiffer = await reading.headsDiffer();
+  digest(await reading.heads());
+  let firstParts: Uint8Array[] = [];
   let samplesRead = 0;
   let wordsDifferent = 0;
   let sumI = 0;
   let sumQ = 0;
-  const wholeSamples = Math.floor(place.bytes / size);
+  const wholeSamples = reading.samples;
+  if (wholeSamples === 0) throw new PackError('proof_failed', 'Not offered: the file has no whole sample.');
   while (samplesRead < wholeSamples) {
     throwIfCancelled(options.signal);
     const count = Math.min(blockSamples, wholeSamples - samplesRead);
-    const bytes = count * size;
-    await readInto(place.handle, found, bytes, place.offsetBytes + samplesRead * size);
-    const stored = found.subarray(0, bytes);
-    sha256.update(stored);
-    sha512.update(stored);
-    if (samplesRead === 0) head = stored.slice(0, headBytes);
+    const stored = await reading.read(samplesRead, count);
+    digest(stored);
+    if (samplesRead === 0)
+      firstParts = files.map(({ bytesPerSample }, i) => stored[i]!.slice(0, firstSamples * bytesPerSample));
     const got = synthesis.readWords(writer, count, expected);
     // A file longer than the synthesis has words that nothing rendered: each counts as different.
-    wordsDifferent +=
-      countDifferent(stored.subarray(0, got * size), expected.subarray(0, got * size), size / 2) + 2 * (count - got);
-    reader.readWords(stored, 0, count, words);
+    wordsDifferent += 2 * (count - got);
+    form.form(expected, got).forEach((meant, i) => {
+      const { bytesPerSample, wordsPerSample } = files[i]!;
+      wordsDifferent += countDifferent(stored[i]!.subarray(0, meant.length), meant, bytesPerSample / wordsPerSample);
+    });
+    reader.readWords(gather.gather(stored, count), 0, count, words);
     for (let i = 0; i < 2 * count; i += 2) {
       sumI += words[i]!;
       sumQ += words[i + 1]!;
@@ -125,21 +135,23 @@ export async function proveVector(
     options.onProgress?.((demodulationShare * samplesRead) / wholeSamples);
   }
   // A rest that is no whole sample belongs to the digest and is a wrong word.
-  const restBytes = place.bytes - wholeSamples * size;
-  if (restBytes > 0) {
-    const rest = new Uint8Array(restBytes);
-    await readInto(place.handle, rest, restBytes, place.offsetBytes + wholeSamples * size);
-    sha256.update(rest);
-    sha512.update(rest);
-    wordsDifferent += 1;
-  }
+  const rests = await reading.rests();
+  digest(rests);
+  wordsDifferent += rests.filter(({ length }) => length > 0).length;
   const isExpected = wordsDifferent === 0 && wholeSamples === synthesis.samples;
   const excerpt = excerptOf(content, isExpected && values.isRepeatAlike, wholeSamples, synthesis.layout.repeatSamples);
   const perWord = Math.max(1, samplesRead) * scale.fullScale;
   return {
-    sha256: sha256.digest('hex'),
+    sha256: await jointDigest(hashes, places),
     sha512: sha512.digest('hex'),
-    head,
+    files: files.map(({ role, ending }, i) => ({
+      role,
+      ending,
+      bytes: places[i]!.bytes,
+      sha256: hashes[i]!.digest('hex'),
+    })),
+    firstParts,
+    headsDiffer,
     samplesRead,
     wordsCompared: 2 * samplesRead,
     wordsDifferent,
@@ -149,11 +161,26 @@ export async function proveVector(
     evm: meter.report(),
     comparedInks,
     worstUnpainted: lines.worstUnpainted(),
-    reconstructedPeak: await findPeak(content, bench, scale, place, excerpt, {
+    reconstructedPeak: await findPeak(content, bench, scale, reading, files, excerpt, {
       signal: options.signal,
       onProgress: (ratio) => options.onProgress?.(demodulationShare + (1 - demodulationShare) * ratio),
     }),
   };
+}
+
+/** The digest of all files, one behind the other: the first one's goes on with the second's bytes, read once more. */
+async function jointDigest(hashes: Hash[], places: readonly VectorPlace[]): Promise<string> {
+  const joint = hashes[0]!.copy();
+  const block = new Uint8Array(1 << 20);
+  for (const { handle, offsetBytes, bytes } of places.slice(1)) {
+    for (let done = 0; done < bytes;) {
+      const { bytesRead } = await handle.read(block, 0, Math.min(block.length, bytes - done), offsetBytes + done);
+      if (bytesRead === 0) throw new Error('The vector ended before its size.');
+      joint.update(block.subarray(0, bytesRead));
+      done += bytesRead;
+    }
+  }
+  return joint.digest('hex');
 }
 
 interface Excerpt {
@@ -188,24 +215,29 @@ async function findPeak(
   content: WaveformContent,
   bench: BenchContent,
   scale: WordScale,
-  place: VectorPlace,
+  reading: VectorReading,
+  files: readonly VectorFile[],
   excerpt: Excerpt,
   options: StepOptions,
 ): Promise<ReconstructedPeak> {
   const reader = createWordReader(bench);
-  const size = reader.bytesPerSample;
-  let bytes = new Uint8Array(0);
+  const gather = createVectorGather(bench);
+  let parts: Uint8Array[] = [];
+  let room = 0;
   const source = {
     samples: excerpt.samples,
     read(first: number, count: number, out: Float64Array) {
-      if (bytes.length < count * size) bytes = new Uint8Array(count * size);
+      if (room < count) {
+        parts = files.map(({ bytesPerSample }) => new Uint8Array(count * bytesPerSample));
+        room = count;
+      }
       for (let done = 0; done < count;) {
         const { at, following } = excerpt.placeOf(first + done);
         const part = Math.min(count - done, following);
-        readBytesNow(place, bytes, done * size, part * size, at * size);
+        reading.readNow(at, part, parts, done);
         done += part;
       }
-      reader.readWords(bytes, 0, count, out);
+      reader.readWords(gather.gather(parts, count), 0, count, out);
       for (let i = 0; i < 2 * count; i++) out[i] = out[i]! / scale.fullScale;
     },
   };
@@ -217,22 +249,6 @@ async function findPeak(
     await giveWay();
   }
   return measuring.result();
-}
-
-function readBytesNow(place: VectorPlace, into: Uint8Array, at: number, bytes: number, position: number): void {
-  for (let done = 0; done < bytes;) {
-    const got = readSync(place.handle.fd, into, at + done, bytes - done, place.offsetBytes + position + done);
-    if (got === 0) throw new Error('The vector ended before its size.');
-    done += got;
-  }
-}
-
-async function readInto(handle: FileHandle, into: Uint8Array, bytes: number, position: number): Promise<void> {
-  for (let done = 0; done < bytes;) {
-    const { bytesRead } = await handle.read(into, done, bytes - done, position + done);
-    if (bytesRead === 0) throw new Error('The vector ended before its size.');
-    done += bytesRead;
-  }
 }
 
 function countDifferent(a: Uint8Array, b: Uint8Array, wordBytes: number): number {

@@ -1,12 +1,11 @@
 import { createHash } from 'node:crypto';
 import { open, type FileHandle } from 'node:fs/promises';
 import { crc32 } from 'node:zlib';
-import { baseName as baseNameOf } from '@/lib/document/packNames';
 import { contentDigest, documentDigest, intentDigest, profileDigest, profileFileDigest } from '@/lib/document/digest';
 import type { Manifest } from '@/lib/document/manifestSchema';
 import { parseBenchProfile, parseManifest, parseWaveformDocument } from '@/lib/document/parse';
 import type { ParseResult } from '@/lib/document/issues';
-import { synthVersion, type BenchProfile, type WaveformDocument } from '@/lib/synth';
+import { synthVersion, vectorFiles, type BenchProfile, type WaveformDocument } from '@/lib/synth';
 import { createTally, describePack, manifestTextOf, scaleOf } from './makePack.ts';
 import { packKeyOf } from './manifest/manifest.ts';
 import { measureRendering } from './measureRendering.ts';
@@ -143,33 +142,32 @@ async function verify(handle: FileHandle, signal: AbortSignal | undefined): Prom
     findings.add('manifest.json/state', 'does not agree with the edition');
   await checkEntries(handle, entries, manifest, findings, signal);
   const madeAgain = checkDigests(manifest, document, profile, state, findings);
-  const vectorFile = manifest.files.find((file) => file.role === 'vector');
-  const vector = entries.find((entry) => entry.name === vectorFile?.name);
-  if (!vector) throw damaged('its vector is missing');
+  const vectors = vectorFiles(document.content, profile.content).map(({ role }) => {
+    const listed = manifest.files.find((file) => file.role === role);
+    const entry = entries.find((one) => one.name === listed?.name);
+    if (!entry) throw damaged('its vector is missing');
+    return entry;
+  });
 
   const measure = await measureRendering(document.content, { signal });
   const scale = scaleOf(document, profile, measure);
-  const place = { handle, offsetBytes: vector.offsetBytes, bytes: vector.bytes };
-  const proof = await proveVector(document.content, profile.content, scale, place, { signal });
+  const places = vectors.map(({ offsetBytes, bytes }) => ({ handle, offsetBytes, bytes }));
+  const proof = await proveVector(document.content, profile.content, scale, places, { signal });
+  const { name } = vectors[0]!;
+  if (proof.headsDiffer > 0) findings.add(name, `begins otherwise than a file of ${measure.stats.samples} samples`);
   if (proof.samplesRead !== measure.stats.samples)
-    findings.add(vector.name, `has ${proof.samplesRead} samples instead of ${measure.stats.samples}`);
+    findings.add(name, `has ${proof.samplesRead} samples instead of ${measure.stats.samples}`);
   if (proof.wordsDifferent > 0)
-    findings.add(vector.name, `${proof.wordsDifferent} of ${proof.wordsCompared} words differ from a second rendering`);
+    findings.add(name, `${proof.wordsDifferent} of ${proof.wordsCompared} words differ from a second rendering`);
   findings.end();
 
   if (madeAgain) {
-    const again = describePack({ document, profile, state, scale, measure, proof, vectorBytes: vector.bytes });
-    const most = profile.content.fileName.most;
-    const name = baseNameOf({
-      title: document.about.title,
-      edition: manifest.edition,
-      vectorSha256: proof.sha256,
-      most,
+    const again = describePack({ document, profile, state, scale, measure, proof });
+    again.vectors.forEach((meant, i) => {
+      const { name: found } = vectors[i]!;
+      if (found !== meant.name) findings.add(found, `should be named ${meant.name}`);
     });
-    if (!vector.name.startsWith(`${name}.`)) findings.add(vector.name, `should be named ${name}`);
-    const files: Manifest['files'] = [
-      { name: again.vectorName, role: 'vector', bytes: vector.bytes, sha256: proof.sha256 },
-    ];
+    const files: Manifest['files'] = [...again.vectors];
     for (const entry of [...again.before, ...again.after]) {
       throwIfCancelled(signal);
       const tally = createTally();

@@ -3,7 +3,17 @@ import { createWaveform } from '@/lib/contracts/waveforms';
 import { paLadder } from '@/lib/document/demoDocuments';
 import { ask, type DemoName } from './support/api.ts';
 import { expectAccessible } from './support/axe.ts';
-import { drawnDocument, expectMeasured, expectSaved, inkAt, live, paint, placeOf, session } from './support/table.ts';
+import {
+  drawnDocument,
+  expectMeasured,
+  expectSaved,
+  inkAt,
+  live,
+  paint,
+  placeOf,
+  saveState,
+  session,
+} from './support/table.ts';
 import { expect, test } from './support/test.ts';
 
 // What hands do at the table: strokes, fingers, numbers, inks, and a canvas that comes and goes.
@@ -100,6 +110,23 @@ test('an ink’s form changes every cell painted with it', async ({ as, baseURL 
   const ink = (await drawnDocument(page)).content.tray[PILOT]!;
   expect(ink.role === 'pilot' && ink.value.factors[0]!.sequence).toEqual({ kind: 'gold', cInit: 91, points: 'qpsk' });
   await expectSaved(page);
+});
+
+test('an open ink’s sheet shows what it would do, and leaves nothing behind', async ({ as, baseURL }) => {
+  const page = await openNew(as, baseURL!);
+  const before = { document: await drawnDocument(page), live: await live(page), state: await saveState(page) };
+  await chooseInk(page, /^Pilot, /);
+  await chooseInk(page, /^Pilot, /);
+  const power = page.getByRole('textbox', { name: /^Power/ });
+  await power.fill('12');
+  await power.press('Enter');
+  await expect.poll(async () => (await live(page))!.paprDb).not.toBe(before.live!.paprDb);
+  await expect(page.getByRole('button', { name: /^Pilot, \+12 dB/ }).first()).toBeVisible();
+  expect(await drawnDocument(page)).toEqual(before.document);
+  expect(await saveState(page)).toBe(before.state);
+  await page.getByRole('button', { name: 'Close' }).click();
+  await expect.poll(async () => (await live(page))!.paprDb).toBe(before.live!.paprDb);
+  expect(await drawnDocument(page)).toEqual(before.document);
 });
 
 test('the canvas comes and goes, and changes its size, without a lost context', async ({ as, baseURL }, info) => {

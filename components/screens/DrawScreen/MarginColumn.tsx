@@ -1,10 +1,9 @@
 import { Pressable, StyleSheet, View } from 'react-native';
 import { Button } from '@/components/ui/Button';
 import { Text } from '@/components/ui/Text';
-import { copyText } from '@/components/ui/copyText';
+import { copyAndSay } from '@/components/ui/copyText';
 import { Figure } from '@/components/ui/Figure';
 import { color } from '@/components/ui/theme';
-import { showToast } from '@/components/ui/toast';
 import { OneOf } from '@/components/ui/WordsToPress';
 import { formatInteger, formatQuantity } from '@/lib/drawing/quantities';
 import { inkWord } from '@/lib/drawing/inkStyle';
@@ -14,7 +13,7 @@ import { BLOCK_FIGURES, copyFigures, copyView, figureText, shortName } from './f
 import { figureOf, useLive } from './liveReader';
 import type { TableContext } from './tableContext';
 import type { ViewPage, WidePlaces } from './tableLayout';
-import { useEditorState, useSettings } from './useEditorState';
+import { useEditorState, useShownSettings } from './useEditorState';
 
 type CopiedView = 'time' | 'spectrum' | 'constellation' | 'ccdf' | 'figures';
 
@@ -23,7 +22,7 @@ export function CopyButton({ table, view }: { table: TableContext; view: CopiedV
     const { result } = table.live.get();
     if (!result) return;
     const words = view === 'figures' ? copyFigures(result.figures) : copyView(view, result);
-    void copyText(words).then((done) => showToast(done ? 'Figures copied' : 'Copying was refused'));
+    void copyAndSay(words, 'Figures copied');
   };
   return (
     <Button kind="plain" size="small" label={`Copy the figures of ${VIEW_NAMES[view]}`} onPress={copy}>
@@ -45,7 +44,7 @@ export function useViewWords(
   table: TableContext,
 ): Record<'time' | 'constellation' | 'ccdf' | 'spectrum' | 'cells', string> {
   const { editor } = table;
-  const { tray, fftSize } = useSettings(editor);
+  const { tray, fftSize } = useShownSettings(editor);
   const symbol = useEditorState(editor, (state) => state.chosenSymbol);
   const ink = useEditorState(editor, (state) => state.ink);
   const cursor = useEditorState(editor, (state) => state.cursor);
@@ -202,7 +201,7 @@ function BlockCell({
   const copy = () => {
     if (!figure) return;
     const words = [text.value, text.unit].filter(Boolean).join(' ');
-    void copyText(words).then((done) => showToast(done ? `${figure.name} copied` : 'Copying was refused'));
+    void copyAndSay(words, `${figure.name} copied`);
   };
   return (
     <Pressable

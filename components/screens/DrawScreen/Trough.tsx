@@ -8,7 +8,7 @@ import type { Ink } from '@/lib/synth';
 import type { ToolName } from '@/lib/editor/types';
 import { inkSource, inkSpoken } from './inkWords';
 import type { TableContext } from './tableContext';
-import { useEditorState, useSettings } from './useEditorState';
+import { useEditorState, useShownSettings } from './useEditorState';
 
 const TOOLS: readonly { tool: ToolName; name: string; key: string }[] = [
   { tool: 'brush', name: 'Brush', key: 'B' },
@@ -158,7 +158,7 @@ function TrayInk({ table, ink, place, phone }: { table: TableContext; ink: Ink; 
 /** The inks of this waveform; digits choose, a second press opens the ink's sheet. */
 export function Tray({ table, phone }: { table: TableContext; phone?: boolean }) {
   const { editor, open, rights } = table;
-  const { tray } = useSettings(editor);
+  const { tray } = useShownSettings(editor);
   return (
     <ScrollView
       horizontal

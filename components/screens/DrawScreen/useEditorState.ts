@@ -1,5 +1,5 @@
-import { useSyncExternalStore } from 'react';
-import type { Editor, SessionState } from '@/lib/editor/store';
+import { useMemo, useSyncExternalStore } from 'react';
+import { createShownSettings, type Editor, type SessionState } from '@/lib/editor/store';
 import type { Settings } from '@/lib/editor/types';
 import type { WaveformIntent } from '@/lib/synth';
 
@@ -17,6 +17,12 @@ export function useChangeCount(editor: Editor): number {
 /** The settings: their object is replaced by every change of them, and by nothing else. */
 export function useSettings(editor: Editor): Settings {
   const read = () => editor.document.settings;
+  return useSyncExternalStore(editor.session.subscribe, read, read);
+}
+
+/** The settings with what an open form would do to them. */
+export function useShownSettings(editor: Editor): Settings {
+  const read = useMemo(() => createShownSettings(editor), [editor]);
   return useSyncExternalStore(editor.session.subscribe, read, read);
 }
 

@@ -1,10 +1,9 @@
 import { StyleSheet, View } from 'react-native';
 import { Button } from '@/components/ui/Button';
-import { copyText } from '@/components/ui/copyText';
+import { copyAndSay } from '@/components/ui/copyText';
 import { Notice } from '@/components/ui/Notice';
 import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
-import { showToast } from '@/components/ui/toast';
 import type { ShownLink } from '@/lib/contracts/people';
 import { when } from '../when';
 
@@ -17,13 +16,7 @@ export function ShownLinkBox({ link }: { link: ShownLink }) {
           {link.url}
         </Text>
         <Text variant="small">{`Works once, until ${when(link.expiresAtMs)}. Hand it over by a way you trust.`}</Text>
-        <Button
-          onPress={() =>
-            void copyText(link.url).then((done) => showToast(done ? 'Link copied' : 'Copying was refused'))
-          }
-        >
-          Copy the link
-        </Button>
+        <Button onPress={() => void copyAndSay(link.url, 'Link copied')}>Copy the link</Button>
       </View>
     </Notice>
   );

@@ -2,7 +2,9 @@ import { createStore } from 'zustand/vanilla';
 import type { StoreApi } from 'zustand/vanilla';
 import type { BenchContent } from '@/lib/synth/index';
 import { storedDocument } from '../document';
+import { invertPatch } from '../patch';
 import type { Editor } from '../store';
+import type { Patch } from '../types';
 import type { LiveAnswer, LiveRequest, LiveResult, LiveView } from './protocol';
 
 /** A worker as the client sees it. */
@@ -65,6 +67,8 @@ export function createLiveClient(editor: Editor, startPort: (handlers: LivePortH
   let view = FIRST_VIEW;
   let stopListening: (() => void) | null = null;
   let sequence = 0;
+  /** What the worker shows beside the document. */
+  let previewed: Patch | null = null;
   let nextRequestId = 1;
 
   function refuseWaiting(message: string): void {
@@ -72,10 +76,30 @@ export function createLiveClient(editor: Editor, startPort: (handlers: LivePortH
     waiting.clear();
   }
 
+  function post(patch: Patch, changeCount: number): void {
+    port?.post({ kind: 'patch', sequence: ++sequence, changeCount, patch });
+  }
+
   function open(): void {
     sequence = 0;
+    previewed = null;
     const { changeCount } = editor.session.getState();
     port?.post({ kind: 'open', document: storedDocument(editor.document), changeCount, view });
+    followPreview();
+  }
+
+  /** A real change that ends a preview reaches the session before its listeners: the worker is back at the document by then. */
+  function followPreview(): void {
+    const { preview, changeCount } = editor.session.getState();
+    if (preview === previewed) return;
+    if (previewed) post(invertPatch(previewed), changeCount);
+    if (preview) post(preview, changeCount);
+    previewed = preview;
+  }
+
+  function listen(): () => void {
+    const stops = [editor.session.subscribe(followPreview), editor.onPatch(post)];
+    return () => stops.forEach((stop) => stop());
   }
 
   function stopped(): void {
@@ -113,9 +137,7 @@ export function createLiveClient(editor: Editor, startPort: (handlers: LivePortH
     state,
     start() {
       port?.end();
-      stopListening ??= editor.onPatch((patch, changeCount) => {
-        port?.post({ kind: 'patch', sequence: ++sequence, changeCount, patch });
-      });
+      stopListening ??= listen();
       state.setState({ status: 'starting', message: null, progress: null });
       port = startPort({ onAnswer: answered, onCrash: stopped });
       open();

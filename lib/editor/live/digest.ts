@@ -1,11 +1,26 @@
 import { sha256 } from '@noble/hashes/sha2.js';
 import { bytesToHex } from '@noble/hashes/utils.js';
-import { createStatsCollector, createSynthesis, createWordWriter, interpolationOf, wordScale } from '@/lib/synth/index';
-import type { BenchContent, SampleEngine, Synthesis, VectorStats, WaveformContent } from '@/lib/synth/index';
+import {
+  createStatsCollector,
+  createSynthesis,
+  createVectorForm,
+  createWordWriter,
+  interpolationOf,
+  wordScale,
+} from '@/lib/synth/index';
+import type {
+  BenchContent,
+  ReferenceLevels,
+  SampleEngine,
+  Synthesis,
+  VectorStats,
+  WaveformContent,
+  WordWriter,
+} from '@/lib/synth/index';
 
 const BLOCK_SAMPLES = 1 << 14;
 
-/** The vector's digest, taken block by block: the bytes are those that a pack of the same content and profile holds. */
+/** The vector's digest, of two files together I's before Q's, block by block: the bytes are those of a pack's vector. */
 export interface DigestJob {
   /** One block on; false when done. */
   step(): boolean;
@@ -13,7 +28,7 @@ export interface DigestJob {
   result(): { sha256: string; bytes: number } | null;
 }
 
-/** Levels of a rendering, block by block; done when step gives false. */
+/** One rendering's levels, block by block; done when step gives false. */
 function createStatsPass(synthesis: Synthesis): { step(): boolean; stats(): VectorStats } {
   const collector = createStatsCollector();
   const { repeats, activeSamples, lastActiveSamples } = synthesis.layout;
@@ -26,48 +41,84 @@ function createStatsPass(synthesis: Synthesis): { step(): boolean; stats(): Vect
   };
 }
 
-/** Throws SynthError for a profile or content that cannot be rendered yet. */
-export function createDigestJob(content: WaveformContent, bench: BenchContent, engine?: SampleEngine): DigestJob {
-  const synthesis = createSynthesis(content, { engine });
+/** What a level can refer to, of the whole rendering and between its samples, block by block. */
+export interface LevelsJob {
+  /** One block on; false when done. */
+  step(): boolean;
+  /** After the last step. */
+  levels(): VectorStats & ReferenceLevels;
+}
+
+/** Throws SynthError for a content that cannot be rendered. */
+export function createLevelsJob(content: WaveformContent, engine?: SampleEngine): LevelsJob {
   const oversampling = interpolationOf(content.oversampling);
-  const isOwn = oversampling === content.oversampling;
-  const own = createStatsPass(synthesis);
-  const interpolated = isOwn ? null : createStatsPass(createSynthesis(content, { oversampling, engine }));
+  const own = createStatsPass(createSynthesis(content, { engine }));
+  const interpolated =
+    oversampling === content.oversampling ? null : createStatsPass(createSynthesis(content, { oversampling, engine }));
+  let isOwnDone = false;
+  return {
+    step() {
+      if (isOwnDone) return interpolated!.step();
+      isOwnDone = !own.step();
+      return !isOwnDone || interpolated !== null;
+    },
+    levels() {
+      const stats = own.stats();
+      return { ...stats, interpolatedPeak: interpolated ? interpolated.stats().samplePeak : stats.samplePeak };
+    },
+  };
+}
+
+/** Throws SynthError for a content that cannot be rendered, or a layout that no file can have. */
+export function createDigestJob(content: WaveformContent, bench: BenchContent, engine?: SampleEngine): DigestJob {
+  const levels = createLevelsJob(content, engine);
+  const synthesis = createSynthesis(content, { engine });
+  const form = createVectorForm(content, bench);
   const hash = sha256.create();
-  let phase: 'own' | 'interpolated' | 'words' | 'done' = 'own';
-  let writer: ReturnType<typeof createWordWriter> | null = null;
+  let phase: 'levels' | 'words' | 'done' = 'levels';
+  let writer: WordWriter | null = null;
   let bytes = new Uint8Array(0);
   let written = 0;
-  let isSilent = false;
+  let file = 0; // which of the vector's files is being hashed: one behind the other, each in a pass of its own
+
+  function take(part: Uint8Array): void {
+    hash.update(part);
+    written += part.length;
+  }
+
+  function startFile(): void {
+    synthesis.rewind();
+    form.rewind();
+    take(form.files[file]!.head);
+  }
 
   function startWords(): void {
-    const stats = own.stats();
-    const interpolatedPeak = interpolated ? interpolated.stats().samplePeak : stats.samplePeak;
-    const scale = wordScale(content.level, { ...stats, interpolatedPeak }, bench);
-    isSilent = scale.isSilent;
+    const scale = wordScale(content.level, levels.levels(), bench);
+    if (scale.isSilent) {
+      phase = 'done';
+      return;
+    }
     writer = createWordWriter(bench, scale);
     bytes = new Uint8Array(BLOCK_SAMPLES * writer.bytesPerSample);
-    synthesis.rewind();
-    phase = isSilent ? 'done' : 'words';
+    phase = 'words';
+    startFile();
   }
 
   return {
     step() {
-      if (phase === 'own') {
-        if (!own.step()) {
-          if (interpolated) phase = 'interpolated';
-          else startWords();
-        }
-      } else if (phase === 'interpolated') {
-        if (!interpolated!.step()) startWords();
+      if (phase === 'levels') {
+        if (!levels.step()) startWords();
       } else if (phase === 'words') {
-        const size = writer!.bytesPerSample * synthesis.readWords(writer!, BLOCK_SAMPLES, bytes);
-        hash.update(bytes.subarray(0, size));
-        written += size;
-        if (synthesis.position >= synthesis.samples) phase = 'done';
+        const count = synthesis.readWords(writer!, BLOCK_SAMPLES, bytes);
+        take(form.form(bytes, count)[file]!);
+        if (synthesis.position >= synthesis.samples) {
+          file++;
+          if (file < form.files.length) startFile();
+          else phase = 'done';
+        }
       }
       return phase !== 'done';
     },
-    result: () => (isSilent ? null : { sha256: bytesToHex(hash.digest()), bytes: written }),
+    result: () => (writer === null ? null : { sha256: bytesToHex(hash.digest()), bytes: written }),
   };
 }

@@ -110,6 +110,8 @@ export interface MarkerBytes {
   readonly samples: number;
   /** Fills `out` with the next bytes; returns how many, 0 at the end. */
   read(out: Uint8Array): number;
+  /** What is read next are the bytes from sample `sample` on, 0…samples. Upwards is fastest. */
+  seek(sample: number): void;
   rewind(): void;
 }
 
@@ -128,6 +130,10 @@ export function markerBytes(content: WaveformContent): MarkerBytes {
   return {
     samples: layout.samples,
     rewind,
+    seek(sample) {
+      if (sample < position) rewind();
+      position = sample; // ranges that end before it are passed over by the next read
+    },
     read(out) {
       const count = Math.min(out.length, layout.samples - position);
       const end = position + count;

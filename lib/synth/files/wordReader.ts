@@ -1,13 +1,14 @@
 import { demand } from '../errors';
 import type { BenchContent } from '../types';
-import { bytesPerSample, demandSupported } from './layout';
+import { bytesPerWord, isLowByteFirst, offsetOf, shiftBits } from './layout';
 
-/** The bytes of a file back to words and samples. */
+/** The words of a vector (see createVectorGather) back to numbers and samples. */
 export interface WordReader {
+  /** Of the words, I and Q: what they take as text is another matter. */
   readonly bytesPerSample: number;
   /**
-   * The words of `count` samples from bytes[at…] into `words` (2·count numbers, interleaved): integers as right-aligned
-   * values, floats as stored.
+   * The words of `count` samples from bytes[at…] into `words` (2·count numbers, interleaved), as they were before swapping
+   * and negating: integers as right-aligned values, floats as stored.
    */
   readWords(bytes: Uint8Array, at: number, count: number, words: Float64Array): void;
   /** As readWords, divided by `scale`: samples in units of x. scale 0 gives zeros. */
@@ -15,24 +16,36 @@ export interface WordReader {
 }
 
 /**
- * A reader of the layouts that createWordWriter writes. Left-aligned words are shifted back (their low bits dropped).
- * Throws SynthError `not_supported_yet`, `buffer_too_small` from the reads.
+ * A reader of the words that createWordWriter writes, I first and Q with its own sign again. Left-aligned words are shifted
+ * back (their low bits dropped), offset binary is taken back. Throws SynthError `buffer_too_small` from the reads.
  */
 export function createWordReader(bench: BenchContent): WordReader {
-  demandSupported(bench);
-  const size = bytesPerSample(bench);
-  const isLittle = bench.byteOrder === 'little';
-  const shift = bench.word === 'int16' && bench.align === 'left' ? 16 - bench.bits : 0;
-  const width = size / 2;
+  const width = bytesPerWord(bench);
+  const size = 2 * width;
+  const isLittle = isLowByteFirst(bench);
+  const shift = shiftBits(bench);
+  const offset = offsetOf(bench);
+
+  function readStored(view: DataView, numbers: number, words: Float64Array): void {
+    if (bench.word === 'float32') for (let i = 0; i < numbers; i++) words[i] = view.getFloat32(4 * i, isLittle);
+    else if (bench.word === 'int8') {
+      for (let i = 0; i < numbers; i++) words[i] = offset === 0 ? view.getInt8(i) : view.getUint8(i) - offset;
+    } else if (offset === 0) for (let i = 0; i < numbers; i++) words[i] = view.getInt16(2 * i, isLittle) >> shift;
+    else for (let i = 0; i < numbers; i++) words[i] = (view.getUint16(2 * i, isLittle) >> shift) - offset;
+  }
 
   function readWords(bytes: Uint8Array, at: number, count: number, words: Float64Array): void {
     demand(bytes.length - at >= count * size, 'buffer_too_small', 'Fewer bytes than samples.');
     demand(words.length >= 2 * count, 'buffer_too_small', 'No room for the words.');
-    const view = new DataView(bytes.buffer, bytes.byteOffset + at, count * size);
-    if (bench.word === 'int8') for (let i = 0; i < 2 * count; i++) words[i] = view.getInt8(i);
-    else if (bench.word === 'int16') {
-      for (let i = 0; i < 2 * count; i++) words[i] = view.getInt16(width * i, isLittle) >> shift;
-    } else for (let i = 0; i < 2 * count; i++) words[i] = view.getFloat32(width * i, isLittle);
+    readStored(new DataView(bytes.buffer, bytes.byteOffset + at, count * size), 2 * count, words);
+    if (bench.swapIq) {
+      for (let i = 0; i < 2 * count; i += 2) {
+        const first = words[i]!;
+        words[i] = words[i + 1]!;
+        words[i + 1] = first;
+      }
+    }
+    if (bench.negateQ) for (let i = 1; i < 2 * count; i += 2) words[i] = 0 - words[i]!;
   }
 
   return {

@@ -50,3 +50,9 @@ export function subtractFractions(a: ExactFraction, b: ExactFraction): ExactFrac
     { numerator: 1n, denominator: 1n },
   );
 }
+
+/** Of whole numbers below 2^53. */
+export function greatestCommonDivisor(a: number, b: number): number {
+  while (b !== 0) [a, b] = [b, a % b];
+  return a;
+}

@@ -17,23 +17,32 @@ export function markers(content: WaveformContent, limits: BenchContent): Finding
     hard: true,
     found: used === 0 ? `none of ${spell(count)}` : `${spell(used)} of ${spell(count)}, ${names}`,
   } as const;
-  const miss = (byHowMuch: string, words: string): Finding => ({
+  if (used > count) {
+    return {
+      ...base,
+      distance: used - count,
+      verdict: 'misses',
+      byHowMuch: `${counted(used - count, 'marker')} too many`,
+      words: `${counted(used, 'marker')}; this bench has ${spell(count)}.`,
+    };
+  }
+  const miss = (measured: number, limit: number, distance: number, byHowMuch: string, words: string): Finding => ({
     ...base,
-    distance: Math.max(1, used - count),
+    unit: 'samples',
+    measured,
+    limit,
+    distance,
     verdict: 'misses',
     byHowMuch,
     words,
   });
-  if (used > count) {
-    return miss(
-      `${counted(used - count, 'marker')} too many`,
-      `${counted(used, 'marker')}; this bench has ${spell(count)}.`,
-    );
-  }
   for (const marker of content.markers) {
     const length = marker.lengthSamples;
     if (length < leastSamples) {
       return miss(
+        length,
+        leastSamples,
+        leastSamples - length,
         `${counted(leastSamples - length, 'sample')} short`,
         `“${marker.name}” lasts ${counted(length, 'sample')}; the shortest mark has ${spell(leastSamples)}.`,
       );
@@ -41,16 +50,30 @@ export function markers(content: WaveformContent, limits: BenchContent): Finding
     const starts = markerStarts(content, marker);
     const off = starts.find((start) => start % stepSamples !== 0);
     if (off !== undefined || length % stepSamples !== 0) {
+      const at = off ?? length;
       const part = off !== undefined ? `begins at sample ${spell(off)}` : `lasts ${counted(length, 'sample')}`;
+      const over = ((at % stepSamples) + stepSamples) % stepSamples;
+      const distance = Math.min(over, stepSamples - over);
       return miss(
-        'off the step',
+        at,
+        at - over + (distance === over ? 0 : stepSamples),
+        distance,
+        `${counted(distance, 'sample')} off the step`,
         `“${marker.name}” ${part}; marks stand on multiples of ${spell(stepSamples)} samples.`,
       );
     }
     if (content.timing.mode === 'burst') {
       const samples = fileSamples(content);
-      if (starts.some((start) => start < 0 || start + length > samples)) {
-        return miss('outside the file', `“${marker.name}” reaches past an end of the burst.`);
+      const before = Math.max(0, ...starts.map((start) => -start));
+      const behind = Math.max(0, ...starts.map((start) => start + length - samples));
+      if (before > 0 || behind > 0) {
+        return miss(
+          behind > 0 ? samples + behind : -before,
+          behind > 0 ? samples : 0,
+          Math.max(before, behind),
+          `${counted(Math.max(before, behind), 'sample')} outside the file`,
+          `“${marker.name}” reaches past ${before > 0 ? 'the beginning' : 'the end'} of the burst.`,
+        );
       }
     }
   }
@@ -67,7 +90,7 @@ export function markers(content: WaveformContent, limits: BenchContent): Finding
  * Where a marker's marks begin in the file. Of many repeats the first two and the last: if the first stands on the step, so does every
  * other when the second does, and the outermost reach furthest past the ends.
  */
-function markerStarts(content: WaveformContent, marker: WaveformContent['markers'][number]): number[] {
+export function markerStarts(content: WaveformContent, marker: WaveformContent['markers'][number]): number[] {
   const { oversampling, fftSize, symbolCount, prefixSamples, timing } = content;
   if (marker.at === 'file') return [marker.offsetSamples];
   const repeat = (prefixSum(content) + symbolCount * fftSize + timing.gapSamples) * oversampling;

@@ -1,3 +1,5 @@
+import type { RemedyPrice } from './types';
+
 /** How figures are spelled in findings and cautions: minus U+2212, groups of three by a narrow no-break space from five digits up. */
 
 const MINUS = '\u2212';
@@ -50,4 +52,20 @@ export function spellSeconds(seconds: number): string {
   const [scale, unit] = size >= 1 ? [1, 's'] : size >= 1e-3 ? [1e3, 'ms'] : size >= 1e-6 ? [1e6, 'µs'] : [1e9, 'ns'];
   const value = seconds * scale;
   return `${spell(value, Math.abs(value) >= 100 ? 0 : Math.abs(value) >= 10 ? 1 : 2)} ${unit}`;
+}
+
+/** Parts per million with as many places as its size deserves; a change too small for them is still said. */
+export function spellPpm(ppm: number): string {
+  const size = Math.abs(ppm);
+  if (size === 0) return '0 ppm';
+  if (size < 0.0001) return 'less than 0.0001 ppm';
+  const text = spell(ppm, size >= 1000 ? 0 : size >= 100 ? 1 : size >= 1 ? 2 : 4);
+  return `${ppm > 0 ? '+' : ''}${text} ppm`;
+}
+
+/** "2048 samples more, 0 ppm". */
+export function priceWords({ samples, ppm }: RemedyPrice): string {
+  const count =
+    samples === 0 ? 'No sample more' : `${counted(Math.abs(samples), 'sample')} ${samples > 0 ? 'more' : 'fewer'}`;
+  return `${count}, ${spellPpm(ppm)}`;
 }

@@ -16,9 +16,15 @@ export interface EvmOptions {
     | 'none'
     | 'oneGain'
     | { taps: Float64Array; from: 'tapPerSubcarrier' | 'tapFromPilots'; symbolsPerTap: number | null };
+  /**
+   * The part of the error's degrees of freedom that the fit left, 0…1, where it is known better than 1 − 1/symbolsPerTap: in all, per ink,
+   * per position. 0: the fit took all of it, so nothing was measured and the figure is null.
+   */
+  kept?: { all: number; byInk: ArrayLike<number>; bySubcarrier: ArrayLike<number> };
   /** Words for the recipe. */
   cellsWords?: string;
   dftWindow?: string;
+  phaseTracking?: EvmRecipe['phaseTracking'];
 }
 
 /** Compares found cells with meant ones and pools by power. */
@@ -125,39 +131,39 @@ export function createEvmMeter(options: EvmOptions): EvmMeter {
       const correlation = meantAll > 0 && foundAll > 0 ? Math.min(1, cross / Math.sqrt(meantAll * foundAll)) : 0;
       const symbolsPerTap = fitted ? all[4]! : typeof estimate === 'object' ? estimate.symbolsPerTap : null;
       // one symbol a tap fits everything: nothing is left to correct
-      const kept = symbolsPerTap !== null && symbolsPerTap > 1 ? 1 - 1 / symbolsPerTap : 1;
+      const keptAll = options.kept?.all ?? (symbolsPerTap !== null && symbolsPerTap > 1 ? 1 - 1 / symbolsPerTap : 1);
       const isTold = correlation >= LEAST_CORRELATION;
-      const figure = (sums: Float64Array, at: number): EvmFigure => {
+      const figure = (sums: Float64Array, at: number, left: number): EvmFigure => {
         const meant = sums[at + 3]!;
         const cells = sums[at + 4]!;
-        if (meant === 0 || !isTold) return { ratio: null, db: null, uncorrectedDb: null, cells };
-        const left =
+        if (meant === 0 || !isTold || left <= 0) return { ratio: null, db: null, uncorrectedDb: null, cells };
+        const rest =
           sums[at]! -
           2 * (gainRe * sums[at + 1]! + gainIm * sums[at + 2]!) +
           (gainRe * gainRe + gainIm * gainIm) * meant;
-        const power = Math.max(0, left) / ((1 + gainRe) * (1 + gainRe) + gainIm * gainIm) / meant;
+        const power = Math.max(0, rest) / ((1 + gainRe) * (1 + gainRe) + gainIm * gainIm) / meant;
         return {
-          ratio: Math.sqrt(power / kept),
-          db: 10 * log10(power / kept),
+          ratio: Math.sqrt(power / left),
+          db: 10 * log10(power / left),
           uncorrectedDb: 10 * log10(power),
           cells,
         };
       };
-      const group = (sums: Float64Array): EvmFigure[] =>
-        Array.from({ length: sums.length / PLACES }, (_, i) => figure(sums, PLACES * i));
+      const group = (sums: Float64Array, left?: ArrayLike<number>): EvmFigure[] =>
+        Array.from({ length: sums.length / PLACES }, (_, i) => figure(sums, PLACES * i, left ? left[i]! : keptAll));
       const recipe: EvmRecipe = {
         cells: options.cellsWords ?? 'all used cells',
         estimate: typeof estimate === 'object' ? estimate.from : estimate,
-        phaseTracking: 'none',
+        phaseTracking: options.phaseTracking ?? 'none',
         dftWindow: options.dftWindow ?? 'the useful part, from its first sample',
         frames,
         symbolsPerTap,
       };
       return {
-        all: figure(all, 0),
-        byInk: group(byInk),
+        all: figure(all, 0, keptAll),
+        byInk: group(byInk, options.kept?.byInk),
         bySymbol: group(bySymbol),
-        bySubcarrier: group(bySubcarrier),
+        bySubcarrier: group(bySubcarrier, options.kept?.bySubcarrier),
         correlation,
         recipe,
       };

@@ -1,7 +1,7 @@
 import { log10 } from '../math/exponential';
 import { createCellValues } from '../synthesize/cellValues';
 import { frameLayout, interpolationOf } from '../synthesize/layout';
-import { createSynthesis } from '../synthesize/synthesis';
+import { createSynthesis, powerBefore } from '../synthesize/synthesis';
 import { stretchEnd } from '../synthesize/stretches';
 import type { FrameLayout, RenderOptions } from '../synthesize/types';
 import type { WaveformContent } from '../types';
@@ -56,7 +56,7 @@ function add(into: Running, value: number): void {
   into.high = next;
 }
 
-type FrameOptions = Pick<RenderOptions, 'cells' | 'engine' | 'keepBytes'>;
+type FrameOptions = Pick<RenderOptions, 'cells' | 'engine' | 'keepBytes' | 'powerBefore'>;
 
 /** What is rendered for a frame's measure. */
 interface FramePlan {
@@ -112,7 +112,13 @@ export interface FrameStretches {
 /** Stretches of a document's measure; together, in order, they make createFrameSum's figures whatever the cuts. */
 export function createFrameStretches(content: WaveformContent, options: FrameOptions = {}): FrameStretches {
   const plan = planFrame(content, options);
-  const synthesis = createSynthesis(plan.content, { ...options, oversampling: plan.interpolation });
+  // of the whole content: the plan's may have fewer repeats
+  const before = powerBefore(content, options);
+  const synthesis = createSynthesis(plan.content, {
+    ...options,
+    oversampling: plan.interpolation,
+    powerBefore: before,
+  });
   const { layout } = synthesis;
   const block = new Float64Array(2 * Math.min(BLOCK_SAMPLES, Math.max(1, layout.samples)));
   return {

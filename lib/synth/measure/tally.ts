@@ -314,13 +314,19 @@ export function framePower(sums: {
  * |x|² per symbol, 0 where silent; not changed.
  */
 export function outstandingSymbols(peaks: Float64Array): number[] {
-  const loud = peaks.filter((peak) => peak > 0).sort();
-  if (loud.length === 0) return [];
-  const middle = loud.length >> 1;
-  const median = loud.length % 2 === 1 ? loud[middle]! : (loud[middle - 1]! + loud[middle]!) / 2;
+  const median = medianPeak(peaks);
+  if (median === null) return [];
   const marked: number[] = [];
   peaks.forEach((peak, slot) => {
     if (peak > 0 && 10 * log10(peak / median) >= 3) marked.push(slot);
   });
   return marked;
+}
+
+/** The median of the peaks above zero; null where there is none. */
+export function medianPeak(peaks: Float64Array): number | null {
+  const loud = peaks.filter((peak) => peak > 0).sort();
+  if (loud.length === 0) return null;
+  const middle = loud.length >> 1;
+  return loud.length % 2 === 1 ? loud[middle]! : (loud[middle - 1]! + loud[middle]!) / 2;
 }

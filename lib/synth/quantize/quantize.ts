@@ -4,7 +4,8 @@ import type { SaturationCount } from './types';
 const ROUNDER = 6755399441055744;
 
 /**
- * Integer words of `count` interleaved samples: words[i] = data[i]·scale rounded half to even, saturated at −F−1 and F.
+ * Integer words of `count` interleaved samples: words[i] = data[i]·scale rounded half to even, saturated at −F−1 and F;
+ * the second of each pair times `scaleQ` where that is another (−scale negates Q before it saturates).
  * `words` takes 2·count numbers and must not share memory with `data`. Adds to `counted`.
  */
 export function quantize(
@@ -14,6 +15,7 @@ export function quantize(
   fullScale: number,
   words: Int16Array,
   counted: SaturationCount,
+  scaleQ: number = scale,
 ): void {
   const most = fullScale;
   const least = -fullScale - 1;
@@ -21,7 +23,7 @@ export function quantize(
   const end = 2 * count;
   for (let i = 0; i < end; i += 2) {
     const re = data[i]! * scale + rounder - rounder;
-    const im = data[i + 1]! * scale + rounder - rounder;
+    const im = data[i + 1]! * scaleQ + rounder - rounder;
     if (Math.abs(re) > most || Math.abs(im) > most) {
       const isReOver = re > most || re < least;
       const isImOver = im > most || im < least;

@@ -40,7 +40,7 @@ export interface PlacedValues extends CellValues {
 /**
  * The values of a content's cells. `cells` (L·N ink numbers, kept by reference and never changed here) replaces the
  * content's grid. Every value is multiplied by `gain`.
- * Throws SynthError `bad_content`, `bad_size`, `not_supported_yet` (peak reduction).
+ * Values as they are meant: no peak reduction. Throws SynthError `bad_content`, `bad_size`.
  */
 export function createPlacedValues(
   content: WaveformContent,

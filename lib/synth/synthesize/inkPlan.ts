@@ -1,4 +1,4 @@
-import { demand, SynthError } from '../errors';
+import { demand } from '../errors';
 import { bitsPerCell, pointsOf } from '../mapping/constellations';
 import { createPair, divide } from '../math/doubleDouble';
 import { amplitudeOfDecibels } from '../math/exponential';
@@ -79,8 +79,5 @@ function planInk(ink: Ink, content: WaveformContent, gain: number): InkPlan {
 
 /** The content's inks made ready, every amplitude times `gain`. Throws SynthError `bad_content` for a broken tray. */
 export function planInks(content: WaveformContent, gain: number): InkPlan[] {
-  if (content.peakReduction.kind !== 'none') {
-    throw new SynthError('not_supported_yet', 'Peak reduction is not built yet.');
-  }
   return content.tray.map((ink) => planInk(ink, content, gain));
 }

@@ -48,4 +48,6 @@ export interface PartPlan {
   /** Bins that cells reach: 0…low − 1 and the last `high`. */
   low: number;
   high: number;
+  /** To be called before each enter, where not null. */
+  prepare: (() => void) | null;
 }

@@ -1,7 +1,10 @@
 import { demand } from '../errors';
 import type { WordWriter } from '../files/wordWriter';
+import { activeMeanPower } from '../peak/meanPower';
 import type { WaveformContent } from '../types';
+import { createPlacedValues } from './cellValues';
 import { createFrequencyOffset } from './frequencyOffset';
+import { interpolationOf } from './layout';
 import type { SampleWork } from './partTypes';
 import { createRamp } from './ramp';
 import type { RenderOptions, StatsCollector, Synthesis } from './types';
@@ -18,7 +21,7 @@ const BLOCK_SAMPLES = 4096;
  * Convention: x_l[n] = (1/√N) Σ_k a(k, l) e^{+j2πkn/(N·M)}, prefix = copied tail.
  */
 export function createSynthesis(content: WaveformContent, options: RenderOptions = {}): Synthesis {
-  const plan = planParts(content, options);
+  const plan = planParts(content, options, powerBefore(content, options));
   const { layout, values } = plan;
   const { usefulSamples, overlapSamples, symbolCount, repeats, repeatSamples, prefixes, symbolStarts, samples } =
     layout;
@@ -270,4 +273,32 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
     seek,
     rewind: () => seek(0),
   };
+}
+
+/**
+ * Mean |x|² of the content's frame on the interpolated waveform before any peak reduction: all repeats, prefixes, ramps and last suffixes
+ * in, silent symbols, gap and pad out; 0 when nothing is painted. Where all repeats have the same values, the first, one between and the
+ * last are rendered.
+ */
+export function meanPowerBefore(
+  content: WaveformContent,
+  options: Pick<RenderOptions, 'cells' | 'engine'> = {},
+): number {
+  const { timing } = content;
+  const isShort = timing.repeats > 3 && createPlacedValues(content, options.cells, 1).isRepeatAlike;
+  const before: WaveformContent = {
+    ...content,
+    peakReduction: { kind: 'none' },
+    frequencyOffsetHz: 0, // changes no |x|²
+    timing: isShort ? { ...timing, repeats: 3 } : timing,
+  };
+  const { cells, engine } = options;
+  const synthesis = createSynthesis(before, { cells, engine, oversampling: interpolationOf(content.oversampling) });
+  return activeMeanPower(synthesis, isShort ? timing.repeats - 2 : 1);
+}
+
+/** What the options say, else meanPowerBefore, measured when it is first asked. */
+export function powerBefore(content: WaveformContent, options: RenderOptions): () => number {
+  let measured: number | null = null;
+  return options.powerBefore ?? (() => (measured ??= meanPowerBefore(content, options)));
 }

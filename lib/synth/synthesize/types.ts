@@ -13,6 +13,11 @@ export interface RenderOptions {
   keepBytes?: number;
   /** The engine to compute with; without one (undefined) the same bits are computed here, slower. */
   engine?: SampleEngine | undefined;
+  /**
+   * Gives what targets of peak reduction stand over, meanPowerBefore of the whole content: for callers that know it already. Without it
+   * it is measured once, when the first symbol is rendered.
+   */
+  powerBefore?: (() => number) | undefined;
 }
 
 /**

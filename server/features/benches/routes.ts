@@ -5,6 +5,7 @@ import type { Figures } from '../../figures/figures.ts';
 import type { Mount } from '../../http/mount.ts';
 import { createFitReader } from './fit.ts';
 import { createBenchesService } from './service.ts';
+import { sidednessPack } from './sidedness.ts';
 
 export function mountBenches(mount: Mount, deps: Deps, figures: Figures): void {
   const service = createBenchesService(deps);
@@ -15,6 +16,15 @@ export function mountBenches(mount: Mount, deps: Deps, figures: Figures): void {
   mount.json(contract.saveBench, (call) =>
     service.save(call.actor, call.params.benchId, call.query.afterVersion, call.body, call),
   );
+
+  mount.file(contract.downloadSidedness, async ({ actor, params, query, response }) => {
+    const { profile } = service.show(actor, params.benchId, query.version).shown;
+    const { fileName, bytes } = await sidednessPack(profile);
+    response.setHeader('Content-Type', 'application/zip');
+    response.setHeader('Content-Disposition', `attachment; filename="${fileName}"`);
+    response.setHeader('Cache-Control', 'private, no-cache');
+    response.send(bytes);
+  });
 
   const fit = createFitReader(deps, figures);
   mount.json(showFit, ({ actor, params, query }) => fit(actor, params.revisionId, query.benchId, query.version));

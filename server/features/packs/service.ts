@@ -6,14 +6,13 @@ import type { BenchProfile } from '@/lib/synth';
 import { may, requireRight, type Actor } from '../../auth/actor.ts';
 import { authorizeAct, authorizeRead, type Authorized } from '../../auth/authorized.ts';
 import type { Deps } from '../../deps.ts';
+import { createAskFit, type AskFit } from '../../fit/fitThread.ts';
 import { findResult, rememberResult, type KeyedRequest } from '../../idempotencyRepo.ts';
-import { packBytesOf, roomRatio } from '../../packs/estimate.ts';
+import { roomRatio } from '../../packs/estimate.ts';
 import { withdrawnWords, type PackJobs } from '../../packs/jobs.ts';
-import { packKeyOf } from '../../packs/manifest/manifest.ts';
-import { refusalOf } from '../../packs/refusals.ts';
 import { DomainError } from '../../problem.ts';
 import { visibleRevision } from '../../revisions/access.ts';
-import { readDocument } from '../../revisions/documents.ts';
+import { documentText } from '../../revisions/documents.ts';
 import { findEditionOfRevision } from '../../revisions/editionRepo.ts';
 import { readAboutAndIntent, type RevisionRow } from '../../revisions/revisionRepo.ts';
 import * as repo from './repo.ts';
@@ -50,7 +49,12 @@ const inUnits = (bytes: number): string =>
 
 export type PacksService = ReturnType<typeof createPacksService>;
 
-export function createPacksService(deps: Deps, jobs: PackJobs, freeBytes: FreeBytes = freeBytesOf) {
+export function createPacksService(
+  deps: Deps,
+  jobs: PackJobs,
+  freeBytes: FreeBytes = freeBytesOf,
+  ask: AskFit = createAskFit(deps.config.buildDir),
+) {
   const { store, clock, config } = deps;
 
   /** An edition's packs are everybody's, a draft's its author's alone: to others they are not there. */
@@ -101,13 +105,17 @@ export function createPacksService(deps: Deps, jobs: PackJobs, freeBytes: FreeBy
 
   /** What the page says before anything is rendered, with the finding's own words. */
   async function checked(revision: RevisionRow, profile: BenchProfile, state: number | 'draft') {
-    const document = await readDocument(store.db, revision);
-    const refusal = refusalOf(document, profile);
+    const { refusal, packKey, bytes } = await ask({
+      kind: 'pack',
+      documentText: await documentText(store.db, revision),
+      profileJson: JSON.stringify(profile),
+      state,
+    });
     if (refusal && (refusal.code === 'limit_missed' || refusal.code === 'not_supported_yet')) {
       const issues = refusal.issues.map(({ pointer, message }) => ({ pointer, message, code: refusal.code }));
       throw new DomainError(refusal.code as 'limit_missed', { detail: refusal.message, issues });
     }
-    return { packKey: packKeyOf(document, profile, state), bytes: packBytesOf(document.content, profile.content) };
+    return { packKey, bytes };
   }
 
   function sourceOf(row: repo.PackRow): CardSource {

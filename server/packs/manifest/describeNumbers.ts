@@ -1,10 +1,13 @@
 import type { Manifest } from '@/lib/document/manifestSchema';
 import {
   bytesPerSample,
+  createVectorGather,
+  createWordReader,
   deriveFigures,
   exactFraction,
   fractionToNumber,
   fullScaleOf,
+  shiftBits,
   type BenchContent,
   type FrameLayout,
   type WaveformContent,
@@ -51,36 +54,36 @@ export function describeSamples(content: WaveformContent, layout: FrameLayout): 
   };
 }
 
-/** LSB of a stored integer below the number itself: left-aligned words are the number times 2^shift. */
-export const shiftBitsOf = (bench: BenchContent): number =>
-  bench.word === 'int16' && bench.align === 'left' ? 16 - bench.bits : 0;
+const firstSamples = 4;
 
-const firstWordCount = 8;
+/** The first words in file order as they are stored, of two files the first one's before the second's. */
+function firstNumbers(bench: BenchContent, firstParts: readonly Uint8Array[], count: number): number[] {
+  // as stored: neither swapped nor negated back
+  const reader = createWordReader({ ...bench, swapIq: false, negateQ: false });
+  const words = new Float64Array(2 * count);
+  reader.readWords(createVectorGather(bench).gather(firstParts, count), 0, count, words);
+  const all = Array.from(words);
+  if (bench.layout === 'interleaved') return all;
+  return [...all.filter((_, i) => i % 2 === 0), ...all.filter((_, i) => i % 2 === 1)];
+}
 
-/** `head`: the first bytes of the finished file, at least as many as the first eight words take. */
-export function describeWord(bench: BenchContent, scale: number, head: Uint8Array): Manifest['word'] {
-  const size = bytesPerSample(bench) / 2;
-  const stored = head.subarray(0, Math.min(head.length, firstWordCount * size));
-  const view = new DataView(stored.buffer, stored.byteOffset, stored.byteLength);
-  const little = bench.byteOrder === 'little';
-  const shift = shiftBitsOf(bench);
-  const firstWords = Array.from({ length: stored.length / size }, (_, i) => {
-    if (size === 1) return view.getInt8(i);
-    if (size === 4) return view.getFloat32(i * 4, little);
-    return view.getInt16(i * 2, little) / 2 ** shift;
-  });
+/** `firstParts`: the first samples of each finished file, at most four, heads left out. */
+export function describeWord(bench: BenchContent, scale: number, firstParts: readonly Uint8Array[]): Manifest['word'] {
+  const size = bytesPerSample(bench);
+  const stored = Buffer.concat(firstParts.map((part) => part.subarray(0, (firstSamples * size) / firstParts.length)));
+  const firstWords = firstNumbers(bench, firstParts, Math.floor(stored.length / size));
   return {
     word: bench.word,
     bits: bench.bits,
     align: bench.align,
-    shiftBits: shift,
+    shiftBits: shiftBits(bench),
     numberFormat: bench.numberFormat,
     byteOrder: bench.byteOrder,
     layout: bench.layout,
     container: bench.container,
     swapIq: bench.swapIq,
     negateQ: bench.negateQ,
-    bytesPerSample: bytesPerSample(bench),
+    bytesPerSample: size,
     words: wordWords(bench),
     fullScale: fullScaleOf(bench),
     scaleLsbPerUnit: scale,

@@ -160,7 +160,7 @@ export function makeManifest(input: ManifestInput): Manifest {
     files: input.files,
     clock: describeClock(content, loopClosing(content)),
     samples: describeSamples(content, input.layout),
-    word: describeWord(profile.content, input.scale.scale, input.proof.head),
+    word: describeWord(profile.content, input.scale.scale, input.proof.firstParts),
     levels: describeLevels(input),
     papr: describePapr(input.measure),
     symbols: describeSymbols(input.layout),

@@ -84,9 +84,27 @@ test('a contradiction is saved and said; a wrong value is refused', async () => 
   expect(refused.body.issues[0].pointer).toBe('/content/bits');
 });
 
-test('what no pack can be written in yet is saved whole all the same', async () => {
-  const bench = await create('Split', { layout: 'split', container: 'wav', swapIq: true });
-  expect(bench.shown.profile.content).toMatchObject({ layout: 'split', container: 'wav', swapIq: true });
+test('a layout that no file can have is refused, each contradiction at its field', async () => {
+  const body = openBench({ layout: 'split', container: 'wav', byteOrder: 'big' });
+  const refused = (await admin.post('/api/v1/benches', body).expect(422)).body as { issues: { pointer: string }[] };
+  expect(refused.issues.map(({ pointer }) => pointer)).toEqual(['/content/layout', '/content/byteOrder']);
+});
+
+test('the sidedness pack of a profile, in its layout', async () => {
+  const swapped = await create('Swapped', { swapIq: true, layout: 'split', leastSamples: 64 });
+  const answer = await admin
+    .get(`/api/v1/benches/${swapped.benchId}/sidedness`)
+    .responseType('blob')
+    .expect(200)
+    .expect('content-type', 'application/zip');
+  expect(answer.headers['content-disposition']).toMatch(/^attachment; filename="sidedness-[a-z0-9-]+\.zip"$/);
+  const text = (answer.body as Buffer).toString('latin1');
+  expect(text).toContain('On an analyser the tone stands 2 MHz above the carrier.');
+  expect(text).toContain('Sidedness check of a bench profile, no released waveform.');
+  expect(text).not.toContain('Draft, not for the bench.');
+  const short = await create('Short', { mostSamples: 15 });
+  const refused = await admin.get(`/api/v1/benches/${short.benchId}/sidedness`).expect(422);
+  expect(refused.body).toMatchObject({ code: 'limit_missed', issues: [{ pointer: '/content/mostSamples' }] });
 });
 
 test('a version counts the packs that were made for it', async () => {

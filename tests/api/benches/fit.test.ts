@@ -91,11 +91,15 @@ test('an older version is judged by its own limits and says that a newer one exi
   expect(finding(first, 'memory').verdict).toBe('meets');
 });
 
-test('what no pack can be written in yet is listed', async () => {
+test('a file that cannot be written is listed, in words', async () => {
   await begin();
-  const bench = await makeBench({ layout: 'split' });
-  const fit = await fitOf(documentOf('Split'), bench.benchId);
-  expect(fit.notSupportedYet).toMatchObject([{ pointer: '/content/layout' }]);
+  const bench = await makeBench({ container: 'wav', mostSamples: 2 ** 40 });
+  expect((await fitOf(documentOf('Short'), bench.benchId)).notSupportedYet).toEqual([]);
+  const long = documentOf('Long');
+  long.content.timing = { ...long.content.timing, padSamples: 2 ** 30 };
+  expect((await fitOf(long, bench.benchId)).notSupportedYet).toMatchObject([
+    { pointer: '/content/container', message: expect.stringContaining('a WAV file has at most 4294967295') },
+  ]);
 });
 
 test('a bench that is not there is not there', async () => {

@@ -120,7 +120,6 @@ test('a hard limit is refused before anything is rendered, in the words of the f
   expect((await refuse(openBench({ modes: ['burst'] }))).detail).toContain(
     'The waveform is a loop; this bench plays burst.',
   );
-  expect((await refuse(openBench({ numberFormat: 'offsetBinary' }))).code).toBe('not_supported_yet');
   expect(server.store.db.select().from(packJobs).all()).toEqual([]);
 });
 

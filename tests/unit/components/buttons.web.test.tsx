@@ -35,6 +35,24 @@ describe('Button', () => {
     await userEvent.keyboard('{Enter}');
     expect(onPress).not.toHaveBeenCalled();
     expect(screen.getByRole('status')).toHaveTextContent('A waveform needs a title.');
+    expect(button).toHaveAttribute('aria-description', 'A waveform needs a title.');
+    await userEvent.tab();
+    expect(screen.queryByText('A waveform needs a title.')).toBeNull();
+  });
+
+  it('says why over the page, in its dialog where it has one, so that nothing moves', async () => {
+    const reason = 'Say why.';
+    const { container } = render(<Button disabledBecause={reason}>Use this start</Button>);
+    await userEvent.click(screen.getByRole('button'));
+    expect(container).not.toHaveTextContent(reason);
+    expect(getComputedStyle(screen.getByRole('status')).position).toBe('fixed');
+    render(
+      <Sheet title="Return" onClose={jest.fn()} foot={<Button disabledBecause={reason}>Return it</Button>}>
+        <Text>Body</Text>
+      </Sheet>,
+    );
+    await userEvent.click(screen.getByRole('button', { name: 'Return it' }));
+    expect(screen.getByRole('dialog')).toHaveTextContent(reason);
   });
 
   it('keeps its label while busy and is not pressed twice', async () => {

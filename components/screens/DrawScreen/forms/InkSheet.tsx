@@ -1,4 +1,4 @@
-import { useState } from 'react';
+import { useEffect, useState } from 'react';
 import { Pressable, StyleSheet, View } from 'react-native';
 import { InkSwatch } from '@/components/drawing/InkSwatch';
 import { ChoiceBlank } from '@/components/ui/Blank';
@@ -39,6 +39,13 @@ export function InkSheet({ table, place, isPhone }: { table: TableContext; place
   const [draft, setDraft] = useState(() => draftOf(ink, settings.streams));
   const [error, setError] = useState<string | null>(null);
   useChangeCount(editor);
+  // The drawing behind shows what the button would do, as the form stands now; what cannot be done shows nothing.
+  useEffect(() => {
+    if (place === null) return;
+    const outcome = planChangeInk(editor.document, place, bodyOf(draft));
+    editor.preview(outcome?.kind === 'patch' ? outcome.patch : null);
+  }, [editor, place, draft]);
+  useEffect(() => () => editor.preview(null), [editor]);
   const cells = place === null ? 0 : (countCells(editor.document)[place] ?? 0);
   const change = (to: Partial<InkDraft>) => {
     setError(null);

@@ -14,6 +14,7 @@ export const benchesAccess: AccessTable = {
   requests: {
     listBenches: () => ({}),
     showBench: ({ benchId }: Bench) => ({ params: { benchId } }),
+    downloadSidedness: ({ benchId }: Bench) => ({ params: { benchId } }),
     createBench: () => ({ body: openBench() }),
     saveBench: ({ benchId }: Bench) => ({
       params: { benchId },
@@ -22,10 +23,11 @@ export const benchesAccess: AccessTable = {
     }),
   },
   table: `
-    endpoint    | state | anonymous | author               | otherAuthor          | reviewer             | operator             | admin
-    listBenches | -     | 401       | 200                  | 200                  | 200                  | 200                  | 200
-    showBench   | saved | 401       | 200                  | 200                  | 200                  | 200                  | 200
-    createBench | -     | 401       | 403 action_forbidden | 403 action_forbidden | 403 action_forbidden | 403 action_forbidden | 201
-    saveBench   | saved | 401       | 403 action_forbidden | 403 action_forbidden | 403 action_forbidden | 403 action_forbidden | 201
+    endpoint          | state | anonymous | author               | otherAuthor          | reviewer             | operator             | admin
+    listBenches       | -     | 401       | 200                  | 200                  | 200                  | 200                  | 200
+    showBench         | saved | 401       | 200                  | 200                  | 200                  | 200                  | 200
+    createBench       | -     | 401       | 403 action_forbidden | 403 action_forbidden | 403 action_forbidden | 403 action_forbidden | 201
+    saveBench         | saved | 401       | 403 action_forbidden | 403 action_forbidden | 403 action_forbidden | 403 action_forbidden | 201
+    downloadSidedness | saved | 401       | 200                  | 200                  | 200                  | 200                  | 200
   `,
 };

@@ -1,5 +1,5 @@
-import type { Ink, Sequence, WaveformContent } from '@/lib/synth';
-import { readCheck, titleOf } from '../../../helpers/checks';
+import { createCellValues, type Ink, type Sequence, type WaveformContent } from '@/lib/synth';
+import { describeCheck, readCheck, testCheck } from '../../../helpers/checks';
 import { NULL_INK, dataInk, factor, pilotInk, pnStream, rowOf, smallContent } from '../../../helpers/content';
 import { renderSamples } from '../../../helpers/renderWords';
 
@@ -8,7 +8,6 @@ type Points = [number, number][];
 const sts = readCheck<{ t16: Points }, { 'S_-26..26': Points }>('ieee80211.sts');
 const lts = readCheck<{ t64: Points }, { 'L_-26..26': number[] }>('ieee80211.lts');
 const bits = readCheck<{ signal_interleaved: string; data_interleaved: string[] }>('ieee80211.example.bits');
-const packet = readCheck<{ n: number; samples: Points }>('ieee80211.example.time');
 const pilots = readCheck<{ k: number[] }>('ieee80211.pilots');
 
 /** Values for k = −32…31 from those for k = −26…26. */
@@ -91,7 +90,7 @@ function packetContent(): WaveformContent {
   });
 }
 
-describe(titleOf(packet), () => {
+describeCheck<{ n: number; samples: Points }>('ieee80211.example.time', (packet) => {
   // the standard scales by 1/64, the product by 1/√64
   const samples = renderSamples(packetContent()).map((part) => part / 8);
 
@@ -103,14 +102,40 @@ describe(titleOf(packet), () => {
     });
   });
 
-  it('ieee80211.sts: the short training period', () => {
+  testCheck('ieee80211.example.bits', () => {
+    // first bit most significant; the first half of a word is I (17.3.5.8)
+    const levels: Record<string, number> = { '00': -3, '01': -1, '11': 1, '10': 3 };
+    const cells = createCellValues(packetContent());
+    const values = new Float64Array(128);
+    const symbols = [bits.expected.signal_interleaved, ...bits.expected.data_interleaved];
+    expect(symbols).toHaveLength(7);
+    symbols.forEach((text, i) => {
+      cells.write(0, 4 + i, values);
+      const width = i === 0 ? 1 : 4;
+      expect(text).toHaveLength(48 * width);
+      let at = 0;
+      for (let k = -26; k <= 26; k++) {
+        if (!isUsed(k) || isPilot(k)) continue;
+        const word = text.slice(at, at + width);
+        const wanted =
+          width === 1
+            ? [Number(word) * 2 - 1, 0]
+            : [word.slice(0, 2), word.slice(2)].map((half) => levels[half]! / Math.sqrt(10));
+        expect(Math.abs(values[2 * (k + 32)]! - wanted[0]!)).toBeLessThan(1e-12);
+        expect(Math.abs(values[2 * (k + 32) + 1]! - wanted[1]!)).toBeLessThan(1e-12);
+        at += width;
+      }
+    });
+  });
+
+  testCheck('ieee80211.sts', () => {
     sts.expected.t16.forEach(([re, im], i) => {
       expect(Math.abs(samples[2 * (16 + i)]! - re)).toBeLessThan(1e-12);
       expect(Math.abs(samples[2 * (16 + i) + 1]! - im)).toBeLessThan(1e-12);
     });
   });
 
-  it('ieee80211.lts: the long training symbol, twice', () => {
+  testCheck('ieee80211.lts', () => {
     lts.expected.t64.forEach(([re, im], i) => {
       // the very first and last samples of a segment are ramped
       for (const start of i === 0 ? [256] : [192, 256]) {

@@ -12,7 +12,7 @@ import {
 } from '@/lib/synth';
 import { readFileSync } from 'node:fs';
 import { join } from 'node:path';
-import { readCheck, titleOf } from '../../../helpers/checks';
+import { describeCheck, testCheck } from '../../../helpers/checks';
 import { NULL_INK, dataInk, factor, pilotInk, pnStream, rowOf, smallContent } from '../../../helpers/content';
 import { renderSamples, renderWords } from '../../../helpers/renderWords';
 
@@ -38,9 +38,8 @@ function comb(fftSize: number, count: number, oversampling: number, sequence: Se
   });
 }
 
-describe('phases against peaks', () => {
-  const check = readCheck<Record<string, Record<'newman' | 'schroeder' | 'equal', number>>>('th.phases');
-  it.each(Object.entries(check.expected))(`${titleOf(check)}: %s carriers`, (name, expected) => {
+describeCheck<Record<string, Record<'newman' | 'schroeder' | 'equal', number>>>('th.phases', (check) => {
+  it.each(Object.entries(check.expected))('%s carriers', (name, expected) => {
     const count = Number(name);
     // sixteen points a carrier; a transform has at least 16 bins
     const fftSize = Math.max(16, count);
@@ -55,7 +54,6 @@ describe('phases against peaks', () => {
 });
 
 describe('tones', () => {
-  const check = readCheck<Record<string, number>>('th.tones');
   const tone = (k: number[], phaseDeg = 0): WaveformContent => {
     const ink: ToneInk = {
       inkId: 'k1',
@@ -70,7 +68,7 @@ describe('tones', () => {
       grid: { rows: [rowOf(64, (at) => (k.includes(at) ? 1 : 0))], rowOfSymbol: [0] },
     });
   };
-  it(titleOf(check), () => {
+  testCheck<Record<string, number>>('th.tones', (check) => {
     expect(Math.abs(paprDb(tone([5], 33)))).toBeLessThan(1e-6);
     expect(Math.abs(paprDb(tone([-3, 8])) - check.expected.complex_two_tone!)).toBeLessThan(1e-6);
     expect(Math.abs(paprDb(tone([-1, 1])) - check.expected['bpsk_dc_plus_minus_1_pair(k=-1,+1)']!)).toBeLessThan(1e-6);
@@ -134,76 +132,80 @@ function sqnrDb(samples: Float64Array, back: Float64Array): number {
 }
 
 describe('quantizing against theory', () => {
-  const sine = readCheck<Record<string, Record<string, number>>>('th.sqnr.sine');
-  it.each([8, 10, 12, 14, 16])(`${titleOf(sine)}: %i bits`, (bits) => {
-    const samples = new Float64Array(2 * 65536);
-    // a frequency far from every short fraction, in I alone
-    for (let n = 0; n < 65536; n++) samples[2 * n] = Math.sin(Math.PI * n * (Math.sqrt(5) - 1) * 0.25);
-    const measured = sqnrDb(samples, throughWords(samples, bits, 2 ** (bits - 1) - 1));
-    expect(Math.abs(measured - sine.expected[bits]!['measured_mid_tread_F=2^(b-1)-1']!)).toBeLessThan(0.1);
-  });
-
-  const complex = readCheck<Record<string, number>>('th.sqnr.complex');
-  const ofdm = readCheck<Record<string, Record<string, number>>>('th.sqnr.ofdm');
-  it.each([8, 12, 16])(`${titleOf(complex)}; ${titleOf(ofdm)}: %i bits`, (bits) => {
-    expect(complex.expected[`b${bits}_cf13`]).toBeCloseTo(10 * Math.log10(3 * 4 ** bits) - 13, 9);
-    const content = smallContent({
-      fftSize: 256,
-      symbolCount: 200,
-      tray: [NULL_INK, dataInk(1, { constellation: '64qam', bitMap: 'ts38211', streamId: 's0' })],
-      streams: [pnStream(0)],
-      level: { reference: 'componentPeak', headroomDb: 0 },
-      grid: {
-        rows: [rowOf(256, (k) => (k !== 0 && Math.abs(k) <= 60 ? 1 : 0))],
-        rowOfSymbol: new Array<number>(200).fill(0),
-      },
+  describeCheck<Record<string, Record<string, number>>>('th.sqnr.sine', (sine) => {
+    it.each([8, 10, 12, 14, 16])('%i bits', (bits) => {
+      const samples = new Float64Array(2 * 65536);
+      // a frequency far from every short fraction, in I alone
+      for (let n = 0; n < 65536; n++) samples[2 * n] = Math.sin(Math.PI * n * (Math.sqrt(5) - 1) * 0.25);
+      const measured = sqnrDb(samples, throughWords(samples, bits, 2 ** (bits - 1) - 1));
+      expect(Math.abs(measured - sine.expected[bits]!['measured_mid_tread_F=2^(b-1)-1']!)).toBeLessThan(0.1);
     });
-    const profile = { ...bench, bits };
-    const { bytes, stats, scale } = renderWords(content, profile);
-    const samples = renderSamples(content);
-    const back = new Float64Array(samples.length);
-    createWordReader(profile).readSamples(bytes, 0, samples.length / 2, scale.scale, back);
-    const sqnr = sqnrDb(samples, back);
-    const crest = 20 * Math.log10(stats.componentPeak / (stats.rms / Math.SQRT2));
-    expect(Math.abs(sqnr - (10 * Math.log10(3 * 4 ** bits) - crest))).toBeLessThan(0.15);
-    // the noise is white over all 256 bins, the signal stands on 120
-    const transform = createTransform(256);
-    const wanted = new Float64Array(512);
-    const found = new Float64Array(512);
-    let error = 0;
-    let energy = 0;
-    for (let symbol = 0; symbol < 200; symbol++) {
-      transform.forward(samples.subarray(512 * symbol, 512 * (symbol + 1)), wanted);
-      transform.forward(back.subarray(512 * symbol, 512 * (symbol + 1)), found);
-      for (let k = 1; k <= 60; k++) {
-        for (const i of [2 * k, 2 * k + 1, 2 * (256 - k), 2 * (256 - k) + 1]) {
-          error += (found[i]! - wanted[i]!) ** 2;
-          energy += wanted[i]! ** 2;
-        }
-      }
-    }
-    const evmDb = 10 * Math.log10(error / energy);
-    expect(Math.abs(evmDb + sqnr + 10 * Math.log10(256 / 120))).toBeLessThan(0.3);
   });
 
-  const loading = readCheck<Record<string, Record<string, number>>>('th.loading');
-  it.each([8, 10, 12])(`${titleOf(loading)}: %i bits`, (bits) => {
-    const expected = loading.expected[bits]!;
-    const backoff = 10 ** (expected['at_component_backoff_db(A/sigma)']! / 20);
-    // the component's whole range in even steps, weighted by its density: no luck in the tails
-    const count = 400000;
-    const range = 9;
-    const samples = Float64Array.from({ length: 2 * count }, (_, i) => range * ((i + 0.5) / count - 1));
-    // 2^b steps span ±A, as the theory has it
-    const back = throughWords(samples, bits, 2 ** (bits - 1) / backoff);
-    let power = 0;
-    let error = 0;
-    for (let i = 0; i < samples.length; i++) {
-      const density = Math.exp(-0.5 * samples[i]! ** 2);
-      power += density * samples[i]! ** 2;
-      error += density * (samples[i]! - back[i]!) ** 2;
-    }
-    expect(Math.abs(10 * Math.log10(power / error) - expected.best_sqnr_db!)).toBeLessThan(0.05);
+  describeCheck<Record<string, number>>('th.sqnr.complex', (complex) => {
+    describeCheck('th.sqnr.ofdm', () => {
+      it.each([8, 12, 16])('%i bits', (bits) => {
+        expect(complex.expected[`b${bits}_cf13`]).toBeCloseTo(10 * Math.log10(3 * 4 ** bits) - 13, 9);
+        const content = smallContent({
+          fftSize: 256,
+          symbolCount: 200,
+          tray: [NULL_INK, dataInk(1, { constellation: '64qam', bitMap: 'ts38211', streamId: 's0' })],
+          streams: [pnStream(0)],
+          level: { reference: 'componentPeak', headroomDb: 0 },
+          grid: {
+            rows: [rowOf(256, (k) => (k !== 0 && Math.abs(k) <= 60 ? 1 : 0))],
+            rowOfSymbol: new Array<number>(200).fill(0),
+          },
+        });
+        const profile = { ...bench, bits };
+        const { bytes, stats, scale } = renderWords(content, profile);
+        const samples = renderSamples(content);
+        const back = new Float64Array(samples.length);
+        createWordReader(profile).readSamples(bytes, 0, samples.length / 2, scale.scale, back);
+        const sqnr = sqnrDb(samples, back);
+        const crest = 20 * Math.log10(stats.componentPeak / (stats.rms / Math.SQRT2));
+        expect(Math.abs(sqnr - (10 * Math.log10(3 * 4 ** bits) - crest))).toBeLessThan(0.15);
+        // the noise is white over all 256 bins, the signal stands on 120
+        const transform = createTransform(256);
+        const wanted = new Float64Array(512);
+        const found = new Float64Array(512);
+        let error = 0;
+        let energy = 0;
+        for (let symbol = 0; symbol < 200; symbol++) {
+          transform.forward(samples.subarray(512 * symbol, 512 * (symbol + 1)), wanted);
+          transform.forward(back.subarray(512 * symbol, 512 * (symbol + 1)), found);
+          for (let k = 1; k <= 60; k++) {
+            for (const i of [2 * k, 2 * k + 1, 2 * (256 - k), 2 * (256 - k) + 1]) {
+              error += (found[i]! - wanted[i]!) ** 2;
+              energy += wanted[i]! ** 2;
+            }
+          }
+        }
+        const evmDb = 10 * Math.log10(error / energy);
+        expect(Math.abs(evmDb + sqnr + 10 * Math.log10(256 / 120))).toBeLessThan(0.3);
+      });
+    });
+  });
+
+  describeCheck<Record<string, Record<string, number>>>('th.loading', (loading) => {
+    it.each([8, 10, 12])('%i bits', (bits) => {
+      const expected = loading.expected[bits]!;
+      const backoff = 10 ** (expected['at_component_backoff_db(A/sigma)']! / 20);
+      // the component's whole range in even steps, weighted by its density: no luck in the tails
+      const count = 400000;
+      const range = 9;
+      const samples = Float64Array.from({ length: 2 * count }, (_, i) => range * ((i + 0.5) / count - 1));
+      // 2^b steps span ±A, as the theory has it
+      const back = throughWords(samples, bits, 2 ** (bits - 1) / backoff);
+      let power = 0;
+      let error = 0;
+      for (let i = 0; i < samples.length; i++) {
+        const density = Math.exp(-0.5 * samples[i]! ** 2);
+        power += density * samples[i]! ** 2;
+        error += density * (samples[i]! - back[i]!) ** 2;
+      }
+      expect(Math.abs(10 * Math.log10(power / error) - expected.best_sqnr_db!)).toBeLessThan(0.05);
+    });
   });
 
   it('scales each reference to F less the headroom', () => {

@@ -1,5 +1,5 @@
 import { createCellValues, deriveFigures, frameLayout, type Sequence, type WaveformContent } from '@/lib/synth';
-import { readCheck, titleOf } from '../../../helpers/checks';
+import { readCheck, testCheck } from '../../../helpers/checks';
 import { NULL_INK, dataInk, factor, pilotInk, pnStream, rowOf, smallContent } from '../../../helpers/content';
 
 const qpsk = dataInk(1, { constellation: 'qpsk', bitMap: 'ts38211', streamId: 's0' });
@@ -17,9 +17,7 @@ function loaded(changes: Partial<WaveformContent>, inkOf: (k: number) => number)
 }
 
 describe('timings of standards', () => {
-  const wifi = readCheck<Record<string, number>>('ieee80211.timing');
-  it(titleOf(wifi), () => {
-    const { expected } = wifi;
+  testCheck<Record<string, number>>('ieee80211.timing', ({ expected }) => {
     const isPilot = (k: number): boolean => [7, 21].includes(Math.abs(k));
     const content = loaded({ prefixSamples: [16], subcarrierSpacingHz: [312500, 1] }, (k) =>
       k === 0 || Math.abs(k) > 26 ? 0 : isPilot(k) ? 2 : 1,
@@ -39,7 +37,7 @@ describe('timings of standards', () => {
   });
 
   const nr = readCheck<Record<string, Record<string, number>>>('ts38211.cp');
-  it(titleOf(nr), () => {
+  testCheck('ts38211.cp', () => {
     for (const [name, wanted] of Object.entries(nr.expected)) {
       if (name.endsWith('.extended')) continue; // one prefix for all symbols: 512 of 2048, as the entry below
       const fftSize = Number(/N(\d+)/.exec(name)![1]);
@@ -59,8 +57,7 @@ describe('timings of standards', () => {
     }
   });
 
-  const lte = readCheck<{ normal: number[]; extended: number[]; slot_samples: number }>('ts36211.cp');
-  it(titleOf(lte), () => {
+  testCheck<{ normal: number[]; extended: number[]; slot_samples: number }>('ts36211.cp', (lte) => {
     expect(lte.expected.extended[0]).toBe(nr.expected['N2048.mu2.extended']!.cp);
     for (const prefixSamples of [lte.expected.normal, lte.expected.extended]) {
       const content = smallContent({ fftSize: 2048, symbolCount: prefixSamples.length, prefixSamples });
@@ -76,8 +73,7 @@ describe('timings of standards', () => {
     cp: Record<string, number>;
     bw_mhz: number;
   }
-  const dvb = readCheck<{ '2K': DvbMode; '8K': DvbMode; fs_mhz: number }>('en300744.params');
-  it(titleOf(dvb), () => {
+  testCheck<{ '2K': DvbMode; '8K': DvbMode; fs_mhz: number }>('en300744.params', (dvb) => {
     for (const [name, spacing] of [
       ['2K', 31250],
       ['8K', 31250 / 4],
@@ -106,9 +102,7 @@ describe('timings of standards', () => {
     }
   });
 
-  const dab = readCheck<Record<string, number>>('en300401.modeI');
-  it(titleOf(dab), () => {
-    const { expected } = dab;
+  testCheck<Record<string, number>>('en300401.modeI', ({ expected }) => {
     // the null symbol stands as the gap of the repeat
     const content = loaded(
       {
@@ -138,10 +132,8 @@ describe('pilots of EN 300 744', () => {
     boosted_amplitude: number;
     boost_power: number;
   }
-  const check = readCheck<PilotCheck>('en300744.pilots2k');
   const prbs = readCheck<{ first64: string }>('en300744.prbs');
-  it(titleOf(check), () => {
-    const { expected } = check;
+  testCheck<PilotCheck>('en300744.pilots2k', ({ expected }) => {
     const low = -852;
     const isScattered = (carrier: number, symbol: number): boolean =>
       carrier >= 3 * (symbol % 4) && (carrier - 3 * (symbol % 4)) % 12 === 0;

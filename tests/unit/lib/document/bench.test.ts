@@ -1,5 +1,5 @@
 import { exampleBenches } from '@/lib/document/examples/exampleBenches';
-import { benchNotSupportedYet, notSupportedYet } from '@/lib/document/notSupportedYet';
+import { layoutIssues } from '@/lib/document/layoutIssues';
 import { parseBenchProfile } from '@/lib/document/parse';
 import type { BenchContent } from '@/lib/synth/index';
 import { openBench, smallDocument } from '@/tests/helpers/documents';
@@ -19,6 +19,10 @@ test.each<[string, Partial<BenchContent>]>([
   ['float32', { word: 'float32' }],
   ['a clock step', { sampleClockHz: { least: 1e6, most: 1e13, step: 0.5 } }],
   ['markers in low bits', { bits: 14, align: 'left', markers: lowBits }],
+  ['WAV of bytes', { ...int8, container: 'wav', numberFormat: 'offsetBinary' }],
+  ['WAV of floats', { container: 'wav', word: 'float32' }],
+  ['npy in two files', { container: 'npy', layout: 'split', byteOrder: 'big', swapIq: true, negateQ: true }],
+  ['CSV in two files', { container: 'csv', layout: 'split', word: 'float32' }],
   ['loops alone', { modes: ['loop'] }],
   ['bursts alone', { modes: ['burst'] }],
   [
@@ -51,6 +55,12 @@ test.each<[string, string, object]>([
   ['low bits that are not free', '/content/markers/packing', { bits: 16, align: 'left', markers: lowBits }],
   ['low bits of right-aligned words', '/content/markers/packing', { bits: 12, markers: lowBits }],
   ['nine markers', '/content/markers/count', { markers: { ...lowBits, count: 9, packing: 'bytes' } }],
+  ['WAV in two files', '/content/layout', { container: 'wav', layout: 'split' }],
+  ['WAV with the high byte first', '/content/byteOrder', { container: 'wav', byteOrder: 'big' }],
+  ['WAV of signed bytes', '/content/numberFormat', { container: 'wav', ...int8 }],
+  ['WAV of unsigned 16-bit words', '/content/numberFormat', { container: 'wav', numberFormat: 'offsetBinary' }],
+  ['CSV of integers', '/content/word', { container: 'csv' }],
+  ['the extension of the metadata', '/content/fileName/extension', { fileName: { most: 20, extension: 'sigmf-meta' } }],
   ['no modes', '/content/modes', { modes: [] }],
   ['modes out of order', '/content/modes', { modes: ['burst', 'loop'] }],
   ['a mode twice', '/content/modes', { modes: ['loop', 'loop'] }],
@@ -66,38 +76,41 @@ test.each<[string, string, object]>([
   );
 });
 
-describe('what is not built yet', () => {
-  test('of benches: every layout but int16 and float32, two’s complement, interleaved, raw', () => {
-    const pointers = (overrides: Partial<BenchContent>) =>
-      benchNotSupportedYet(openBench(overrides)).map((issue) => issue.pointer);
-    expect(pointers({})).toEqual([]);
-    expect(pointers({ bits: 8, align: 'left', byteOrder: 'big' })).toEqual([]);
-    expect(pointers({ word: 'float32', byteOrder: 'big' })).toEqual([]);
-    expect(pointers({ markers: { count: 8, packing: 'bytes', leastSamples: 1, stepSamples: 1 } })).toEqual([]);
-    expect(
-      pointers({
-        ...int8,
-        numberFormat: 'offsetBinary',
-        layout: 'split',
-        container: 'wav',
-        swapIq: true,
-        negateQ: true,
-      }),
-    ).toEqual(['word', 'numberFormat', 'layout', 'container', 'swapIq', 'negateQ'].map((key) => `/content/${key}`));
-    expect(benchNotSupportedYet(openBench({ bits: 14, align: 'left', markers: lowBits }))).toEqual([
-      { code: 'not_supported_yet', pointer: '/content/markers/packing', message: expect.any(String) },
+describe('why no file can be written', () => {
+  test('of the profile, in whole sentences at its fields', () => {
+    for (const { build } of exampleBenches) expect(layoutIssues(build().content)).toEqual([]);
+    expect(layoutIssues(openBench({ layout: 'split', container: 'wav' }).content)).toEqual([
+      {
+        code: 'invalid',
+        pointer: '/content/layout',
+        message: 'The profile\'s layout must be "interleaved" in WAV: I and Q are the two channels of one WAV file.',
+      },
     ]);
   });
 
-  test('of documents: peak reduction', () => {
-    expect(notSupportedYet(smallDocument())).toEqual([]);
-    const reduced = smallDocument({ peakReduction: { kind: 'toneReservation', targetPaprDb: 8, iterations: 4 } });
-    expect(notSupportedYet(reduced)).toEqual([
-      { code: 'not_supported_yet', pointer: '/content/peakReduction/kind', message: expect.any(String) },
+  test('of a document: nothing of 4 GiB in WAV, and markers only where bits are free', () => {
+    // 2^20 samples a repeat, 4 bytes each: 1023 of them stay below 4 GiB, 1024 do not
+    const long = (repeats: number) =>
+      smallDocument({
+        subcarrierSpacingHz: [15000, 1],
+        fftSize: 16384,
+        symbolCount: 64,
+        prefixSamples: [0],
+        overlapSamples: 0,
+        timing: { mode: 'loop', repeats, gapSamples: 0, padSamples: 0 },
+      }).content;
+    const wav = openBench({ container: 'wav' }).content;
+    expect(layoutIssues(wav, { ...long(1023), oversampling: 1 })).toEqual([]);
+    expect(layoutIssues(wav, { ...long(1024), oversampling: 1 })).toMatchObject([
+      { pointer: '/content/container', message: expect.stringContaining('choose raw or npy') },
     ]);
-  });
-
-  test('the example benches are built', () => {
-    for (const { build } of exampleBenches) expect(benchNotSupportedYet(build())).toEqual([]);
+    for (const container of ['raw', 'npy'] as const)
+      expect(layoutIssues(openBench({ container }).content, { ...long(60000), oversampling: 1 })).toEqual([]);
+    const mark = { name: 'M', at: 'file', symbol: null, offsetSamples: 0, lengthSamples: 1 } as const;
+    const low = openBench({ bits: 15, align: 'left', markers: { ...lowBits, count: 4 } }).content;
+    expect(layoutIssues(low, smallDocument({ markers: [mark, mark] }).content)).toEqual([]);
+    expect(layoutIssues(low, smallDocument({ markers: [mark, mark, mark] }).content)).toMatchObject([
+      { pointer: '/content/markers/packing' },
+    ]);
   });
 });

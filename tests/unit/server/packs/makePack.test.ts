@@ -6,6 +6,7 @@ import type { BenchProfile, WaveformContent, WaveformDocument } from '@/lib/synt
 import { makePack, requireProof, scaleOf } from '@/server/packs/makePack';
 import { measureRendering } from '@/server/packs/measureRendering';
 import type { PackProgress, PackRequest, PackState } from '@/server/packs/packTypes';
+import { openPool } from '@/server/packs/pool/workPool';
 import { verifyPack } from '@/server/packs/verifyPack';
 import { proveVector } from '@/server/packs/vectorProof';
 import { writeVector } from '@/server/packs/vectorWriter';
@@ -99,17 +100,13 @@ test('floats are read back to −140 dB and better', async () => {
 test('a pack that cannot be is refused with its place, and nothing is left', async () => {
   const nothing = await make(smallDocument({ grid: { rows: [[64, 0]], rowOfSymbol: [0, 0, 0, 0] } }));
   expect(nothing).toMatchObject({ ok: false, code: 'invalid', message: expect.stringContaining('Nothing is painted') });
-  const reduced = await make(
-    smallDocument({ peakReduction: { kind: 'clipAndFilter', targetPaprDb: 8, iterations: 3 } }),
-  );
-  expect(reduced).toMatchObject({
-    code: 'not_supported_yet',
-    issues: [{ where: 'document', pointer: '/content/peakReduction/kind' }],
-  });
-  const split = await make(smallDocument(), openBench({ layout: 'split', container: 'wav' }));
+  const split = await make(smallDocument(), openBench({ layout: 'split', container: 'wav', byteOrder: 'big' }));
   expect(split).toMatchObject({
-    code: 'not_supported_yet',
-    issues: [{ pointer: '/content/layout' }, { pointer: '/content/container' }],
+    code: 'limit_missed',
+    issues: [
+      { where: 'bench', pointer: '/content/layout' },
+      { where: 'bench', pointer: '/content/byteOrder' },
+    ],
   });
   const long = await make(smallDocument(), openBench({ mostSamples: 100 }));
   expect(long).toMatchObject({ code: 'limit_missed', issues: [{ where: 'bench', pointer: '/content/mostSamples' }] });
@@ -154,14 +151,14 @@ test.each(['rendering', 'quantizing', 'readingBack', 'writing'] as const)(
 test('a pack is not offered when a word was damaged on the disk', async () => {
   const { content } = manyCells();
   const bench = openBench();
-  const measure = await measureRendering(content);
+  const pool = openPool(content, bench.content);
+  const measure = await measureRendering(pool, content);
   const scale = scaleOf(manyCells(), bench, measure);
-  const file = path.join(folder, 'vector');
-  await writeVector(file, content, bench.content, scale);
-  const handle = await open(file, 'r+');
+  const handle = await open(path.join(folder, 'vector'), 'wx+');
+  const place = async () => ({ handle, offsetBytes: 0, bytes: (await handle.stat()).size });
+  await writeVector(pool, content, bench.content, scale, [await place()]);
   const prove = async () => {
-    const place = { handle, offsetBytes: 0, bytes: (await handle.stat()).size };
-    const proof = await proveVector(content, bench.content, scale, place);
+    const proof = await proveVector(pool, content, bench.content, scale, [await place()]);
     return () => requireProof(proof, measure.stats.samples);
   };
   expect(await prove()).not.toThrow();

@@ -28,6 +28,7 @@ const input: SigmfInput = {
   bench,
   sampleClockHz: 30.72e6,
   sha512Hex: 'ab'.repeat(64),
+  headBytes: 0,
   datasetName: 'x-e1-6ecf12ab.sigmf-data',
   baseName: 'x-e1-6ecf12ab',
   title: 'X',
@@ -46,13 +47,24 @@ test.each([
   [{ ...bench, word: 'float32', byteOrder: 'big' }, 'cf32_be'],
   [{ ...bench, word: 'int8' }, 'ci8'],
   [{ ...bench, bits: 12, align: 'left' }, 'ci16_le'],
-  [{ ...bench, swapIq: true }, null],
-  [{ ...bench, negateQ: true }, null],
-  [{ ...bench, layout: 'split' }, null],
-  [{ ...bench, numberFormat: 'offsetBinary' }, null],
-  [{ ...bench, container: 'wav' }, null],
-] as [BenchContent, string | null][])('the type of the words, %#', (profile, type) => {
-  expect(sigmfDatatype(profile)).toBe(type);
+  [{ ...bench, numberFormat: 'offsetBinary' }, 'cu16_le'],
+  [{ ...bench, numberFormat: 'offsetBinary', bits: 12, align: 'left', byteOrder: 'big' }, 'cu16_be'],
+  [{ ...bench, word: 'int8', bits: 8, numberFormat: 'offsetBinary' }, 'cu8'],
+  [{ ...bench, container: 'wav' }, 'ci16_le'],
+  [{ ...bench, container: 'npy', word: 'float32' }, 'cf32_le'],
+] as [BenchContent, string][])('the type of the words, %#', (profile, datatype) => {
+  expect(sigmfDatatype(profile)).toEqual({ datatype });
+});
+
+test.each([
+  [{ ...bench, swapIq: true }, 'Q before I'],
+  [{ ...bench, negateQ: true }, 'a negated Q'],
+  [{ ...bench, layout: 'split' }, 'two files'],
+  [{ ...bench, container: 'csv', word: 'float32' }, 'text'],
+  [{ ...bench, bits: 12, numberFormat: 'offsetBinary' }, '12-bit offset binary aligned to the right'],
+  [{ ...bench, bits: 12, align: 'left', markers: { ...bench.markers, count: 1, packing: 'lowBits' } }, 'markers'],
+] as [BenchContent, string][])('there is none, in words, %#', (profile, words) => {
+  expect(sigmfDatatype(profile)).toEqual({ missing: expect.stringContaining(words) });
 });
 
 test('the meta file follows the schema of the core namespace and names nobody', () => {
@@ -68,6 +80,9 @@ test('the meta file follows the schema of the core namespace and names nobody', 
   expect(validate(other)).toBe(true);
   expect(other).toMatchObject({ global: { 'core:dataset': 'x-e1-6ecf12ab.bin' } });
   expect(sigmfMeta({ ...input, bench: { ...bench, swapIq: true } })).toBeNull();
+  const headed = sigmfMeta({ ...input, headBytes: 44, bench: { ...bench, container: 'wav' } });
+  expect(validate(headed)).toBe(true);
+  expect(headed).toMatchObject({ captures: [{ 'core:header_bytes': 44 }] });
 });
 
 test('the schema refuses what the specification refuses', () => {

@@ -53,6 +53,7 @@ describe('findings', () => {
       'seam',
       'toneJump',
       'payloadWrap',
+      'symbolPeak',
       'headroom',
       'level',
     ]);
@@ -83,11 +84,12 @@ describe('findings', () => {
     expect(found.words).toBe('30 720 samples are 7.5 × the granularity of 4096. Only whole multiples load.');
     expect(found.remedies.map((remedy) => remedy.label)).toEqual([
       'Repeat the frame 2 times: 61 440',
+      'Oversample 2 times: 61 440',
       'Pad with 2048 silent samples: 32 768',
     ]);
     expect(found.remedies[0]!.changes).toEqual([{ pointer: '/content/timing/repeats', before: 1, after: 2 }]);
-    expect(found.remedies[1]!.changes).toEqual([{ pointer: '/content/timing/padSamples', before: 0, after: 2048 }]);
-    expect(found.remedies[1]!.cost).toContain('66.7 µs of silence at the wrap');
+    expect(found.remedies[2]!.changes).toEqual([{ pointer: '/content/timing/padSamples', before: 0, after: 2048 }]);
+    expect(found.remedies[2]!.cost).toContain('66.7 µs of silence at the wrap');
   });
 
   test('shortest length, memory', () => {
@@ -95,11 +97,12 @@ describe('findings', () => {
     expect(short).toMatchObject({ verdict: 'misses', distance: 69280, byHowMuch: '69 280 samples short' });
     expect(short.remedies.map((remedy) => remedy.label)).toEqual([
       'Repeat the frame 4 times: 122 880',
+      'Oversample 4 times: 122 880',
       'Pad with 69 280 silent samples: 100 000',
       'Repeat 3 times and pad with 7840: 100 000',
     ]);
     const large = find('memory', ladder(), { mostSamples: 30000 });
-    expect(large).toMatchObject({ verdict: 'misses', byHowMuch: '720 samples too many', remedies: [] });
+    expect(large).toMatchObject({ verdict: 'misses', byHowMuch: 'too long by 720 samples', remedies: [] });
     expect(find('memory', ladder()).found).toContain('30 720 of 1 099 511 627 776');
     // a pad that the memory cannot hold is no remedy
     expect(find('granularity', ladder(), { granularitySamples: 4096, mostSamples: 31000 }).remedies).toEqual([]);
@@ -108,14 +111,14 @@ describe('findings', () => {
   test('clock: range, step, and the oversampling that mends it', () => {
     const slow = find('clock', ladder(), { sampleClockHz: { least: 50e6, most: 200e6, step: null } });
     expect(slow).toMatchObject({ verdict: 'misses', byHowMuch: '19.28 MHz too slow', measured: 30.72e6, limit: 50e6 });
-    expect(slow.remedies).toHaveLength(1);
+    expect(slow.remedies.map(({ kind }) => kind)).toEqual(['oversampling', 'fftSize']);
     expect(slow.remedies[0]).toMatchObject({
       label: 'Oversample 2 times: 61.44 MHz',
       changes: [{ pointer: '/content/oversampling', before: 1, after: 2 }],
     });
     const step = find('clock', ladder(), { sampleClockHz: { least: 1, most: 1e9, step: 50000 } });
     expect(step).toMatchObject({ verdict: 'misses', distance: 20000, byHowMuch: '20 kHz off the step' });
-    expect(step.words).toContain('the nearest is 30.7 MHz');
+    expect(step.words).toContain('The nearest is 30.7 MHz');
     expect(step.remedies[0]!.label).toBe('Oversample 5 times: 153.6 MHz');
     // 0.1 Hz steps are decimal tenths, not the double next to them
     expect(find('clock', ladder(), { sampleClockHz: { least: 1, most: 1e9, step: 0.1 } }).verdict).toBe('meets');
@@ -125,7 +128,7 @@ describe('findings', () => {
     ).toBe('misses');
     expect(find('clock', ladder(), { sampleClockHz: { least: 1, most: 30e6, step: null } })).toMatchObject({
       byHowMuch: '720 kHz too fast',
-      remedies: [],
+      remedies: [{ kind: 'fftSize', label: 'Use an FFT size of 1920: 28.8 MHz' }],
     });
   });
 
@@ -175,7 +178,9 @@ describe('findings', () => {
       byHowMuch: '1 marker too many',
     });
     expect(find('markers', with1, { markers: { ...limits, leastSamples: 128 } }).byHowMuch).toBe('28 samples short');
-    expect(find('markers', with1, { markers: { ...limits, stepSamples: 64 } }).byHowMuch).toBe('off the step');
+    expect(find('markers', with1, { markers: { ...limits, stepSamples: 64 } }).byHowMuch).toBe(
+      '28 samples off the step',
+    );
     const each = { ...marker, at: 'symbol' as const, lengthSamples: 16 };
     // symbols begin at 0, 2208, 4400, …: multiples of 16
     expect(find('markers', ladder({ markers: [each] }), { markers: { ...limits, stepSamples: 16 } }).verdict).toBe(
@@ -188,7 +193,7 @@ describe('findings', () => {
     const late = { ...marker, at: 'file' as const, offsetSamples: 30700 };
     expect(find('markers', ladder({ markers: [late] }), { markers: limits }).verdict).toBe('meets');
     expect(find('markers', ladder({ markers: [late], timing: burst }), { markers: limits }).byHowMuch).toBe(
-      'outside the file',
+      '80 samples outside the file',
     );
   });
 
@@ -253,10 +258,10 @@ describe('closing the loop', () => {
     const found = find('seam', base);
     expect(found).toMatchObject({ verdict: 'misses', hard: false, byHowMuch: '0.492 of a turn open' });
     expect(found.remedies.map((remedy) => remedy.label)).toEqual([
+      'Repeat the frame 250 times: 200 000',
       'Move the offset to 125 kHz',
-      'Repeat the frame 250 times',
     ]);
-    expect(found.remedies[1]!.cost).toContain('200 000 samples');
+    expect(found.remedies[0]!.cost).toContain('200 000 samples');
     expect(loopClosing({ ...base, timing: { ...base.timing, repeats: 250 } }).closes).toBe(true);
     expect(loopClosing({ ...base, frequencyOffsetHz: -125000 })).toMatchObject({ closes: true, turns: -5 });
   });
@@ -347,7 +352,10 @@ describe('tones', () => {
     const four = content(false, 5, { symbolCount: 4, grid: { ...content(false, 5).grid, rowOfSymbol: [0, 0, 0, 0] } });
     const [remedy] = find('toneJump', four).remedies;
     expect(remedy!.changes).toEqual([{ pointer: '/content/tray/1/value/continuous', before: false, after: true }]);
-    expect(find('toneJump', content(false, 5)).remedies).toEqual([]);
+    // 3 · 80 · 5 / 64 is 18.75 turns: four repeats bring it back
+    expect(find('toneJump', content(false, 5)).remedies.map(({ label }) => label)).toEqual([
+      'Let the tone run on and repeat 4 times',
+    ]);
   });
 
   test('silence between repeats hides a jump at the wrap', () => {
@@ -391,7 +399,7 @@ describe('payload', () => {
     ]);
     expect(payloadClosing(content({ source: PN3, acrossRepeats: 'continue' }, 14))).toMatchObject([{ closes: true }]);
     const found = find('payloadWrap', content({ source: PN3 }));
-    expect(found).toMatchObject({ verdict: 'meets', found: 'breaks at the wrap', limit: 7 });
+    expect(found).toMatchObject({ verdict: 'meets', found: 'breaks at the wrap, closes after 7 repeats', limit: 7 });
     expect(found.words).toContain('closes after 7 repeats');
     expect(found.remedies[0]!.changes).toEqual([
       { pointer: '/content/streams/0/acrossRepeats', before: 'restart', after: 'continue' },

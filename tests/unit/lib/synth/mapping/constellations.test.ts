@@ -1,9 +1,12 @@
 import { createHash } from 'node:crypto';
 import { bitsPerCell, createCellValues, isMapKnown, pointsOf, type BitMap, type Constellation } from '@/lib/synth';
-import { readCheck, titleOf } from '../../../../helpers/checks';
+import { testCheck, testChecks } from '../../../../helpers/checks';
 import { NULL_INK, dataInk, pnStream, smallContent } from '../../../../helpers/content';
 
 const ALL: Constellation[] = ['bpsk', 'qpsk', '16qam', '64qam', '256qam', '1024qam', '4096qam'];
+
+/** The constellation that a check's id ends with. */
+const lastPart = (id: string): Constellation => id.slice(id.lastIndexOf('.') + 1) as Constellation;
 
 function expectPoints(points: Float64Array, wanted: [number, number][], norm: number, tolerance: number): void {
   expect(points.length).toBe(2 * wanted.length);
@@ -14,8 +17,7 @@ function expectPoints(points: Float64Array, wanted: [number, number][], norm: nu
 }
 
 describe('IEEE 802.11 maps', () => {
-  const kmod = readCheck<Record<string, number>>('ieee80211.kmod');
-  it(titleOf(kmod), () => {
+  testCheck<Record<string, number>>('ieee80211.kmod', (kmod) => {
     for (const [name, factor] of Object.entries(kmod.expected)) {
       // the innermost point in the first quadrant is (1, 1)·K_MOD; BPSK's is (1, 0)
       const points = pointsOf(name as Constellation, 'ieee80211');
@@ -24,13 +26,12 @@ describe('IEEE 802.11 maps', () => {
     }
   });
 
-  it.each(['bpsk', 'qpsk', '16qam', '64qam'] as const)('ieee80211.map.%s', (name) => {
-    const check = readCheck<{ points: [number, number][] }>(`ieee80211.map.${name}`);
-    expectPoints(pointsOf(name, 'ieee80211'), check.expected.points, 1, 1e-12);
-  });
+  testChecks<{ points: [number, number][] }>(
+    ['ieee80211.map.bpsk', 'ieee80211.map.qpsk', 'ieee80211.map.16qam', 'ieee80211.map.64qam'],
+    ({ id, expected }) => expectPoints(pointsOf(lastPart(id), 'ieee80211'), expected.points, 1, 1e-12),
+  );
 
-  it('ieee80211.example.freq: the worked example’s first data symbol', () => {
-    const check = readCheck<{ data48: [number, number][] }, { interleaved_bits: string }>('ieee80211.example.freq');
+  testCheck<{ data48: [number, number][] }, { interleaved_bits: string }>('ieee80211.example.freq', (check) => {
     const bits = check.input.interleaved_bits;
     const points = pointsOf('16qam', 'ieee80211');
     check.expected.data48.forEach(([re, im], i) => {
@@ -48,9 +49,16 @@ describe('TS 38.211 maps', () => {
     norm: number;
     first8: [number, number][];
   }
-  it.each(['bpsk', 'qpsk', '16qam', '64qam', '256qam', '1024qam'] as const)('ts38211.map.%s', (name) => {
-    const { expected } = readCheck<MapCheck>(`ts38211.map.${name}`);
-    const points = pointsOf(name, 'ts38211');
+  const ids = [
+    'ts38211.map.bpsk',
+    'ts38211.map.qpsk',
+    'ts38211.map.16qam',
+    'ts38211.map.64qam',
+    'ts38211.map.256qam',
+    'ts38211.map.1024qam',
+  ];
+  testChecks<MapCheck>(ids, ({ id, expected }) => {
+    const points = pointsOf(lastPart(id), 'ts38211');
     if (expected.integer_points) expectPoints(points, expected.integer_points, expected.norm, 1e-12);
     const integers = Int16Array.from(points, (part) => Math.round(part * Math.sqrt(expected.norm)));
     expect(createHash('sha256').update(new Uint8Array(integers.buffer)).digest('hex')).toBe(
@@ -58,8 +66,7 @@ describe('TS 38.211 maps', () => {
     );
   });
 
-  it('ts38211.map.pi2-bpsk', () => {
-    const check = readCheck<{ points: [number, number][] }, { bits: string }>('ts38211.map.pi2-bpsk');
+  testCheck<{ points: [number, number][] }, { bits: string }>('ts38211.map.pi2-bpsk', (check) => {
     const content = smallContent({
       fftSize: 16,
       tray: [NULL_INK, dataInk(1, { constellation: 'pi2-bpsk', bitMap: 'ts38211', streamId: 's0' })],
@@ -76,10 +83,11 @@ describe('TS 38.211 maps', () => {
 });
 
 describe('EN 300 744 maps', () => {
-  it.each(['qpsk', '16qam', '64qam'] as const)('en300744.map.%s', (name) => {
-    const check = readCheck<{ integer_points: [number, number][] }, { norm: number }>(`en300744.map.${name}`);
-    expectPoints(pointsOf(name, 'en300744'), check.expected.integer_points, check.input.norm, 1e-12);
-  });
+  testChecks<{ integer_points: [number, number][] }, { norm: number }>(
+    ['en300744.map.qpsk', 'en300744.map.16qam', 'en300744.map.64qam'],
+    ({ id, expected, input }) =>
+      expectPoints(pointsOf(lastPart(id), 'en300744'), expected.integer_points, input.norm, 1e-12),
+  );
 });
 
 describe('every map', () => {

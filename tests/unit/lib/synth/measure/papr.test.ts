@@ -19,7 +19,7 @@ import {
   type FrameMeasure,
   type WaveformContent,
 } from '@/lib/synth';
-import { readCheck, titleOf } from '@/tests/helpers/checks';
+import { readCheck, testCheck } from '@/tests/helpers/checks';
 import { dataInk, NULL_INK, pilotInk, factor, pnStream, rowOf, smallContent } from '@/tests/helpers/content';
 
 const QPSK = dataInk(1, { constellation: 'qpsk', bitMap: 'ts38211', streamId: 's0' });
@@ -63,7 +63,7 @@ const phases = readCheck<Record<string, { newman: number; schroeder: number; equ
 const tones = readCheck<Record<string, number>>('th.tones');
 
 describe('references', () => {
-  test(titleOf(instantaneous), () => {
+  testCheck('th.ccdf.inst', () => {
     const thresholds = Float64Array.from(instantaneous.input.db_above_mean);
     const curve = gaussianCcdf(thresholds);
     instantaneous.expected.ccdf.forEach((value, i) => expect(curve.probability[i]).toBeCloseTo(value, 12));
@@ -74,7 +74,7 @@ describe('references', () => {
     expect(dbAtProbability(fine, 1e-60)).toBeNull();
   });
 
-  test(titleOf(perSymbol), () => {
+  testCheck('th.ccdf.symbol', () => {
     const thresholds = Float64Array.from(perSymbol.input.papr0_db);
     for (const [size, expected] of Object.entries(perSymbol.expected)) {
       const nyquist = gaussianSymbolCcdf(Number(size), thresholds, 1);
@@ -86,7 +86,7 @@ describe('references', () => {
     }
   });
 
-  test(titleOf(monteCarlo), () => {
+  testCheck('th.ccdf.mc', () => {
     // as many symbols as the check's own run, the payload continued over the repeats
     const timing = { mode: 'loop', repeats: 5, gapSamples: 0, padSamples: 0 } as const;
     // a Gold sequence: the three-term relation of a two-tap register raises the peaks of 128-bit symbols by 0.2 dB
@@ -104,7 +104,7 @@ describe('references', () => {
     ).toBeLessThan(0.1);
   });
 
-  test(titleOf(phases), () => {
+  testCheck('th.phases', () => {
     for (const [size, expected] of Object.entries(phases.expected)) {
       const count = Number(size);
       for (const [kind, db] of Object.entries({
@@ -125,7 +125,7 @@ describe('references', () => {
     }
   });
 
-  test(titleOf(tones), () => {
+  testCheck('th.tones', () => {
     const constant = pilotInk(1, [factor({ kind: 'constant' })]);
     const papr = (painted: (k: number) => boolean): number =>
       measure(

@@ -17,14 +17,9 @@ import {
   type WaveformContent,
   type WindowKind,
 } from '@/lib/synth';
-import { readCheck, titleOf } from '@/tests/helpers/checks';
+import { describeCheck, testCheck } from '@/tests/helpers/checks';
 import { dataInk, NULL_INK, pnStream, rowOf, smallContent } from '@/tests/helpers/content';
 import { render, roundTo } from '@/tests/helpers/measures';
-
-const windows =
-  readCheck<Record<string, { enbw_bins: number; coherent_gain: number; scallop_db: number }>>('th.windows');
-const welch = readCheck<Record<string, number>, { nperseg: number; overlap: number }>('th.welch');
-const shoulders = readCheck<Record<string, number[]>, { offsets: number[]; N: number; cp: number }>('th.oob');
 
 const KINDS: Record<string, WindowKind> = {
   boxcar: 'rectangular',
@@ -36,7 +31,7 @@ const KINDS: Record<string, WindowKind> = {
   flattop: 'flatTop',
 };
 
-test(titleOf(windows), () => {
+testCheck<Record<string, { enbw_bins: number; coherent_gain: number; scallop_db: number }>>('th.windows', (windows) => {
   for (const [name, expected] of Object.entries(windows.expected)) {
     const table = createWindow(KINDS[name]!, 4096);
     expect(table.enbwBins).toBeCloseTo(expected.enbw_bins, 9);
@@ -52,7 +47,7 @@ test(titleOf(windows), () => {
   }
 });
 
-describe(titleOf(welch), () => {
+describeCheck<Record<string, number>, { nperseg: number; overlap: number }>('th.welch', (welch) => {
   const { nperseg, overlap } = welch.input;
   const options = { segmentLength: nperseg, clockHz: 1, window: 'hann', overlapSamples: overlap } as const;
 
@@ -109,25 +104,30 @@ function shoulderContent(overlapSamples: number, symbolCount: number): WaveformC
   });
 }
 
-test.each([0, 16])(`${titleOf(shoulders)}: overlap %i`, (overlapSamples) => {
-  const spectrum = welchSpectrum(render(shoulderContent(overlapSamples, 2000)), { segmentLength: 2048, clockHz: 256 });
-  const density = (from: number, to: number): number => {
-    let sum = 0;
-    let count = 0;
-    spectrum.density.forEach((value, i) => {
-      const hz = frequencyOfBin(spectrum, i);
-      if (hz < from || hz > to) return;
-      sum += value;
-      count++;
+describeCheck<Record<string, number[]>, { offsets: number[] }>('th.oob', (shoulders) => {
+  test.each([0, 16])('overlap %i', (overlapSamples) => {
+    const spectrum = welchSpectrum(render(shoulderContent(overlapSamples, 2000)), {
+      segmentLength: 2048,
+      clockHz: 256,
     });
-    return sum / count;
-  };
-  const inBand = density(10, 50);
-  shoulders.input.offsets.forEach((offset, i) => {
-    // two estimates either side, each over half a subcarrier
-    const found = (density(59.75 + offset, 60.25 + offset) + density(-60.25 - offset, -59.75 - offset)) / 2;
-    const db = 10 * Math.log10(found / inBand);
-    expect(Math.abs(db - shoulders.expected[`W${overlapSamples}`]![i]!)).toBeLessThan(1);
+    const density = (from: number, to: number): number => {
+      let sum = 0;
+      let count = 0;
+      spectrum.density.forEach((value, i) => {
+        const hz = frequencyOfBin(spectrum, i);
+        if (hz < from || hz > to) return;
+        sum += value;
+        count++;
+      });
+      return sum / count;
+    };
+    const inBand = density(10, 50);
+    shoulders.input.offsets.forEach((offset, i) => {
+      // two estimates either side, each over half a subcarrier
+      const found = (density(59.75 + offset, 60.25 + offset) + density(-60.25 - offset, -59.75 - offset)) / 2;
+      const db = 10 * Math.log10(found / inBand);
+      expect(Math.abs(db - shoulders.expected[`W${overlapSamples}`]![i]!)).toBeLessThan(1);
+    });
   });
 });
 

@@ -10,7 +10,7 @@ import {
   type WaveformContent,
 } from '@/lib/synth';
 import { quantize } from '@/lib/synth/quantize/quantize';
-import { readCheck, titleOf } from '@/tests/helpers/checks';
+import { describeCheck, readCheck, testCheck } from '@/tests/helpers/checks';
 import { dataInk, factor, NULL_INK, pilotInk, pnStream, rowOf, smallContent } from '@/tests/helpers/content';
 import { noise, normalPair, render, roundTo } from '@/tests/helpers/measures';
 
@@ -112,7 +112,7 @@ describe('known timing', () => {
   });
 });
 
-describe(titleOf(CHANNEL), () => {
+describeCheck('th.cp.channel', () => {
   // the check's own payload: PN15 as a plain register, drawn cell after cell
   const content = ofdm(256, 100, 12, 32, {
     streams: [pnStream(0, { source: { kind: 'pn', stages: 15, taps: [14, 15], seed: 32767, inverted: false } })],
@@ -163,7 +163,7 @@ describe(titleOf(CHANNEL), () => {
   });
 });
 
-describe(titleOf(EVM_SNR), () => {
+describeCheck('th.evm.snr', () => {
   // a symbol's worth of white noise of power σ² over the samples is σ² on each of the N cells
   const content = ofdm(256, 120, 60, 0);
   const clean = render(content);
@@ -249,29 +249,34 @@ describe(titleOf(EVM_SNR), () => {
 });
 
 describe('quantizing noise', () => {
-  test.each([
-    [256, 60, 8],
-    [256, 60, 12],
-    [256, 60, 16],
-    [1024, 300, 12],
-    [2048, 600, 16],
-  ])(`${titleOf(SQNR)}: N %i, ±%i, %i bits`, (fftSize, reach, bits) => {
-    const content = ofdm(fftSize, reach, 20, Math.floor(fftSize / 8));
-    expect(Object.keys(SQNR.expected)).toContain(`N${fftSize}.K${2 * reach}.b${bits}`);
-    const samples = render(content);
-    const words = roundTo(samples, bits);
-    let signal = 0;
-    let error = 0;
-    samples.forEach((value, i) => {
-      signal += value * value;
-      error += (words[i]! - value) ** 2;
+  describeCheck('th.sqnr.ofdm', () => {
+    test.each([
+      [256, 60, 8],
+      [256, 60, 12],
+      [256, 60, 16],
+      [1024, 300, 12],
+      [2048, 600, 16],
+    ])('N %i, ±%i, %i bits', (fftSize, reach, bits) => {
+      const content = ofdm(fftSize, reach, 20, Math.floor(fftSize / 8));
+      expect(Object.keys(SQNR.expected)).toContain(`N${fftSize}.K${2 * reach}.b${bits}`);
+      const samples = render(content);
+      const words = roundTo(samples, bits);
+      let signal = 0;
+      let error = 0;
+      samples.forEach((value, i) => {
+        signal += value * value;
+        error += (words[i]! - value) ** 2;
+      });
+      const sqnr = 10 * Math.log10(signal / error);
+      const predicted = -(
+        sqnr +
+        10 * Math.log10(deriveFigures(content).sampleClockHz / deriveFigures(content).loadedHz)
+      );
+      expect(Math.abs(evmOf(content, words).all.db! - predicted)).toBeLessThan(0.3);
     });
-    const sqnr = 10 * Math.log10(signal / error);
-    const predicted = -(sqnr + 10 * Math.log10(deriveFigures(content).sampleClockHz / deriveFigures(content).loadedHz));
-    expect(Math.abs(evmOf(content, words).all.db! - predicted)).toBeLessThan(0.3);
   });
 
-  test(titleOf(LOADING), () => {
+  testCheck('th.loading', () => {
     const random = noise(17);
     const samples = new Float64Array(200000);
     for (let n = 0; n < samples.length; n += 2) samples.set(normalPair(random), n);

@@ -1,6 +1,6 @@
 import { createHash } from 'node:crypto';
 import { createBitSource, createSequence, sequenceValue, type BitSource, type PayloadSource } from '@/lib/synth';
-import { readCheck, titleOf } from '../../../../helpers/checks';
+import { testCheck, testChecks } from '../../../../helpers/checks';
 
 /** The first `count` bits as text. */
 function bitsOf(source: BitSource, count: number): string {
@@ -39,9 +39,8 @@ describe('registers of ITU-T O.150', () => {
     sha256_period_noninverted_packed_msb: string;
     sha256_period_inverted_packed_msb: string;
   }
-  it.each(Object.keys(O150))('o150.%s', (name) => {
-    const { expected } = readCheck<O150Check>(`o150.${name}`);
-    const standard = O150[name]!;
+  testChecks<O150Check>(['o150.pn9', 'o150.pn11', 'o150.pn15', 'o150.pn20', 'o150.pn23'], ({ id, expected }) => {
+    const standard = O150[id.slice('o150.'.length)]!;
     expect(standard.inverted).toBe(expected.standard_inverted);
     const plain = bitsOf(createBitSource({ ...standard, inverted: false }), expected.period);
     const inverted = bitsOf(createBitSource({ ...standard, inverted: true }), expected.period);
@@ -57,8 +56,8 @@ describe('registers of ITU-T O.150', () => {
     expect(`${chosen}${chosen.slice(0, 64)}`.includes(`${longest}0`)).toBe(false);
   });
 
-  it('o150.qrss: before zero suppression', () => {
-    const { expected } = readCheck<{ first64: string; ones: number; forced_count: number }>('o150.qrss');
+  // before zero suppression
+  testCheck<{ first64: string; ones: number; forced_count: number }>('o150.qrss', ({ expected }) => {
     const bits = bitsOf(
       createBitSource({ kind: 'pn', stages: 20, taps: [17, 20], seed: 1048575, inverted: false }),
       1048575,
@@ -69,24 +68,21 @@ describe('registers of ITU-T O.150', () => {
 });
 
 describe('registers of other standards', () => {
-  it('ieee80211.scrambler.ones and .annex: x^7 + x^4 + 1', () => {
-    const all = readCheck<{ bits: string }>('ieee80211.scrambler.ones');
+  // x^7 + x^4 + 1
+  testChecks<{ bits: string }>(['ieee80211.scrambler.ones', 'ieee80211.scrambler.annex'], ({ expected }) => {
     // the register's convention is by output bits: the first seven outputs are the seed, lowest bit first
-    const seedOf = (bits: string): number => Number.parseInt([...bits.slice(0, 7)].reverse().join(''), 2);
-    const run = (bits: string): string =>
-      bitsOf(createBitSource({ kind: 'pn', stages: 7, taps: [4, 7], seed: seedOf(bits), inverted: false }), 127);
-    expect(run(all.expected.bits)).toBe(all.expected.bits);
-    const annex = readCheck<{ bits: string }>('ieee80211.scrambler.annex');
-    expect(run(annex.expected.bits)).toBe(annex.expected.bits);
+    const seed = Number.parseInt([...expected.bits.slice(0, 7)].reverse().join(''), 2);
+    const found = bitsOf(createBitSource({ kind: 'pn', stages: 7, taps: [4, 7], seed, inverted: false }), 127);
+    expect(found).toBe(expected.bits);
   });
 
-  it('en300744.prbs', () => {
-    const check = readCheck<{
-      first64: string;
-      sum_1705: number;
-      sum_6817: number;
-      sha256_first1705_packed_msb: string;
-    }>('en300744.prbs');
+  interface PilotBits {
+    first64: string;
+    sum_1705: number;
+    sum_6817: number;
+    sha256_first1705_packed_msb: string;
+  }
+  testCheck<PilotBits>('en300744.prbs', (check) => {
     const bits = bitsOf(createBitSource({ kind: 'pn', stages: 11, taps: [9, 11], seed: 2047, inverted: false }), 6817);
     expect(bits.slice(0, 64)).toBe(check.expected.first64);
     expect(ones(bits.slice(0, 1705))).toBe(check.expected.sum_1705);
@@ -96,21 +92,35 @@ describe('registers of other standards', () => {
 });
 
 describe('Gold sequences', () => {
-  it.each([0, 1, 2, 12345, 51712, 74565, 2147483647])('ts38211.gold.%i', (cInit) => {
-    const check = readCheck<{ first64: string; first1024_ones: number; first1024_sha256_packed_msb: string }>(
-      `ts38211.gold.${cInit}`,
-    );
-    const bits = bitsOf(createBitSource({ kind: 'gold', cInit }), 1024);
+  interface GoldCheck {
+    first64: string;
+    first1024_ones: number;
+    first1024_sha256_packed_msb: string;
+  }
+  const ids = [
+    'ts38211.gold.0',
+    'ts38211.gold.1',
+    'ts38211.gold.2',
+    'ts38211.gold.12345',
+    'ts38211.gold.51712',
+    'ts38211.gold.74565',
+    'ts38211.gold.2147483647',
+  ];
+  testChecks<GoldCheck, { c_init: number }>(ids, (check) => {
+    const bits = bitsOf(createBitSource({ kind: 'gold', cInit: check.input.c_init }), 1024);
     expect(bits.slice(0, 64)).toBe(check.expected.first64);
     expect(ones(bits)).toBe(check.expected.first1024_ones);
     expect(packedSha256(bits)).toBe(check.expected.first1024_sha256_packed_msb);
   });
 
-  it(titleOf(readCheck('ts36211.crs.150.0.0.0')), () => {
-    for (const id of ['150.0.0.0', '150.0.4.0', '150.1.0.1']) {
-      const { expected } = readCheck<{ c_init: number; k: number[]; a_times_sqrt2: [number, number][] }>(
-        `ts36211.crs.${id}`,
-      );
+  interface ReferenceSignals {
+    c_init: number;
+    k: number[];
+    a_times_sqrt2: [number, number][];
+  }
+  testChecks<ReferenceSignals>(
+    ['ts36211.crs.150.0.0.0', 'ts36211.crs.150.0.4.0', 'ts36211.crs.150.1.0.1'],
+    ({ expected }) => {
       const sequence = createSequence({ kind: 'gold', cInit: expected.c_init, points: 'qpsk' });
       // m′ = m + 110 − N_RB with N_RB = 6
       expected.a_times_sqrt2.forEach(([re, im], m) => {
@@ -118,8 +128,8 @@ describe('Gold sequences', () => {
         expect(value[0] * Math.SQRT2).toBeCloseTo(re, 12);
         expect(value[1] * Math.SQRT2).toBeCloseTo(im, 12);
       });
-    }
-  });
+    },
+  );
 });
 
 describe('every source', () => {

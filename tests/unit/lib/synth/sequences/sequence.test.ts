@@ -1,5 +1,5 @@
 import { createSequence, sequenceValue, type Sequence } from '@/lib/synth';
-import { readCheck, titleOf } from '../../../../helpers/checks';
+import { describeCheck, testCheck, testChecks } from '../../../../helpers/checks';
 import { directTransform, unit } from '../../../../helpers/directTransform';
 
 const values = (sequence: Sequence, start: number, count: number): [number, number][] => {
@@ -15,13 +15,12 @@ function expectClose(found: [number, number][], wanted: [number, number][], tole
   });
 }
 
-describe('Zadoff–Chu', () => {
-  interface ZcCheck {
-    first4: [number, number][];
-    papr_16x_db: number;
-  }
-  const check = readCheck<Record<string, ZcCheck>>('th.zc');
-  it.each(Object.entries(check.expected))(`${titleOf(check)} %s`, (name, expected) => {
+interface ZcCheck {
+  first4: [number, number][];
+  papr_16x_db: number;
+}
+describeCheck<Record<string, ZcCheck>>('th.zc', (check) => {
+  it.each(Object.entries(check.expected))('%s', (name, expected) => {
     const [length, root] = name.replace('N', '').split('.u').map(Number) as [number, number];
     const chu = values({ kind: 'zadoffChu', length, root, shift: 0 }, 0, length);
     expectClose(chu.slice(0, 4), expected.first4, 1e-9);
@@ -54,9 +53,12 @@ describe('Zadoff–Chu', () => {
     }
     expect(Math.abs(10 * Math.log10(peak) - expected.papr_16x_db)).toBeLessThan(1e-9);
   });
+});
 
-  it.each([25, 29, 34])('ts36211.pss.%i', (u) => {
-    const { expected } = readCheck<{ d: [number, number][] }>(`ts36211.pss.${u}`);
+describe('Zadoff–Chu', () => {
+  const ids = ['ts36211.pss.25', 'ts36211.pss.29', 'ts36211.pss.34'];
+  testChecks<{ d: [number, number][] }>(ids, ({ id, expected }) => {
+    const u = Number(id.split('.')[2]);
     // n = 0…30 as they are, n = 31…61 skip the middle one (TS 36.211 6.11.1.1); the fixture errs by its own roundings
     const chu = values({ kind: 'zadoffChu', length: 63, root: u, shift: 0 }, 0, 63);
     expectClose([...chu.slice(0, 31), ...chu.slice(32)], expected.d, 1e-11);
@@ -75,22 +77,21 @@ describe('Zadoff–Chu', () => {
 
 describe('binary sequences of synchronization signals', () => {
   const minus = (found: [number, number][]): string => found.map(([re]) => (re < 0 ? '1' : '0')).join('');
-  it.each([0, 1, 2])('ts38211.pss.%i', (id) => {
-    const { expected } = readCheck<{ bits_1_is_minus: string }>(`ts38211.pss.${id}`);
-    const found = values({ kind: 'pn', stages: 7, taps: [3, 7], seed: 0b1110110, inverted: false }, 43 * id, 127);
+  testChecks<{ bits_1_is_minus: string }>(['ts38211.pss.0', 'ts38211.pss.1', 'ts38211.pss.2'], ({ id, expected }) => {
+    const shift = 43 * Number(id.split('.')[2]);
+    const found = values({ kind: 'pn', stages: 7, taps: [3, 7], seed: 0b1110110, inverted: false }, shift, 127);
     expect(minus(found)).toBe(expected.bits_1_is_minus);
   });
 
-  it.each([0, 17, 500, 1007])('ts38211.sss.%i', (id) => {
-    const { expected, input } = readCheck<{ bits_1_is_minus: string }, { m0: number; m1: number }>(`ts38211.sss.${id}`);
+  const secondary = ['ts38211.sss.0', 'ts38211.sss.17', 'ts38211.sss.500', 'ts38211.sss.1007'];
+  testChecks<{ bits_1_is_minus: string }, { m0: number; m1: number }>(secondary, ({ expected, input }) => {
     const first = values({ kind: 'pn', stages: 7, taps: [3, 7], seed: 1, inverted: false }, input.m0, 127);
     const second = values({ kind: 'pn', stages: 7, taps: [6, 7], seed: 1, inverted: false }, input.m1, 127);
     const product = first.map(([re], i): [number, number] => [re * second[i]![0], 0]);
     expect(minus(product)).toBe(expected.bits_1_is_minus);
   });
 
-  it('ieee80211.pilots: polarity', () => {
-    const { expected } = readCheck<{ polarity: number[] }>('ieee80211.pilots');
+  testCheck<{ polarity: number[] }>('ieee80211.pilots', ({ expected }) => {
     const found = values({ kind: 'pn', stages: 7, taps: [4, 7], seed: 0b1110000, inverted: false }, 0, 254);
     expect(found.map(([re]) => re)).toEqual([...expected.polarity, ...expected.polarity]);
   });

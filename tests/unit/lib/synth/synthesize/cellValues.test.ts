@@ -186,8 +186,6 @@ describe('editing', () => {
   it('refuses broken contents', () => {
     const lost = smallContent({ tray: [NULL_INK, bpsk(1, 's7')] });
     expect(() => createCellValues(lost)).toThrow(expect.objectContaining({ code: 'bad_content' }));
-    const reduced = smallContent({ peakReduction: { kind: 'clipAndFilter', targetPaprDb: 7, iterations: 3 } });
-    expect(() => createCellValues(reduced)).toThrow(expect.objectContaining({ code: 'not_supported_yet' }));
     expect(() => createCellValues(smallContent(), new Uint8Array(3))).toThrow(
       expect.objectContaining({ code: 'bad_size' }),
     );

@@ -1,0 +1,146 @@
+import { expandGrid } from '../grid/grid';
+import { dbAtProbability } from '../measure/ccdf';
+import { createFrameMeasure } from '../measure/frameMeasure';
+import { createWelch, occupiedBandwidth, spectralNotch, welchSegment } from '../measure/spectrum';
+import type { CcdfCurve } from '../measure/types';
+import { createSynthesis, powerBefore } from '../synthesize/synthesis';
+import type { RenderOptions } from '../synthesize/types';
+import type { WaveformContent } from '../types';
+import { createReductionMeasure, type ReductionReport } from './reductionMeasure';
+
+/** What stands beside each other before and after a peak was lowered, all of one rendering. Null where nothing is painted. */
+export interface PeakFigures {
+  /** Over the frame's own mean. */
+  paprDb: number | null;
+  /** Per symbol over its own mean, the worst of its repeats; NaN where silent. */
+  symbolPaprDb: Float64Array;
+  /** The symbol that holds the frame's peak. */
+  worstSymbol: number | null;
+  meanPower: number;
+  /** Instantaneous power over mean power, per sample: the curve, and where one sample in a hundred, in a thousand lies above. */
+  sampleCcdf: CcdfCurve;
+  atOneInHundredDb: number | null;
+  atOneInThousandDb: number | null;
+  /** Spectral notch of the widest hole inside the painted span, mean density to the span's; null without a hole of two cells. */
+  notchDb: number | null;
+  /** Occupied bandwidth, 99 %. */
+  occupiedHz: number | null;
+  /** The reduction's own report; null where the content has none. */
+  reduction: ReductionReport | null;
+}
+
+export interface FiguresMeasuring {
+  readonly totalSteps: number;
+  readonly doneSteps: number;
+  step(): boolean;
+  result(): PeakFigures;
+}
+
+/** Samples that the spectrum is taken of: a longer file by its beginning. */
+const SPECTRUM_SAMPLES_MOST = 262144;
+const BLOCK_SAMPLES = 8192;
+
+/** Every figure of a waveform's peak, in steps: the frame at M′, the reduction, the spectrum of the rendered samples. */
+export function createPeakMeasure(
+  content: WaveformContent,
+  options: Pick<RenderOptions, 'cells' | 'engine'> = {},
+): FiguresMeasuring {
+  const shared = { ...options, powerBefore: powerBefore(content, options) };
+  const frame = createFrameMeasure(content, shared);
+  const reduction = createReductionMeasure(content, shared);
+  const spectrum = createSpectrumSteps(content, shared);
+  const parts = [frame, reduction, spectrum].filter((part) => part !== null);
+  const totalSteps = parts.reduce((sum, part) => sum + part.totalSteps, 0);
+  let at = 0;
+  return {
+    totalSteps,
+    get doneSteps() {
+      return parts.reduce((sum, part) => sum + part.doneSteps, 0);
+    },
+    step() {
+      const part = parts[at];
+      if (part && !part.step()) at++;
+      return at < parts.length;
+    },
+    result() {
+      const { power, symbolPaprDb, sampleCcdf } = frame.result();
+      const isSilent = power.paprDb === null;
+      return {
+        paprDb: power.paprDb,
+        symbolPaprDb,
+        worstSymbol: isSilent ? null : power.peakSlot % content.symbolCount,
+        meanPower: power.meanPower,
+        sampleCcdf,
+        atOneInHundredDb: isSilent ? null : dbAtProbability(sampleCcdf, 1e-2),
+        atOneInThousandDb: isSilent ? null : dbAtProbability(sampleCcdf, 1e-3),
+        ...spectrum.result(),
+        reduction: reduction?.result() ?? null,
+      };
+    },
+  };
+}
+
+function createSpectrumSteps(
+  content: WaveformContent,
+  options: Pick<RenderOptions, 'cells' | 'engine' | 'powerBefore'>,
+) {
+  const synthesis = createSynthesis(content, options);
+  const [numerator, denominator] = content.subcarrierSpacingHz;
+  const spacingHz = numerator / denominator;
+  const samples = Math.min(SPECTRUM_SAMPLES_MOST, synthesis.samples);
+  const welch = createWelch({
+    segmentLength: welchSegment(samples),
+    clockHz: content.fftSize * content.oversampling * spacingHz,
+  });
+  const block = new Float64Array(2 * BLOCK_SAMPLES);
+  const totalSteps = Math.ceil(samples / BLOCK_SAMPLES);
+  let done = 0;
+  return {
+    totalSteps,
+    get doneSteps() {
+      return done;
+    },
+    step() {
+      const count = synthesis.read(block);
+      if (count > 0) welch.push(block, count);
+      done = Math.min(totalSteps, done + 1);
+      return count > 0 && done < totalSteps;
+    },
+    result(): Pick<PeakFigures, 'notchDb' | 'occupiedHz'> {
+      const found = welch.result();
+      const hole = widestHole(content, options.cells);
+      const { frequencyOffsetHz } = content;
+      const band = (from: number, to: number) => ({
+        lowHz: from * spacingHz + frequencyOffsetHz,
+        highHz: to * spacingHz + frequencyOffsetHz,
+      });
+      return {
+        occupiedHz: occupiedBandwidth(found)?.widthHz ?? null,
+        notchDb: hole && spectralNotch(found, band(hole.from, hole.to), band(hole.first, hole.last)).meanDb,
+      };
+    },
+  };
+}
+
+/** The widest run of subcarriers that no symbol paints, inside the painted span: signed, all borders inside. */
+function widestHole(
+  { fftSize, grid, tray }: WaveformContent,
+  given?: Uint8Array,
+): { from: number; to: number; first: number; last: number } | null {
+  const cells = given ?? expandGrid(grid, fftSize);
+  const isPainted = new Uint8Array(fftSize);
+  for (let i = 0; i < cells.length; i++) if (tray[cells[i]!]?.role !== 'null') isPainted[i % fftSize] = 1;
+  const first = isPainted.indexOf(1);
+  const last = isPainted.lastIndexOf(1);
+  const lowest = -Math.floor(fftSize / 2);
+  let from = 0;
+  let width = 1; // one cell alone (DC) is no notch
+  for (let p = first + 1, run = 0; p <= last; p++) {
+    run = isPainted[p] === 1 ? 0 : run + 1;
+    if (run <= width) continue;
+    width = run;
+    from = p - run + 1;
+  }
+  if (width < 2) return null;
+  return { from: from + lowest, to: from + width - 1 + lowest, first: first + lowest, last: last + lowest };
+}
