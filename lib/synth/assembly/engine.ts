@@ -1,9 +1,9 @@
 // The sample engine: everything here works on addresses in its own memory, which its owner lays out (lib/synth/engine).
 export { transform } from './transform';
-export { closePart, floatWords, integerWords, measure } from './samples';
+export { floatWords, integerWords, measure, regroup } from './samples';
 export { mapRuns } from './points';
 
-/** The first byte that is free. */
+/** The first byte that is free, a multiple of 4096. */
 export function freeFrom(): usize {
-  return (__heap_base + 63) & ~63;
+  return (__heap_base + 4095) & ~4095;
 }

@@ -27,15 +27,52 @@ export function mapRuns(run: usize, count: i32): void {
   return ((<u64>load<u32>(word) << 32) | <u64>load<u32>(word, 4)) << (bit & 31);
 }
 
-/** Cell after cell without holes: as many cells as fit in 32 bits from each look. */
+@inline function point(points: usize, ahead: u64, at: u32, bits: u32): v128 {
+  return v128.load(points + (<usize>((ahead >> (60 - at - bits)) & (((1 << bits) - 1) << 4))));
+}
+
+/** Cell after cell without holes: as many cells as fit in 32 bits from each look; the usual ones with shifts known here. */
 function mapPacked(words: usize, bit: u32, bits: u32, points: usize, to: usize, cells: u32): void {
-  const drop = 64 - bits;
-  const each: u32 = 32 / bits;
-  for (; cells >= each; cells -= each, bit += each * bits) {
-    let ahead = bitsAt(words, bit);
-    for (const end = to + (<usize>each << 4); to < end; to += 16) {
-      v128.store(to, v128.load(points + ((<usize>(ahead >> drop)) << 4)));
-      ahead <<= bits;
+  if (bits == 2) {
+    for (; cells >= 8; cells -= 8, bit += 16, to += 128) {
+      const ahead = bitsAt(words, bit);
+      v128.store(to, point(points, ahead, 0, 2));
+      v128.store(to, point(points, ahead, 2, 2), 16);
+      v128.store(to, point(points, ahead, 4, 2), 32);
+      v128.store(to, point(points, ahead, 6, 2), 48);
+      v128.store(to, point(points, ahead, 8, 2), 64);
+      v128.store(to, point(points, ahead, 10, 2), 80);
+      v128.store(to, point(points, ahead, 12, 2), 96);
+      v128.store(to, point(points, ahead, 14, 2), 112);
+    }
+  } else if (bits == 4) {
+    for (; cells >= 8; cells -= 8, bit += 32, to += 128) {
+      const ahead = bitsAt(words, bit);
+      v128.store(to, point(points, ahead, 0, 4));
+      v128.store(to, point(points, ahead, 4, 4), 16);
+      v128.store(to, point(points, ahead, 8, 4), 32);
+      v128.store(to, point(points, ahead, 12, 4), 48);
+      v128.store(to, point(points, ahead, 16, 4), 64);
+      v128.store(to, point(points, ahead, 20, 4), 80);
+      v128.store(to, point(points, ahead, 24, 4), 96);
+      v128.store(to, point(points, ahead, 28, 4), 112);
+    }
+  } else if (bits == 6) {
+    for (; cells >= 5; cells -= 5, bit += 30, to += 80) {
+      const ahead = bitsAt(words, bit);
+      v128.store(to, point(points, ahead, 0, 6));
+      v128.store(to, point(points, ahead, 6, 6), 16);
+      v128.store(to, point(points, ahead, 12, 6), 32);
+      v128.store(to, point(points, ahead, 18, 6), 48);
+      v128.store(to, point(points, ahead, 24, 6), 64);
+    }
+  } else if (bits == 8) {
+    for (; cells >= 4; cells -= 4, bit += 32, to += 64) {
+      const ahead = bitsAt(words, bit);
+      v128.store(to, point(points, ahead, 0, 8));
+      v128.store(to, point(points, ahead, 8, 8), 16);
+      v128.store(to, point(points, ahead, 16, 8), 32);
+      v128.store(to, point(points, ahead, 24, 8), 48);
     }
   }
   mapSpaced(words, bit, bits, bits, points, to, cells);

@@ -27,7 +27,15 @@ export function createSampleEngine(instantiate: () => EngineExports): SampleEngi
     const best = rooms.reduce<Room | null>((a, b) => (a !== null && worthOf(a) >= worthOf(b) ? a : b), null);
     if (best !== null && (best.isResting || rooms.length >= ROOMS)) return best;
     const exports = instantiate();
-    const room = { exports, start: exports.freeFrom(), tenant: {}, usedAt: 0, tenancy: 0, isResting: false };
+    const room = {
+      exports,
+      start: exports.freeFrom(),
+      tenant: {},
+      usedAt: 0,
+      tenancy: 0,
+      planSize: 0,
+      isResting: false,
+    };
     rooms.push(room);
     return room;
   }

@@ -1,27 +1,46 @@
 /** What the sample engine's module exports, as far as it is used. Addresses and sizes are bytes in its own memory. */
 export interface EngineExports {
   readonly memory: { readonly buffer: ArrayBuffer; grow(pages: number): number };
-  /** The first byte that is free. */
+  /** The first byte that is free, a multiple of 4096. */
   freeFrom(): number;
-  /** Interleaved samples at `to` from `from`'s bins, of which only 0…low−1 and size−high…size−1 may differ from 0. */
+  /**
+   * Samples at `to`, in pairs (both real parts, then both imaginary parts, 32 bytes a pair), from `from`'s interleaved bins, of
+   * which only 0…low−1 and size−high…size−1 may differ from 0.
+   */
   transform(plan: number, from: number, to: number, low: number, high: number): void;
   /** Puts `count` runs of payload cells on their points. */
   mapRuns(runs: number, count: number): void;
-  /** Adds `count` samples to a level state. */
-  measure(state: number, at: number, count: number): void;
-  /** Samples as 16-bit words; adds to the two counts (components, samples). Writes up to 3 samples' words more. */
-  integerWords(at: number, count: number, to: number, scale: number, least: number, most: number, counts: number): void;
-  /** Samples as single precision numbers; adds to the two counts what lies beyond ±1. */
-  floatWords(at: number, count: number, to: number, scale: number, counts: number): void;
+  /** Adds samples from…from+count−1 of a row of pairs to a level state. */
+  measure(state: number, row: number, from: number, count: number): void;
+  /** Those samples as 16-bit words; adds to the two counts (components, samples). Writes up to 3 samples' words more. */
+  integerWords(
+    row: number,
+    from: number,
+    count: number,
+    to: number,
+    scale: number,
+    least: number,
+    most: number,
+    counts: number,
+  ): void;
+  /** Those samples as single precision numbers; adds to the two counts what lies beyond ±1. */
+  floatWords(row: number, from: number, count: number, to: number, scale: number, counts: number): void;
+  /** Interleaved samples to pairs or pairs to interleaved samples, which may be in one place; `pairs` times two samples. */
+  regroup(from: number, pairs: number, to: number): void;
 }
 
 /** A tenant's place in the engine. */
 export interface EngineRoom {
   readonly exports: EngineExports;
-  /** Where the tenant's bytes begin, a multiple of 64. */
+  /** Where the tenant's bytes begin, a multiple of 4096. */
   readonly start: number;
   /** Grows with each new tenant: another number than before says that nothing of the tenant's is left in it. */
   readonly tenancy: number;
+  /**
+   * Size of the transform whose plan (with its scratch room) lies at `start` as createTransformPlan lays it, 0 for none: it outlives its
+   * tenant. Who lays another one, or anything else there, says so here.
+   */
+  planSize: number;
 }
 
 /**

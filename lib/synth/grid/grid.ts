@@ -6,28 +6,40 @@ export function lowestSubcarrier(fftSize: number): number {
   return -Math.floor(fftSize / 2);
 }
 
-/**
- * The cells of a run-length grid: a new Uint8Array of L·N ink numbers, symbol by symbol, position p = k + ⌊N/2⌋ within one.
- * Throws SynthError `bad_content` when a row does not fill exactly N positions or is missing.
- */
-export function expandGrid(grid: RunGrid, fftSize: number): Uint8Array {
-  const rows = grid.rows.map((runs) => {
-    const row = new Uint8Array(fftSize);
+/** Throws SynthError `bad_content` when a row does not fill exactly N positions or is missing. */
+export function demandWholeRows(grid: RunGrid, fftSize: number): void {
+  for (const runs of grid.rows) {
     let at = 0;
     for (let i = 0; i + 1 < runs.length; i += 2) {
       const length = runs[i]!;
       demand(length >= 1 && at + length <= fftSize, 'bad_content', 'A row is longer than the transform.');
-      if (runs[i + 1] !== 0) row.fill(runs[i + 1]!, at, at + length);
       at += length;
     }
     demand(at === fftSize, 'bad_content', 'A row is shorter than the transform.');
+  }
+  for (const row of grid.rowOfSymbol) {
+    demand(grid.rows[row] !== undefined, 'bad_content', 'A symbol names a row that is not there.');
+  }
+}
+
+/**
+ * The cells of a run-length grid: a new Uint8Array of L·N ink numbers, symbol by symbol, position p = k + ⌊N/2⌋ within one.
+ * Throws SynthError as demandWholeRows does.
+ */
+export function expandGrid(grid: RunGrid, fftSize: number): Uint8Array {
+  demandWholeRows(grid, fftSize);
+  const rows = grid.rows.map((runs) => {
+    const row = new Uint8Array(fftSize);
+    for (let i = 0, at = 0; i + 1 < runs.length; i += 2) {
+      const end = at + runs[i]!;
+      if (runs[i + 1] !== 0) row.fill(runs[i + 1]!, at, end);
+      at = end;
+    }
     return row;
   });
   const cells = new Uint8Array(grid.rowOfSymbol.length * fftSize);
   grid.rowOfSymbol.forEach((rowNumber, symbol) => {
-    const row = rows[rowNumber];
-    demand(row !== undefined, 'bad_content', 'A symbol names a row that is not there.');
-    cells.set(row, symbol * fftSize);
+    cells.set(rows[rowNumber]!, symbol * fftSize);
   });
   return cells;
 }

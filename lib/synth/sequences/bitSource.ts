@@ -7,6 +7,8 @@ import { createWordRegister } from './register';
 export interface BitSource {
   /** Bits after which the sequence repeats itself for certain (not always the least number), null when not known. */
   readonly periodBits: number | null;
+  /** Where given, word i (from the last tap on) is the exclusive or of the words i − tap, and of all ones where inverted. */
+  readonly recurrence: WordRecurrence | null;
   /**
    * Writes `count` packed words from word number `first` on to out[at…]: word i holds bits 32i…32i+31, the first as the
    * most significant. Upward reading without holes is fastest.
@@ -16,16 +18,24 @@ export interface BitSource {
   bit(index: number): number;
 }
 
+/** How the packed words of a register's sequence follow from earlier ones. */
+export interface WordRecurrence {
+  taps: readonly number[];
+  inverted: boolean;
+}
+
 const WINDOW_WORDS = 64;
 
 function withBits(
   periodBits: number | null,
   readWords: (first: number, count: number, out: Uint32Array, at: number) => void,
+  recurrence: WordRecurrence | null = null,
 ): BitSource {
   const window = new Uint32Array(WINDOW_WORDS);
   let windowFirst = -1;
   return {
     periodBits,
+    recurrence,
     readWords,
     bit(index) {
       const word = Math.floor(index / 32);
@@ -88,11 +98,14 @@ export function createBitSource(source: PayloadSource): BitSource {
   switch (source.kind) {
     case 'pn': {
       const register = createWordRegister(source.stages, source.taps, source.seed);
-      if (!source.inverted) return withBits(null, register.readWords);
-      return withBits(null, (first, count, out, at) => {
+      const isOdd = source.taps.length % 2 === 1;
+      const recurrence = { taps: source.taps, inverted: source.inverted && !isOdd };
+      if (!source.inverted) return withBits(null, register.readWords, recurrence);
+      const readInverted = (first: number, count: number, out: Uint32Array, at: number): void => {
         register.readWords(first, count, out, at);
         for (let i = at; i < at + count; i++) out[i] = ~out[i]!;
-      });
+      };
+      return withBits(null, readInverted, recurrence);
     }
     case 'gold':
       return goldSource(source.cInit);

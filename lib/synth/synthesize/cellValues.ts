@@ -1,5 +1,5 @@
 import { demand, SynthError } from '../errors';
-import { expandGrid, lowestSubcarrier } from '../grid/grid';
+import { demandWholeRows, expandGrid, lowestSubcarrier } from '../grid/grid';
 import { createRootsOfUnity } from '../math/turns';
 import { createBitSource } from '../sequences/bitSource';
 import type { WaveformContent } from '../types';
@@ -48,10 +48,13 @@ export function createPlacedValues(
   gain: number,
 ): PlacedValues {
   const { fftSize, symbolCount, streams, timing, tray } = content;
-  const cells = givenCells ?? expandGrid(content.grid, fftSize);
-  demand(cells.length === fftSize * symbolCount, 'bad_size', 'Cells do not fill the grid.');
+  if (givenCells === undefined) demandWholeRows(content.grid, fftSize);
+  const rowCount = givenCells === undefined ? content.grid.rowOfSymbol.length : givenCells.length / fftSize;
+  demand(rowCount === symbolCount, 'bad_size', 'Cells do not fill the grid.');
+  let expanded = givenCells;
+  const cellsNow = (): Uint8Array => (expanded ??= expandGrid(content.grid, fftSize)); // most renderings never ask
   const inks = planInks(content, gain);
-  const openRuns = () => (givenCells === undefined ? runsOfGrid(content.grid) : runsOfCells(cells, fftSize));
+  const openRuns = () => (givenCells === undefined ? runsOfGrid(content.grid) : runsOfCells(givenCells, fftSize));
   const cellRuns = openRuns();
   const counts = createCellCounts(openRuns(), symbolCount, inks); // of its own: it counts while runs are in use
   const base = frameLayout({ ...content, oversampling: 1, timing: { ...timing, padSamples: 0 } }, 1);
@@ -59,7 +62,7 @@ export function createPlacedValues(
   const taken = new Float64Array(streams.length); // next bit of each running stream
   const inkTaken = new Float64Array(tray.length); // next `cell` number of each ink
   const inSymbol = new Int32Array(tray.length); // cells of each ink so far in this symbol
-  const values = new Float64Array(2 * fftSize);
+  let values: Float64Array = new Float64Array(0); // room for values with factors
   const lowest = lowestSubcarrier(fftSize);
   let roots: Float64Array | null = null;
   const natural: Placement = { split: fftSize, low: 0, high: 0 };
@@ -125,6 +128,7 @@ export function createPlacedValues(
     out: Float64Array,
     to: number,
   ): void {
+    if (values.length === 0) values = new Float64Array(2 * fftSize);
     for (let i = 0; i < count; i++) {
       values[2 * i] = plan.re;
       values[2 * i + 1] = plan.im;
@@ -208,6 +212,7 @@ export function createPlacedValues(
     symbol: number,
     visit: (p: number, firstBit: number, bits: number, cellStream: number) => void,
   ): void {
+    const cells = cellsNow();
     const from = symbol * fftSize;
     const next = streams.map((_, number) => (stream < 0 || number === stream ? firstBitOf(number, repeat, symbol) : 0));
     for (let p = 0; p < fftSize; p++) {
@@ -230,16 +235,23 @@ export function createPlacedValues(
       return plan.kind === 'value' && plan.isContinuous && turn !== 0 ? 2 : 0;
     });
     if (varies.every((kind) => kind === 0)) return true;
-    for (let i = 0; i < cells.length; i++) {
-      const kind = varies[cells[i]!]!;
-      if (kind === 1 || (kind === 2 && (((i % fftSize) + lowest) * turn) % fftSize !== 0)) return false;
+    for (let symbol = 0; symbol < symbolCount; symbol++) {
+      const runs = cellRuns.of(symbol);
+      const { numbers } = cellRuns;
+      for (let i = 0, p = 0; i < numbers; p = runs[i]!, i += 2) {
+        const kind = varies[runs[i + 1]!]!;
+        if (kind === 1) return false;
+        if (kind === 2) for (; p < runs[i]!; p++) if (((p + lowest) * turn) % fftSize !== 0) return false;
+      }
     }
     return true;
   }
 
   return {
     content,
-    cells,
+    get cells() {
+      return cellsNow();
+    },
     inks,
     rowOf: cellRuns.rowOf,
     painted: givenCells === undefined ? paintedPart(cellRuns, content, inks) : { first: 0, end: fftSize },

@@ -1,63 +1,10 @@
 import { createTransformPlan } from '../engine/transformPlan';
-import type { EngineExports, SampleEngine } from '../engine/types';
+import type { SampleEngine } from '../engine/types';
 import type { BitWindow } from './bitWindow';
 import type { RunSink } from './cellValues';
-import { LEVEL_STATE_LENGTH, PART_SAMPLES, takePart, type PartSums } from './levelState';
-import type { PartPlan, SampleWork, UsefulParts } from './partTypes';
-
-const BLOCK_SAMPLES = 4096;
-const RUNS_MOST = 512;
-const RUN_NUMBERS = 8;
-const LEAST_WINDOW_WORDS = 514;
-const MOST_BITS = 12; // of a cell, or from an anchored cell to the next
-const APART_BYTES = 1088; // that the kernel leaves between real and imaginary parts
-const SPARE = 64; // what the kernel may read or write beyond an end
-
-/** Where everything lies in a room, in bytes from its beginning. */
-interface RoomMap {
-  plan: number;
-  scratch: number;
-  other: number;
-  spectrum: number;
-  part: number;
-  runs: number;
-  windows: number[];
-  points: number[];
-  state: number;
-  counts: number;
-  block: number;
-  words: number;
-  kept: number;
-  bytes: number;
-}
-
-function mapRoom({ values, layout }: PartPlan, planBytes: number, slots: number): RoomMap {
-  const size = layout.usefulSamples;
-  const { content, inks } = values;
-  let end = 0;
-  const take = (bytes: number): number => {
-    const at = end;
-    end += Math.ceil((bytes + SPARE) / 64) * 64;
-    return at;
-  };
-  const windowWords = Math.max(LEAST_WINDOW_WORDS, Math.ceil((MOST_BITS * content.fftSize) / 32) + 4);
-  const map = {
-    plan: take(planBytes),
-    scratch: take(16 * size + APART_BYTES),
-    other: take(16 * size + APART_BYTES),
-    spectrum: take(16 * size),
-    part: take(16 * size),
-    runs: take(4 * RUN_NUMBERS * RUNS_MOST),
-    windows: content.streams.map(() => take(4 * windowWords)),
-    points: inks.map((plan) => (plan.kind === 'data' ? take(8 * plan.points.length) : 0)),
-    state: take(8 * LEVEL_STATE_LENGTH),
-    counts: take(16),
-    block: take(16 * BLOCK_SAMPLES),
-    words: take(8 * BLOCK_SAMPLES),
-    kept: take(16 * size * slots),
-  };
-  return { ...map, bytes: end };
-}
+import { BLOCK_SAMPLES, mapRoom, RUN_NUMBERS, RUNS_MOST, STAGED_SAMPLES, type OpenRoom } from './engineRoom';
+import type { PartPlan, UsefulParts } from './partTypes';
+import { createSampleWork } from './sampleWork';
 
 /**
  * Useful parts made in the engine's memory: values that are not payload are written there, payload runs are listed and put
@@ -72,27 +19,25 @@ export function createEngineParts(plan: PartPlan, engine: SampleEngine, slots: n
   const tenant = {};
   const isKept = new Uint8Array(slots);
   const copied = new Float64Array(content.streams.length);
+  const none = new Float64Array(0);
+  const room = { numbers: none, block: none, start: 0 } as OpenRoom;
   let tenancy = -1;
-  let start = 0;
-  let kernel: EngineExports;
-  let memory = new ArrayBuffer(0);
-  let numbers: Float64Array = new Float64Array(0); // the whole memory
-  let integers = new Int32Array(0);
-  let spectrum: Float64Array = new Float64Array(0);
+  let spectrum: Float64Array = none;
   let runs = 0;
   let lastRow = -1;
-  let partSums: PartSums | undefined;
+  let present = -1; // the slot whose part lies in the room for those that are not kept
 
-  const view = (at: number, length: number): Float64Array => new Float64Array(memory, start + at, length);
+  const view = (at: number, length: number): Float64Array => new Float64Array(room.memory, room.start + at, length);
 
-  /** Lays out a room that holds nothing of ours. */
-  function furnish(): void {
-    ({ buffer: memory } = kernel.memory);
-    numbers = new Float64Array(memory);
-    integers = new Int32Array(memory);
+  /** Lays out a room that holds nothing of ours; `hasPlan`: but the transform's plan. */
+  function furnish(hasPlan: boolean): void {
+    const { start, memory } = room;
+    room.numbers = new Float64Array(memory);
+    room.integers = new Int32Array(memory);
+    room.block = view(map.block, 2 * BLOCK_SAMPLES);
+    room.staged = new Uint8Array(memory, start + map.words, 8 * STAGED_SAMPLES);
     spectrum = view(map.spectrum, 2 * size);
-    spectrum.fill(0);
-    transformPlan.place(memory, start + map.plan, start + map.scratch, start + map.other);
+    if (!hasPlan) transformPlan.place(memory, start + map.plan, start + map.scratch, start + map.other);
     inks.forEach((ink, number) => {
       if (ink.kind === 'data') view(map.points[number]!, ink.points.length).set(ink.points);
     });
@@ -100,11 +45,11 @@ export function createEngineParts(plan: PartPlan, engine: SampleEngine, slots: n
     copied.fill(-1);
     runs = 0;
     lastRow = -1;
-    work.block = view(map.block, 2 * BLOCK_SAMPLES);
+    present = -1;
   }
 
   function flush(): void {
-    if (runs > 0) kernel.mapRuns(start + map.runs, runs);
+    if (runs > 0) room.kernel.mapRuns(room.start + map.runs, runs);
     runs = 0;
   }
 
@@ -112,6 +57,7 @@ export function createEngineParts(plan: PartPlan, engine: SampleEngine, slots: n
     take(ink, window: BitWindow, offset, step, to, count, parity) {
       const data = inks[ink]!;
       if (data.kind !== 'data') return;
+      const { start, integers } = room;
       const wordsAt = start + map.windows[data.stream]!;
       if (copied[data.stream] !== window.version) {
         flush();
@@ -131,80 +77,40 @@ export function createEngineParts(plan: PartPlan, engine: SampleEngine, slots: n
     },
   };
 
-  /** As the kernel's measure, a part at a time, so that each one's sums can be taken away. */
-  function measureParts(sums: PartSums, at: number, count: number): void {
-    const state = (start + map.state) / 8;
-    for (let done = 0; done < count;) {
-      const room = PART_SAMPLES - numbers[state + 8]!;
-      const part = Math.min(count - done, room);
-      kernel.measure(start + map.state, at + 16 * done, part);
-      if (part === room) takePart(numbers, state, sums);
-      done += part;
-    }
+  function rowOfPart(repeat: number, symbol: number, slot: number): number {
+    const { kernel, start } = room;
+    const isKeeping = slot >= 0 && slot < slots;
+    const part = start + (isKeeping ? map.kept + 16 * size * slot : map.part);
+    if (isKeeping ? isKept[slot] === 1 : slot >= 0 && slot === present) return part;
+    const row = values.rowOf(symbol);
+    if (row < 0 || row !== lastRow) {
+      spectrum.fill(0, 0, 2 * low);
+      spectrum.fill(0, 2 * (size - high));
+      lastRow = row;
+    } // else each value of the symbol before is written over
+    values.writePlaced(repeat, symbol, spectrum, placement, sink);
+    flush();
+    kernel.transform(start + map.plan, start + map.spectrum, part, low, high);
+    if (isKeeping) isKept[slot] = 1;
+    else present = slot;
+    return part;
   }
 
-  const work: SampleWork & { block: Float64Array } = {
-    block: spectrum,
-    lend(collector) {
-      ({ partSums } = collector);
-      numbers.set(collector.state, (start + map.state) / 8);
-    },
-    measure(at, count) {
-      if (partSums === undefined) kernel.measure(start + map.state, at, count);
-      else measureParts(partSums, at, count);
-    },
-    giveBack(collector) {
-      const state = (start + map.state) / 8;
-      collector.state.set(numbers.subarray(state, state + LEVEL_STATE_LENGTH));
-    },
-    write(writer, at, count, bytes, to) {
-      const { direct, bytesPerSample } = writer;
-      if (direct === null) {
-        writer.write(new Float64Array(memory, at, 2 * count), count, bytes, to);
-        return;
-      }
-      const counts = start + map.counts;
-      const words = start + map.words;
-      numbers[counts / 8] = 0;
-      numbers[counts / 8 + 1] = 0;
-      for (let done = 0; done < count; done += BLOCK_SAMPLES) {
-        const part = Math.min(count - done, BLOCK_SAMPLES);
-        const from = at + 16 * done;
-        if (direct.word === 'int16') {
-          kernel.integerWords(from, part, words, direct.scale, -direct.most - 1, direct.most, counts);
-        } else kernel.floatWords(from, part, words, direct.scale, counts);
-        bytes.set(new Uint8Array(memory, words, part * bytesPerSample), to + done * bytesPerSample);
-      }
-      writer.saturated.components += numbers[counts / 8]!;
-      writer.saturated.samples += numbers[counts / 8 + 1]!;
-    },
-  };
-
   return {
-    onSamples: work,
+    onSamples: { ...createSampleWork(map, room), rowOfPart },
     enter() {
-      const room = engine.rent(tenant, map.bytes);
-      if (room.tenancy === tenancy) return true;
-      ({ start, tenancy, exports: kernel } = room);
-      furnish();
+      const rented = engine.rent(tenant, map.bytes);
+      if (rented.tenancy === tenancy) return true;
+      ({ start: room.start, tenancy, exports: room.kernel } = rented);
+      room.memory = room.kernel.memory.buffer;
+      furnish(rented.planSize === size);
+      rented.planSize = size;
       return false;
     },
     rest: () => engine.rest(tenant),
     part(repeat, symbol, slot) {
-      const at = slot < slots ? map.kept + 16 * size * slot : map.part;
-      const part = view(at, 2 * size);
-      if (slot < slots && isKept[slot] === 1) return part;
-      const row = values.rowOf(symbol);
-      if (row < 0 || row !== lastRow) {
-        spectrum.fill(0, 0, 2 * low);
-        spectrum.fill(0, 2 * (size - high));
-        lastRow = row;
-      } // else each value of the symbol before is written over
-      values.writePlaced(repeat, symbol, spectrum, placement, sink);
-      flush();
-      kernel.transform(start + map.plan, start + map.spectrum, part.byteOffset, low, high);
-      if (slot < slots) isKept[slot] = 1;
-      return part;
+      room.kernel.regroup(rowOfPart(repeat, symbol, slot), size / 2, room.start + map.flat);
+      return view(map.flat, 2 * size);
     },
   };
 }

@@ -10,23 +10,34 @@ export interface UsefulParts {
   rest(): void;
   /**
    * The useful part of a symbol, interleaved, to be read only; valid until the next call (`slot` below the kept ones: until
-   * enter gives false). Equal slots are equal parts.
+   * enter gives false). Equal slots are equal parts; slot −1 keeps nothing.
    */
   part(repeat: number, symbol: number, slot: number): Float64Array;
   /** What the engine does with samples in its memory; null without an engine. */
   readonly onSamples: SampleWork | null;
 }
 
-/** The engine's work on samples that lie in its memory, `at` bytes from its beginning. */
+/**
+ * The engine's work on samples that lie in its memory in a row of pairs, `row` bytes from its beginning. To be used after `enter`, and
+ * only until something else may have entered.
+ */
 export interface SampleWork {
-  /** Room for some samples that were put together here; valid until enter gives false. */
-  readonly block: Float64Array;
+  /** Room for samples that are put together outside, interleaved. */
+  openBlock(): Float64Array;
+  /** The first `count` samples of the block as a row; the block is void then. */
+  rowOfBlock(count: number): number;
+  /** The row of a symbol's useful part: what `part` gives. */
+  rowOfPart(repeat: number, symbol: number, slot: number): number;
   /** Takes a collector's levels into the engine; samples are measured into them until they are given back. */
   lend(collector: Omit<StatsCollector, 'stats'>): void;
-  measure(at: number, count: number): void;
+  /** Measures samples from…from+count−1 of a row. */
+  measure(row: number, from: number, count: number): void;
   giveBack(collector: Omit<StatsCollector, 'stats'>): void;
-  /** Writes `count` samples as words to bytes[to…]. */
-  write(writer: WordWriter, at: number, count: number, bytes: Uint8Array, to: number): void;
+  /** From here on samples are written as words to bytes[at…]; all of them are there after endWords. */
+  beginWords(writer: WordWriter, bytes: Uint8Array, at: number): void;
+  /** Writes samples from…from+count−1 of a row. */
+  write(row: number, from: number, count: number): void;
+  endWords(): void;
 }
 
 /** What parts are made of. */

@@ -15,7 +15,7 @@ export function createSymbolSynthesis(content: WaveformContent, options: RenderO
     useful(repeat, symbol, out) {
       demand(out.length >= 2 * layout.usefulSamples, 'buffer_too_small', 'A useful part has 2·N·M numbers.');
       parts.enter();
-      out.set(parts.part(repeat, symbol, 0));
+      out.set(parts.part(repeat, symbol, -1));
     },
   };
 }

@@ -5,6 +5,7 @@ import type { WaveformContent } from '../types';
 import { createPlacedValues } from './cellValues';
 import { createFrequencyOffset } from './frequencyOffset';
 import { interpolationOf } from './layout';
+import type { SampleWork } from './partTypes';
 import { createRamp } from './ramp';
 import type { RenderOptions, StatsCollector, Synthesis } from './types';
 import { createUsefulParts, planParts } from './usefulParts';
@@ -34,9 +35,13 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
   // samples of which nothing is weighted or turned lie in the useful parts as they are
   const isPlain = overlapSamples === 0 && offset === null;
 
+  function slotOf(repeat: number, symbol: number): number {
+    return isAlike ? symbol : repeat * symbolCount + symbol;
+  }
+
   /** The useful part of symbol `symbol` of `repeat`; valid until the next call. */
   function usefulPart(repeat: number, symbol: number): Float64Array {
-    return parts.part(repeat, symbol, isAlike ? symbol : repeat * symbolCount + symbol);
+    return parts.part(repeat, symbol, slotOf(repeat, symbol));
   }
 
   let position = 0;
@@ -171,37 +176,43 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
   }
 
   let block: Float64Array | null = null;
-  let spanAt = 0;
+  // a span: samples that lie together in the engine's memory, from number spanFrom on of the row at spanRow
+  let spanRow = 0;
+  let spanFrom = 0;
 
-  /** Moves on by at most `most` samples that lie in a row in the engine's memory at spanAt; returns how many. */
-  function nextSpan(most: number): number {
-    if (!parts.enter()) useful = null;
-    if (!isPlain || symbol >= symbolCount) {
-      const { block: room } = onSamples!;
-      spanAt = room.byteOffset;
-      return read(most < BLOCK_SAMPLES ? room.subarray(0, 2 * most) : room);
+  /** Moves on by at most `most` samples that lie together in the engine's memory, which was entered; returns how many. */
+  function nextSpan(work: SampleWork, most: number): number {
+    if (symbol === symbolCount && repeat < repeats - 1 && layout.gapSamples === 0) {
+      repeat++;
+      symbol = 0;
     }
-    useful ??= usefulPart(repeat, symbol);
+    if (!isPlain || symbol === symbolCount) {
+      const room = work.openBlock();
+      const count = read(2 * most < room.length ? room.subarray(0, 2 * most) : room);
+      spanRow = work.rowOfBlock(count);
+      spanFrom = 0;
+      return count;
+    }
+    spanRow = work.rowOfPart(repeat, symbol, slotOf(repeat, symbol));
     const prefix = prefixes[symbol]!;
     const from = position - repeat * repeatSamples - symbolStarts[symbol]!;
-    const start = from < prefix ? usefulSamples - prefix + from : from - prefix;
-    const count = Math.min(most, usefulSamples - start);
-    spanAt = useful.byteOffset + 16 * start;
+    spanFrom = from < prefix ? usefulSamples - prefix + from : from - prefix;
+    const count = Math.min(most, usefulSamples - spanFrom);
     position += count;
-    if (from >= prefix && start + count === usefulSamples) {
+    if (from >= prefix && spanFrom + count === usefulSamples) {
       useful = null;
       symbol++;
     }
     return count;
   }
 
-  /** Calls `visit` with up to `most` samples, a row at a time: where it lies, how many they are, how many came before. */
-  function eachSpan(most: number, visit: (at: number, count: number, done: number) => void): number {
+  /** Calls `visit` with up to `most` samples, a span at a time: its row, the first sample in it, samples. */
+  function eachSpan(work: SampleWork, most: number, visit: (row: number, from: number, count: number) => void): number {
     let done = 0;
     while (done < most) {
-      const count = nextSpan(most - done);
+      const count = nextSpan(work, most - done);
       if (count === 0) break;
-      visit(spanAt, count, done);
+      visit(spanRow, spanFrom, count);
       done += count;
     }
     if (position === samples) parts.rest();
@@ -212,7 +223,7 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
     if (onSamples !== null) {
       if (!parts.enter()) useful = null;
       onSamples.lend(collector);
-      const measured = eachSpan(most, onSamples.measure);
+      const measured = eachSpan(onSamples, most, onSamples.measure);
       onSamples.giveBack(collector);
       return measured;
     }
@@ -230,7 +241,11 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
       'No room for the words.',
     );
     if (onSamples !== null) {
-      return eachSpan(most, (from, count, done) => onSamples.write(writer, from, count, bytes, at + done * size));
+      if (!parts.enter()) useful = null;
+      onSamples.beginWords(writer, bytes, at);
+      const written = eachSpan(onSamples, most, onSamples.write);
+      onSamples.endWords();
+      return written;
     }
     block ??= new Float64Array(2 * BLOCK_SAMPLES);
     let done = 0;

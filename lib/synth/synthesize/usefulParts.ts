@@ -64,12 +64,13 @@ function createPlainParts({ values, layout, placement, low, high }: PartPlan, sl
     part(repeat, symbol, slot) {
       const known = kept[slot];
       if (known !== undefined) return known;
-      const part = slot < slots ? new Float64Array(2 * size) : (scratch ??= new Float64Array(2 * size));
+      const isKeeping = slot >= 0 && slot < slots;
+      const part = isKeeping ? new Float64Array(2 * size) : (scratch ??= new Float64Array(2 * size));
       spectrum.fill(0, 0, 2 * low);
       spectrum.fill(0, 2 * (size - high));
       values.writePlaced(repeat, symbol, spectrum, placement);
       inverse(spectrum, part);
-      if (slot < slots) kept[slot] = part;
+      if (isKeeping) kept[slot] = part;
       return part;
     },
   };
