@@ -3,7 +3,6 @@ import { existsSync, readdirSync, readFileSync } from 'node:fs';
 import path from 'node:path';
 import { exampleDocuments } from '@/lib/document/examples/exampleDocuments';
 import { generatedFiles } from '@/lib/document/generatedFiles';
-import { notSupportedYet } from '@/lib/document/notSupportedYet';
 import { parseBenchProfile, parseWaveformDocument } from '@/lib/document/parse';
 import { openBench, smallDocument } from '@/tests/helpers/documents';
 
@@ -63,7 +62,6 @@ describe('the example documents', () => {
     expect(all).toHaveLength(6);
     for (const document of all) {
       expect(document.about.notes).toMatch(/^Invented\./);
-      expect(notSupportedYet(document)).toEqual([]);
     }
   });
 

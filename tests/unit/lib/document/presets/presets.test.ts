@@ -1,4 +1,3 @@
-import { notSupportedYet } from '@/lib/document/notSupportedYet';
 import { parseWaveformDocument } from '@/lib/document/parse';
 import { presetGroups } from '@/lib/document/presets/preset';
 import { presets } from '@/lib/document/presets/presets';
@@ -15,7 +14,6 @@ describe.each(presets.map((preset) => [preset.presetId, preset] as const))('%s',
   test('is a right document that cites its source and says what it leaves out', () => {
     const document = preset.build();
     expect(parseWaveformDocument(JSON.stringify(document))).toEqual({ ok: true, value: document });
-    expect(notSupportedYet(document)).toEqual([]);
     expect(document.about.title).toBe(preset.title);
     expect(document.content).toMatchObject({ ...preset.numbers, oversampling: 1 });
     expect(document.content.level).toEqual({ reference: 'interpolatedPeak', headroomDb: 1 });
