@@ -8,8 +8,8 @@ export interface EngineExports {
    * which only 0…low−1 and size−high…size−1 may differ from 0.
    */
   transform(plan: number, from: number, to: number, low: number, high: number): void;
-  /** Puts `count` runs of payload cells on their points. */
-  mapRuns(runs: number, count: number): void;
+  /** Puts `count` runs of payload cells on their points; with isNext (1, else 0) those of the next symbol, which follow. */
+  mapRuns(runs: number, count: number, isNext: number): void;
   /** Adds samples from…from+count−1 of a row of pairs to a level state. */
   measure(state: number, row: number, from: number, count: number): void;
   /** Those samples as 16-bit words; adds to the two counts (components, samples). Writes up to 3 samples' words more. */

@@ -31,6 +31,11 @@ export interface PlacedValues extends CellValues {
   readonly inks: readonly InkPlan[];
   /** As CellRuns.rowOf: symbols of one row differ in no silent cell. */
   rowOf(symbol: number): number;
+  /**
+   * Whether all painted cells of a row are payload of running streams on points that do not turn: symbols of it that follow each
+   * other in a repeat differ in where their bits begin, each stream's behind the last one's.
+   */
+  isSteadyRow(row: number): boolean;
   /** Positions first…end−1 hold every cell that may not be silent. */
   readonly painted: { first: number; end: number };
   /** Writes the values of the symbol's cells that are not silent (payload cells: to `sink`, where given); all others must be 0. */
@@ -247,8 +252,20 @@ export function createPlacedValues(
     return true;
   }
 
+  /** By row: whether it is steady, as far as it has been asked. */
+  const steady: (boolean | undefined)[] = [];
+  function isSteadyRow(row: number): boolean {
+    if (givenCells !== undefined) return false;
+    return (steady[row] ??= content.grid.rows[row]!.every((number, i) => {
+      const plan = i % 2 === 1 ? inks[number] : undefined;
+      if (plan === undefined || plan.kind === 'silent') return true;
+      return plan.kind === 'data' && !plan.isHalfTurning && streams[plan.stream]!.fill === 'running';
+    }));
+  }
+
   return {
     content,
+    isSteadyRow,
     get cells() {
       return cellsNow();
     },
