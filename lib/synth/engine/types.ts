@@ -12,7 +12,10 @@ export interface EngineExports {
   mapRuns(runs: number, count: number, isNext: number): void;
   /** Adds samples from…from+count−1 of a row of pairs to a level state. */
   measure(state: number, row: number, from: number, count: number): void;
-  /** Those samples as 16-bit words; adds to the two counts (components, samples). Writes up to 3 samples' words more. */
+  /**
+   * Those samples as 16-bit words; adds to the two counts (components, samples). Writes up to 3 samples' words more. isBounded (1,
+   * else 0): no component times scale reaches 2^31.
+   */
   integerWords(
     row: number,
     from: number,
@@ -22,6 +25,7 @@ export interface EngineExports {
     least: number,
     most: number,
     counts: number,
+    isBounded: number,
   ): void;
   /** Those samples as single precision numbers; adds to the two counts what lies beyond ±1. */
   floatWords(row: number, from: number, count: number, to: number, scale: number, counts: number): void;

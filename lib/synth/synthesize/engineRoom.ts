@@ -76,7 +76,7 @@ export function mapRoom({ values, layout }: PartPlan, planBytes: number, slots: 
     counts: take(16),
     block: take(16 * BLOCK_SAMPLES),
     words: take(8 * STAGED_SAMPLES),
-    kept: takeApart(16 * size * slots, 2048),
+    kept: takeApart(16 * size * slots + 4096, 2048),
   };
   return { ...map, bytes: end };
 }
