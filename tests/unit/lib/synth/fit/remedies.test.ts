@@ -253,7 +253,7 @@ describe('seam, worked by hand', () => {
       0, 0, 1, 0, 3, 0, 0, 0, 1, 0, 3, 0,
     ]);
     const found = find('seam', smallContent(), {}, { known: { wave: { seam, symbolPeaks: null } } });
-    expect(found.found).toBe('step 1.64, elsewhere 1.10');
+    expect(found).toMatchObject({ title: 'Seam, step at the wrap', found: '1.64, elsewhere 1.10' });
   });
 
   test('of a longer file the last and first 64 are kept, in order, however the blocks are cut', () => {
@@ -362,9 +362,10 @@ describe('levels, worked by hand', () => {
       hard: true,
       byHowMuch: 'no such file can be written',
     });
-    expect(find('word', smallContent(), { bits: 12, align: 'left', numberFormat: 'offsetBinary' }).found).toBe(
-      '12 bit left-aligned offset binary, low byte first',
-    );
+    expect(find('word', smallContent(), { bits: 12, align: 'left', numberFormat: 'offsetBinary' })).toMatchObject({
+      found: '12 bit, low byte first',
+      words: '12 bit, low byte first, left-aligned, offset binary; nothing saturates.',
+    });
   });
 
   test('peaks of 1, 1, 1 and 2.1: 3.22 dB above the median of 1', () => {
