@@ -14,7 +14,10 @@ function run(overrides: Partial<BenchContent>) {
   const bench = path.join(folder, 'bench.json');
   writeFileSync(bench, JSON.stringify(openBench(overrides)));
   const out = path.join(folder, 'out.zip');
-  const options = { signal: new AbortController().signal, threads: { file: 'unused: too short for threads', count: 1 } };
+  const options = {
+    signal: new AbortController().signal,
+    threads: { file: 'unused: too short for threads', count: 1 },
+  };
   return sidedness({ bench, out, json: false }, options);
 }
 
