@@ -116,7 +116,7 @@ const byteLabel = (headBytes: number, at: number) => (headBytes + at === 0 ? 'by
 
 const styles = StyleSheet.create({
   file: { gap: 4 },
-  words: { flexDirection: 'row', flexWrap: 'wrap', rowGap: 10, columnGap: 3 },
+  words: { flexDirection: 'row', flexWrap: 'wrap', rowGap: 10, columnGap: 2 },
   sample: { minWidth: 0 },
   bracket: {
     height: 5,
