@@ -63,7 +63,8 @@ export function parseCommand(argv: string[]): Parsed {
   if (values.help) return { ok: true, command: { name: 'help' } };
   if (values.version) return { ok: true, command: { name: 'version' } };
   const [name, ...files] = positionals;
-  if (name === undefined) return wrong('A command is missing: render, sidedness, fit, verify or inspect');
+  if (name === undefined)
+    return wrong('A command is missing: render, sidedness, verify, inspect, fit, receive or impair');
   if (!['render', 'sidedness', 'fit'].includes(name) && values.out !== undefined)
     return wrong('--out belongs to render, sidedness and fit');
   switch (name) {
