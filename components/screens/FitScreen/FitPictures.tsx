@@ -18,9 +18,11 @@ export function FitPictures({ fit, withLength }: { fit: Fit; withLength: boolean
             Length
           </Text>
           <LengthRuler samples={length.measured} granularity={length.limit} />
-          <Text variant="small" tone="quiet">
-            {length.words}
-          </Text>
+          {length.verdict === 'meets' ? (
+            <Text variant="small" tone="quiet">
+              {length.words}
+            </Text>
+          ) : null}
         </View>
       ) : null}
       {hasWrap && seam ? (
@@ -29,9 +31,15 @@ export function FitPictures({ fit, withLength }: { fit: Fit; withLength: boolean
             Seam
           </Text>
           {fit.seam ? <SeamPicture seam={fit.seam} jumps={seam.verdict === 'misses'} /> : null}
-          <Text variant="small" tone="quiet">
-            {seam.words}
-          </Text>
+          {seam.verdict === 'meets' ? (
+            <Text variant="small" tone="quiet">
+              {seam.words}
+            </Text>
+          ) : fit.seam ? (
+            <Text variant="small" tone="quiet">
+              {`Step at the wrap ${fit.seam.stepAtWrap.toFixed(2)} of the RMS, elsewhere ${fit.seam.stepElsewhere.toFixed(2)} at most.`}
+            </Text>
+          ) : null}
           {fit.seam ? null : (
             <Text variant="small" tone="quiet">
               {fit.levels === 'measuring'

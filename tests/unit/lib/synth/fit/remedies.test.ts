@@ -104,12 +104,18 @@ describe('length, worked by hand', () => {
     ]);
   });
 
-  test('a pad that would open the loop is not offered', () => {
+  test('a pad that would open the loop takes the offset along', () => {
     // 15 kHz turns once in 64 samples at 960 kS/s: 100, 200, 300 and 400 samples are no whole turns, 25 · 64 = 1600 are 25
     const turning = smallContent({ frequencyOffsetHz: 15000 });
     expect(find('seam', turning)).toMatchObject({ verdict: 'meets', measured: 1, limit: 1 });
-    const kinds = find('granularity', turning, { granularitySamples: 100 }).remedies.map(({ kind }) => kind);
-    expect(kinds).toEqual(['repeats']);
+    const { remedies } = find('granularity', turning, { granularitySamples: 100 });
+    expect(shortly(remedies)).toEqual([
+      ['repeats', 'Repeat the frame 25 times: 1600', 1536],
+      ['pad', 'Pad with 36 silent samples: 100, and move the offset', 36],
+    ]);
+    // 100 samples at 15 kHz are 1.5625 turns; two make 960 kHz · 2 / 100 = 19.2 kHz, 4.2 of 960 kHz are 4375 ppm
+    expect(remedies[1]!.changes.at(-1)).toMatchObject({ pointer: '/content/frequencyOffsetHz', after: 19200 });
+    expect(remedies[1]!.price.ppm).toBeCloseTo(4375, 9);
   });
 });
 
