@@ -1,11 +1,13 @@
 // `npm run bench`: our rendering beside its peers, in interleaved rounds of one run. --json prints the ratios alone
 // (peer's median time / ours: above 1 we are faster); --rounds n, --only W1,W2. Peers that are not installed are left out.
+// BIG is a vector of --megabytes n (256) and its pack, the least of --big-rounds n (3).
 import { spawn, spawnSync } from 'node:child_process';
 import { mkdtempSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { createInterface } from 'node:readline';
 import { build } from 'esbuild';
+import { measureBigVector } from '../tests/bench/bigVector.mjs';
 import { measureBrushing } from '../tests/bench/brushing.mjs';
 
 const options = process.argv.slice(2);
@@ -13,7 +15,7 @@ const valueOf = (name, other) => (options.includes(name) ? options[options.index
 const isJson = options.includes('--json');
 const rounds = Number(valueOf('--rounds', '21'));
 const WARM_UPS = 2;
-const jobs = valueOf('--only', 'W1,W2,W3').split(',');
+const jobs = valueOf('--only', 'W1,W2,W3,BIG').split(',');
 const directory = mkdtempSync(join(tmpdir(), 'combwright-bench-'));
 
 /** A process that answers each line with one line of JSON. */
@@ -101,7 +103,7 @@ try {
   }
 
   const ratios = {};
-  for (const job of jobs) {
+  for (const job of jobs.filter((name) => name !== 'BIG')) {
     ratios[job] = {};
     for (const mode of ['', ' file']) {
       const medians = await measure(job, mode, job === 'W3' ? Math.ceil(rounds / 4) : rounds);
@@ -118,7 +120,14 @@ try {
   for (const peer of [engine, ...peers]) peer.close();
   const liveEdit = await measureLiveEdit();
   const brushing = await measureBrushing();
-  console.log(JSON.stringify({ ratios, liveEdit, brushing }, null, isJson ? 0 : 2));
+  const big = jobs.includes('BIG')
+    ? await measureBigVector({
+        megabytes: Number(valueOf('--megabytes', '256')),
+        rounds: Number(valueOf('--big-rounds', '3')),
+        directory,
+      })
+    : null;
+  console.log(JSON.stringify({ ratios, liveEdit, brushing, big }, null, isJson ? 0 : 2));
 } finally {
   rmSync(directory, { recursive: true, force: true });
 }

@@ -116,7 +116,7 @@ export function createTableEngine(
     const inks = fillsFor(theme);
     const density = Math.min(3, window.devicePixelRatio || 1);
     const live = props.live.get();
-    const { result, isStale } = live;
+    const { result, peaksBefore, isStale } = live;
     const spacingHz = settings.subcarrierSpacingHz[0] / settings.subcarrierSpacingHz[1];
     const common = [theme, layout, view] as const;
 
@@ -156,16 +156,16 @@ export function createTableEngine(
     );
     const { peaks } = layout;
     if (peaks && result)
-      part(canvas, 'peaks', [...common, result, isStale], (on) =>
+      part(canvas, 'peaks', [...common, result, peaksBefore, isStale], (on) =>
         drawPeakDots(
           on,
           scope,
           peaks,
-          { view, symbolPaprDb: result.symbolPaprDb, worst: result.worstSymbol, isStale },
+          { view, symbolPaprDb: result.symbolPaprDb, before: peaksBefore, worst: result.worstSymbol, isStale },
           theme,
         ),
       );
-    part(canvas, 'straightedge', [...common, fftSize, spacingHz, result, hover], (on) => {
+    part(canvas, 'straightedge', [...common, fftSize, spacingHz, result, peaksBefore, hover], (on) => {
       const bar = layout.straightedge;
       const reading = hover && peaks ? readingOf(hover, fftSize, spacingHz) : null;
       drawStraightedge(
@@ -176,7 +176,13 @@ export function createTableEngine(
         theme,
       );
       if (peaks && result && !reading && !view.turned)
-        drawPeakScale(on, scope, { ...bar, x: peaks.x, width: peaks.width }, result.symbolPaprDb, theme);
+        drawPeakScale(
+          on,
+          scope,
+          { ...bar, x: peaks.x, width: peaks.width },
+          { symbolPaprDb: result.symbolPaprDb, before: peaksBefore },
+          theme,
+        );
     });
     const { band } = layout;
     if (band)

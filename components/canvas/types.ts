@@ -28,6 +28,8 @@ export interface TableLayout {
 export interface TableLive {
   /** The newest answer, or null before the first. */
   result: LiveResult | null;
+  /** PAPR of each symbol before the peak was lowered, to stand hollow beside the dots; null: nothing to compare with. */
+  peaksBefore: Float32Array | null;
   /** The answer is older than the document. */
   isStale: boolean;
 }

@@ -2,11 +2,12 @@ import { Pressable, StyleSheet, View } from 'react-native';
 import { copyAndSay } from './copyText';
 import { Text } from './Text';
 import { color } from './theme';
+import { showToast } from './toast';
 import { useBreakpoint } from './useBreakpoint';
 
 const bare = (digest: string) => digest.replace(/^sha256:/, '');
 
-/** First and last four digits of a SHA-256; press copies the whole. */
+/** First and last four digits of a SHA-256; press copies the whole, a long one shows it in groups of eight. */
 export function DigestChip({ digest, same }: { digest: string; same?: boolean }) {
   const hex = bare(digest);
   const touch = useBreakpoint() === 'phone';
@@ -16,6 +17,7 @@ export function DigestChip({ digest, same }: { digest: string; same?: boolean })
       role="button"
       aria-label={`Digest ${hex.slice(0, 4)}…${hex.slice(-4)}, copy`}
       onPress={() => void copyAndSay(hex, 'Digest copied')}
+      onLongPress={() => showToast(groups)}
       style={touch ? styles.target : styles.hug}
       {...({ title: groups } as object)}
     >

@@ -1,13 +1,22 @@
 import { useEffect, useRef } from 'react';
 import { StyleSheet, TextInput, View, type ViewStyle } from 'react-native';
+import { readPreferences } from './preferences';
 import { Text, textStyle } from './Text';
 import { color } from './theme';
 import { useBreakpoint } from './useBreakpoint';
 
 /** Is the keyboard in a field, where a letter is a letter? */
-export function isTyping(event: KeyboardEvent): boolean {
+function isTyping(event: KeyboardEvent): boolean {
   const at = event.target instanceof HTMLElement ? event.target : null;
-  return at !== null && (/^(INPUT|TEXTAREA|SELECT)$/.test(at.tagName) || at.closest('[role=dialog]') !== null);
+  return (
+    at !== null &&
+    (/^(INPUT|TEXTAREA|SELECT)$/.test(at.tagName) || at.closest('[role=dialog],[role=alertdialog]') !== null)
+  );
+}
+
+/** May a single letter or sign act as a key of the page now? */
+export function isKeyOfPage(event: KeyboardEvent): boolean {
+  return readPreferences().singleKeys && !event.ctrlKey && !event.metaKey && !event.altKey && !isTyping(event);
 }
 
 /** A field to find by: `/` goes to it, Escape clears it. */
@@ -31,7 +40,7 @@ export function FindField({
   const ref = useRef<TextInput>(null);
   useEffect(() => {
     const onKey = (event: KeyboardEvent) => {
-      if (event.key !== '/' || event.ctrlKey || event.metaKey || event.altKey || isTyping(event)) return;
+      if (event.key !== '/' || !isKeyOfPage(event)) return;
       event.preventDefault();
       ref.current?.focus();
     };

@@ -9,12 +9,13 @@ import type { Endpoint, ResponseOf } from '@/lib/contracts/endpoint';
 import type { Problem } from '@/lib/contracts/problem';
 import { call, type CallInput } from './apiClient';
 import { noteAnswer } from './connection';
+import { problemWords } from './problemWords';
 
 /** An expected refusal or a lost connection, thrown so that queries and mutations carry it as their error. */
 export class ProblemError extends Error {
   readonly problem: Problem | null;
   constructor(problem: Problem | null) {
-    super(problem?.detail ?? 'No connection.');
+    super(problem ? problemWords(problem) : 'No connection.');
     this.name = 'ProblemError';
     this.problem = problem;
   }

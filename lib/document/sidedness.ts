@@ -26,7 +26,7 @@ export function sidednessOf(profile: BenchProfile): { ok: true; value: Sidedness
   const tone = inWords(fractionToNumber(plan.toneHz));
   const words = `On an analyser the tone stands ${tone} above the carrier. If it stands below it, the generator takes I and Q the other way round, or Q with the other sign: change "swap I and Q", or else "negate Q", in the bench profile.`;
   const document = emptyDocument({
-    title: `Sidedness: one tone ${tone} above the carrier`,
+    title: `Sidedness: tone ${tone} above the carrier`,
     notes: words,
     content: plan.content,
   });

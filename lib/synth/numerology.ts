@@ -69,7 +69,7 @@ function greatestCommonDivisor(a: bigint, b: bigint): bigint {
   return a;
 }
 
-/** A reduced fraction of two positive integers. */
+/** A reduced fraction of two positive integers (Euclid). */
 export function exactFraction(numerator: bigint, denominator: bigint): ExactFraction {
   const divisor = greatestCommonDivisor(numerator, denominator);
   return { numerator: numerator / divisor, denominator: denominator / divisor };
@@ -108,7 +108,7 @@ export function sampleClock(
 
 /**
  * Counts the cells of a grid. With `cells` (L·N inks, symbol by symbol) it reads those, else the document's runs: each distinct row
- * once, times the symbols that use it. Costs O(cells) or O(runs + rows·N).
+ * once, times the symbols that use it. Costs O(cells) or O(runs + rows·N). The census owns its arrays; nothing given is kept.
  */
 export function createCellCensus(content: WaveformContent, cells?: Uint8Array): CellCensus {
   const size = content.fftSize;
@@ -182,7 +182,9 @@ export function bitsOfInk(content: Pick<WaveformContent, 'tray'>): number[] {
 
 /**
  * Every figure derived from the numbers and the grid. `source` is a census kept by the caller, or the cells (L·N), or nothing (the
- * document's own runs). Definitions: SIGNAL.md's list (used, loaded, span, rates and overheads); T_s and the guard likewise.
+ * document's own runs). Used means not null; loaded = subcarriers used in any symbol · Δf; span = (k_max − k_min + 1) · Δf;
+ * T_s = mean (N + N_cp)/(N·Δf); rate = bits of a frame over its time, prefixes in, gap out. Hz, s and samples as the names say; a
+ * figure without meaning (nothing painted) is null.
  */
 export function deriveFigures(content: WaveformContent, source?: Uint8Array | CellCensus): DerivedFigures {
   const census = source === undefined || source instanceof Uint8Array ? createCellCensus(content, source) : source;

@@ -8,6 +8,7 @@ export type Command =
   | { name: 'sidedness'; bench: string; out: string | null; json: boolean }
   | { name: 'verify'; pack: string; json: boolean }
   | { name: 'inspect'; document: string; json: boolean }
+  | { name: 'fit'; document: string; bench: string; out: string | null; json: boolean }
   | CaptureCommand;
 
 export type Parsed = { ok: true; command: Command } | { ok: false; message: string; json: boolean };
@@ -25,6 +26,10 @@ export const helpText = `combwright: from a waveform document to a proven vector
       Reads a pack again: every digest, and every word against a new synthesis.
   combwright inspect <document.json>
       Prints the document's figures and digests.
+  combwright fit <document.json> <bench.json> [--out <mended.json>]
+      Checks the document against every limit of the bench profile, with what would
+      mend each miss and what that costs. With --out the first remedies are applied
+      and the mended document is written. Ends with 1 where a pack would be refused.
 ${captureHelp}
   --json      one JSON object on standard output instead of lines
   --help      this text
@@ -58,14 +63,16 @@ export function parseCommand(argv: string[]): Parsed {
   if (values.help) return { ok: true, command: { name: 'help' } };
   if (values.version) return { ok: true, command: { name: 'version' } };
   const [name, ...files] = positionals;
-  if (name === undefined) return wrong('A command is missing: render, sidedness, verify or inspect');
-  if (name !== 'render' && name !== 'sidedness' && values.out !== undefined)
-    return wrong('--out belongs to render and sidedness');
+  if (name === undefined)
+    return wrong('A command is missing: render, sidedness, verify, inspect, fit, receive or impair');
+  if (!['render', 'sidedness', 'fit'].includes(name) && values.out !== undefined)
+    return wrong('--out belongs to render, sidedness and fit');
   switch (name) {
-    case 'render': {
+    case 'render':
+    case 'fit': {
       const [document, bench] = files;
       if (document === undefined || bench === undefined || files.length > 2)
-        return wrong('render takes a document and a bench profile');
+        return wrong(`${name} takes a document and a bench profile`);
       if (values.out === '') return wrong('--out needs a file name');
       return { ok: true, command: { name, document, bench, out: values.out ?? null, json } };
     }

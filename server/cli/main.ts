@@ -4,6 +4,7 @@ import { defaultThreadCount, type WorkThreads } from '../packs/pool/workPool.ts'
 import { loadSampleEngine } from '../sampleEngine.ts';
 import { helpText, parseCommand, type Command } from './arguments.ts';
 import { impair } from './impair.ts';
+import { fit } from './fit.ts';
 import { inspect } from './inspect.ts';
 import { done, refused, usage, type Outcome } from './outcome.ts';
 import { receive } from './receive.ts';
@@ -44,6 +45,8 @@ async function run(command: Command): Promise<Outcome> {
       return verify(command, { signal: cancelSignal(), threads: threads() });
     case 'inspect':
       return inspect(command);
+    case 'fit':
+      return fit(command);
     case 'receive':
       return receive(command, cancelSignal());
     case 'impair':

@@ -7,6 +7,8 @@ export interface CardHead {
   benchName: string;
   vectorSha256: string;
   saturatedWords: string | null;
+  /** What the fit says of limits that are missed and may be meant. */
+  notices: string[];
 }
 
 const minus = (text: string) => text.replace('-', '−');
@@ -53,6 +55,7 @@ export function levelCardText(head: CardHead, card: LevelCard, cautions: Caution
     `Mean while it plays    ${dbfs(card.activeRmsDbfs)}`,
     `Mean over the file     ${dbfs(card.fileRmsDbfs)}`,
     ...(head.saturatedWords === null ? [] : [`Saturated              ${head.saturatedWords}`]),
+    ...(head.notices.length === 0 ? [] : ['', 'The fit says:', ...head.notices.map((notice) => `  ${notice}`)]),
     '',
     ...cautions.map((caution) => `${String(caution.number).padStart(2)}. ${caution.text}`),
   ];

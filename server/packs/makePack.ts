@@ -290,6 +290,7 @@ export async function makePack(request: PackRequest): Promise<PackResult> {
     folder = await makeWorkFolder(request.tmpFolder);
     const zipFile = path.join(folder, 'pack.zip');
     pool = openPool(document.content, profile.content, request.threads);
+    signal?.addEventListener('abort', () => void pool?.close(), { once: true }); // no need to wait for what is under way
     zip = await createZipFile(zipFile);
     const made = await make(request, zip, pool);
     const fileName = `${made.baseName}.zip`;
@@ -299,7 +300,7 @@ export async function makePack(request: PackRequest): Promise<PackResult> {
     request.onProgress?.({ step: 'writing', doneRatio: 1 });
     return { ok: true, pack: { ...made, file, fileName } };
   } catch (error) {
-    const { code, message, issues } = toPackError(error);
+    const { code, message, issues } = toPackError(error, signal);
     return { ok: false, code, message, issues };
   } finally {
     await pool?.close();

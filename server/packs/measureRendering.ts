@@ -124,6 +124,7 @@ export async function measureRendering(
     });
   };
 
+  await pool.begin();
   const collector = createStatsCollector();
   const cycle: LevelParts[] = [];
   const add = (parts: LevelParts) => addLevelParts(collector, parts);

@@ -49,7 +49,9 @@ const synthCodes: Partial<Record<SynthErrorCode, PackErrorCode>> = {
 const noRoomCodes = new Set(['ENOSPC', 'EDQUOT', 'EFBIG']);
 
 /** The system's own failures in words for a person; paths stay out of them, since a job's reason is shown on a page. */
-export function toPackError(error: unknown): PackError {
+export function toPackError(error: unknown, signal?: AbortSignal): PackError {
+  // whatever ends first when all is given up
+  if (signal?.aborted) return new PackError('cancelled', cancelledMessage);
   if (error instanceof PackError) return error;
   const synthCode = error instanceof SynthError ? synthCodes[error.code] : undefined;
   if (synthCode) return new PackError(synthCode, (error as SynthError).message);

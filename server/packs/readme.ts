@@ -58,7 +58,7 @@ function meantWords(bench: BenchContent): string {
   if (bench.word === 'float32') return 'raw';
   const shift = shiftBits(bench);
   const shifted = shift === 0 ? 'raw.astype(int)' : `(raw.astype(int) >> ${shift})`;
-  return offsetOf(bench) === 0 ? shifted : `${shifted} - ${offsetOf(bench)}`;
+  return offsetOf(bench) === 0 ? shifted : `(${shifted} - ${offsetOf(bench)})`;
 }
 
 function reader(input: ReadmeInput): string {
@@ -71,7 +71,7 @@ m = json.load(open('manifest.json'))
 d = json.load(open('document.combwright.json'))['content']
 N, L, M = d['fftSize'], d['symbolCount'], d['oversampling']
 raw = ${loaded.length === 1 ? `${loaded[0]}.reshape(-1, 2)` : `np.stack([${loaded.map((one) => `${one}.ravel()`).join(',\n                ')}], 1)`}
-w = (${meantWords(bench)}) / m['word']['scaleLsbPerUnit']
+w = ${meantWords(bench)} / m['word']['scaleLsbPerUnit']
 x = w[:, ${i}] ${bench.negateQ ? '-' : '+'} 1j * w[:, ${q}]
 fs = N * M * d['subcarrierSpacingHz'][0] / d['subcarrierSpacingHz'][1]
 x *= np.exp(-2j * np.pi * np.mod(np.arange(x.size) * (d['frequencyOffsetHz'] / fs), 1))

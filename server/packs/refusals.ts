@@ -1,7 +1,15 @@
 import type { Issue } from '@/lib/document/issues';
 import { layoutIssues } from '@/lib/document/layoutIssues';
-import { checkFit, type BenchProfile, type FitFinding, type MeasuredLevels, type WaveformDocument } from '@/lib/synth';
-import { PackError, type PackIssue } from './packError.ts';
+import {
+  checkFit,
+  judgeFit,
+  type BenchProfile,
+  type FitFinding,
+  type MeasuredLevels,
+  type SymbolPeaks,
+  type WaveformDocument,
+} from '@/lib/synth';
+import { PackError, type PackIssue } from '@/server/packs/packError';
 
 const unmeasured: MeasuredLevels = {
   fileRmsDbfs: null,
@@ -43,12 +51,20 @@ export function refusalOf(document: WaveformDocument, profile: BenchProfile): Pa
   return new PackError('limit_missed', issues.map(({ message }) => message).join(' '), issues);
 }
 
-/** What a person should know though the pack was made: soft findings, and saturation that the document asked for. */
-export function noticesOf(document: WaveformDocument, profile: BenchProfile, measured: MeasuredLevels): string[] {
-  return checkFit(document, profile, measured)
+/**
+ * What a person should know though the pack was made, in the fit's own words: soft limits that are missed, since they may be meant, and
+ * saturation that the document asked for. Stands in manifest and level card.
+ */
+export function noticesOf(
+  document: WaveformDocument,
+  profile: BenchProfile,
+  measured: MeasuredLevels,
+  symbolPeaks: SymbolPeaks | null,
+): string[] {
+  return judgeFit(document, profile, measured, { wave: { seam: null, symbolPeaks } })
     .filter(
       ({ check, hard, verdict }) =>
         (!hard && verdict === 'misses') || (check === 'word' && (measured.saturatedComponents ?? 0) > 0),
     )
-    .map((finding) => finding.words);
+    .map(({ title, words }) => `${title}: ${words}`);
 }

@@ -151,6 +151,7 @@ async function verify(handle: FileHandle, { signal, threads }: VerifyOptions): P
   });
 
   const pool = openPool(document.content, profile.content, threads);
+  signal?.addEventListener('abort', () => void pool.close(), { once: true });
   let measure: RenderingMeasure;
   let scale: WordScale;
   let proof: VectorProof;
@@ -218,7 +219,7 @@ export async function verifyPack(file: string, options: VerifyOptions = {}): Pro
     if (!(await handle.stat()).isFile()) throw damaged('it is no file');
     return { ok: true, verified: await verify(handle, options) };
   } catch (error) {
-    const { code, message, issues } = toPackError(error);
+    const { code, message, issues } = toPackError(error, options.signal);
     return { ok: false, code, message, issues };
   } finally {
     await handle?.close();

@@ -66,6 +66,13 @@ export function mutantOf(texts: readonly string[], random: () => number): unknow
   return random() < 0.3 ? JSON.stringify(value) : value;
 }
 
+function joined(before: Uint8Array, after: Uint8Array): Uint8Array {
+  const out = new Uint8Array(before.length + after.length);
+  out.set(before);
+  out.set(after, before.length);
+  return out;
+}
+
 /** Bytes changed in one to three places: bits, a number in either byte order, a slice lost, doubled, moved or overwritten. */
 export function mutateBytes(bytes: Uint8Array, random: () => number): Uint8Array {
   let now: Uint8Array = bytes.slice();
@@ -89,10 +96,10 @@ export function mutateBytes(bytes: Uint8Array, random: () => number): Uint8Array
           );
         break;
       case 3:
-        now = Uint8Array.of(...now.subarray(0, at), ...now.subarray(at + length));
+        now = joined(now.subarray(0, at), now.subarray(at + length));
         break;
       case 4:
-        now = Uint8Array.of(...now.subarray(0, at + length), ...now.subarray(at));
+        now = joined(now.subarray(0, at + length), now.subarray(at));
         break;
       case 5:
         now.copyWithin(upTo(now.length), at, at + length);

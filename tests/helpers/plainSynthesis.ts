@@ -2,7 +2,7 @@ import { createCellValues, expandGrid, type WaveformContent } from '@/lib/synth'
 import { unit } from './directTransform';
 
 /**
- * SIGNAL.md's formulas written down plainly: every sample a sum over subcarriers, every symbol added at its start with its
+ * The formulas of docs/signal.md written down plainly: every sample a sum over subcarriers, every symbol added at its start with its
  * ramps, wrapped or kept at the end, then turned. Slow; shares only the cells' values with the product.
  */
 export function plainSynthesis(content: WaveformContent): Float64Array {

@@ -141,18 +141,21 @@ function drawTurnedNumbers(
 export interface PeakModel {
   view: Viewport;
   symbolPaprDb: Float32Array;
+  before: Float32Array | null;
   worst: number | null;
   isStale: boolean;
 }
 
-/** The scale of the peak dots: whole dB round what is shown, at least 3 dB wide. */
-export function peakScale(values: Float32Array): { from: number; to: number } {
+/** The scale of the peak dots, hollow ones too: whole dB round what is shown, at least 3 dB wide. */
+export function peakScale(values: Float32Array, before: Float32Array | null): { from: number; to: number } {
   let least = Infinity;
   let most = -Infinity;
-  for (const value of values) {
-    if (!Number.isFinite(value)) continue;
-    least = Math.min(least, value);
-    most = Math.max(most, value);
+  for (const all of before ? [values, before] : [values]) {
+    for (const value of all) {
+      if (!Number.isFinite(value)) continue;
+      least = Math.min(least, value);
+      most = Math.max(most, value);
+    }
   }
   if (least > most) return { from: 0, to: 12 };
   const from = Math.floor(least - 0.3);
@@ -170,9 +173,9 @@ export function drawPeakDots(
   model: PeakModel,
   theme: ThemeColors,
 ): void {
-  const { view, symbolPaprDb, worst, isStale } = model;
+  const { view, symbolPaprDb, before, worst, isStale } = model;
   if (view.turned) return;
-  const { from, to } = peakScale(symbolPaprDb);
+  const { from, to } = peakScale(symbolPaprDb, before);
   const xOf = (db: number) => area.x + 8 + ((db - from) / (to - from)) * (area.width - 16);
   for (const { value } of peakTicks(from, to, area)) {
     const x = Math.round(xOf(value)) + 0.5;
@@ -185,6 +188,12 @@ export function drawPeakDots(
     const db = symbolPaprDb[l]!;
     const y = area.y + (l + 0.5 - view.firstSymbol) * view.symbolPx;
     if (!Number.isFinite(db) || y < area.y || y > area.y + area.height) continue;
+    const was = before?.[l] ?? NaN;
+    if (Number.isFinite(was)) {
+      line(canvas, scope.stroke(theme.plot.before, 1), xOf(db), y, xOf(was), y);
+      canvas.drawCircle(xOf(was), y, radius, scope.fill(theme.plot.background));
+      canvas.drawCircle(xOf(was), y, radius, scope.stroke(theme.plot.before, 1.25));
+    }
     const color = l === worst ? theme.plot.peak : theme.plot.trace;
     canvas.drawCircle(xOf(db), y, radius, scope.fill(color, isStale ? 0.4 : 1));
   }
@@ -195,10 +204,10 @@ export function drawPeakScale(
   canvas: SkCanvas,
   scope: DrawScope,
   area: Rect,
-  values: Float32Array,
+  { symbolPaprDb, before }: Pick<PeakModel, 'symbolPaprDb' | 'before'>,
   theme: ThemeColors,
 ): void {
-  const { from, to } = peakScale(values);
+  const { from, to } = peakScale(symbolPaprDb, before);
   const tick = theme.canvas.ruleTick;
   line(canvas, scope.stroke(theme.rule.line, 1), area.x + 0.5 - 4, area.y, area.x + 0.5 - 4, area.y + area.height);
   for (const { atPx, label } of peakTicks(from, to, area)) {

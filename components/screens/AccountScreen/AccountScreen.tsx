@@ -3,12 +3,13 @@ import { useState } from 'react';
 import { StyleSheet, View } from 'react-native';
 import { Button } from '@/components/ui/Button';
 import { Loading } from '@/components/ui/states';
+import { setPreferences, usePreferences, type Preferences } from '@/components/ui/preferences';
 import { Text } from '@/components/ui/Text';
 import { TextField } from '@/components/ui/TextField';
 import { chooseTheme, color, useTheme, type ThemeChoice } from '@/components/ui/theme';
 import { showToast } from '@/components/ui/toast';
 import { useBreakpoint } from '@/components/ui/useBreakpoint';
-import { OneOf } from '@/components/ui/WordsToPress';
+import { AnyOf, OneOf } from '@/components/ui/WordsToPress';
 import { fieldErrors } from '@/lib/client/fieldErrors';
 import { useAct, useApi } from '@/lib/client/useApi';
 import { useMe, useSignIn } from '@/lib/client/useSession';
@@ -23,7 +24,7 @@ import {
 import { Page } from '../Page';
 import { SessionList } from './SessionList';
 
-/** Name, password, theme, sessions. */
+/** Name, password, theme, the table's habits, sessions. */
 export function AccountScreen() {
   const router = useRouter();
   const me = useMe();
@@ -52,6 +53,7 @@ export function AccountScreen() {
           )}
         </View>
         <Theme />
+        <Table />
         {me.isDemo ? null : <Password />}
         <Sessions />
         {phone ? (
@@ -101,6 +103,33 @@ function Theme() {
         onChange={chooseTheme}
         style={styles.words}
       />
+    </View>
+  );
+}
+
+const LIKES = [
+  { value: 'axesTurned', label: 'Axes turned' },
+  { value: 'oneFingerMoves', label: 'One finger moves' },
+  { value: 'singleKeys', label: 'Single keys act' },
+] as const satisfies readonly { value: keyof Preferences; label: string }[];
+
+function Table() {
+  const likes = usePreferences();
+  return (
+    <View style={styles.group}>
+      <Text variant="heading" heading={2} tone="strong">
+        Drawing table
+      </Text>
+      <AnyOf
+        label="Drawing table"
+        choices={LIKES}
+        values={LIKES.map(({ value }) => value).filter((value) => likes[value])}
+        onToggle={(value, on) => setPreferences({ [value]: on })}
+        style={styles.words}
+      />
+      <Text variant="small" tone="quiet">
+        Kept on this device. Without single keys, letters, digits and signs do nothing by themselves, on any page.
+      </Text>
     </View>
   );
 }

@@ -7,7 +7,7 @@ import { useBreakpoint } from '@/components/ui/useBreakpoint';
 import { AnyOf, OneOf } from '@/components/ui/WordsToPress';
 import type { BenchContent } from '@/lib/synth';
 import { Below, fieldStyles, Group, NumberBlank, Words, type BenchFormProps } from './BenchFields';
-import { fullScaleText, numbers, withWord, type NumberSpec } from './fields';
+import { fullScaleText, numbers, whyNot, withContainer, withWord, type NumberSpec } from './fields';
 
 /** All fields of a bench profile in six groups. */
 export function BenchForm(props: BenchFormProps) {
@@ -23,6 +23,18 @@ export function BenchForm(props: BenchFormProps) {
       : content.word === 'float32'
         ? 'A float has neither bits nor alignment.'
         : null;
+  const noOrder =
+    content.container === 'csv'
+      ? 'Text has no byte order.'
+      : content.word === 'int8'
+        ? 'A word of one byte has no byte order.'
+        : null;
+  /** A choice that no file can have stays, and says why when it is pressed. */
+  const choice = <T extends string>(value: T, label: string, next: BenchContent, own: string | null = null) => ({
+    value,
+    label,
+    offBecause: own ?? whyNot(next),
+  });
   const phone = useBreakpoint() === 'phone';
   const [openGroup, setOpenGroup] = useState<string | null>('Name');
   const group = (name: string, pointers: string, children: ReactNode) => (
@@ -35,7 +47,9 @@ export function BenchForm(props: BenchFormProps) {
       {children}
     </Group>
   );
-  const number = (spec: NumberSpec) => <NumberBlank key={spec.pointer} spec={spec} {...props} set={set} />;
+  const number = (spec: NumberSpec, isFixed = false) => (
+    <NumberBlank key={spec.pointer} spec={spec} {...props} readOnly={readOnly || isFixed} set={set} />
+  );
   const below = (pointer: string) => (
     <Below error={errors[pointer]} warning={warnings.find((one) => one.pointer === pointer)?.message} />
   );
@@ -80,9 +94,9 @@ export function BenchForm(props: BenchFormProps) {
             <OneOf
               label="Type"
               choices={[
-                { value: 'int8', label: '8 bit' },
-                { value: 'int16', label: '16 bit' },
-                { value: 'float32', label: 'float' },
+                choice('int8', '8 bit', withWord(content, 'int8')),
+                choice('int16', '16 bit', withWord(content, 'int16')),
+                choice('float32', 'float', withWord(content, 'float32')),
               ]}
               offBecause={lookOnly}
               value={content.word}
@@ -90,13 +104,13 @@ export function BenchForm(props: BenchFormProps) {
             />
             {below('/content/word')}
           </Words>
-          {number(numbers.bits)}
+          {number(numbers.bits, fixedWord !== null)}
           <Words label="Align">
             <OneOf
               label="Align"
               choices={[
-                { value: 'left', label: 'left', offBecause: fixedWord },
-                { value: 'right', label: 'right' },
+                choice('left', 'left', { ...content, align: 'left' }, fixedWord),
+                choice('right', 'right', { ...content, align: 'right' }),
               ]}
               offBecause={lookOnly}
               value={content.align}
@@ -108,12 +122,13 @@ export function BenchForm(props: BenchFormProps) {
             <OneOf
               label="Number format"
               choices={[
-                { value: 'twosComplement', label: 'two’s complement' },
-                {
-                  value: 'offsetBinary',
-                  label: 'offset',
-                  offBecause: content.word === 'float32' ? 'A float has a sign of its own.' : null,
-                },
+                choice('twosComplement', 'two’s complement', { ...content, numberFormat: 'twosComplement' }),
+                choice(
+                  'offsetBinary',
+                  'offset',
+                  { ...content, numberFormat: 'offsetBinary' },
+                  content.word === 'float32' ? 'A float has a sign of its own.' : null,
+                ),
               ]}
               offBecause={lookOnly}
               value={content.numberFormat}
@@ -125,8 +140,8 @@ export function BenchForm(props: BenchFormProps) {
             <OneOf
               label="Byte order"
               choices={[
-                { value: 'little', label: 'low first' },
-                { value: 'big', label: 'high first' },
+                choice('little', 'low first', { ...content, byteOrder: 'little' }, noOrder),
+                choice('big', 'high first', { ...content, byteOrder: 'big' }, noOrder),
               ]}
               offBecause={lookOnly}
               value={content.byteOrder}
@@ -152,14 +167,14 @@ export function BenchForm(props: BenchFormProps) {
             <OneOf
               label="Container"
               choices={[
-                { value: 'raw', label: 'raw' },
-                { value: 'wav', label: 'WAV' },
-                { value: 'npy', label: 'npy' },
-                { value: 'csv', label: 'CSV' },
+                choice('raw', 'raw', withContainer(content, 'raw')),
+                choice('wav', 'WAV', withContainer(content, 'wav')),
+                choice('npy', 'npy', withContainer(content, 'npy')),
+                choice('csv', 'CSV', withContainer(content, 'csv')),
               ]}
               offBecause={lookOnly}
               value={content.container}
-              onChange={(container: BenchContent['container']) => set({ ...content, container })}
+              onChange={(container: BenchContent['container']) => set(withContainer(content, container))}
             />
             {below('/content/container')}
           </Words>
@@ -167,8 +182,8 @@ export function BenchForm(props: BenchFormProps) {
             <OneOf
               label="I and Q"
               choices={[
-                { value: 'interleaved', label: 'interleaved' },
-                { value: 'split', label: 'split' },
+                choice('interleaved', 'interleaved', { ...content, layout: 'interleaved' }),
+                choice('split', 'two files', { ...content, layout: 'split' }),
               ]}
               offBecause={lookOnly}
               value={content.layout}
@@ -272,11 +287,12 @@ export function BenchForm(props: BenchFormProps) {
                   label: 'bytes',
                   offBecause: content.markers.count === 0 ? 'There is no marker.' : null,
                 },
-                {
-                  value: 'lowBits',
-                  label: 'low bits',
-                  offBecause: content.markers.count === 0 ? 'There is no marker.' : null,
-                },
+                choice(
+                  'lowBits',
+                  'low bits',
+                  { ...content, markers: { ...content.markers, packing: 'lowBits' } },
+                  content.markers.count === 0 ? 'There is no marker.' : null,
+                ),
               ]}
               offBecause={lookOnly}
               value={content.markers.packing}

@@ -20,6 +20,7 @@ import { when } from '../when';
 import { BenchForm } from './BenchForm';
 import { BytePicture } from './BytePicture';
 import { newBenchContent } from './fields';
+import { SidednessNote } from './SidednessNote';
 
 /** A bench profile: the limits and the byte layout of one generator. */
 export function BenchScreen({ benchId }: { benchId: string }) {
@@ -182,8 +183,11 @@ function BenchEditor({ bench, start }: { bench: Bench | null; start: BenchProfil
             }}
           />
         </View>
-        <View style={wide ? styles.right : null}>
+        <View style={[styles.beside, wide ? styles.right : null]}>
           <BytePicture content={profile.content} />
+          {bench && newest ? (
+            <SidednessNote benchId={bench.benchId} version={bench.shown.version} profile={start} changed={changed} />
+          ) : null}
         </View>
       </View>
     </Page>
@@ -195,6 +199,7 @@ const styles = StyleSheet.create({
   columns: { flexDirection: 'row', alignItems: 'flex-start', gap: 40 },
   stack: { gap: 16 },
   left: { flexGrow: 1, flexShrink: 1, minWidth: 0, maxWidth: 900 },
+  beside: { gap: 16 },
   right: { width: 460, flexShrink: 0 },
   foot: {
     padding: 10,

@@ -13,6 +13,8 @@ import { Page } from '../Page';
 import { PrimaryStrip } from '../PrimaryStrip';
 import { when } from '../when';
 
+const containerWords = { raw: 'raw', wav: 'WAV', npy: 'npy', csv: 'CSV' } as const;
+
 function layoutWords({ profile: { content } }: BenchItem): string {
   const word =
     content.word === 'float32'
@@ -20,7 +22,19 @@ function layoutWords({ profile: { content } }: BenchItem): string {
       : content.word === 'int8'
         ? '8 bit'
         : `${content.bits} bit${content.bits < 16 ? `, ${content.align}-aligned` : ''}`;
-  return `${word}, ${content.byteOrder === 'little' ? 'low byte first' : 'high byte first'}, ${content.layout}, ${content.container}`;
+  const order =
+    content.word === 'int8' || content.container === 'csv'
+      ? []
+      : [content.byteOrder === 'little' ? 'low byte first' : 'high byte first'];
+  return [
+    word,
+    ...(content.numberFormat === 'offsetBinary' ? ['offset binary'] : []),
+    ...order,
+    content.layout === 'split' ? 'I and Q in two files' : 'interleaved',
+    containerWords[content.container],
+    ...(content.swapIq ? ['I and Q swapped'] : []),
+    ...(content.negateQ ? ['Q negated'] : []),
+  ].join(', ');
 }
 
 function limitWords({ profile: { content } }: BenchItem): string {

@@ -1,5 +1,5 @@
 import { formatNumber, formatQuantity, parseInteger, parseQuantity, type Parsed } from '@/lib/drawing/quantities';
-import type { BenchContent } from '@/lib/synth';
+import { freeMarkerBits, layoutRefusals, type BenchContent } from '@/lib/synth';
 
 /** A number of the profile: how it is read, written and typed. */
 export interface NumberSpec {
@@ -144,9 +144,28 @@ export function numberText(spec: NumberSpec, content: BenchContent): { value: st
 
 /** Words that decide others take them along: some spellings are fixed for a type. */
 export function withWord(content: BenchContent, word: BenchContent['word']): BenchContent {
-  if (word === 'int8') return { ...content, word, bits: 8, align: 'right' };
-  if (word === 'float32') return { ...content, word, bits: 16, align: 'right', numberFormat: 'twosComplement' };
-  return { ...content, word };
+  const fixed: Partial<BenchContent> =
+    word === 'int8'
+      ? { bits: 8, align: 'right' }
+      : word === 'float32'
+        ? { bits: 16, align: 'right', numberFormat: 'twosComplement' }
+        : {};
+  return withContainer({ ...content, word, ...fixed }, content.container);
+}
+
+/** A container takes along what it leaves no choice of: WAV has one byte order, and one number format for each word. */
+export function withContainer(content: BenchContent, container: BenchContent['container']): BenchContent {
+  if (container !== 'wav') return { ...content, container };
+  const numberFormat = content.word === 'int8' ? 'offsetBinary' : 'twosComplement';
+  return { ...content, container, byteOrder: 'little', numberFormat };
+}
+
+/** Why no file can have this layout, as a sentence for the choice that would lead to it; null where one can. */
+export function whyNot(content: BenchContent): string | null {
+  const [refusal] = layoutRefusals(content);
+  if (refusal) return refusal.reason;
+  if (content.markers.packing !== 'lowBits' || freeMarkerBits(content) > 0) return null;
+  return 'Low bits are free in left-aligned 16-bit words of fewer than 16 bits.';
 }
 
 export function fullScaleText(content: BenchContent): string {

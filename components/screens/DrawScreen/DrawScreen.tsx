@@ -132,8 +132,5 @@ function OpeningFailed({ error, onRetry }: { error: ProblemError; onRetry: () =>
   const code = error.problem?.code;
   if (code === 'not_found') return <NotThere />;
   if (code === 'action_forbidden') return <Forbidden />;
-  const answered = error.problem
-    ? ` The server answered ${error.problem.status}. Request ${error.problem.instance}.`
-    : '';
-  return <Failing what={`The waveform did not load.${answered || ' No connection.'}`} onRetry={onRetry} />;
+  return <Failing what={`The waveform did not load. ${error.message}`} onRetry={onRetry} />;
 }

@@ -3,6 +3,7 @@ import { useCallback, useEffect, useRef, useState } from 'react';
 import { StyleSheet, View } from 'react-native';
 import type { FrameProbe, TableCanvasHandle } from '@/components/canvas/CanvasGate';
 import { Dialog } from '@/components/ui/overlay';
+import { setPreferences, usePreferences } from '@/components/ui/preferences';
 import { Stamp } from '@/components/ui/Stamp';
 import { Button } from '@/components/ui/Button';
 import { showToast } from '@/components/ui/toast';
@@ -63,7 +64,7 @@ export function DrawTable({ opened, store, mayDraw, onReopen, found, onFound }: 
   const [drawsOn, setDrawsOn] = useState(opened.drawsOn);
   const [isCanvasMissing, setCanvasMissing] = useState(false);
   const [isCopying, setCopying] = useState(false);
-  const [oneFingerMoves, setOneFingerMoves] = useState(false);
+  const { oneFingerMoves } = usePreferences();
   const canvasHandle = useRef<TableCanvasHandle | null>(null);
   const title = useTitle(editor);
   const [probe] = useState<FrameProbe | null>(() =>
@@ -96,7 +97,7 @@ export function DrawTable({ opened, store, mayDraw, onReopen, found, onFound }: 
 
   const runCommand = useCallback(
     (id: string): boolean => {
-      if (!canDraw && /^(paint|history)\./.test(id)) return false;
+      if (!canDraw && /^(paint|history|peak)\./.test(id)) return false;
       const command = editorCommands.find(id);
       if (!command.isEnabled(editor)) return false;
       const outcome = editorCommands.run(editor, id);
@@ -105,6 +106,7 @@ export function DrawTable({ opened, store, mayDraw, onReopen, found, onFound }: 
       if (outcome?.kind === 'screen') {
         if (outcome.act === 'nextRegion') focusNextPart();
         else if (outcome.act === 'listKeys') setSheet({ kind: 'keys' });
+        else if (outcome.act === 'lowerPeak') setSheet({ kind: 'peak' });
         else if (isPhone) setSheet({ kind: 'sentence' });
         else document.querySelector<HTMLElement>('#sentence input')?.focus();
       }
@@ -125,6 +127,7 @@ export function DrawTable({ opened, store, mayDraw, onReopen, found, onFound }: 
   const table: TableContext = {
     editor,
     live: reader,
+    peak: client.peak,
     saver: mayDraw ? saver : null,
     saveState,
     drawing: {
@@ -236,7 +239,7 @@ export function DrawTable({ opened, store, mayDraw, onReopen, found, onFound }: 
         table={table}
         store={store}
         isPhone={isPhone}
-        oneFinger={{ moves: oneFingerMoves, set: setOneFingerMoves }}
+        oneFinger={{ moves: oneFingerMoves, set: (moves) => setPreferences({ oneFingerMoves: moves }) }}
         onAsked={onReopen}
       />
       {question ? (

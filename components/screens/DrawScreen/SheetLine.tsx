@@ -38,6 +38,14 @@ export function SheetLine({ table }: { table: TableContext }) {
       <SavedNote table={table} />
       <View style={styles.spring} />
       {rights.canDraw ? <UndoRedo table={table} /> : null}
+      {rights.canDraw ? (
+        <Button
+          expanded={table.sheet?.kind === 'peak'}
+          onPress={() => (table.sheet?.kind === 'peak' ? open(null) : run('peak.lower'))}
+        >
+          Lower the peak
+        </Button>
+      ) : null}
       <Link href={fitHref} style={styles.link}>
         <View style={styles.fit}>
           <Text variant="bodyStrong" tone="strong" style={styles.fitText}>

@@ -3,6 +3,7 @@ import { Button } from '@/components/ui/Button';
 import { Notice } from '@/components/ui/Notice';
 import { color } from '@/components/ui/theme';
 import type { FoundCopy } from '@/lib/client/localCopies';
+import { requestOf } from '@/lib/client/problemWords';
 import { clockTime, when } from '../when';
 import { useLive } from './liveReader';
 import type { TableContext } from './tableContext';
@@ -83,7 +84,7 @@ export function TableNotices({ table, acts }: { table: TableContext; acts: Notic
     ) : null,
     saveState.kind === 'refused' ? (
       <Notice key="refused" kind="danger">
-        {`Not saved. ${saveState.problem.detail || saveState.problem.title} Request ${saveState.problem.instance}.`}
+        {`Not saved. ${saveState.problem.detail || saveState.problem.title} Request ${requestOf(saveState.problem)}.`}
       </Notice>
     ) : null,
     acts.copy?.kind === 'copy' && rights.because !== 'role' && rights.because !== 'older' ? (

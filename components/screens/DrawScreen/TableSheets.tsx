@@ -4,6 +4,7 @@ import { NumberSheet } from './forms/NumberSheet';
 import { PayloadSheet } from './forms/PayloadSheet';
 import { DeviceSheet, LevelSheet, MarkersSheet, TitleSheet } from './forms/SettingsForms';
 import { AskSheet, KeysSheet, MoreSheet, SentenceSheet } from './forms/SmallSheets';
+import { PeakSheet } from './peak/PeakSheet';
 import type { TableContext } from './tableContext';
 
 /** The sheet that stands open, if any. */
@@ -33,6 +34,8 @@ export function TableSheets(props: {
       return <MarkersSheet table={table} />;
     case 'device':
       return <DeviceSheet table={table} />;
+    case 'peak':
+      return <PeakSheet table={table} />;
     case 'sentence':
       return <SentenceSheet table={table} />;
     case 'keys':

@@ -15,19 +15,31 @@ export interface LiveReader {
   };
   subscribe(listener: () => void): () => void;
   restart(): void;
+  /** Peaks to stand hollow beside the dots while a form shows what would become of them; null: the document's own, if any. */
+  showPeaksBefore(peaks: Float32Array | null): void;
 }
 
 type Snapshot = ReturnType<LiveReader['get']>;
 
 /** Joins the worker's answers with the session: an answer is stale as soon as the document is another one. */
 export function createLiveReader(editor: Editor, client: LiveClient | null): LiveReader {
-  let snapshot: Snapshot = { result: null, isStale: false, hasStopped: false, message: null, progress: null };
+  let shownBefore: Float32Array | null = null;
+  const listeners = new Set<() => void>();
+  let snapshot: Snapshot = {
+    result: null,
+    peaksBefore: null,
+    isStale: false,
+    hasStopped: false,
+    message: null,
+    progress: null,
+  };
   const get = () => {
     const { changeCount } = editor.session.getState();
     const state = client?.state.getState();
     const result = state?.result ?? null;
     const next: Snapshot = {
       result,
+      peaksBefore: shownBefore ?? result?.symbolPaprBeforeDb ?? null,
       isStale: result === null || result.changeCount !== changeCount,
       hasStopped: state?.status === 'stopped',
       message: state?.message ?? null,
@@ -35,6 +47,7 @@ export function createLiveReader(editor: Editor, client: LiveClient | null): Liv
     };
     const isSame =
       next.result === snapshot.result &&
+      next.peaksBefore === snapshot.peaksBefore &&
       next.isStale === snapshot.isStale &&
       next.hasStopped === snapshot.hasStopped &&
       next.message === snapshot.message &&
@@ -45,10 +58,20 @@ export function createLiveReader(editor: Editor, client: LiveClient | null): Liv
   return {
     get,
     subscribe(listener) {
-      const stops = [editor.session.subscribe(listener), client?.state.subscribe(listener)];
+      listeners.add(listener);
+      const stops = [
+        editor.session.subscribe(listener),
+        client?.state.subscribe(listener),
+        () => listeners.delete(listener),
+      ];
       return () => stops.forEach((stop) => stop?.());
     },
     restart: () => client?.start(),
+    showPeaksBefore(peaks) {
+      if (shownBefore === peaks) return;
+      shownBefore = peaks;
+      listeners.forEach((listener) => listener());
+    },
   };
 }
 

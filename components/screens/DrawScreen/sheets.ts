@@ -7,6 +7,7 @@ export type OpenSheet =
   | { kind: 'level' }
   | { kind: 'markers' }
   | { kind: 'device' }
+  | { kind: 'peak' }
   | { kind: 'sentence' }
   | { kind: 'keys' }
   | { kind: 'ask' }

@@ -3,6 +3,7 @@ import type { StampState } from '@/components/ui/Stamp';
 import type { Autosave, SaveState } from '@/lib/client/autosave';
 import type { Revision } from '@/lib/contracts/waveforms';
 import type { Outcome } from '@/lib/editor/commands/outcome';
+import type { LiveClient } from '@/lib/editor/live/client';
 import type { Editor } from '@/lib/editor/store';
 import type { LiveReader } from './liveReader';
 import type { OpenSheet } from './sheets';
@@ -21,6 +22,8 @@ export interface TableRights {
 export interface TableContext {
   editor: Editor;
   live: LiveReader;
+  /** Tries a way to a lower peak in the worker of the live views. */
+  peak: LiveClient['peak'];
   saver: Autosave | null;
   saveState: SaveState;
   drawing: { waveformId: string; revision: Revision; stampState: StampState; editionNumber: number | null };

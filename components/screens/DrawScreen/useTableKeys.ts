@@ -1,4 +1,5 @@
 import { useEffect } from 'react';
+import { readPreferences } from '@/components/ui/preferences';
 import { editorCommands } from '@/lib/editor/commands/all';
 import { shortcutOf } from '@/lib/editor/commands/registry';
 
@@ -44,6 +45,7 @@ export function useTableKeys(run: (id: string) => boolean, isOn: boolean): void 
       const everywhere = event.key === 'F6' || (shortcut === 'Ctrl+Enter' && !document.querySelector('[role=dialog]'));
       if (!everywhere) {
         if (takesKeys(event.target)) return;
+        if (shortcut.length === 1 && !readPreferences().singleKeys) return;
         if (!isInTable(event.target)) return;
         const isPress = event.key === ' ' || event.key === 'Enter';
         const onControl =

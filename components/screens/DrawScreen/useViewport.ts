@@ -1,5 +1,6 @@
 import { useEffect } from 'react';
-import { clampViewport, resizeViewport } from '@/lib/editor/kernels/viewport';
+import { readPreferences } from '@/components/ui/preferences';
+import { clampViewport, resizeViewport, turnViewport } from '@/lib/editor/kernels/viewport';
 import type { Editor } from '@/lib/editor/store';
 import type { Viewport } from '@/lib/editor/types';
 
@@ -66,7 +67,8 @@ export function useViewportSize(editor: Editor, widthPx: number, heightPx: numbe
     if (viewport.widthPx === widthPx && viewport.heightPx === heightPx) return;
     const { settings } = editor.document;
     if (viewport.widthPx <= 0) {
-      editor.set({ viewport: firstViewport(editor, { ...viewport, widthPx, heightPx }, isPhone) });
+      const first = firstViewport(editor, { ...viewport, widthPx, heightPx }, isPhone);
+      editor.set({ viewport: readPreferences().axesTurned ? turnViewport(first, settings) : first });
       return;
     }
     // Rows that filled the old height fill the new one.

@@ -1,36 +1,23 @@
+import type { ReactNode } from 'react';
 import { StyleSheet, View } from 'react-native';
 import { Button } from '@/components/ui/Button';
 import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
 import type { Fit } from '@/lib/contracts/fit';
+import { LengthRuler } from './LengthRuler';
 
 export type Finding = Fit['findings'][number];
 export type FoundRemedy = Finding['remedies'][number];
 
-export function verdictWord(finding: Finding): string {
-  return finding.verdict === 'meets' ? 'meets' : finding.verdict === 'misses' ? 'misses' : 'cannot be judged';
+/** How a remedy is pressed here: applied, made as a new draft, or only read. */
+export interface RemedyPress {
+  /** Null: the button says the remedy's own label. */
+  label: string | null;
+  press: (remedy: FoundRemedy) => void;
 }
 
-/** How much of the last step of the granularity is filled: whole steps and the part that is left over. */
-function LengthRule({ finding }: { finding: Finding }) {
-  if (finding.check !== 'granularity' || finding.measured === null || !finding.limit) return null;
-  const whole = Math.floor(finding.measured / finding.limit);
-  const part = finding.measured / finding.limit - whole;
-  if (whole > 40 || (whole === 0 && part === 0)) return null;
-  return (
-    <View aria-hidden style={styles.rule}>
-      {Array.from({ length: whole }, (_, i) => (
-        <View key={i} style={styles.step}>
-          <View style={styles.full} />
-        </View>
-      ))}
-      {part > 0 ? (
-        <View style={[styles.step, styles.open]}>
-          <View style={[styles.full, { width: `${part * 100}%` }]} />
-        </View>
-      ) : null}
-    </View>
-  );
+export function verdictWord(finding: Finding): string {
+  return finding.verdict === 'meets' ? 'meets' : finding.verdict === 'misses' ? 'misses' : 'cannot be judged';
 }
 
 /** Arrows go from finding to finding, by the first remedy of each. */
@@ -46,16 +33,28 @@ function moveFinding(event: { key: string; target: HTMLElement; preventDefault: 
   next.querySelector<HTMLElement>('[role=button]')?.focus();
 }
 
+/** What a miss without a remedy leaves to do. */
+function withoutRemedy(finding: Finding): string {
+  if (finding.check === 'symbolPeak')
+    return 'It may be meant. To lower it, change the symbol or lower the peak on the drawing table.';
+  return finding.hard
+    ? 'Nothing in the waveform can mend this. Choose another bench.'
+    : 'Nothing in the waveform can mend this. A pack can be made; its card says this.';
+}
+
 /** What misses, by how much, one sentence, and what mends it. */
 export function FindingCard({
   finding,
-  onApply,
+  press,
   busy,
+  ruler,
 }: {
   finding: Finding;
   /** Null where nothing can be changed here. */
-  onApply: ((remedy: FoundRemedy) => void) | null;
+  press: RemedyPress | null;
   busy: boolean;
+  /** The length is drawn in its own card where nothing else on the page draws it. */
+  ruler: boolean;
 }) {
   const misses = finding.verdict === 'misses';
   return (
@@ -67,30 +66,44 @@ export function FindingCard({
         <Text variant="bodyStrong" heading={3} tone="strong" style={styles.grow}>
           {finding.title}
         </Text>
-        <Text variant="small" weight={600} tone={misses ? 'danger' : 'quiet'}>
+        <Text variant="small" weight={600} tone={misses ? 'danger' : 'quiet'} style={styles.byHowMuch}>
           {misses ? finding.byHowMuch : 'cannot be judged'}
         </Text>
       </View>
       <Text>{finding.words}</Text>
-      <LengthRule finding={finding} />
+      {ruler && finding.check === 'granularity' && finding.measured !== null && finding.limit ? (
+        <LengthRuler samples={finding.measured} granularity={finding.limit} />
+      ) : null}
       {finding.remedies.map((remedy) => (
-        <View key={remedy.label} style={styles.remedy}>
-          {onApply ? (
-            <Button busy={busy} onPress={() => onApply(remedy)}>
-              {remedy.label}
-            </Button>
-          ) : (
-            <Text weight={600}>{remedy.label}</Text>
-          )}
-          <Text variant="small" tone="quiet">
-            {remedy.cost}
-          </Text>
-        </View>
+        <Remedy key={remedy.label} remedy={remedy} press={press} busy={busy} />
       ))}
       {misses && finding.remedies.length === 0 ? (
         <Text variant="small" tone="quiet">
-          {finding.hard ? 'A pack is refused until this is mended.' : 'A pack can be made; its card says this.'}
+          {withoutRemedy(finding)}
         </Text>
+      ) : null}
+    </View>
+  );
+}
+
+function Remedy({ remedy, press, busy }: { remedy: FoundRemedy; press: RemedyPress | null; busy: boolean }) {
+  let head: ReactNode = <Text weight={600}>{remedy.label}</Text>;
+  if (press?.label === null)
+    head = (
+      <Button busy={busy} onPress={() => press.press(remedy)}>
+        {remedy.label}
+      </Button>
+    );
+  return (
+    <View style={styles.remedy}>
+      {head}
+      <Text variant="small" tone="quiet">
+        {remedy.cost}
+      </Text>
+      {press && press.label !== null ? (
+        <Button busy={busy} label={`${remedy.label}. ${press.label}`} onPress={() => press.press(remedy)}>
+          {press.label}
+        </Button>
       ) : null}
     </View>
   );
@@ -110,9 +123,6 @@ const styles = StyleSheet.create({
   misses: { backgroundColor: color.surface.raised, borderLeftColor: color.danger.rule },
   head: { flexDirection: 'row', alignItems: 'baseline', gap: 12 },
   grow: { flexGrow: 1, flexShrink: 1 },
-  rule: { flexDirection: 'row', gap: 2, height: 20 },
-  step: { flex: 1, borderWidth: 1, borderColor: color.rule.strong, padding: 1 },
-  open: { borderStyle: 'dashed' },
-  full: { height: '100%', backgroundColor: color.plot.point },
+  byHowMuch: { flexShrink: 1, textAlign: 'right' },
   remedy: { gap: 4 },
 });

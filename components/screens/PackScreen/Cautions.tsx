@@ -5,7 +5,12 @@ import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
 import type { Caution } from '@/lib/synth';
 
-function Point({ point }: { point: Caution }) {
+/** Under the card a point has two lines at most; the list of all has the whole of it. */
+const BRIEF: Record<number, string> = {
+  3: 'Output off while a file, level or frequency changes. Start low and raise: a new file has a new peak.',
+};
+
+function Point({ point, brief = false }: { point: Caution; brief?: boolean }) {
   return (
     <View role="listitem" style={styles.point}>
       <Text variant="figureSmall" weight={600} tone={point.severe ? 'danger' : 'warning'} style={styles.number}>
@@ -17,7 +22,7 @@ function Point({ point }: { point: Caution }) {
         tone={point.severe ? 'danger' : 'body'}
         style={styles.words}
       >
-        {point.text}
+        {(brief ? BRIEF[point.number] : null) ?? point.text}
       </Text>
     </View>
   );
@@ -31,7 +36,7 @@ export function CautionStrip({ points, onAll }: { points: readonly Caution[]; on
         {points
           .filter((point) => point.number === 3 || point.number === 4)
           .map((point) => (
-            <Point key={point.number} point={point} />
+            <Point key={point.number} point={point} brief />
           ))}
       </View>
       <View style={styles.all}>

@@ -1,6 +1,7 @@
 import { useEffect, useState } from 'react';
 import { StyleSheet, View } from 'react-native';
 import { Button } from '@/components/ui/Button';
+import { isKeyOfPage } from '@/components/ui/FindField';
 import { Failing, Loading, NotThere } from '@/components/ui/states';
 import { DigestChip } from '@/components/ui/DigestChip';
 import { Notice } from '@/components/ui/Notice';
@@ -8,15 +9,15 @@ import { Stamp } from '@/components/ui/Stamp';
 import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
 import { useBreakpoint } from '@/components/ui/useBreakpoint';
-import { addressOf } from '@/lib/client/apiClient';
 import { useApi } from '@/lib/client/useApi';
 import { useMay } from '@/lib/client/useSession';
-import { downloadPack, showPack, type PackDetail } from '@/lib/contracts/packs';
+import { showPack, type PackDetail } from '@/lib/contracts/packs';
 import { Page } from '../Page';
 import { clockTime } from '../when';
 import { CautionsSheet, CautionStrip } from './Cautions';
 import { CheckFile } from './CheckFile';
 import { DeviceSheet, enteredWords } from './DeviceSheet';
+import { DownloadPack } from './DownloadPack';
 import { FilesSheet, FilesTable } from './Files';
 import { LevelCardView } from './LevelCardView';
 import { cardOfPack, cautionsOfPack } from './packCard';
@@ -63,21 +64,7 @@ function OpenPack({ pack }: { pack: PackDetail }) {
   ];
   useDownloadKey();
   const hex = pack.vectorDigest.replace('sha256:', '');
-  const download = withdrawn ? null : (
-    <a
-      href={addressOf(downloadPack, { params: { packId: pack.packId } })}
-      download={pack.fileName}
-      style={{ textDecoration: 'none', flexGrow: 1, display: 'block' }}
-      data-testid="download"
-      id="download-pack"
-    >
-      <View style={[styles.download, phone ? styles.downloadPhone : null]}>
-        <Text variant={phone ? 'heading' : 'bodyStrong'} tone="onSolid">
-          Download pack
-        </Text>
-      </View>
-    </a>
-  );
+  const download = withdrawn ? null : <DownloadPack pack={pack} phone={phone} />;
   const main = (
     <View style={phone ? styles.stack : styles.left}>
       {pack.state === 'draft' ? (
@@ -175,10 +162,7 @@ function OpenPack({ pack }: { pack: PackDetail }) {
 function useDownloadKey() {
   useEffect(() => {
     const onKey = (event: KeyboardEvent) => {
-      if (event.key.toLowerCase() !== 'd' || event.ctrlKey || event.metaKey || event.altKey || event.repeat) return;
-      const at = event.target instanceof HTMLElement ? event.target : null;
-      if (at && (/^(INPUT|TEXTAREA|SELECT)$/.test(at.tagName) || at.closest('[role=dialog],[role=alertdialog]')))
-        return;
+      if (event.key.toLowerCase() !== 'd' || event.repeat || !isKeyOfPage(event)) return;
       document.getElementById('download-pack')?.click();
     };
     window.addEventListener('keydown', onKey);
@@ -214,13 +198,5 @@ const styles = StyleSheet.create({
     borderTopWidth: 1,
     borderTopColor: color.rule.line,
   },
-  headDownload: { width: 180 },
-  download: {
-    height: 36,
-    borderRadius: 3,
-    alignItems: 'center',
-    justifyContent: 'center',
-    backgroundColor: color.accent.solid,
-  },
-  downloadPhone: { height: 48 },
+  headDownload: { width: 220 },
 });

@@ -116,7 +116,7 @@ export function MakePackSheet({ revisionId, onClose }: { revisionId: string | nu
             </View>
           </Notice>
         ) : null}
-        {shown ? <JobRow job={shown} /> : null}
+        {shown ? <JobRow job={shown} seenAtMs={job.dataUpdatedAt || make.submittedAt} /> : null}
         {shown && (shown.state === 'waiting' || shown.state === 'running') ? (
           <Text variant="small" tone="quiet">
             You can close this; it goes on and stands in the list.

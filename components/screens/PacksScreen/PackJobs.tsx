@@ -1,4 +1,4 @@
-import { useEffect, useRef } from 'react';
+import { useEffect, useRef, useState } from 'react';
 import { StyleSheet, View } from 'react-native';
 import { useQueryClient } from '@tanstack/react-query';
 import { Button } from '@/components/ui/Button';
@@ -13,13 +13,31 @@ import { formatNumber } from '@/lib/drawing/quantities';
 
 const steps = { rendering: 'Rendering', quantizing: 'Quantizing', writing: 'Writing', readingBack: 'Reading back' };
 
-function stateWords(job: PackJob): string {
+function stateWords(job: PackJob, leftSec: number | null): string {
   if (job.state === 'waiting') return 'Waiting for its turn';
-  return `${job.step ? steps[job.step] : 'Beginning'} ${formatNumber(100 * job.doneRatio)} %`;
+  const done = `${job.step ? steps[job.step] : 'Beginning'} ${formatNumber(100 * job.doneRatio)} %`;
+  return leftSec === null ? done : `${done}, about ${durationWords(leftSec)} left`;
+}
+
+const durationWords = (sec: number) => (sec < 90 ? `${Math.max(1, Math.ceil(sec))} s` : `${Math.ceil(sec / 60)} min`);
+
+/** Too little was seen for a guess before this. */
+const GUESS_FROM = { ratio: 0.05, ms: 2000 };
+
+/** Seconds that are left, from how fast it went since this page first saw it at work; null while nobody can know. */
+function useSecondsLeft({ state, doneRatio }: PackJob, seenAtMs: number): number | null {
+  const [first, setFirst] = useState<{ atMs: number; ratio: number } | null>(null);
+  const isRunning = state === 'running';
+  if (isRunning && first === null) setFirst({ atMs: seenAtMs, ratio: doneRatio });
+  if (!isRunning && first !== null) setFirst(null);
+  if (!isRunning || first === null) return null;
+  const ms = seenAtMs - first.atMs;
+  const ratio = doneRatio - first.ratio;
+  return ratio < GUESS_FROM.ratio || ms < GUESS_FROM.ms ? null : ((1 - doneRatio) * ms) / ratio / 1000;
 }
 
 /** Packs being made, and what became of those that were not. */
-export function PackJobs({ jobs }: { jobs: readonly PackJob[] }) {
+export function PackJobs({ jobs, seenAtMs }: { jobs: readonly PackJob[]; seenAtMs: number }) {
   const queries = useQueryClient();
   const openIds = jobs.filter((job) => job.state === 'waiting' || job.state === 'running').map((job) => job.jobId);
   const before = useRef<string[]>([]);
@@ -34,15 +52,17 @@ export function PackJobs({ jobs }: { jobs: readonly PackJob[] }) {
     <View role="list" aria-label="Packs being made" style={styles.list}>
       {shown.map((job) => (
         <View key={job.jobId} role="listitem">
-          <JobRow job={job} />
+          <JobRow job={job} seenAtMs={seenAtMs} />
         </View>
       ))}
     </View>
   );
 }
 
-export function JobRow({ job }: { job: PackJob }) {
+/** `seenAtMs`: when the server answered so. */
+export function JobRow({ job, seenAtMs }: { job: PackJob; seenAtMs: number }) {
   const cancel = useAct(cancelPackJob, [listPackJobs]);
+  const words = stateWords(job, useSecondsLeft(job, seenAtMs));
   const name = `${job.title}${job.editionNumber ? `, edition ${job.editionNumber}` : ', draft'}, for ${job.bench.name}`;
   if (job.state === 'failed' || job.state === 'cancelled') {
     return (
@@ -72,7 +92,7 @@ export function JobRow({ job }: { job: PackJob }) {
             {name}
           </Text>
           <Text variant="small" tone="quiet" role="status">
-            {job.startedAgain ? `Started again after a stop. ${stateWords(job)}` : stateWords(job)}
+            {job.startedAgain ? `Started again after a stop. ${words}` : words}
           </Text>
         </View>
         <Button busy={cancel.isPending} onPress={() => cancel.mutate({ params: { jobId: job.jobId } })}>

@@ -63,7 +63,7 @@ export function PacksScreen() {
           {...(phone ? {} : { style: styles.find })}
         />
       </View>
-      <PackJobs jobs={open} />
+      <PackJobs jobs={open} seenAtMs={jobs.dataUpdatedAt} />
       {packs.isPending ? <Loading what="packs" /> : null}
       {packs.error && !packs.data ? (
         <Failing what={`The list did not load. ${packs.error.message}`} onRetry={() => void packs.refetch()} />

@@ -121,7 +121,11 @@ export function PeopleScreen() {
 const seenWords = (person: Person) => (person.lastSeenAtMs === null ? 'never' : when(person.lastSeenAtMs));
 
 const sessionWords = (person: Person) =>
-  person.sessionCount === 0 ? 'none' : person.sessionCount === 1 ? '1 session' : `${person.sessionCount} sessions`;
+  person.sessionCount === 0
+    ? 'no session'
+    : person.sessionCount === 1
+      ? '1 session'
+      : `${person.sessionCount} sessions`;
 
 /** Name and address; pressing shows sessions and acts. */
 function Who({ person, chosen, onChoose }: { person: Person; chosen: boolean; onChoose: (person: Person) => void }) {

@@ -2,7 +2,7 @@ import { useRouter } from 'expo-router';
 import { useEffect, useState } from 'react';
 import { ScrollView, StyleSheet, View } from 'react-native';
 import { Button } from '@/components/ui/Button';
-import { FindField, isTyping } from '@/components/ui/FindField';
+import { FindField, isKeyOfPage } from '@/components/ui/FindField';
 import { Empty, Failing, Loading } from '@/components/ui/states';
 import { useBreakpoint } from '@/components/ui/useBreakpoint';
 import { AnyOf, OneOf } from '@/components/ui/WordsToPress';
@@ -46,11 +46,11 @@ export function WaveformsScreen() {
 
   useEffect(() => {
     const onKey = (event: KeyboardEvent) => {
-      if (isTyping(event) || event.ctrlKey || event.metaKey || event.altKey) return;
-      if (event.key === '/') setFinding(true);
-      if (event.key.toLowerCase() === 'n' && mayMake && !needsConnection) router.push('/start');
       if (event.key === 'ArrowDown' && document.activeElement === document.body)
         document.querySelector<HTMLElement>('[data-row] a[href]')?.focus();
+      if (!isKeyOfPage(event)) return;
+      if (event.key === '/') setFinding(true);
+      if (event.key.toLowerCase() === 'n' && mayMake && !needsConnection) router.push('/start');
     };
     window.addEventListener('keydown', onKey);
     return () => window.removeEventListener('keydown', onKey);

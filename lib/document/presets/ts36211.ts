@@ -50,7 +50,7 @@ function downlink(megahertz: string, blocks: number, fftSize: number, prefix: Pr
   const prefixes = slotPrefixes[prefix].map((samples) => (samples * fftSize) / 2048);
   return standardPreset({
     presetId: `ts36211-${megahertz.replace('.', '-')}mhz${prefix === 'normal' ? '' : '-extended'}`,
-    title: `Downlink subframe, ${prefix} prefix, ${megahertz} MHz`,
+    title: `Downlink subframe, ${megahertz} MHz${prefix === 'normal' ? '' : `, ${prefix} prefix`}`,
     basedOn: `3GPP TS 36.211, 6.2 grid, 6.10.1 cell-specific reference signals, 6.12 OFDM generation, ${prefix} cyclic prefix`,
     holds: `One subframe of ${2 * half} subcarriers, 15 kHz apart, DC bare, with antenna port 0's reference signals of cell identity ${cellId}.`,
     remark: `Cell identity ${cellId} is invented. Looks like a base station: use it on cable only.`,

@@ -13,7 +13,7 @@ export interface Question {
 }
 
 /** Acts that only the screen can do (focus, lists). */
-export type ScreenAct = 'focusSentence' | 'nextRegion' | 'listKeys';
+export type ScreenAct = 'focusSentence' | 'nextRegion' | 'listKeys' | 'lowerPeak';
 
 export type Outcome =
   | { kind: 'patch'; patch: Patch }

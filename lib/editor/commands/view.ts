@@ -49,5 +49,12 @@ export const viewCommands: readonly Command[] = [
     plan: screen('focusSentence'),
   },
   { id: 'screen.region', label: 'Next part', shortcut: 'F6', isEnabled: always, plan: screen('nextRegion') },
+  {
+    id: 'peak.lower',
+    label: 'Lower the peak',
+    shortcut: 'L',
+    isEnabled: always,
+    plan: screen('lowerPeak'),
+  },
   { id: 'screen.keys', label: 'Keys', shortcut: '?', isEnabled: always, plan: screen('listKeys') },
 ];

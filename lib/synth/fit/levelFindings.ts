@@ -87,10 +87,7 @@ export function levelFinding(
     distance: left === null ? null : 0 - left,
     verdict: over ? 'misses' : card.verdict === 'noLimit' || left === null ? 'cannotJudge' : 'meets',
     byHowMuch: over ? short : '',
-    found:
-      card.peakNowDbm === null
-        ? 'not set'
-        : `peak ${spell(card.peakNowDbm, 2)} dBm${card.meanNowDbm === null ? '' : `, mean ${spell(card.meanNowDbm, 2)}`}`,
+    found: card.peakNowDbm === null ? 'not set' : `peak ${spell(card.peakNowDbm, 2)} dBm`,
     words: isUnmeasured ? why : card.sentence + (card.peakNowDbm === null ? '' : unknown),
   };
 }

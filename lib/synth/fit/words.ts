@@ -34,13 +34,13 @@ export function counted(count: number, one: string, many = `${one}s`): string {
   return `${spell(count)} ${count === 1 ? one : many}`;
 }
 
-/** A frequency in Hz, kHz, MHz or GHz, with as many places as it takes, at most 9. */
-export function spellHz(hz: number): string {
+/** A frequency in Hz, kHz, MHz or GHz, with as many places as it takes, at most `places`. */
+export function spellHz(hz: number, places = 9): string {
   const size = Math.abs(hz);
   const [scale, unit] =
     size >= 1e9 ? [1e9, 'GHz'] : size >= 1e6 ? [1e6, 'MHz'] : size >= 1e3 ? [1e3, 'kHz'] : [1, 'Hz'];
   const text = Math.abs(hz / scale)
-    .toFixed(9)
+    .toFixed(places)
     .replace(/\.?0+$/, '');
   const [whole, rest] = text.split('.');
   return `${hz < 0 ? MINUS : ''}${group(whole!)}${rest ? `.${rest}` : ''} ${unit}`;

@@ -1,6 +1,7 @@
 import type { WaveformContent } from '../types';
 import { loopClosing, payloadClosing, toneJumps } from './closing';
 import type { FitFacts } from './facts';
+import { REPEATS_MOST } from './limits';
 import { seamJumpDb } from './seamJump';
 import type { Finding, SeamMeasure } from './types';
 import { counted, spell } from './words';
@@ -21,7 +22,7 @@ export function seamFinding(content: WaveformContent, facts: FitFacts, seam: Sea
       words: 'A burst has no wrap.',
     };
   }
-  const steps = seam === null ? '' : `step ${spell(seam.stepAtWrap, 2)}, elsewhere ${spell(seam.stepElsewhere, 2)}`;
+  const steps = seam === null ? '' : `${spell(seam.stepAtWrap, 2)}, elsewhere ${spell(seam.stepElsewhere, 2)}`;
   const measured =
     seam === null
       ? ''
@@ -37,6 +38,7 @@ export function seamFinding(content: WaveformContent, facts: FitFacts, seam: Sea
       : 'The last sample runs on into the first.';
     return {
       ...base,
+      title: seam === null ? base.title : 'Seam, step at the wrap',
       measured: closing.turns,
       limit: Math.round(closing.turns) + 0,
       distance: 0,
@@ -150,7 +152,10 @@ export function payloadFinding(content: WaveformContent, facts: FitFacts): Findi
     limit: first.repeatsToClose,
     verdict: 'meets',
     byHowMuch: '',
-    found: `breaks at the wrap, closes after ${counted(first.repeatsToClose!, 'repeat')}`,
+    found:
+      first.repeatsToClose! > REPEATS_MOST
+        ? 'breaks at the wrap'
+        : `breaks, closes after ${spell(first.repeatsToClose!)}`,
     words: `“${first.name}” breaks where it starts again: ${spell(first.bitsPerRepeat)} bits a repeat of a sequence of ${spell(first.periodBits!)}. Continued, it closes after ${counted(first.repeatsToClose!, 'repeat')}.${others}`,
   };
 }

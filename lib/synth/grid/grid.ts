@@ -1,7 +1,7 @@
 import { demand } from '../errors';
 import type { RunGrid } from '../types';
 
-/** The lowest subcarrier k = −⌊N/2⌋; position p of a symbol is k + ⌊N/2⌋. */
+/** The lowest subcarrier k = −⌊N/2⌋ (−8 for 16, −12 for 25); position p of a symbol is k + ⌊N/2⌋. */
 export function lowestSubcarrier(fftSize: number): number {
   return -Math.floor(fftSize / 2);
 }

@@ -31,7 +31,7 @@ function largest(values: (number | null)[]): number | null {
 }
 
 /**
- * What an operator sets and must not exceed, after SIGNAL.md's rule: peak at the device = L_set + (peak − r) − loss, mean = L_set +
+ * What an operator sets and must not exceed, after the rule of docs/signal.md: peak at the device = L_set + (peak − r) − loss, mean = L_set +
  * (m − r) − loss, with r the file's RMS, the active part's RMS or 0 dBFS as the profile says what a setting means. Unknown: all three
  * readings, the highest level and the lowest setting count. Highest setting: down to a tenth of a dB, over the limits that are given.
  * `overrides` are limits entered on the card for another device, or a setting that was typed; 0 dBm is a level like any other.

@@ -1,7 +1,7 @@
 import { SynthError } from '../errors';
 import type { BitMap, Constellation } from '../types';
 
-/** Bits a cell of the constellation carries. */
+/** Bits a cell of the constellation carries: 1…12. */
 export function bitsPerCell(constellation: Constellation): number {
   switch (constellation) {
     case 'bpsk':
@@ -45,7 +45,7 @@ function everySecondBit(word: number, bits: number, first: number): number {
   return picked;
 }
 
-/** False for the pairs that DOCUMENT's table leaves out: π/2-BPSK beside ts38211, en300744 beside QPSK, 16- and 64-QAM. */
+/** False for the pairs that a document cannot have: π/2-BPSK beside ts38211, en300744 beside QPSK, 16- and 64-QAM. */
 export function isMapKnown(constellation: Constellation, bitMap: BitMap): boolean {
   if (constellation === 'pi2-bpsk') return bitMap === 'ts38211';
   if (bitMap === 'en300744') return constellation === 'qpsk' || constellation === '16qam' || constellation === '64qam';

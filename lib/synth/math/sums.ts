@@ -7,7 +7,7 @@ export interface CompensatedSum {
   total(): number;
 }
 
-/** A new compensated sum, empty. */
+/** A new compensated sum, empty. Finite values of either sign, in any order; allocates nothing per value. */
 export function createSum(): CompensatedSum {
   let sum = 0;
   let lost = 0;

@@ -2,7 +2,7 @@ import { exponential, logarithm, powerOfDecibels } from '../math/exponential';
 import { powerAbove, powerOfBin, binOfPower, POWER_BINS } from './histogram';
 import type { CcdfCurve, PowerHistogram } from './types';
 
-/** The thresholds −10…20 dB every 0.1 dB that plots and manifests use. */
+/** The thresholds −10…20 dB every 0.1 dB that plots and manifests use: a new array, rising. */
 export function ccdfThresholds(lowDb = -10, highDb = 20, stepDb = 0.1): Float64Array {
   const count = Math.round((highDb - lowDb) / stepDb) + 1;
   return Float64Array.from({ length: count }, (_, i) => lowDb + i * stepDb);
@@ -11,7 +11,7 @@ export function ccdfThresholds(lowDb = -10, highDb = 20, stepDb = 0.1): Float64A
 /**
  * CCDF of instantaneous power over mean power: the part of the samples above mean · 10^(threshold/10). Exact at the bins' edges, between
  * them (0.13 dB) interpolated along the exponential, or along the line where the next edge counts nothing. All 0 when the mean is 0.
- * Never to be mixed with the CCDF of the symbols' PAPR.
+ * Never to be mixed with the CCDF of the symbols' PAPR. `thresholdsDb` is kept in the curve, not copied.
  */
 export function sampleCcdf(histogram: PowerHistogram, meanPower: number, thresholdsDb: Float64Array): CcdfCurve {
   const above = new Float64Array(POWER_BINS + 1); // samples at or above the bin's least power
@@ -32,7 +32,7 @@ export function sampleCcdf(histogram: PowerHistogram, meanPower: number, thresho
   return { thresholdsDb, probability };
 }
 
-/** CCDF of the PAPR per symbol: the part of the symbols (silent ones, NaN, left out) whose PAPR exceeds each threshold. Exact. */
+/** CCDF of the PAPR per symbol: the part of the symbols (silent ones, NaN, left out) whose PAPR exceeds each threshold. Exact; the input is not changed. */
 export function symbolCcdf(symbolPaprDb: Float64Array, thresholdsDb: Float64Array): CcdfCurve {
   const sorted = symbolPaprDb.filter((value) => !Number.isNaN(value)).sort();
   const probability = new Float64Array(thresholdsDb.length);
@@ -49,7 +49,7 @@ export function symbolCcdf(symbolPaprDb: Float64Array, thresholdsDb: Float64Arra
   return { thresholdsDb, probability };
 }
 
-/** The reference of the samples' CCDF: a complex Gaussian's power exceeds g times its mean with probability e^−g (Rayleigh envelope). */
+/** The reference of the samples' CCDF: a complex Gaussian's power exceeds g times its mean with probability e^−g (Rayleigh envelope, textbook). */
 export function gaussianCcdf(thresholdsDb: Float64Array): CcdfCurve {
   return { thresholdsDb, probability: thresholdsDb.map((db) => exponential(-powerOfDecibels(db))) };
 }
@@ -69,7 +69,7 @@ export function gaussianSymbolCcdf(subcarriers: number, thresholdsDb: Float64Arr
   return { thresholdsDb, probability };
 }
 
-/** The threshold in dB where a falling curve crosses `probability`, along the logarithm; null where it does not reach it. */
+/** The threshold in dB where a falling curve crosses `probability` (0…1), along the logarithm; null where it does not reach it. */
 export function dbAtProbability(curve: CcdfCurve, probability: number): number | null {
   const { thresholdsDb, probability: values } = curve;
   for (let i = 1; i < values.length; i++) {

@@ -43,8 +43,9 @@ export interface CellPowerSums {
 }
 
 /**
- * Collects the power found in each cell of demodulated symbols. `cells`: L·N inks. The span runs from the lowest to the highest
- * subcarrier that any symbol uses.
+ * Collects the power found in each cell of demodulated symbols. `cells`: L·N inks, read at once and not kept. The span runs from the lowest
+ * to the highest subcarrier that any symbol uses. Powers are |Y|² in the unit of what is added. A cell notch is taken on the transform's own
+ * subcarriers, so no window bounds it: another figure than spectralNotch.
  */
 export function createCellPower(content: WaveformContent, cells: Uint8Array): CellPower {
   const { fftSize, symbolCount } = content;

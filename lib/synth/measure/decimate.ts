@@ -4,7 +4,8 @@ import { demand } from '../errors';
  * Least and largest value of each of `columns` equal shares of a series, so that a drawn line skips no peak: every value belongs to a
  * column, and a share narrower than a value repeats the value it lies in.
  * `values` from `first` on, every `stride`-th (2 for I or Q of interleaved samples), `count` of them; `out`: [min, max] per column,
- * 2·columns numbers. The buffers stay the caller's and may not alias. Throws SynthError `bad_size` for no column or no value.
+ * 2·columns numbers. The buffers stay the caller's and may not alias. Throws SynthError `bad_size` for no column or no value,
+ * `buffer_too_small` for a short `out`.
  */
 export function decimateMinMax(
   values: Float64Array,

@@ -2,6 +2,7 @@ import { demand } from '../errors';
 import { log10 } from '../math/exponential';
 import type { EvmFigure, EvmRecipe, EvmReport } from './types';
 
+/** Which cells are compared, and how the channel is taken out first. */
 export interface EvmOptions {
   fftSize: number;
   symbolCount: number;
@@ -57,6 +58,8 @@ const PLACES = 5;
  * own Σ|X|². The sums are of D = Y − X, so that a fitted gain loses no digits however small the error: with g = 1 + ε,
  * ε = ΣDX* / Σ|X|², a group's error is Σ|D − εX|² / |1 + ε|².
  * A least-squares fit over S symbols takes a part 1/S of the error with it: corrected by −10 lg(1 − 1/S), both shown.
+ * Buffers that are added stay the caller's and are not kept; `found`, `meant` and `taps` are in one unit. Throws SynthError
+ * `buffer_too_small` for fewer taps than subcarriers.
  */
 export function createEvmMeter(options: EvmOptions): EvmMeter {
   const { fftSize, symbolCount, inkCount, estimate } = options;
@@ -179,7 +182,7 @@ export interface TapEstimate {
   taps(): Float64Array;
 }
 
-/** An empty estimate over `fftSize` subcarriers. */
+/** An empty estimate over `fftSize` subcarriers. What is added stays the caller's and is not kept. */
 export function createTapEstimate(fftSize: number): TapEstimate {
   const cross = new Float64Array(2 * fftSize);
   const power = new Float64Array(fftSize);

@@ -13,7 +13,7 @@ const FIRST_CODE = (127 + LOWEST_OCTAVE) * BINS_PER_OCTAVE;
 const asSingle = new Float32Array(1);
 const asBits = new Uint32Array(asSingle.buffer);
 
-/** The bin of a power ≥ 0; what lies outside the range goes to the first or last bin. */
+/** The bin 0…POWER_BINS−1 of a power ≥ 0; what lies outside the range goes to the first or last bin. */
 export function binOfPower(power: number): number {
   asSingle[0] = power;
   const bin = (asBits[0]! >>> 18) - FIRST_CODE;

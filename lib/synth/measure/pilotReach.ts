@@ -21,6 +21,7 @@ export interface ReachPair {
   caution: boolean;
 }
 
+/** What the pilots can follow, beside the guard that they should follow. */
 export interface PilotReach {
   /** Empty without pilots; one pair when both readings agree. */
   pairs: ReachPair[];
@@ -67,6 +68,7 @@ function largestHole(rising: readonly number[]): number | null {
  * Hoeher, Kaiser, Robertson, "Two-dimensional pilot-symbol-aided channel estimation", ICASSP 1997). Holes are those between
  * neighbouring pilots inside the frame; a lattice with one pilot symbol is followed from repeat to repeat where the frame repeats. The
  * largest hole decides, never the mean. `expected` (what somebody wants to follow) defaults to a delay as long as the usable guard.
+ * `cells`: L·N inks in place of the document's grid, not changed. Seconds and hertz; allocates one list of positions a symbol.
  */
 export function pilotReach(
   content: WaveformContent,

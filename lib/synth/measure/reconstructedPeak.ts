@@ -46,7 +46,7 @@ export function createReconstructedPeak(
   return source.samples <= exactMost ? exactPeak(source, mode) : filteredPeak(source, mode);
 }
 
-/** The same in one go. */
+/** createReconstructedPeak in one go: seconds for millions of samples. `exactMost`: up to how many samples the exact method is taken. */
 export function reconstructedPeak(source: SampleSource, mode: 'loop' | 'burst', exactMost?: number): ReconstructedPeak {
   const measuring = createReconstructedPeak(source, mode, exactMost);
   while (measuring.step());

@@ -4,6 +4,7 @@ import { log10 } from '../math/exponential';
 import type { OccupiedBand, Spectrum, WindowKind } from './types';
 import { createWindow } from './window';
 
+/** How a Welch estimate is taken. Throws SynthError `bad_size` for an overlap of a whole segment or more. */
 export interface WelchOptions {
   /** Points of each segment, 5-smooth, 1…2^22. */
   segmentLength: number;
@@ -22,7 +23,7 @@ export interface WelchEstimate {
   result(): Spectrum;
 }
 
-/** The largest 5-smooth segment that is at most `samples` and `most`. */
+/** The largest 5-smooth segment that is at most `samples` and `most`; 1 at the least. */
 export function welchSegment(samples: number, most = 4096): number {
   let length = Math.max(1, Math.min(samples, most));
   while (!isFiveSmooth(length)) length--;
@@ -32,6 +33,7 @@ export function welchSegment(samples: number, most = 4096): number {
 /**
  * Welch's method: overlapping windowed periodograms, averaged, two-sided, no trend removed. Density so that Σ density · binHz = mean
  * power for white signals; a tone A at a bin's centre reads |A|²/(ENBW · binHz). Source: Welch, IEEE Trans. AU-15, 1967.
+ * Holds one segment; what is pushed is copied. Throws SynthError `bad_size` for a segment or an overlap that cannot be.
  */
 export function createWelch(options: WelchOptions): WelchEstimate {
   const { segmentLength, clockHz, window = 'blackmanHarris' } = options;
@@ -85,7 +87,10 @@ export function createWelch(options: WelchOptions): WelchEstimate {
   };
 }
 
-/** Welch's estimate of samples at hand; the segment is the largest that fits when none is given. */
+/**
+ * Welch's estimate of interleaved samples at hand (2 numbers each, not changed); the segment is the largest that fits when none is given.
+ * Source and errors as createWelch.
+ */
 export function welchSpectrum(
   samples: Float64Array,
   options: Omit<WelchOptions, 'segmentLength'> & { segmentLength?: number },
@@ -95,7 +100,7 @@ export function welchSpectrum(
   return estimate.result();
 }
 
-/** Frequency of bin i's centre. */
+/** Frequency of bin i's centre in Hz, the carrier at 0: the lowest is −⌊n/2⌋ · binHz. */
 export function frequencyOfBin(spectrum: Spectrum, bin: number): number {
   return (bin - Math.floor(spectrum.density.length / 2)) * spectrum.binHz;
 }

@@ -323,7 +323,7 @@ export function outstandingSymbols(peaks: Float64Array): number[] {
   return marked;
 }
 
-/** The median of the peaks above zero; null where there is none. */
+/** The median of the peaks above zero (of an even number the mean of the middle two); null where there is none. */
 export function medianPeak(peaks: Float64Array): number | null {
   const loud = peaks.filter((peak) => peak > 0).sort();
   if (loud.length === 0) return null;

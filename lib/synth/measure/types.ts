@@ -36,18 +36,22 @@ export interface FramePower {
 
 /** Samples by |x|²: bin b holds powers from `powerOfBin(b)` up to `powerOfBin(b + 1)`, 32 bins an octave. */
 export interface PowerHistogram {
+  /** Whole numbers, POWER_BINS of them. */
   counts: Float64Array;
   total: number;
 }
 
 /** A curve: the part of the samples (or symbols) that lies above `thresholdsDb`, 0…1. */
 export interface CcdfCurve {
+  /** The array that the caller gave, rising. */
   thresholdsDb: Float64Array;
   probability: Float64Array;
 }
 
+/** Windows by name; their coefficients stand in window.ts with their source. */
 export type WindowKind = 'rectangular' | 'hann' | 'hamming' | 'blackman' | 'blackmanHarris' | 'nuttall' | 'flatTop';
 
+/** A window with what it does to noise and to a tone; made by createWindow, owned by its caller. */
 export interface WindowTable {
   kind: WindowKind;
   /** Periodic form, `weights.length` points. */
@@ -60,6 +64,7 @@ export interface WindowTable {
 
 /** A density over a whole sample clock, lowest frequency first: bin i stands at (i − ⌊n/2⌋)·binHz, and Σ density · binHz = mean power. */
 export interface Spectrum {
+  /** Power per hertz, in the samples' own unit of power. */
   density: Float64Array;
   binHz: number;
   window: WindowKind;
@@ -68,12 +73,14 @@ export interface Spectrum {
   segments: number;
 }
 
+/** A band on the frequency axis of a spectrum: 0 Hz is the carrier, edges may lie within a bin. */
 export interface OccupiedBand {
   lowHz: number;
   highHz: number;
   widthHz: number;
 }
 
+/** The peak of a quantized file between its samples, with the method that found it. */
 export interface ReconstructedPeak {
   /** Largest |x|² of the interpolated samples, and its place in samples of the file (eighths). */
   power: number;
@@ -98,6 +105,7 @@ export interface EvmRecipe {
   symbolsPerTap: number | null;
 }
 
+/** One error vector magnitude; `db` is 20 lg of `ratio`, after the bias of the fit was taken out. */
 export interface EvmFigure {
   /** √(Σ|Y/Ĥ − X|² / Σ|X|²), 0…; null when no energy was meant or nothing was compared. */
   ratio: number | null;
@@ -107,10 +115,14 @@ export interface EvmFigure {
   cells: number;
 }
 
+/** EVM in all and by group, each over its own Σ|X|², never a mean of dB. New arrays, the caller's own. */
 export interface EvmReport {
   all: EvmFigure;
+  /** By ink number, ink 0 (null) with no cells. */
   byInk: EvmFigure[];
+  /** By symbol of the frame, pooled over repeats. */
   bySymbol: EvmFigure[];
+  /** By position p = k + ⌊N/2⌋. */
   bySubcarrier: EvmFigure[];
   /** Normalised correlation of what was meant and what was found, 0…1. */
   correlation: number;

@@ -22,7 +22,7 @@ export interface CaptureFit {
 export interface CellReader {
   /**
    * Writes the 2·N values (position p = k + ⌊N/2⌋) of the symbol whose useful part begins `usefulStart` file samples after the origin, as if
-   * the window began there: an earlier window's phase ramp is taken out. In the capture's unit over √N as SIGNAL's transform.
+   * the window began there: an earlier window's phase ramp is taken out. In the capture's unit over √N, as the synthesis's transform.
    */
   read(usefulStart: number, out: Float64Array): void;
   /** First and last capture sample (end excluded) that the symbol's window needs. */

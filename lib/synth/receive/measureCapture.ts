@@ -3,13 +3,14 @@ import { createEvmMeter } from '../measure/evm';
 import type { EvmReport } from '../measure/types';
 import type { SampleSource } from '../measure/reconstructedPeak';
 import { createCellReader } from './captureCells';
-import { createTapSums, impulseResponse, interpolateTaps, windowAdvance, type ImpulseResponse } from './channel';
+import { createTapSums, interpolateTaps, type ImpulseResponse } from './channel';
 import type { Cycle } from './cycle';
 import { createImbalanceMeter } from './imbalance';
 import { createNullPowerMeter } from './nullPower';
 import { rowOfPlace, spreadPlaces, writeMeant, type Place } from './places';
 import { constantSource, mirroredSource } from './sources';
 import { commonPhase, knownMask, type KnownCells, type TrackedCapture } from './track';
+import { advanceOf, impulseOf, usedSpan } from './window';
 import type { ChannelSource, ConstellationPoints, ImbalanceReport, NullPower } from './types';
 
 /** All that cells tell; powers in the capture's units. */
@@ -50,22 +51,13 @@ export function* measureCells(
   choice: ChannelSource,
   signalPower: number,
 ): Generator<number, MeasuredCells> {
-  const { fftSize, symbolCount, tray, oversampling } = cycle.content;
-  const half = Math.floor(fftSize / 2);
+  const { fftSize, symbolCount, tray } = cycle.content;
   const { places, fit } = tracked;
-  const first = Math.max(cycle.usedLow, -known.captured) + half;
-  const last = Math.min(cycle.usedHigh, known.captured) + half;
-  const impulseOf = (taps: Float64Array, counts: ArrayLike<number>, noise: number): ImpulseResponse => {
-    const filled = taps.slice();
-    interpolateTaps(filled, Float64Array.from(counts), first, last);
-    return impulseResponse(filled, fftSize, first, last, noise);
-  };
-  const guard = Math.max(0, Math.floor(cycle.guardSamples / oversampling));
-  const hasTap = Float64Array.from({ length: fftSize }, (_, p) =>
-    tracked.taps[2 * p] !== 0 || tracked.taps[2 * p + 1] !== 0 ? 1 : 0,
-  );
-  const rough = tracked.drift === null ? null : impulseOf(tracked.taps, hasTap, roughNoise(tracked, cycle));
-  const advance = oversampling * (rough === null ? Math.floor(guard / 2) : windowAdvance(rough.paths, guard));
+  const { first, last } = usedSpan(cycle, known.captured);
+  const advance =
+    tracked.drift === null
+      ? Math.floor(Math.max(0, cycle.guardSamples) / 2)
+      : advanceOf(cycle, known, tracked.taps, tracked.noisePower / Math.max(1, tracked.symbolsRead));
   const reader = createCellReader(source, cycle, fit, advance);
   const readable = places.filter(({ usefulStart }) => {
     const reach = reader.reach(usefulStart);
@@ -199,11 +191,7 @@ export function* measureCells(
     counts,
     impulse: isOneGain
       ? null
-      : impulseOf(
-          taps,
-          isOneGain ? hasTap : countsWithin(taps),
-          error / Math.max(1, kept1.cells) / Math.max(1, mostCounts),
-        ),
+      : impulseOf(cycle, known.captured, taps, error / Math.max(1, kept1.cells) / Math.max(1, mostCounts)),
     advanceSamples: advance,
     symbolCounts,
     levelPower: levelPower / Math.max(1, readable.length),
@@ -213,18 +201,6 @@ export function* measureCells(
     imbalance: imbalance.result(signalPower),
     constellation: constellation.result(),
   };
-}
-
-/** Mean square error of a tracked tap. */
-function roughNoise(tracked: TrackedCapture, cycle: Cycle): number {
-  const values = new Float64Array(2 * cycle.content.fftSize);
-  writeMeant(cycle, { symbol: 0 }, values);
-  return tracked.noisePower / Math.max(1, tracked.symbolsRead);
-}
-
-/** 1 where a tap is there. */
-function countsWithin(taps: Float64Array): Float64Array {
-  return Float64Array.from({ length: taps.length / 2 }, (_, p) => (taps[2 * p] !== 0 || taps[2 * p + 1] !== 0 ? 1 : 0));
 }
 
 /** One gain for all: the mean of the taps, weighted evenly, where there is one. */

@@ -3,6 +3,7 @@ import { writeUnitOfTurns } from '../math/turns';
 import type { SampleSource } from '../measure/reconstructedPeak';
 import { createCellReader, type CaptureFit, type CellReader } from './captureCells';
 import { strongestDelay } from './channel';
+import { advanceOf } from './window';
 import type { Cycle } from './cycle';
 import { estimateDrift, type Drift, type ReadSymbol } from './offset';
 import { rowOfPlace, spreadPlaces, turnStart, wholePlaces, writeMeant, type FileWrap, type Place } from './places';
@@ -64,7 +65,7 @@ export function* trackCapture(
 ): Generator<number, TrackedCapture | null> {
   const { oversampling, fftSize, frequencyOffsetHz } = cycle.content;
   const { usefulSamples } = cycle.layout;
-  const advance = Math.floor(Math.max(0, cycle.guardSamples) / 2);
+  let advance = Math.floor(Math.max(0, cycle.guardSamples) / 2);
   const perSubcarrier = 1 / (usefulSamples * nominal.ratio);
   const fit: CaptureFit = {
     originSamples: found.templateAt - found.cyclePlace * oversampling * nominal.ratio,
@@ -76,17 +77,27 @@ export function* trackCapture(
   let wrap: FileWrap | null = null;
   let places = wholePlaces(source, cycle, fit, reader, mostSymbols + 1, wrap);
   if (places.length === 0) return null;
-  const centre = (found.templateAt + found.templateSamples / 2 - fit.originSamples) / fit.ratio;
   const most = Math.max(8, Math.min(SYMBOLS_MOST, Math.floor(VALUES_MOST / fftSize / 4)));
   const groupOf = carrierGroups(cycle);
-  let count = Math.min(places.length, FIRST_SYMBOLS);
+  if (isTurnOpen(cycle)) {
+    // the part looked for may begin in silence, or before a pad: the turn that is there for certain becomes the one found
+    const turn = clearestTurn(cycle, reader, inPart(places, found, fit), known);
+    fit.originSamples += turn * cycle.periodSamples * fit.ratio;
+    reader = createCellReader(source, cycle, fit, advance);
+    places = wholePlaces(source, cycle, fit, reader, mostSymbols + 1, wrap);
+  }
+  const own = isTurnOpen(cycle) ? places.filter(({ turn }) => turn === 0) : places;
+  const isOwnOnly = own.length > 0 && own.length < places.length;
+  let count = Math.min(own.length > 0 ? own.length : places.length, FIRST_SYMBOLS);
   let drift: Drift | null = null;
   let read: ReadSymbol[] = [];
   let sigma: number | null = null;
   let isLast = false;
   let isCleared = false;
+  let isFirst = true;
+  const middle = found.templateAt + found.templateSamples / 2;
   while (!isLast) {
-    const near = nearest(places, centre, count);
+    const near = nearest(isFirst && isOwnOnly ? own : places, (middle - fit.originSamples) / fit.ratio, count);
     isLast = count >= places.length && (isCleared || places.length < 2);
     read = [];
     for (const place of spreadPlaces(near, most)) {
@@ -117,12 +128,15 @@ export function* trackCapture(
     }
     fit.isLocked = fit.ratio === 1;
     fit.originSamples += pivot * (wasRatio - fit.ratio);
-    if (count === Math.min(places.length, FIRST_SYMBOLS) && wrap === null) {
+    if (isFirst) {
+      isFirst = false;
       reader = createCellReader(source, cycle, fit, advance);
       wrap = findWrap(source, cycle, fit, reader, drift.taps, known);
       if (cycle.layout.mode === 'burst' && cycle.isRepeat)
         places = places.filter(isPresent(cycle, reader, drift.taps, known));
     }
+    // the channel is known well enough to lay the window into the guard by it
+    if (isCleared) advance = advanceOf(cycle, known, drift.taps, drift.noisePower / read.length);
     reader = createCellReader(source, cycle, fit, advance);
     const inBurst = new Set(places.map(({ turn }) => turn));
     places = wholePlaces(source, cycle, fit, reader, mostSymbols + 1, wrap).filter(
@@ -155,6 +169,59 @@ export function* trackCapture(
     isClockShared: fit.ratio === nominal.ratio,
     isCut,
   };
+}
+
+/** True where not every turn holds the waveform, or at its own place: a burst, or a pad behind several repeats. */
+function isTurnOpen(cycle: Cycle): boolean {
+  return cycle.layout.mode === 'burst' || (cycle.isRepeat && cycle.layout.padSamples > 0);
+}
+
+/** The places within the part that was looked for; all where none is. */
+function inPart(places: readonly Place[], found: FoundFrame, fit: CaptureFit): readonly Place[] {
+  const inside = places.filter(({ usefulStart }) => {
+    const at = fit.originSamples + usefulStart * fit.ratio;
+    return at >= found.templateAt && at < found.templateAt + found.templateSamples;
+  });
+  return inside.length > 0 ? inside : places;
+}
+
+/** The turn whose cells follow most clearly from one subcarrier to the next: strong, and laid right. */
+function clearestTurn(cycle: Cycle, reader: CellReader, places: readonly Place[], known: KnownCells): number {
+  const { fftSize } = cycle.content;
+  const sums = new Map<number, { re: number; im: number; symbols: number }>();
+  const values = new Float64Array(2 * fftSize);
+  const meant = new Float64Array(2 * fftSize);
+  const mask = new Uint8Array(fftSize);
+  for (const place of places) {
+    const sum = sums.get(place.turn) ?? { re: 0, im: 0, symbols: 0 };
+    if (sum.symbols >= FIRST_SYMBOLS) continue;
+    sums.set(place.turn, sum);
+    reader.read(place.usefulStart, values);
+    writeMeant(cycle, place, meant);
+    knownMask(rowOfPlace(cycle, place), known.isKnownInk, known.captured, mask);
+    let lastRe = 0;
+    let lastIm = 0;
+    for (let p = 0; p < fftSize; p++) {
+      if (mask[p] === 0) continue;
+      const re = values[2 * p]! * meant[2 * p]! + values[2 * p + 1]! * meant[2 * p + 1]!;
+      const im = values[2 * p + 1]! * meant[2 * p]! - values[2 * p]! * meant[2 * p + 1]!;
+      sum.re += re * lastRe + im * lastIm;
+      sum.im += im * lastRe - re * lastIm;
+      lastRe = re;
+      lastIm = im;
+    }
+    sum.symbols++;
+  }
+  let best = 0;
+  let most = -1;
+  for (const [turn, { re, im }] of sums) {
+    const power = re * re + im * im;
+    if (power > most) {
+      most = power;
+      best = turn;
+    }
+  }
+  return best;
 }
 
 /** The `count` places nearest to `centre`, in order of time. */

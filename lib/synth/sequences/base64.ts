@@ -4,7 +4,7 @@ const ALPHABET = 'ABCDEFGHIJKLMNOPQRSTUVWXYZabcdefghijklmnopqrstuvwxyz0123456789
 const VALUES = new Int16Array(128).fill(-1);
 for (let i = 0; i < 64; i++) VALUES[ALPHABET.charCodeAt(i)] = i;
 
-/** The bytes of padded base64 text (RFC 4648 section 4). Throws SynthError `bad_content` for anything else. */
+/** The bytes of padded base64 text (RFC 4648 section 4), a new array. Throws SynthError `bad_content` for anything else. */
 export function decodeBase64(text: string): Uint8Array {
   demand(text.length % 4 === 0, 'bad_content', 'Base64 comes in groups of four characters.');
   const padding = text.endsWith('==') ? 2 : text.endsWith('=') ? 1 : 0;

@@ -92,6 +92,7 @@ function goldSource(cInit: number): BitSource {
 /**
  * The endless bits of a payload source, or of a register or Gold sequence of a pilot.
  * Gold: c(n) of length-31 registers, N_C = 1600. Source: TS 38.211 5.2.1; ITU-T O.150 for the registers' form.
+ * Bits are numbered from 0 on and may be read in any order; a source keeps windows of its own and is not for two callers at once.
  * Throws SynthError `bad_content` for an upload that is not base64 or too short.
  */
 export function createBitSource(source: PayloadSource): BitSource {

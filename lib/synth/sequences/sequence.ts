@@ -75,8 +75,9 @@ function cyclic(index: number, cycle: number): number {
 
 /**
  * The values of a pilot's or tone's factor; unit magnitude but for `listed`, which is taken as written.
- * Source: DOCUMENT's Sequence table; Zadoff–Chu: Chu 1972; Newman phases πi²/count; Schroeder phases −πi(i+1)/count;
- * Gold as TS 38.211 5.2.1 with BPSK 1 − 2c(i) or QPSK of c(2i), c(2i+1).
+ * Constant 1; alternating (−1)^i; register 1 − 2b(i); Gold as TS 38.211 5.2.1 with BPSK 1 − 2c(i) or QPSK of c(2i), c(2i+1);
+ * Zadoff–Chu: Chu 1972; Newman phases πi²/count; Schroeder phases −πi(i+1)/count. Phases are exact fractions of a turn, reduced as whole
+ * numbers, for indices up to 2^53. Tables are its own; the sequence given is not kept.
  */
 export function createSequence(sequence: Sequence): ValueSequence {
   switch (sequence.kind) {
@@ -121,7 +122,7 @@ export function createSequence(sequence: Sequence): ValueSequence {
   }
 }
 
-/** One value of a sequence as [re, im], for tables and checks. */
+/** One value of a sequence at `index` ≥ 0 as [re, im], for tables and checks. */
 export function sequenceValue(sequence: ValueSequence, index: number): [re: number, im: number] {
   const out = Float64Array.of(1, 0);
   sequence.multiplyInto(index, 0, 1, out, 0);

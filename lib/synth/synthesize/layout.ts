@@ -4,7 +4,7 @@ import type { FrameLayout } from './types';
 
 const SAMPLES_MOST = 549755813888; // 2^33 at M = 1, on M' ≤ 16 times more and room to spare
 
-/** M′ of SIGNAL.md: the least multiple of M that is at least 4; what "interpolated" means everywhere. */
+/** M′ of docs/signal.md: the least multiple of M that is at least 4; what "interpolated" means everywhere. */
 export function interpolationOf(oversampling: number): number {
   return oversampling * Math.ceil(4 / oversampling);
 }

@@ -51,7 +51,7 @@ export function vectorStats(synthesis: Synthesis): VectorStats {
 }
 
 /**
- * Largest |x| of the content rendered at M′ (the least multiple of M that is at least 4): SIGNAL's interpolated peak of the
+ * Largest |x| of the content rendered at M′ (the least multiple of M that is at least 4): the interpolated peak of the
  * whole file. The content's own rendering gives it where M ≥ 4.
  */
 export function interpolatedPeak(

@@ -30,6 +30,8 @@ export const defaultThreadCount = (): number => Math.max(1, availableParallelism
 export interface WorkPool {
   /** Tasks that are worth having under way at once. */
   readonly size: number;
+  /** What a document whose peak is reduced needs first, measured once for all threads. */
+  begin(): Promise<void>;
   /** `transfer` is handed over and no longer the caller's. */
   run<Kind extends WorkTask['kind']>(task: TaskOf<Kind>, transfer?: ArrayBuffer[]): Promise<WorkResults[Kind]>;
   /** As run, for long tasks that shall not stand before others: one after another in a thread beside the pool. */
@@ -114,6 +116,10 @@ function openThreadPool({ file, count }: WorkThreads, input: WorkInput): WorkPoo
   }
   return {
     size: count,
+    async begin() {
+      if (input.content.peakReduction.kind === 'none') return;
+      input = { ...input, powerBefore: await idlest().run<'power'>({ kind: 'power' }) }; // threads opened from now on
+    },
     run: (task, transfer) => idlest().run(task, transfer),
     runAside: (task) => (beside ??= openThread(file, input)).run(task),
     close: async () => void (await Promise.all([...threads, ...(beside ? [beside] : [])].map((one) => one.close()))),
@@ -128,14 +134,14 @@ function openOwnPool(input: WorkInput): WorkPool {
     await setImmediate();
     return result;
   };
-  return { size: 1, run, runAside: run, close: () => Promise.resolve() };
+  return { size: 1, begin: () => Promise.resolve(), run, runAside: run, close: () => Promise.resolve() };
 }
 
 /** The pool for a pack: threads where they are given and worth it. */
 export function openPool(content: WaveformContent, bench: BenchContent, threads?: WorkThreads): WorkPool {
   const { samples } = frameLayout(content, interpolationOf(content.oversampling));
   const keepBytes = Math.floor(KEEP_BYTES / (threads?.count ?? 1));
-  const input = { content, bench, keepBytes };
+  const input = { content, bench, keepBytes, powerBefore: null };
   if (threads === undefined || samples < (threads.leastSamples ?? LEAST_SAMPLES)) return openOwnPool(input);
   return openThreadPool(threads, input);
 }

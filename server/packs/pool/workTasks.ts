@@ -17,6 +17,8 @@ export interface WorkInput {
   bench: BenchContent;
   /** Most bytes of rendered symbols that each rendering of each thread may keep. */
   keepBytes: number;
+  /** What targets of peak reduction stand over, once it is known: long to measure, the same for all. */
+  powerBefore: number | null;
 }
 
 /** Where bytes of a vector lie: an open file (its number is good in every thread of the process) and a place in it. */
@@ -28,6 +30,7 @@ export interface BytePlace {
 
 /** Plain values throughout: they go from thread to thread. */
 export type WorkTask =
+  | { kind: 'power' }
   | { kind: 'levels'; oversampling: number; stretch: Stretch }
   | { kind: 'frame'; stretch: Stretch }
   | { kind: 'words'; scale: WordScale; stretch: Stretch; room: ArrayBuffer }
@@ -46,6 +49,7 @@ export interface StretchProof {
 }
 
 export interface WorkResults {
+  power: number;
   levels: LevelParts;
   frame: FrameStretch;
   words: { room: ArrayBuffer; saturated: SaturationCount };

@@ -1,5 +1,11 @@
 import { createHash, type Hash } from 'node:crypto';
-import { collectLevelParts, createFrameStretches, createSynthesis, createWordWriter } from '@/lib/synth';
+import {
+  collectLevelParts,
+  createFrameStretches,
+  createSynthesis,
+  createWordWriter,
+  meanPowerBefore,
+} from '@/lib/synth';
 import { sampleEngine } from '../../sampleEngine.ts';
 import { blocksOf } from './bytePlaces.ts';
 import { findFilePeak } from './filePeak.ts';
@@ -20,16 +26,19 @@ export function createWorkshop(input: WorkInput) {
   const { content, bench, keepBytes } = input;
   const engine = sampleEngine();
   const renderings = new Map<number, ReturnType<typeof createSynthesis>>();
+  const powerBefore = lazily(() => input.powerBefore ?? meanPowerBefore(content, { engine }));
+  const options = { engine, keepBytes, powerBefore };
   const renderingAt = (oversampling: number) => {
-    const rendering = renderings.get(oversampling) ?? createSynthesis(content, { oversampling, engine, keepBytes });
+    const rendering = renderings.get(oversampling) ?? createSynthesis(content, { ...options, oversampling });
     renderings.set(oversampling, rendering);
     return rendering;
   };
-  const frame = lazily(() => createFrameStretches(content, { engine, keepBytes }));
+  const frame = lazily(() => createFrameStretches(content, options));
   const proof = lazily(() => createStretchProof(content, bench, renderingAt(content.oversampling)));
   const digests = new Map<string, Hash>();
 
   const work: { [Kind in WorkTask['kind']]: (task: TaskOf<Kind>) => WorkResults[Kind] } = {
+    power: powerBefore,
     levels({ oversampling, stretch: { from, end } }) {
       const synthesis = renderingAt(oversampling);
       if (synthesis.position !== from) synthesis.seek(from);

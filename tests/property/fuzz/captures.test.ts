@@ -11,7 +11,7 @@ import { createFuzzWatch, expectNoHang, fuzzCount, mutateBytes } from '@/tests/h
 import { seededRandom } from '@/tests/helpers/mutateDocument';
 
 const seed = 20260418;
-const captures = fuzzCount(30_000);
+const captures = fuzzCount(24_000);
 const SAMPLES = 60;
 
 /** Every layout that a file can have, with two converters' widths. */

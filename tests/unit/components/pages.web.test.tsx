@@ -5,6 +5,7 @@ import { useState, type ReactNode } from 'react';
 import { BenchForm } from '@/components/screens/BenchScreen/BenchForm';
 import { newBenchContent } from '@/components/screens/BenchScreen/fields';
 import { FindingCard, type Finding } from '@/components/screens/FitScreen/FindingCard';
+import { LengthRuler, shownSteps } from '@/components/screens/FitScreen/LengthRuler';
 import { HistoryScreen } from '@/components/screens/HistoryScreen/HistoryScreen';
 import { SignInScreen } from '@/components/screens/SignInScreen/SignInScreen';
 import { noteAnswer } from '@/lib/client/connection';
@@ -97,12 +98,20 @@ describe('FindingCard', () => {
     byHowMuch: '2048 samples short',
     found: '30 720',
     words: '30 720 samples are 7.5 × the granularity of 4096. Only whole multiples load.',
-    remedies: [{ label: 'Repeat the frame 2 times: 61 440', changes: [], cost: 'The file is twice as long.' }],
+    remedies: [
+      {
+        kind: 'repeats',
+        label: 'Repeat the frame 2 times: 61 440',
+        changes: [],
+        price: { samples: 30_720, ppm: 0 },
+        cost: '30 720 samples more, 0 ppm. The file is twice as long.',
+      },
+    ],
   };
 
   it('says what, by how much, and carries a remedy that is one press away', async () => {
     const onApply = jest.fn();
-    show(<FindingCard finding={finding} onApply={onApply} busy={false} />);
+    show(<FindingCard finding={finding} press={{ label: null, press: onApply }} busy={false} ruler />);
     expect(screen.getByRole('heading', { name: 'Length' })).toBeInTheDocument();
     expect(screen.getByText('2048 samples short')).toBeInTheDocument();
     await userEvent.click(screen.getByRole('button', { name: 'Repeat the frame 2 times: 61 440' }));
@@ -118,8 +127,8 @@ describe('FindingCard', () => {
     };
     show(
       <>
-        <FindingCard finding={finding} onApply={onApply} busy={false} />
-        <FindingCard finding={second} onApply={onApply} busy={false} />
+        <FindingCard finding={finding} press={{ label: null, press: onApply }} busy={false} ruler />
+        <FindingCard finding={second} press={{ label: null, press: onApply }} busy={false} ruler />
       </>,
     );
     await userEvent.tab();
@@ -129,12 +138,29 @@ describe('FindingCard', () => {
     expect(onApply).toHaveBeenCalledWith(second.remedies[0]);
   });
 
-  it('offers no button where the revision cannot change, and says when a pack is refused', () => {
-    show(<FindingCard finding={finding} onApply={null} busy={false} />);
+  it('makes a new draft where the revision itself cannot change', async () => {
+    const press = jest.fn();
+    const label = 'Make a new draft with this remedy';
+    show(<FindingCard finding={finding} press={{ label, press }} busy={false} ruler={false} />);
+    expect(screen.getByText('Repeat the frame 2 times: 61 440')).toBeInTheDocument();
+    await userEvent.click(screen.getByRole('button', { name: `Repeat the frame 2 times: 61 440. ${label}` }));
+    expect(press).toHaveBeenCalledWith(finding.remedies[0]);
+  });
+
+  it('offers no button where nothing may be changed, and says where nothing can mend it', () => {
+    show(<FindingCard finding={finding} press={null} busy={false} ruler={false} />);
     expect(screen.queryByRole('button')).toBeNull();
     expect(screen.getByText('Repeat the frame 2 times: 61 440')).toBeInTheDocument();
-    show(<FindingCard finding={{ ...finding, remedies: [] }} onApply={null} busy={false} />);
-    expect(screen.getByText('A pack is refused until this is mended.')).toBeInTheDocument();
+    show(<FindingCard finding={{ ...finding, remedies: [] }} press={null} busy={false} ruler={false} />);
+    expect(screen.getByText('Nothing in the waveform can mend this. Choose another bench.')).toBeInTheDocument();
+  });
+
+  it('draws the length on a ruler of the granularity, its end alone where there are many steps', () => {
+    expect(shownSteps(30_720, 4096)).toEqual({ first: 0, end: 8 });
+    expect(shownSteps(32_768, 4096)).toEqual({ first: 0, end: 8 });
+    expect(shownSteps(15_360, 4)).toEqual({ first: 3832, end: 3840 });
+    show(<LengthRuler samples={30_720} granularity={4096} />);
+    expect(screen.getByRole('img', { name: /end inside step 8 of 4096 each/ })).toBeInTheDocument();
   });
 });
 

@@ -210,6 +210,7 @@ export function MoreSheet({
       <View style={styles.acts}>
         {isPhone && rights.canDraw ? <UndoRedo table={table} /> : null}
         {rights.canAsk && isPhone ? <Button onPress={() => open({ kind: 'ask' })}>Ask for review</Button> : null}
+        {rights.canDraw && isPhone ? <Button onPress={() => table.run('peak.lower')}>Lower the peak</Button> : null}
         {rights.canDraw ? <Button onPress={() => open({ kind: 'title' })}>Rename</Button> : null}
         <Button onPress={exportJson}>Export as JSON</Button>
         <Button onPress={() => table.run('view.band')}>Whole band</Button>

@@ -1,6 +1,8 @@
 import { fileSamples } from '../../numerology';
 import { allowedLength, isLoadable, PAD_MOST, REPEATS_MOST, SAMPLES_MOST, usableMost } from '../limits';
-import { counted, spell } from '../words';
+import { applyChanges } from '../changes';
+import { loopClosing } from '../closing';
+import { counted, spell, spellHz } from '../words';
 import { oversamplingDrafts } from './clockRemedies';
 import {
   change,
@@ -26,12 +28,35 @@ export function lengthRemedies(about: Case): Alternatives[] {
     longerGap(about),
     longerPad(about),
     repeatsAndPad(about),
-  ];
+  ].map((drafts) => orWithOffset(about, drafts));
 }
 
 /** For a file that the memory does not hold. */
 export function memoryRemedies(about: Case): Alternatives[] {
-  return [fewerRepeats(about, true), oversamplingDrafts(about, 'shorter'), shorterGap(about), shorterPad(about)];
+  return [fewerRepeats(about, true), oversamplingDrafts(about, 'shorter'), shorterGap(about), shorterPad(about)].map(
+    (drafts) => orWithOffset(about, drafts),
+  );
+}
+
+/** Another length opens a loop that the frequency offset closed: where no draft holds as it is, the offset moves with it. */
+function* orWithOffset({ document }: Case, drafts: Alternatives): Alternatives {
+  const asTheyAre: Draft[] = [];
+  for (const draft of drafts) {
+    asTheyAre.push(draft);
+    yield draft;
+  }
+  const before = loopClosing(document.content);
+  if (!before.applies || !before.closes || document.content.frequencyOffsetHz === 0) return;
+  for (const draft of asTheyAre) {
+    const after = loopClosing(applyChanges(document, draft.changes).content);
+    if (after.closes) continue;
+    yield {
+      ...draft,
+      label: `${draft.label}, and move the offset`,
+      changes: [...draft.changes, change(document, '/content/frequencyOffsetHz', after.nearestOffsetHz + 0)],
+      effect: `${draft.effect} The signal moves by ${spellHz(after.nearestChangeHz, 3)}, so that the loop stays closed.`,
+    };
+  }
 }
 
 export function repeatsDraft(document: Case['document'], repeats: number): Draft {

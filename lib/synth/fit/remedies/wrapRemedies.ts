@@ -63,7 +63,7 @@ function* closingOffset({ document }: Case): Alternatives {
     kind: 'offset',
     label: `Move the offset to ${spellHz(closing.nearestOffsetHz)}`,
     changes: [change(document, '/content/frequencyOffsetHz', closing.nearestOffsetHz + 0)],
-    effect: `The signal moves by ${spellHz(closing.nearestChangeHz)}.`,
+    effect: `The signal moves by ${spellHz(closing.nearestChangeHz, 3)}.`,
   };
 }
 

@@ -14,7 +14,7 @@ import { relativeDb } from '../../../helpers/directTransform';
 import { plainSynthesis } from '../../../helpers/plainSynthesis';
 import { renderSamples } from '../../../helpers/renderWords';
 
-/** Double arithmetic over a dozen transform levels against plain sums: a floor with room, see SIGNAL's 1e-9 for cells. */
+/** Double arithmetic over a dozen transform levels against plain sums: a floor with room above the 1e-9 that cells are held to. */
 const MOST_ERROR_DB = -290;
 
 const isSilent = (samples: Float64Array): boolean => samples.every((part) => part === 0);

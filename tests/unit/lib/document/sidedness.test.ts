@@ -25,7 +25,7 @@ test('is one tone at +N/8 on 16 samples: an eighth of a turn forward from sample
   }
   expect(deriveFigures(document.content).sampleClockHz).toBe(16e6);
   expect(words).toContain('the tone stands 2 MHz above the carrier');
-  expect(document.about.title).toBe('Sidedness: one tone 2 MHz above the carrier');
+  expect(document.about.title).toBe('Sidedness: tone 2 MHz above the carrier');
 });
 
 test.each<[string, Partial<BenchContent>, object]>([

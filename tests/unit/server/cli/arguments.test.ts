@@ -17,6 +17,10 @@ test('the three commands', () => {
     ok: true,
     command: { name: 'inspect', document: 'a.json', json: true },
   });
+  expect(parseCommand(['fit', 'a.json', 'b.json', '--out', 'c.json'])).toEqual({
+    ok: true,
+    command: { name: 'fit', document: 'a.json', bench: 'b.json', out: 'c.json', json: false },
+  });
   expect(parseCommand(['render', '--help'])).toEqual({ ok: true, command: { name: 'help' } });
 });
 
@@ -26,6 +30,7 @@ test.each([
   [['render', 'a.json'], 'render takes a document and a bench profile'],
   [['render', 'a', 'b', 'c'], 'render takes a document and a bench profile'],
   [['render', 'a', 'b', '--out='], '--out needs a file name'],
+  [['fit', 'a.json'], 'fit takes a document and a bench profile'],
   [['verify'], 'verify takes one pack'],
   [['verify', 'a', 'b'], 'verify takes one pack'],
   [['inspect', 'a', '--out', 'b'], '--out belongs to render'],

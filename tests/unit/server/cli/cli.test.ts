@@ -51,6 +51,22 @@ test('render, verify, inspect: the way of a document to a proven pack', () => {
   expect(readdirSync(folder).sort()).toEqual(['b.json', 'pack.zip', 'w.json']);
 });
 
+test('fit: each check, what mends it, and the mended document fits', () => {
+  const files = inputs(smallDocument(), openBench({ granularitySamples: 256, leastSamples: 256 }));
+  const found = run('fit', ...files, '--out', 'mended.json');
+  expect(found.status).toBe(0);
+  expect(found.stdout).toMatch(/^Mended: Repeat the frame 4 times: 1280\. 960 samples more, 0 ppm\./);
+  const before = run('fit', ...files);
+  expect(before.status).toBe(1);
+  expect(before.stderr).toMatch(/^A pack is refused: 320 samples are 1\.25 × the granularity of 256\./);
+  expect(before.stdout).toMatch(/Length +misses +192 samples short/);
+  expect(run('fit', 'mended.json', 'b.json').status).toBe(0);
+  expect(run('fit', ...files, '--out', 'mended.json')).toMatchObject({ status: 1, stdout: '' });
+  const json = JSON.parse(run('fit', ...files, '--json').stdout) as { ok: boolean; code: string; findings: unknown[] };
+  expect(json).toMatchObject({ ok: false, code: 'limit_missed' });
+  expect(json.findings).toHaveLength(13);
+});
+
 test('--json is one object, and without --out the pack has its own name', () => {
   const rendered = run('render', ...inputs(), '--json');
   const json = JSON.parse(rendered.stdout) as {

@@ -399,7 +399,7 @@ describe('payload', () => {
     ]);
     expect(payloadClosing(content({ source: PN3, acrossRepeats: 'continue' }, 14))).toMatchObject([{ closes: true }]);
     const found = find('payloadWrap', content({ source: PN3 }));
-    expect(found).toMatchObject({ verdict: 'meets', found: 'breaks at the wrap, closes after 7 repeats', limit: 7 });
+    expect(found).toMatchObject({ verdict: 'meets', found: 'breaks, closes after 7', limit: 7 });
     expect(found.words).toContain('closes after 7 repeats');
     expect(found.remedies[0]!.changes).toEqual([
       { pointer: '/content/streams/0/acrossRepeats', before: 'restart', after: 'continue' },

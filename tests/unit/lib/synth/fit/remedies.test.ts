@@ -104,12 +104,18 @@ describe('length, worked by hand', () => {
     ]);
   });
 
-  test('a pad that would open the loop is not offered', () => {
+  test('a pad that would open the loop takes the offset along', () => {
     // 15 kHz turns once in 64 samples at 960 kS/s: 100, 200, 300 and 400 samples are no whole turns, 25 · 64 = 1600 are 25
     const turning = smallContent({ frequencyOffsetHz: 15000 });
     expect(find('seam', turning)).toMatchObject({ verdict: 'meets', measured: 1, limit: 1 });
-    const kinds = find('granularity', turning, { granularitySamples: 100 }).remedies.map(({ kind }) => kind);
-    expect(kinds).toEqual(['repeats']);
+    const { remedies } = find('granularity', turning, { granularitySamples: 100 });
+    expect(shortly(remedies)).toEqual([
+      ['repeats', 'Repeat the frame 25 times: 1600', 1536],
+      ['pad', 'Pad with 36 silent samples: 100, and move the offset', 36],
+    ]);
+    // 100 samples at 15 kHz are 1.5625 turns; two make 960 kHz · 2 / 100 = 19.2 kHz, 4.2 of 960 kHz are 4375 ppm
+    expect(remedies[1]!.changes.at(-1)).toMatchObject({ pointer: '/content/frequencyOffsetHz', after: 19200 });
+    expect(remedies[1]!.price.ppm).toBeCloseTo(4375, 9);
   });
 });
 
@@ -253,7 +259,7 @@ describe('seam, worked by hand', () => {
       0, 0, 1, 0, 3, 0, 0, 0, 1, 0, 3, 0,
     ]);
     const found = find('seam', smallContent(), {}, { known: { wave: { seam, symbolPeaks: null } } });
-    expect(found.found).toBe('step 1.64, elsewhere 1.10');
+    expect(found).toMatchObject({ title: 'Seam, step at the wrap', found: '1.64, elsewhere 1.10' });
   });
 
   test('of a longer file the last and first 64 are kept, in order, however the blocks are cut', () => {
@@ -362,9 +368,10 @@ describe('levels, worked by hand', () => {
       hard: true,
       byHowMuch: 'no such file can be written',
     });
-    expect(find('word', smallContent(), { bits: 12, align: 'left', numberFormat: 'offsetBinary' }).found).toBe(
-      '12 bit left-aligned offset binary, low byte first',
-    );
+    expect(find('word', smallContent(), { bits: 12, align: 'left', numberFormat: 'offsetBinary' })).toMatchObject({
+      found: '12 bit, low byte first',
+      words: '12 bit, low byte first, left-aligned, offset binary; nothing saturates.',
+    });
   });
 
   test('peaks of 1, 1, 1 and 2.1: 3.22 dB above the median of 1', () => {

@@ -69,13 +69,14 @@ const payload = smallContent({
 
 describe('the search for phases', () => {
   it('finds the lowest of the rules and angles, as a tray', () => {
+    const { reach } = createPhaseSearch(payload);
     const search = finish(createPhaseSearch(payload));
     expect(search).toMatchObject({ total: 48, done: 48, nowPaprDb: paprOf(payload) });
     const best = search.best!;
     const all = ['newman', 'schroeder'].flatMap((rule) =>
       Array.from({ length: 24 }, (_, i) => ({ rule: rule as 'newman', toneDeg: 15 * i })),
     );
-    const paprs = all.map((choice) => paprOf({ ...payload, tray: trayWithPhases(payload.tray, search.reach, choice) }));
+    const paprs = all.map((choice) => paprOf({ ...payload, tray: trayWithPhases(payload.tray, reach, choice) }));
     expect(best.paprDb).toBe(Math.min(...paprs));
     expect(best.choice).toEqual(all[paprs.indexOf(best.paprDb)]);
     expect(best.content.tray[3]!.value).toMatchObject({ phaseDeg: best.choice.toneDeg });

@@ -98,7 +98,7 @@ describe('binary sequences of synchronization signals', () => {
 });
 
 describe('other sequences', () => {
-  it('are what DOCUMENT says', () => {
+  it('are what their formulas say', () => {
     expect(values({ kind: 'constant' }, 3, 2)).toEqual([
       [1, 0],
       [1, 0],
