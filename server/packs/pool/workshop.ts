@@ -34,7 +34,7 @@ export function createWorkshop(input: WorkInput) {
     return rendering;
   };
   const frame = lazily(() => createFrameStretches(content, options));
-  const proof = lazily(() => createStretchProof(content, bench, renderingAt(content.oversampling)));
+  const proof = lazily(() => createStretchProof(content, bench, renderingAt(content.oversampling), powerBefore));
   const digests = new Map<string, Hash>();
 
   const work: { [Kind in WorkTask['kind']]: (task: TaskOf<Kind>) => WorkResults[Kind] } = {
