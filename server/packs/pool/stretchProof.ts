@@ -30,6 +30,7 @@ export const createProofMeter = (content: WaveformContent): EvmMeter =>
     inkCount: content.tray.length,
     inks: comparedInksOf(content),
     estimate: 'none',
+    bySubcarrier: false,
     cellsWords: 'all cells of data, pilot and tone inks',
   });
 

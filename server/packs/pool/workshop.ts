@@ -33,7 +33,7 @@ export function createWorkshop(input: WorkInput) {
     renderings.set(oversampling, rendering);
     return rendering;
   };
-  const frame = lazily(() => createFrameStretches(content, options));
+  const frame = lazily(() => createFrameStretches(content, { ...options, counts: false }));
   const proof = lazily(() => createStretchProof(content, bench, renderingAt(content.oversampling), powerBefore));
   const digests = new Map<string, Hash>();
 
