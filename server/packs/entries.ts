@@ -2,6 +2,7 @@ import { canonicalJson } from '@/lib/document/digest';
 import { sidednessWords } from '@/lib/document/sidedness';
 import type { Manifest } from '@/lib/document/manifestSchema';
 import {
+  createSentValues,
   deriveFigures,
   markerBytes,
   synthVersion,
@@ -21,6 +22,7 @@ import {
   usedStreams,
   type PayloadCount,
 } from './entryChunks.ts';
+import type { MeasuredReduction } from './measureReduction.ts';
 import { payloadName } from './manifest/describeInks.ts';
 import type { PackState } from './packTypes.ts';
 import { packVersion } from './packVersion.ts';
@@ -49,7 +51,12 @@ export interface EntryInput {
   /** Filled as the payload entries are made. */
   payloads: Map<number, PayloadCount>;
   cardText: string;
+  /** Where a symbol's peak was lowered, values are listed as they are sent, too. */
+  reduction: MeasuredReduction | null;
 }
+
+const referenceName = 'reference.cf32';
+const sentReferenceName = 'reference-sent.cf32';
 
 export const vectorNameOf = (baseName: string, ending: string, profile: BenchProfile): string =>
   `${baseName}${ending}.${profile.content.fileName.extension}`;
@@ -89,6 +96,8 @@ function* markerChunks(input: EntryInput): Generator<Uint8Array> {
   }
 }
 
+const isReduced = ({ reduction }: EntryInput): boolean => reduction !== null && reduction.report.passes > 0;
+
 const wantsMarkers = ({ document, profile }: EntryInput): boolean =>
   document.content.markers.length > 0 && profile.content.markers.packing === 'bytes';
 
@@ -125,6 +134,7 @@ function readme(input: EntryInput): string {
     payloadNames: usedStreams(values).map(payloadName),
     frequencyOffsetHz: content.frequencyOffsetHz,
     saturatedWords: saturatedWordsOf(input.proof),
+    sentReferenceName: isReduced(input) ? sentReferenceName : null,
   });
 }
 
@@ -162,7 +172,15 @@ export function sideEntries(input: EntryInput): { before: SideEntry[]; after: Si
     payloads.set(stream, count);
     before.push({ name: payloadName(stream), role: 'payload', chunks: () => payloadChunks(values, stream, count) });
   }
-  before.push({ name: 'reference.cf32', role: 'reference', chunks: () => referenceChunks(values) });
+  before.push({ name: referenceName, role: 'reference', chunks: () => referenceChunks(values) });
+  if (isReduced(input)) {
+    const powerBefore = () => input.reduction!.powerBefore;
+    before.push({
+      name: sentReferenceName,
+      role: 'referenceSent',
+      chunks: () => referenceChunks(createSentValues(document.content, { powerBefore })),
+    });
+  }
   if (listsCells(values)) before.push({ name: 'cells.csv', role: 'cells', chunks: () => cellsCsvChunks(values) });
   // Canonical JSON, so that the files' own SHA-256 are the digests by which the document and the profile are named.
   return {

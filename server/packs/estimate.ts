@@ -29,6 +29,8 @@ export function packBytesOf(content: WaveformContent, bench: BenchContent): numb
   const restarts = content.streams.every((stream) => stream.acrossRepeats === 'restart');
   const repeats =
     restarts || bits === 0 ? 1 : Math.max(1, Math.min(content.timing.repeats, Math.floor(mostPayloadBits / bits)));
+  // as they are meant, and where a peak is lowered as they are sent
+  const referenceBytes = content.peakReduction.kind === 'none' ? 8 : 16;
   const markerBytes = content.markers.length > 0 && bench.markers.packing === 'bytes' ? fileSamples : 0;
-  return vectorBytes(content, bench) + markerBytes + repeats * (usedCells * 8 + bits / 8) + textBytes;
+  return vectorBytes(content, bench) + markerBytes + repeats * (usedCells * referenceBytes + bits / 8) + textBytes;
 }

@@ -28,6 +28,7 @@ import { packBytesOf } from './estimate.ts';
 import { digestPlace } from './fileDigest.ts';
 import { levelCardText } from './levelCardText.ts';
 import { makeManifest } from './manifest/manifest.ts';
+import { measureReduction, type MeasuredReduction } from './measureReduction.ts';
 import { measureRendering, type RenderingMeasure } from './measureRendering.ts';
 import { PackError, throwIfCancelled, toPackError } from './packError.ts';
 import { packLevels } from './packLevels.ts';
@@ -106,8 +107,9 @@ export function describePack(given: {
   scale: WordScale;
   measure: RenderingMeasure;
   proof: VectorProof;
+  reduction: MeasuredReduction | null;
 }) {
-  const { document, profile, state, scale, measure, proof } = given;
+  const { document, profile, state, scale, measure, proof, reduction } = given;
   const levels = packLevels(measure, scale, proof);
   const baseName = baseNameFor(document, profile, state, proof.sha256);
   const card = levelCard(document, profile, levels);
@@ -146,6 +148,7 @@ export function describePack(given: {
     proof,
     payloads,
     cardText,
+    reduction,
   };
   const { before, after } = sideEntries(input);
   const safety = [...(state === 'draft' ? [stateWords] : []), ...points.map(({ text }) => text), ...notices];
@@ -171,6 +174,7 @@ export function describePack(given: {
         payloads,
         files,
         safety,
+        reduction,
       }),
   };
 }
@@ -217,7 +221,8 @@ async function make(request: PackRequest, zip: ZipFile, pool: WorkPool): Promise
   requireProof(proof, measure.stats.samples);
 
   const { onProgress: writing } = step('writing');
-  const pack = describePack({ document, profile, state, scale, measure, proof });
+  const reduction = await measureReduction(content, signal);
+  const pack = describePack({ document, profile, state, scale, measure, proof, reduction });
   for (const [i, { name }] of pack.vectors.entries()) await zip.settle(rooms[i]!, name, proof.files[i]!.crc32);
   // The zip's own digest is begun while the other entries are made.
   const { fd } = zip.handle;

@@ -29,6 +29,8 @@ export interface ReadmeInput {
   payloadNames: string[];
   frequencyOffsetHz: number;
   saturatedWords: string | null;
+  /** Values as they are sent, where a lowered peak changed them. */
+  sentReferenceName: string | null;
 }
 
 /** Lines around the reader, so that a person and a test can cut it out. */
@@ -85,7 +87,7 @@ for r in range(${input.referenceRepeats}):
         at = r * step + m['symbols'][l]['usefulStartSample']
         a = np.fft.fft(x[at:at + M * N]) / (M * np.sqrt(N))
         found.append(a[k % (M * N)][rows[d['grid']['rowOfSymbol'][l]]])
-found, meant = np.concatenate(found), np.fromfile('reference.cf32', '<c8')
+found, meant = np.concatenate(found), np.fromfile('${input.sentReferenceName ?? 'reference.cf32'}', '<c8')
 evm = np.sqrt(np.sum(np.abs(found - meant) ** 2) / np.sum(np.abs(meant) ** 2))
 print('EVM %.2f dB over %d cells' % (20 * np.log10(evm), meant.size))
 ${readerEnds}`;
@@ -102,6 +104,11 @@ export function readmeText(input: ReadmeInput): string {
     ...input.payloadNames.map((name) => `  ${name}  bits of the stream's cells in fill order, most significant first`),
     `  reference.cf32  values of all cells that are not null, ${repeatsWords(input.referenceRepeats)}: symbols in order,`,
     '    subcarriers upwards, complex 32-bit floats, little-endian',
+    ...(input.sentReferenceName
+      ? [
+          `  ${input.sentReferenceName}  the same values as they are sent: the peak was lowered, and the reader compares with these`,
+        ]
+      : []),
     ...(input.cellsWritten
       ? ['  cells.csv  every cell that is not null: symbol, subcarrier, ink, stream, its first bit in the payload file']
       : []),

@@ -8,6 +8,7 @@ import type { ParseResult } from '@/lib/document/issues';
 import { synthVersion, vectorFiles, type BenchProfile, type WaveformDocument, type WordScale } from '@/lib/synth';
 import { createTally, describePack, manifestTextOf, scaleOf } from './makePack.ts';
 import { packKeyOf } from './manifest/manifest.ts';
+import { measureReduction } from './measureReduction.ts';
 import { measureRendering, type RenderingMeasure } from './measureRendering.ts';
 import { PackError, throwIfCancelled, toPackError, type PackErrorCode, type PackIssue } from './packError.ts';
 import type { PackState } from './packTypes.ts';
@@ -172,7 +173,8 @@ async function verify(handle: FileHandle, { signal, threads }: VerifyOptions): P
   findings.end();
 
   if (madeAgain) {
-    const again = describePack({ document, profile, state, scale, measure, proof });
+    const reduction = await measureReduction(document.content, signal);
+    const again = describePack({ document, profile, state, scale, measure, proof, reduction });
     again.vectors.forEach((meant, i) => {
       const { name: found } = vectors[i]!;
       if (found !== meant.name) findings.add(found, `should be named ${meant.name}`);

@@ -1,5 +1,3 @@
-import { CSV_CELL } from './layout';
-
 const MINUS = 0x2d;
 const PLUS = 0x2b;
 const DOT = 0x2e;
@@ -46,6 +44,3 @@ export function readCsvNumber(bytes: Uint8Array, at: number): number {
   const size = exponent >= 0 ? mantissa * TENS[Math.min(exponent, 79)]! : mantissa / TENS[Math.min(-exponent, 79)]!;
   return Math.fround(sign === MINUS ? -size : size);
 }
-
-/** Length of a number alone; a comma or a line feed fills the cell. */
-export const CSV_NUMBER = CSV_CELL - 1;

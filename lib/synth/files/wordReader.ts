@@ -1,6 +1,6 @@
 import { demand } from '../errors';
 import type { BenchContent } from '../types';
-import { bytesPerWord, isLowByteFirst, offsetOf, shiftBits } from './layout';
+import { bytesPerWord, isHostLittleEndian, isLowByteFirst, offsetOf, shiftBits } from './layout';
 
 /** The words of a vector (see createVectorGather) back to numbers and samples. */
 export interface WordReader {
@@ -26,6 +26,18 @@ export function createWordReader(bench: BenchContent): WordReader {
   const shift = shiftBits(bench);
   const offset = offsetOf(bench);
 
+  const isHost = isLittle === isHostLittleEndian && offset === 0;
+
+  /** Numbers that lie as this machine keeps them, copied at once; false for others. */
+  function copyStored(bytes: Uint8Array, at: number, numbers: number, words: Float64Array): boolean {
+    const place = bytes.byteOffset + at;
+    if (!isHost || place % width !== 0 || bench.word === 'int8') return false;
+    if (bench.word === 'float32') words.set(new Float32Array(bytes.buffer, place, numbers));
+    else if (shift === 0) words.set(new Int16Array(bytes.buffer, place, numbers));
+    else return false;
+    return true;
+  }
+
   function readStored(view: DataView, numbers: number, words: Float64Array): void {
     if (bench.word === 'float32') for (let i = 0; i < numbers; i++) words[i] = view.getFloat32(4 * i, isLittle);
     else if (bench.word === 'int8') {
@@ -37,7 +49,8 @@ export function createWordReader(bench: BenchContent): WordReader {
   function readWords(bytes: Uint8Array, at: number, count: number, words: Float64Array): void {
     demand(bytes.length - at >= count * size, 'buffer_too_small', 'Fewer bytes than samples.');
     demand(words.length >= 2 * count, 'buffer_too_small', 'No room for the words.');
-    readStored(new DataView(bytes.buffer, bytes.byteOffset + at, count * size), 2 * count, words);
+    if (!copyStored(bytes, at, 2 * count, words))
+      readStored(new DataView(bytes.buffer, bytes.byteOffset + at, count * size), 2 * count, words);
     if (bench.swapIq) {
       for (let i = 0; i < 2 * count; i += 2) {
         const first = words[i]!;

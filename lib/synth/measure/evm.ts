@@ -22,6 +22,8 @@ export interface EvmOptions {
    * per position. 0: the fit took all of it, so nothing was measured and the figure is null.
    */
   kept?: { all: number; byInk: ArrayLike<number>; bySubcarrier: ArrayLike<number> };
+  /** False leaves the figures per subcarrier out: an empty list. */
+  bySubcarrier?: boolean;
   /** Words for the recipe. */
   cellsWords?: string;
   dftWindow?: string;
@@ -70,45 +72,76 @@ export function createEvmMeter(options: EvmOptions): EvmMeter {
   const all = new Float64Array(PLACES);
   const byInk = new Float64Array(PLACES * inkCount);
   const bySymbol = new Float64Array(PLACES * symbolCount);
-  const bySubcarrier = new Float64Array(PLACES * fftSize);
+  const bySubcarrier = new Float64Array(options.bySubcarrier === false ? 0 : PLACES * fftSize);
   let frames = 0;
 
-  const put = (into: Float64Array, at: number, error: number, re: number, im: number, meant: number): void => {
+  const put = (
+    into: Float64Array,
+    at: number,
+    error: number,
+    re: number,
+    im: number,
+    meant: number,
+    cells: number,
+  ): void => {
     into[at] = into[at]! + error;
     into[at + 1] = into[at + 1]! + re;
     into[at + 2] = into[at + 2]! + im;
     into[at + 3] = into[at + 3]! + meant;
-    into[at + 4] = into[at + 4]! + 1;
+    into[at + 4] = into[at + 4]! + cells;
   };
+
+  /** Cells first…end−1 of a symbol, all of one ink: the groups take their sums at the end. */
+  function addRun(
+    symbol: number,
+    ink: number,
+    first: number,
+    end: number,
+    found: Float64Array,
+    meant: Float64Array,
+  ): void {
+    const hasSubcarriers = bySubcarrier.length > 0;
+    let [error, re, im, size, cells] = [0, 0, 0, 0, 0];
+    for (let p = first; p < end; p++) {
+      const xRe = meant[2 * p]!;
+      const xIm = meant[2 * p + 1]!;
+      let yRe = found[2 * p]!;
+      let yIm = found[2 * p + 1]!;
+      if (taps) {
+        const hRe = taps[2 * p]!;
+        const hIm = taps[2 * p + 1]!;
+        const power = hRe * hRe + hIm * hIm;
+        if (power === 0) continue;
+        const turned = (yRe * hRe + yIm * hIm) / power;
+        yIm = (yIm * hRe - yRe * hIm) / power;
+        yRe = turned;
+      }
+      const dRe = yRe - xRe;
+      const dIm = yIm - xIm;
+      const ownError = dRe * dRe + dIm * dIm;
+      const ownRe = dRe * xRe + dIm * xIm;
+      const ownIm = dIm * xRe - dRe * xIm;
+      const ownSize = xRe * xRe + xIm * xIm;
+      error += ownError;
+      re += ownRe;
+      im += ownIm;
+      size += ownSize;
+      cells++;
+      if (hasSubcarriers) put(bySubcarrier, PLACES * p, ownError, ownRe, ownIm, ownSize, 1);
+    }
+    put(all, 0, error, re, im, size, cells);
+    put(byInk, PLACES * ink, error, re, im, size, cells);
+    put(bySymbol, PLACES * symbol, error, re, im, size, cells);
+  }
 
   return {
     add(symbol, row, found, meant) {
-      for (let p = 0; p < fftSize; p++) {
+      for (let p = 0; p < fftSize;) {
         const ink = row[p]!;
-        if (isNamed[ink] === 0) continue;
-        const xRe = meant[2 * p]!;
-        const xIm = meant[2 * p + 1]!;
-        let yRe = found[2 * p]!;
-        let yIm = found[2 * p + 1]!;
-        if (taps) {
-          const hRe = taps[2 * p]!;
-          const hIm = taps[2 * p + 1]!;
-          const size = hRe * hRe + hIm * hIm;
-          if (size === 0) continue;
-          const re = (yRe * hRe + yIm * hIm) / size;
-          yIm = (yIm * hRe - yRe * hIm) / size;
-          yRe = re;
-        }
-        const dRe = yRe - xRe;
-        const dIm = yIm - xIm;
-        const error = dRe * dRe + dIm * dIm;
-        const re = dRe * xRe + dIm * xIm;
-        const im = dIm * xRe - dRe * xIm;
-        const size = xRe * xRe + xIm * xIm;
-        put(all, 0, error, re, im, size);
-        put(byInk, PLACES * ink, error, re, im, size);
-        put(bySymbol, PLACES * symbol, error, re, im, size);
-        put(bySubcarrier, PLACES * p, error, re, im, size);
+        let end = p + 1;
+        while (end < fftSize && row[end] === ink) end++;
+        if (isNamed[ink] === 1) addRun(symbol, ink, p, end, found, meant);
+        p = end;
       }
     },
     endFrame() {

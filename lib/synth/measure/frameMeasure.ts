@@ -2,6 +2,7 @@ import { log10 } from '../math/exponential';
 import { createCellValues } from '../synthesize/cellValues';
 import { frameLayout, interpolationOf } from '../synthesize/layout';
 import { createSynthesis, powerBefore } from '../synthesize/synthesis';
+import { addSamples, closePart, LEVEL_STATE_LENGTH } from '../synthesize/levelState';
 import { stretchEnd } from '../synthesize/stretches';
 import type { FrameLayout, RenderOptions } from '../synthesize/types';
 import type { WaveformContent } from '../types';
@@ -58,6 +59,11 @@ function add(into: Running, value: number): void {
 
 type FrameOptions = Pick<RenderOptions, 'cells' | 'engine' | 'keepBytes' | 'powerBefore'>;
 
+interface StretchOptions extends FrameOptions {
+  /** False leaves the histogram, and what follows from it, empty. */
+  counts?: boolean;
+}
+
 /** What is rendered for a frame's measure. */
 interface FramePlan {
   interpolation: number;
@@ -109,8 +115,11 @@ export interface FrameStretches {
   measure(from: number, end: number): FrameStretch;
 }
 
-/** Stretches of a document's measure; together, in order, they make createFrameSum's figures whatever the cuts. */
-export function createFrameStretches(content: WaveformContent, options: FrameOptions = {}): FrameStretches {
+/**
+ * Stretches of a document's measure; together, in order, they make createFrameSum's figures whatever the cuts. Without `counts` the
+ * samples stay in the engine and are only summed up: the same powers and peaks, no histogram.
+ */
+export function createFrameStretches(content: WaveformContent, options: StretchOptions = {}): FrameStretches {
   const plan = planFrame(content, options);
   // of the whole content: the plan's may have fewer repeats
   const before = powerBefore(content, options);
@@ -120,21 +129,50 @@ export function createFrameStretches(content: WaveformContent, options: FrameOpt
     powerBefore: before,
   });
   const { layout } = synthesis;
-  const block = new Float64Array(2 * Math.min(BLOCK_SAMPLES, Math.max(1, layout.samples)));
+  const { counts: isCounting = true } = options;
+  const block = new Float64Array(isCounting ? 2 * BLOCK_SAMPLES : 0);
+
+  /** The next `samples` samples into a level state, and their powers into `counts`, `times` each. */
+  function takeNext(state: Float64Array, samples: number, counts: Float64Array, times: number): void {
+    const collector = { state, add: (data: Float64Array, at: number, n: number) => addSamples(state, data, at, n) };
+    for (let left = samples; left > 0;) {
+      if (!isCounting) {
+        left -= synthesis.collect(collector, left);
+        continue;
+      }
+      const count = synthesis.read(left < BLOCK_SAMPLES ? block.subarray(0, 2 * left) : block);
+      addSamples(state, block, 0, count);
+      countPowers(block, count, counts, times);
+      left -= count;
+    }
+  }
+
   return {
     samples: layout.samples,
     endOf: (from, most) => stretchEnd(layout, from, most),
     measure(from, end) {
       const meter = createStretchMeter(layout, plan, from);
-      if (synthesis.position !== from) synthesis.seek(from);
       for (let at = from; at < end;) {
-        const count = synthesis.read(end - at < block.length / 2 ? block.subarray(0, 2 * (end - at)) : block);
-        meter.take(block, count);
-        at += count;
+        const segment = meter.next();
+        if (segment.state !== null && segment.end > at) {
+          if (synthesis.position !== at) synthesis.seek(at);
+          takeNext(segment.state, segment.end - at, meter.counts, segment.times);
+        }
+        at = Math.min(end, segment.end);
+        if (at === segment.end) meter.leave();
       }
       return meter.stretch();
     },
   };
+}
+
+function countPowers(block: Float64Array, count: number, counts: Float64Array, times: number): void {
+  for (let i = 0; i < count; i++) {
+    const re = block[2 * i]!;
+    const im = block[2 * i + 1]!;
+    const bin = binOfPower(re * re + im * im);
+    counts[bin] = counts[bin]! + times;
+  }
 }
 
 function createStretchMeter(layout: FrameLayout, { content, weightOfMiddle }: FramePlan, from: number) {
@@ -143,11 +181,8 @@ function createStretchMeter(layout: FrameLayout, { content, weightOfMiddle }: Fr
   const spans: number[] = [];
   const stretch = { counted: 0, peakPower: 0, peakSlot: 0, peakAt: 0 };
   const isWeighted = weightOfMiddle !== 1;
-  const before: Running = { high: 0, low: 0 };
-  const useful: Running = { high: 0, low: 0 };
-  let usefulPeak = 0;
-  let spanSamples = 0;
-  let position = from;
+  const prefix = new Float64Array(LEVEL_STATE_LENGTH); // or the suffix behind the last symbol
+  const useful = new Float64Array(LEVEL_STATE_LENGTH);
   let repeat = Math.min(layout.repeats - 1, Math.floor(from / layout.repeatSamples));
   // Segments of a repeat in order: for each symbol its prefix and its useful part, then the last suffix, then silence.
   let segment = segmentAt(from - repeat * layout.repeatSamples);
@@ -165,6 +200,7 @@ function createStretchMeter(layout: FrameLayout, { content, weightOfMiddle }: Fr
   }
 
   const weight = (): number => (isWeighted && repeat === 1 ? weightOfMiddle : 1);
+  const isUseful = (): boolean => segment < 2 * symbols && segment % 2 === 1;
   const segmentEnd = (): number => {
     const origin = repeat * layout.repeatSamples;
     if (segment < 2 * symbols) {
@@ -177,73 +213,48 @@ function createStretchMeter(layout: FrameLayout, { content, weightOfMiddle }: Fr
     return last ? layout.samples : origin + layout.repeatSamples;
   };
 
-  function closeSpan(slot: number): void {
-    const energy = useful.high + useful.low;
-    add(before, useful.high);
-    add(before, useful.low);
-    spans.push(slot, weight(), before.high + before.low, spanSamples, energy, usefulPeak);
-    before.high = before.low = useful.high = useful.low = usefulPeak = spanSamples = 0;
-  }
-
-  /** Where the largest power in the file so far, block[i], stands. */
-  function notePeak(power: number, i: number): void {
-    const symbol = Math.min(segment >> 1, symbols - 1);
-    stretch.peakPower = power;
-    stretch.peakSlot = (isWeighted && repeat === 2 ? content.timing.repeats - 1 : repeat) * symbols + symbol;
-    stretch.peakAt = position + i - repeat * layout.repeatSamples - layout.symbolStarts[symbol]!;
-  }
-
-  /** Samples at…end−1 of the block, all in one segment, to one of the sums. */
-  function sumUp(block: Float64Array, at: number, end: number, into: Running): void {
-    const times = weight();
-    let { high, low } = into;
-    let peak = 0;
-    let peakAt = at;
-    for (let i = at; i < end; i++) {
-      const re = block[2 * i]!;
-      const im = block[2 * i + 1]!;
-      const power = re * re + im * im;
-      const next = high + power;
-      low += high >= power ? high - next + power : power - next + high;
-      high = next;
-      if (power > peak) {
-        peak = power;
-        peakAt = i;
-      }
-      const bin = binOfPower(power);
-      counts[bin] = counts[bin]! + times;
+  /** Ends a segment's state; a peak in it is told if it is the largest so far. `inSymbol`: samples of the symbol before it. */
+  function closeState(state: Float64Array, symbol: number, inSymbol: number): number {
+    closePart(state);
+    const peak = state[10]!;
+    if (peak > stretch.peakPower) {
+      stretch.peakPower = peak;
+      stretch.peakSlot = (isWeighted && repeat === 2 ? content.timing.repeats - 1 : repeat) * symbols + symbol;
+      stretch.peakAt = inSymbol + state[11]!;
     }
-    into.high = high;
-    into.low = low;
-    if (into === useful && peak > usefulPeak) usefulPeak = peak;
-    if (peak > stretch.peakPower) notePeak(peak, peakAt);
-    stretch.counted += times * (end - at);
-    spanSamples += end - at;
+    return state[14]! + state[15]!;
   }
 
-  /** Goes on to the next segment once the stretch has reached this one's end. */
-  function leaveSegment(): void {
-    if (segment < 2 * symbols && segment % 2 === 1) closeSpan(repeat * symbols + (segment >> 1));
-    if (segment === 2 * symbols) closeSpan(-1);
-    segment++;
-    if (segment > 2 * symbols + 1) {
-      segment = 0;
-      repeat++;
-    }
+  function closeSpan(slot: number, energy: number, usefulEnergy: number): void {
+    const samples = prefix[9]! + useful[9]!;
+    spans.push(slot, weight(), energy + usefulEnergy, samples, usefulEnergy, useful[10]!);
+    stretch.counted += weight() * samples;
+    prefix.fill(0);
+    useful.fill(0);
   }
 
   return {
-    take(block: Float64Array, count: number): void {
-      let at = 0;
-      while (repeat < layout.repeats) {
-        const end = Math.min(count, segmentEnd() - position);
-        const isUseful = segment < 2 * symbols && segment % 2 === 1;
-        if (segment <= 2 * symbols) sumUp(block, at, end, isUseful ? useful : before);
-        at = end;
-        if (position + at < segmentEnd()) break;
-        leaveSegment();
+    counts,
+    /** The present segment: where it ends, what its samples go into (null in silence), how often it counts. */
+    next: () => ({
+      end: segmentEnd(),
+      state: segment > 2 * symbols ? null : isUseful() ? useful : prefix,
+      times: weight(),
+    }),
+    /** Goes on to the next segment: this one's end is reached. */
+    leave(): void {
+      if (isUseful()) {
+        const symbol = segment >> 1;
+        const energy = closeState(prefix, symbol, 0);
+        closeSpan(repeat * symbols + symbol, energy, closeState(useful, symbol, layout.prefixes[symbol]!));
+      } else if (segment === 2 * symbols) {
+        closeSpan(-1, closeState(prefix, symbols - 1, layout.frameSamples - layout.symbolStarts[symbols - 1]!), 0);
       }
-      position += count;
+      segment++;
+      if (segment > 2 * symbols + 1) {
+        segment = 0;
+        repeat++;
+      }
     },
     stretch: (): FrameStretch => ({ ...stretch, spans: Float64Array.from(spans), counts }),
   };

@@ -286,6 +286,14 @@ export function createPlacedValues(
     readBits(stream, repeat, symbol, out) {
       const window = windowOf(stream);
       let written = 0;
+      if (streams[stream]!.fill === 'running') {
+        // the cells take them as they come
+        const count = counts.bitsBefore(symbol + 1, stream) - counts.bitsBefore(symbol, stream);
+        const first = firstBitOf(stream, repeat, symbol);
+        const from = window.hold(first, first + count);
+        for (let i = from; i < from + count; i++) out[written++] = (window.words[i >>> 5]! >>> (31 - (i & 31))) & 1;
+        return written;
+      }
       eachPayloadCell(stream, repeat, symbol, (_p, firstBit, bits) => {
         const offset = window.hold(firstBit, firstBit + bits);
         for (let i = offset; i < offset + bits; i++) out[written++] = (window.words[i >>> 5]! >>> (31 - (i & 31))) & 1;

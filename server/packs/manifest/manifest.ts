@@ -20,6 +20,7 @@ import {
   type WordScale,
 } from '@/lib/synth';
 import type { PayloadCount } from '../entryChunks.ts';
+import type { MeasuredReduction } from '../measureReduction.ts';
 import type { RenderingMeasure } from '../measureRendering.ts';
 import type { PackState } from '../packTypes.ts';
 import { packVersion } from '../packVersion.ts';
@@ -48,6 +49,7 @@ export interface ManifestInput {
   payloads: Map<number, PayloadCount>;
   files: Manifest['files'];
   safety: string[];
+  reduction: MeasuredReduction | null;
 }
 
 /** Names the bytes of a pack before it is made: equal inputs have been rendered already. */
@@ -95,7 +97,7 @@ function describePapr({ frame }: RenderingMeasure): Manifest['papr'] {
   };
 }
 
-function describeProof({ proof, document }: ManifestInput): Manifest['proof'] {
+function describeProof({ proof, document, reduction }: ManifestInput): Manifest['proof'] {
   const { tray } = document.content;
   return {
     samplesRead: proof.samplesRead,
@@ -103,7 +105,7 @@ function describeProof({ proof, document }: ManifestInput): Manifest['proof'] {
     wordsDifferent: proof.wordsDifferent,
     ...evmOf(proof.evm.all),
     recipe: {
-      cells: `${proof.evm.recipe.cells}, ${proof.evm.recipe.frames} frames pooled by power`,
+      cells: `${proof.evm.recipe.cells}${reduction === null ? '' : ', as they are sent after peak reduction'}, ${proof.evm.recipe.frames} frames pooled by power`,
       channel: 'none: no gain, phase or channel was fitted',
       phaseTracking: 'none',
       window: 'the useful part of each symbol, from its first sample; timing known',
@@ -135,6 +137,21 @@ function describeLevels({ document, proof, levels }: ManifestInput): Manifest['l
     dcDbfs: dc === 0 ? null : 20 * log10(dc),
     saturatedComponents: proof.saturated.components,
     saturatedSamples: proof.saturated.samples,
+  };
+}
+
+/** What the lowered peak reached and cost: dB over the frame's mean before, and values sent against values meant, of the data cells. */
+function describeReduction({ reduction }: ManifestInput): Manifest['peakReduction'] {
+  if (reduction === null) return null;
+  const { kind, targetPaprDb, reachedPaprDb, passes, evm, evmGainFitted, meanPowerChangeDb } = reduction.report;
+  return {
+    kind,
+    targetPaprDb,
+    reachedPaprDb: reachedPaprDb ?? 0,
+    passes,
+    evmDb: finiteOrNull(evm.all.db),
+    evmGainFittedDb: finiteOrNull(evmGainFitted.all.db),
+    meanPowerChangeDb: meanPowerChangeDb ?? 0,
   };
 }
 
@@ -170,7 +187,7 @@ export function makeManifest(input: ManifestInput): Manifest {
     streams: describeStreams(input.values, input.payloads),
     markers: describeMarkers(content),
     proof: describeProof(input),
-    peakReduction: null,
+    peakReduction: describeReduction(input),
     safety: input.safety,
   } satisfies Manifest);
 }

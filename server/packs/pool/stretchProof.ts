@@ -1,8 +1,8 @@
 import {
   createCellPower,
-  createCellValues,
   createDemodulator,
   createEvmMeter,
+  createSentValues,
   createVectorForm,
   createVectorGather,
   createWordReader,
@@ -30,6 +30,7 @@ export const createProofMeter = (content: WaveformContent): EvmMeter =>
     inkCount: content.tray.length,
     inks: comparedInksOf(content),
     estimate: 'none',
+    bySubcarrier: false,
     cellsWords: 'all cells of data, pilot and tone inks',
   });
 
@@ -51,9 +52,15 @@ export function countDifferent(a: Uint8Array, b: Uint8Array, wordBytes: number):
  * Reads a stretch of a finished vector from its bytes, compares every word with a second synthesis and demodulates it with known timing.
  * Nothing of the first pass is used but the scale, so that a mistake in writing cannot hide itself.
  */
-export function createStretchProof(content: WaveformContent, bench: BenchContent, synthesis: Synthesis) {
+export function createStretchProof(
+  content: WaveformContent,
+  bench: BenchContent,
+  synthesis: Synthesis,
+  powerBefore: () => number,
+) {
   const { fftSize, symbolCount } = content;
-  const values = createCellValues(content);
+  // what a lowered peak sent, so that a wrong word shows as one and not as the reduction's own cost
+  const values = createSentValues(content, { powerBefore });
   const meant = new Float64Array(2 * fftSize);
   const form = createVectorForm(content, bench);
   const gather = createVectorGather(bench);

@@ -33,8 +33,8 @@ export function createWorkshop(input: WorkInput) {
     renderings.set(oversampling, rendering);
     return rendering;
   };
-  const frame = lazily(() => createFrameStretches(content, options));
-  const proof = lazily(() => createStretchProof(content, bench, renderingAt(content.oversampling)));
+  const frame = lazily(() => createFrameStretches(content, { ...options, counts: false }));
+  const proof = lazily(() => createStretchProof(content, bench, renderingAt(content.oversampling), powerBefore));
   const digests = new Map<string, Hash>();
 
   const work: { [Kind in WorkTask['kind']]: (task: TaskOf<Kind>) => WorkResults[Kind] } = {

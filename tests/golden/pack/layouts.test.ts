@@ -157,7 +157,7 @@ test.each([
   const file = path.join(folder, name, pack.vectorName);
   const wav = path.join(folder, `${name}.wav`);
   execFileSync('cp', [file, wav]);
-  const info = (flag: string) => execFileSync('soxi', [flag, wav], { encoding: 'utf8' }).trim();
+  const info = (flag: string) => execFileSync('sox', ['--i', flag, wav], { encoding: 'utf8' }).trim();
   expect(['-c', '-s', '-r'].map((flag) => Number(info(flag)))).toEqual([
     2,
     found.get(name)!.samples,

@@ -54,7 +54,8 @@ export function PeakCcdf({ now, after }: { now: CcdfCurve; after: CcdfCurve | nu
         <g key={decade}>
           <line x1={LEFT} x2={WIDTH - 2} y1={y(10 ** -decade)} y2={y(10 ** -decade)} stroke={color.plot.grid} />
           <text {...AXIS} x={LEFT - 4} y={y(10 ** -decade) + 4} textAnchor="end">
-            {`1e−${decade}`}
+            10
+            <tspan dy={-4} fontSize={8}>{`−${decade}`}</tspan>
           </text>
         </g>
       ))}

@@ -3,6 +3,7 @@ import { Button } from '@/components/ui/Button';
 import { Progress } from '@/components/ui/Progress';
 import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
+import { useBreakpoint } from '@/components/ui/useBreakpoint';
 import { formatInteger, formatNumber } from '@/lib/drawing/quantities';
 import type { PeakProgress } from '@/lib/editor/live/peakJob';
 import type { Settings } from '@/lib/editor/types';
@@ -11,6 +12,7 @@ import { costLine, verdictOf, WAY_NAMES, type WayId } from './peakWords';
 import type { WayState } from './usePeakWays';
 
 const AXIS_PX = 250;
+const PHONE_AXIS_PX = 212;
 
 /** "120 of 200 tried, the best 9.70 dB". */
 export function progressWords({ done, total, bestPaprDb, unit }: PeakProgress): string {
@@ -38,6 +40,7 @@ export function PeakWay(props: {
   const { way, state, settings, nowDb, limitDb, axis, isChosen, isTabbable, missing } = props;
   const { onChoose, onStep, onCancel, register } = props;
   const { result, progress, isRunning } = state;
+  const axisPx = useBreakpoint() === 'wide' ? AXIS_PX : PHONE_AXIS_PX;
   const reachedDb = result?.figures.paprDb ?? null;
   const verdict = reachedDb === null || missing ? null : verdictOf(reachedDb, limitDb);
   const line = missing ?? lineOf(state, settings);
@@ -65,13 +68,7 @@ export function PeakWay(props: {
           <Text variant="bodyStrong" tone={isChosen ? 'onSelected' : 'strong'}>
             {WAY_NAMES[way]}
           </Text>
-          <PeakAxis
-            widthPx={AXIS_PX}
-            axis={axis}
-            nowDb={nowDb}
-            afterDb={missing ? null : reachedDb}
-            limitDb={limitDb}
-          />
+          <PeakAxis widthPx={axisPx} axis={axis} nowDb={nowDb} afterDb={missing ? null : reachedDb} limitDb={limitDb} />
         </View>
         <View style={styles.right}>
           {verdict && reachedDb !== null ? (

@@ -64,6 +64,13 @@ test("a frame's figures do not depend on the cuts, nor on who measures which str
       const sum = createFrameSum(content);
       for (const one of found.reverse()) sum.add(one);
       expect(sum.result()).toEqual(whole.result());
+
+      const plain = createFrameStretches(content, { engine, counts: false });
+      const bare = createFrameSum(content);
+      for (const [at, end] of cuts.reverse()) bare.add(plain.measure(at, end));
+      const { histogram, sampleCcdf, ...rest } = bare.result();
+      expect(whole.result()).toMatchObject(rest);
+      expect(sampleCcdf.probability.length + histogram.counts.length).toBeGreaterThan(0);
     }),
     { numRuns: 30, seed: 4 },
   );
