@@ -3,12 +3,22 @@ import type { Synthesis } from '../synthesize/types';
 
 const BLOCK_SAMPLES = 32768;
 
+/** A mean taken a symbol at a time. */
+export interface MeanMeasuring {
+  readonly totalSteps: number;
+  readonly doneSteps: number;
+  /** One symbol on; false when nothing is left. */
+  step(): boolean;
+  /** Only whole after the last step. */
+  result(): number;
+}
+
 /**
  * Mean |x|² of a rendering over its symbols that are not silent, all repeats: prefixes, ramps and the suffix behind the last symbol in,
  * silent symbols, gap and pad out; 0 when all is silent. Reads the rendering from its first sample to its last. The repeat between
  * first and last counts `weightOfMiddle` times.
  */
-export function activeMeanPower(synthesis: Synthesis, weightOfMiddle = 1): number {
+export function createActiveMean(synthesis: Synthesis, weightOfMiddle = 1): MeanMeasuring {
   const { layout } = synthesis;
   const { symbolCount, symbolStarts, prefixes, usefulSamples, repeats, repeatSamples, frameSamples } = layout;
   const block = new Float64Array(2 * BLOCK_SAMPLES);
@@ -37,26 +47,35 @@ export function activeMeanPower(synthesis: Synthesis, weightOfMiddle = 1): numbe
     return sum.total();
   }
 
+  const totalSteps = repeats * symbolCount;
+  let done = 0;
   synthesis.rewind();
-  for (let repeat = 0; repeat < repeats; repeat++) {
-    const weight = repeat > 0 && repeat < repeats - 1 ? weightOfMiddle : 1;
-    const origin = repeat * repeatSamples;
-    let isLoud = false;
-    for (let symbol = 0; symbol < symbolCount; symbol++) {
+  return {
+    totalSteps,
+    get doneSteps() {
+      return done;
+    },
+    step() {
+      if (done === totalSteps) return false;
+      const symbol = done % symbolCount;
+      const repeat = (done - symbol) / symbolCount;
+      const weight = repeat > 0 && repeat < repeats - 1 ? weightOfMiddle : 1;
+      const origin = repeat * repeatSamples;
       const start = origin + symbolStarts[symbol]!;
       const useful = start + prefixes[symbol]!;
       const prefixEnergy = sumTo(start, useful);
       const usefulEnergy = sumTo(useful, useful + usefulSamples);
-      isLoud = usefulEnergy > 0;
-      if (!isLoud) continue;
+      done++;
+      if (usefulEnergy === 0) return done < totalSteps;
       energy.add(weight * (prefixEnergy + usefulEnergy));
       samples += weight * (prefixes[symbol]! + usefulSamples);
-    }
-    const end = repeat === repeats - 1 ? layout.lastActiveSamples : layout.activeSamples;
-    if (!isLoud || end === frameSamples) continue;
-    energy.add(weight * sumTo(origin + frameSamples, origin + end));
-    samples += weight * (end - frameSamples);
-  }
-  synthesis.rewind();
-  return samples === 0 ? 0 : energy.total() / samples;
+      const end = repeat === repeats - 1 ? layout.lastActiveSamples : layout.activeSamples;
+      if (symbol === symbolCount - 1 && end > frameSamples) {
+        energy.add(weight * sumTo(origin + frameSamples, origin + end));
+        samples += weight * (end - frameSamples);
+      }
+      return done < totalSteps;
+    },
+    result: () => (samples === 0 ? 0 : energy.total() / samples),
+  };
 }

@@ -3,7 +3,7 @@ import { dbAtProbability } from '../measure/ccdf';
 import { createFrameMeasure } from '../measure/frameMeasure';
 import { createWelch, occupiedBandwidth, spectralNotch, welchSegment } from '../measure/spectrum';
 import type { CcdfCurve } from '../measure/types';
-import { createSynthesis, powerBefore } from '../synthesize/synthesis';
+import { createMeanPowerBefore, createSynthesis } from '../synthesize/synthesis';
 import type { RenderOptions } from '../synthesize/types';
 import type { WaveformContent } from '../types';
 import { createReductionMeasure, type ReductionReport } from './reductionMeasure';
@@ -39,31 +39,42 @@ export interface FiguresMeasuring {
 /** Samples that the spectrum is taken of: a longer file by its beginning. */
 const SPECTRUM_SAMPLES_MOST = 262144;
 const BLOCK_SAMPLES = 8192;
+/** Parts are not opened before their turn: each one counts alike. */
+const PART_STEPS = 100;
+
+function lazily<Thing>(make: () => Thing): () => Thing {
+  let made: { thing: Thing } | null = null;
+  return () => (made ??= { thing: make() }).thing;
+}
 
 /** Every figure of a waveform's peak, in steps: the frame at M′, the reduction, the spectrum of the rendered samples. */
 export function createPeakMeasure(
   content: WaveformContent,
   options: Pick<RenderOptions, 'cells' | 'engine'> = {},
 ): FiguresMeasuring {
-  const shared = { ...options, powerBefore: powerBefore(content, options) };
-  const frame = createFrameMeasure(content, shared);
-  const reduction = createReductionMeasure(content, shared);
-  const spectrum = createSpectrumSteps(content, shared);
-  const parts = [frame, reduction, spectrum].filter((part) => part !== null);
-  const totalSteps = parts.reduce((sum, part) => sum + part.totalSteps, 0);
+  const shared: Pick<RenderOptions, 'cells' | 'engine' | 'powerBefore'> = { ...options };
+  const isReduced = content.peakReduction.kind !== 'none';
+  // what the reduction's target stands over comes first, in steps of its own; what renders is opened when it is there
+  const mean = isReduced ? createMeanPowerBefore(content, options) : null;
+  if (mean) shared.powerBefore = mean.result;
+  const frame = lazily(() => createFrameMeasure(content, shared));
+  const reduction = lazily(() => createReductionMeasure(content, shared));
+  const spectrum = lazily(() => createSpectrumSteps(content, shared));
+  const parts = [...(mean ? [() => mean, reduction] : []), frame, spectrum];
   let at = 0;
   return {
-    totalSteps,
+    totalSteps: PART_STEPS * parts.length,
     get doneSteps() {
-      return parts.reduce((sum, part) => sum + part.doneSteps, 0);
+      const part = parts[at]?.();
+      return PART_STEPS * at + (part ? Math.floor((PART_STEPS * part.doneSteps) / Math.max(1, part.totalSteps)) : 0);
     },
     step() {
-      const part = parts[at];
+      const part = parts[at]?.();
       if (part && !part.step()) at++;
       return at < parts.length;
     },
     result() {
-      const { power, symbolPaprDb, sampleCcdf } = frame.result();
+      const { power, symbolPaprDb, sampleCcdf } = frame().result();
       const isSilent = power.paprDb === null;
       return {
         paprDb: power.paprDb,
@@ -73,8 +84,8 @@ export function createPeakMeasure(
         sampleCcdf,
         atOneInHundredDb: isSilent ? null : dbAtProbability(sampleCcdf, 1e-2),
         atOneInThousandDb: isSilent ? null : dbAtProbability(sampleCcdf, 1e-3),
-        ...spectrum.result(),
-        reduction: reduction?.result() ?? null,
+        ...spectrum().result(),
+        reduction: reduction()?.result() ?? null,
       };
     },
   };

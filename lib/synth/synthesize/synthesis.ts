@@ -1,6 +1,6 @@
 import { demand } from '../errors';
 import type { WordWriter } from '../files/wordWriter';
-import { activeMeanPower } from '../peak/meanPower';
+import { createActiveMean, type MeanMeasuring } from '../peak/meanPower';
 import type { WaveformContent } from '../types';
 import { createPlacedValues } from './cellValues';
 import { createFrequencyOffset } from './frequencyOffset';
@@ -285,14 +285,14 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
 }
 
 /**
- * Mean |x|² of the content's frame on the interpolated waveform before any peak reduction: all repeats, prefixes, ramps and last suffixes
- * in, silent symbols, gap and pad out; 0 when nothing is painted. Where all repeats have the same values, the first, one between and the
- * last are rendered.
+ * Measures, a symbol at a time, the mean |x|² of the content's frame on the interpolated waveform before any peak reduction: all repeats,
+ * prefixes, ramps and last suffixes in, silent symbols, gap and pad out; 0 when nothing is painted. Where all repeats have the same
+ * values, the first, one between and the last are rendered.
  */
-export function meanPowerBefore(
+export function createMeanPowerBefore(
   content: WaveformContent,
   options: Pick<RenderOptions, 'cells' | 'engine'> = {},
-): number {
+): MeanMeasuring {
   const { timing } = content;
   const isShort = timing.repeats > 3 && createPlacedValues(content, options.cells, 1).isRepeatAlike;
   const before: WaveformContent = {
@@ -303,7 +303,17 @@ export function meanPowerBefore(
   };
   const { cells, engine } = options;
   const synthesis = createSynthesis(before, { cells, engine, oversampling: interpolationOf(content.oversampling) });
-  return activeMeanPower(synthesis, isShort ? timing.repeats - 2 : 1);
+  return createActiveMean(synthesis, isShort ? timing.repeats - 2 : 1);
+}
+
+/** The same at once. */
+export function meanPowerBefore(
+  content: WaveformContent,
+  options: Pick<RenderOptions, 'cells' | 'engine'> = {},
+): number {
+  const measuring = createMeanPowerBefore(content, options);
+  while (measuring.step());
+  return measuring.result();
 }
 
 /** What the options say, else meanPowerBefore, measured when it is first asked. */

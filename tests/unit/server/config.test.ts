@@ -41,6 +41,8 @@ it.each([
   [{ PUBLIC_URL: 'https://example.org/?a=1' }],
   [{ TRUST_PROXY: 'perhaps' }],
   [{ PACK_BYTES_MOST: '0' }],
+  [{ RENDER_WORKERS: '0' }],
+  [{ RENDER_WORKERS: 'all' }],
   [{ LOG_LEVEL: 'loud' }],
 ])('refuses %j', (env) => {
   expect(() => readConfig(env, root)).toThrow(StartRefused);

@@ -69,7 +69,7 @@ const lowBits = { count: 1, packing: 'lowBits', leastSamples: 1, stepSamples: 1 
 const cases: [string, number[], Partial<WaveformContent>, Partial<BenchContent>][] = [
   [
     'overlap in a loop, continued payload, markers in low bits',
-    [0, 1, 2, 4],
+    [1, 2, 4],
     { overlapSamples: 8, ...symbols(375), timing: timing(9), streams: continued, markers },
     { bits: 12, align: 'left', markers: lowBits },
   ],
@@ -97,6 +97,18 @@ const cases: [string, number[], Partial<WaveformContent>, Partial<BenchContent>]
     [0, 2],
     { overlapSamples: 4, timing: timing(1000, { mode: 'burst', gapSamples: 200 }) },
     { layout: 'split' },
+  ],
+  [
+    'lowered peaks',
+    [0, 2],
+    {
+      peakReduction: { kind: 'clipAndFilter', targetPaprDb: 6, iterations: 2 },
+      prefixSamples: [64],
+      ...symbols(24),
+      timing: timing(10),
+      streams: continued,
+    },
+    {},
   ],
   ['copies of text', [0, 2], { timing: timing(40) }, { word: 'float32', container: 'csv' }],
 ];
