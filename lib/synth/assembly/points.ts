@@ -1,14 +1,16 @@
 // Payload bits to constellation points.
 
 /**
- * Runs in memory, eight i32 each: packed words (most significant bit first), first bit in them, bits from cell to cell, bits
- * a cell, points (interleaved by bit word), where the first value goes, cells, and for turning constellations the parity
- * of the first cell (else -1): `points` then holds two for an even cell and two for an odd one.
+ * Runs in memory, nine i32 each: packed words (most significant bit first), first bit in them, bits from cell to cell, bits
+ * a cell, points (interleaved by bit word), where the first value goes, cells, for turning constellations the parity of the
+ * first cell (else -1): `points` then holds two for an even cell and two for an odd one; and how many bits on the same run
+ * of the next symbol begins. With isNext that one is mapped, and noted.
  */
-export function mapRuns(run: usize, count: i32): void {
-  for (let i = 0; i < count; i++, run += 32) {
+export function mapRuns(run: usize, count: i32, isNext: i32): void {
+  for (let i = 0; i < count; i++, run += 36) {
     const words = <usize>load<u32>(run);
-    const first = load<u32>(run, 4);
+    const first = load<u32>(run, 4) + (isNext ? load<u32>(run, 32) : 0);
+    store<u32>(run, first, 4);
     const step = load<u32>(run, 8);
     const bits = load<u32>(run, 12);
     const points = <usize>load<u32>(run, 16);

@@ -202,7 +202,16 @@ function saturatedWords(
   store<f64>(counts, load<f64>(counts, 8) + samples, 8);
 }
 
-/** Words of `count` samples that nothing holds at least and most; false where something lies outside. */
+/** Numbers near whole ones, the whole ones in their low 32 bits: re re im im of two samples in the words' order, twice. */
+@inline function packed(re: v128, im: v128, nextRe: v128, nextIm: v128): v128 {
+  const words = i16x8.narrow_i32x4_s(
+    v128.shuffle<i32>(re, im, 0, 2, 4, 6),
+    v128.shuffle<i32>(nextRe, nextIm, 0, 2, 4, 6),
+  );
+  return v128.shuffle<i16>(words, words, 0, 2, 1, 3, 4, 6, 5, 7);
+}
+
+/** Words of `count` samples that nothing holds at least and most; false where something may lie outside. */
 @inline function freeWords(
   at: usize, count: u32, to: usize, scale: f64, least: f64, most: f64, isOdd: bool,
 ): bool {
@@ -213,29 +222,50 @@ function saturatedWords(
     const nextRe = f64x2.mul(reals(at + 32, isOdd), gain), nextIm = f64x2.mul(imaginaries(at + 32, isOdd), gain);
     high = f64x2.pmax(high, f64x2.pmax(f64x2.pmax(re, im), f64x2.pmax(nextRe, nextIm)));
     low = f64x2.pmin(low, f64x2.pmin(f64x2.pmin(re, im), f64x2.pmin(nextRe, nextIm)));
-    const words = i16x8.narrow_i32x4_s(
-      v128.shuffle<i32>(f64x2.add(re, rounder), f64x2.add(im, rounder), 0, 2, 4, 6),
-      v128.shuffle<i32>(f64x2.add(nextRe, rounder), f64x2.add(nextIm, rounder), 0, 2, 4, 6),
-    );
-    v128.store(to, v128.shuffle<i16>(words, words, 0, 2, 1, 3, 4, 6, 5, 7));
+    v128.store(to, packed(
+      f64x2.add(re, rounder), f64x2.add(im, rounder), f64x2.add(nextRe, rounder), f64x2.add(nextIm, rounder),
+    ));
   }
   return max(f64x2.extract_lane(high, 0), f64x2.extract_lane(high, 1)) <= most &&
     min(f64x2.extract_lane(low, 0), f64x2.extract_lane(low, 1)) >= least;
 }
 
+/** As freeWords where every number is known to be below 2^31: the words themselves show what reaches an end. */
+@inline function boundedWords(
+  at: usize, count: u32, to: usize, scale: f64, least: f64, most: f64, isOdd: bool,
+): bool {
+  const gain = f64x2.splat(scale), rounder = f64x2.splat(ROUNDER);
+  let high = i16x8.splat(0), low = i16x8.splat(0);
+  for (const end = to + (<usize>count << 2); to < end; at += 64, to += 16) {
+    const words = packed(
+      f64x2.add(f64x2.mul(reals(at, isOdd), gain), rounder),
+      f64x2.add(f64x2.mul(imaginaries(at, isOdd), gain), rounder),
+      f64x2.add(f64x2.mul(reals(at + 32, isOdd), gain), rounder),
+      f64x2.add(f64x2.mul(imaginaries(at + 32, isOdd), gain), rounder),
+    );
+    high = i16x8.max_s(high, words);
+    low = i16x8.min_s(low, words);
+    v128.store(to, words);
+  }
+  const reached = v128.or(i16x8.ge_s(high, i16x8.splat(<i16>most)), i16x8.le_s(low, i16x8.splat(<i16>least)));
+  return !v128.any_true(reached);
+}
+
 /**
  * Samples from…from+count−1 of a row times scale as 16-bit words, rounded half to even and saturated at least and most, two
- * words a sample. Reads and writes up to 3 samples more. What saturated is added to the counts.
+ * words a sample. Reads and writes up to 3 samples more. What saturated is added to the counts. `isBounded`: no number times
+ * scale reaches 2^31.
  */
 export function integerWords(
-  row: usize, from: u32, count: u32, to: usize, scale: f64, least: f64, most: f64, counts: usize,
+  row: usize, from: u32, count: u32, to: usize, scale: f64, least: f64, most: f64, counts: usize, isBounded: i32,
 ): void {
   while (count > 0) {
     const part = min(count, PART);
     const at = row + ((<usize>(from >> 1)) << 5);
-    const isInside = from & 1
-      ? freeWords(at, part, to, scale, least, most, true)
-      : freeWords(at, part, to, scale, least, most, false);
+    let isInside: bool;
+    if (from & 1) isInside = freeWords(at, part, to, scale, least, most, true);
+    else if (isBounded) isInside = boundedWords(at, part, to, scale, least, most, false);
+    else isInside = freeWords(at, part, to, scale, least, most, false);
     if (!isInside) saturatedWords(row, from, part, to, scale, least, most, counts);
     from += part;
     count -= part;

@@ -8,11 +8,14 @@ export interface EngineExports {
    * which only 0…low−1 and size−high…size−1 may differ from 0.
    */
   transform(plan: number, from: number, to: number, low: number, high: number): void;
-  /** Puts `count` runs of payload cells on their points. */
-  mapRuns(runs: number, count: number): void;
+  /** Puts `count` runs of payload cells on their points; with isNext (1, else 0) those of the next symbol, which follow. */
+  mapRuns(runs: number, count: number, isNext: number): void;
   /** Adds samples from…from+count−1 of a row of pairs to a level state. */
   measure(state: number, row: number, from: number, count: number): void;
-  /** Those samples as 16-bit words; adds to the two counts (components, samples). Writes up to 3 samples' words more. */
+  /**
+   * Those samples as 16-bit words; adds to the two counts (components, samples). Writes up to 3 samples' words more. isBounded (1,
+   * else 0): no component times scale reaches 2^31.
+   */
   integerWords(
     row: number,
     from: number,
@@ -22,6 +25,7 @@ export interface EngineExports {
     least: number,
     most: number,
     counts: number,
+    isBounded: number,
   ): void;
   /** Those samples as single precision numbers; adds to the two counts what lies beyond ±1. */
   floatWords(row: number, from: number, count: number, to: number, scale: number, counts: number): void;

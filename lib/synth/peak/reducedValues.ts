@@ -26,6 +26,7 @@ export function createReducedValues(
     cells: meant.cells,
     inks: meant.inks,
     rowOf: () => -1,
+    isSteadyRow: () => false,
     painted: { first: 0, end: fftSize },
     writePlaced(repeat, symbol, out, { split, low, high }) {
       writeReduced(repeat, symbol);

@@ -9,6 +9,8 @@ export interface BitWindow {
   words: Uint32Array;
   /** Another number than before says that `words` changed. */
   version: number;
+  /** Bits that may be asked for without a change of `words`: those before this one of them. */
+  readonly heldBits: number;
   /** Makes bits startBit…endBit−1 available and returns where in `words` (counted in bits) startBit lies. */
   hold(startBit: number, endBit: number): number;
 }
@@ -66,6 +68,9 @@ export function createBitWindow(source: BitSource): BitWindow {
   const window: BitWindow = {
     words: new Uint32Array(AHEAD_WORDS + 2),
     version: 0,
+    get heldBits() {
+      return 32 * (held - 1);
+    },
     hold(startBit, endBit) {
       const from = Math.floor(startBit / 32);
       const to = Math.floor((endBit + 31) / 32) + 1;

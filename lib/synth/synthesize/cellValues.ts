@@ -9,7 +9,7 @@ import { createCellCounts } from './counts';
 import { planInks, type InkPlan } from './inkPlan';
 import { frameLayout } from './layout';
 import { mapHalfTurningRun, mapRun } from './mapRun';
-import type { CellValues } from './types';
+import type { CellValues, FrameLayout } from './types';
 
 const ANCHOR_BITS = 12; // an anchored cell's place in its source: room for 4096-QAM
 
@@ -31,6 +31,11 @@ export interface PlacedValues extends CellValues {
   readonly inks: readonly InkPlan[];
   /** As CellRuns.rowOf: symbols of one row differ in no silent cell. */
   rowOf(symbol: number): number;
+  /**
+   * Whether all painted cells of a row are payload of running streams on points that do not turn: symbols of it that follow each
+   * other in a repeat differ in where their bits begin, each stream's behind the last one's.
+   */
+  isSteadyRow(row: number): boolean;
   /** Positions first…end−1 hold every cell that may not be silent. */
   readonly painted: { first: number; end: number };
   /** Writes the values of the symbol's cells that are not silent (payload cells: to `sink`, where given); all others must be 0. */
@@ -57,7 +62,9 @@ export function createPlacedValues(
   const openRuns = () => (givenCells === undefined ? runsOfGrid(content.grid) : runsOfCells(givenCells, fftSize));
   const cellRuns = openRuns();
   const counts = createCellCounts(openRuns(), symbolCount, inks); // of its own: it counts while runs are in use
-  const base = frameLayout({ ...content, oversampling: 1, timing: { ...timing, padSamples: 0 } }, 1);
+  let baseLayout: FrameLayout | null = null;
+  const atBaseRate = (): FrameLayout =>
+    (baseLayout ??= frameLayout({ ...content, oversampling: 1, timing: { ...timing, padSamples: 0 } }, 1));
   const windows: (BitWindow | undefined)[] = streams.map(() => undefined);
   const taken = new Float64Array(streams.length); // next bit of each running stream
   const inkTaken = new Float64Array(tray.length); // next `cell` number of each ink
@@ -158,6 +165,7 @@ export function createPlacedValues(
   /** Times e^{j2πk·s/N}, s the useful part's first base-rate sample in the file: the sine runs on. */
   function turnContinuously(repeat: number, symbol: number, p: number, count: number): void {
     roots ??= createRootsOfUnity(fftSize);
+    const base = atBaseRate();
     const place = repeat * base.repeatSamples + base.symbolStarts[symbol]! + base.prefixes[symbol]!;
     const start = place % fftSize;
     for (let i = 0; i < count; i++) {
@@ -229,7 +237,7 @@ export function createPlacedValues(
 
   function computeRepeatAlike(): boolean {
     if (timing.repeats === 1) return true;
-    const turn = base.repeatSamples % fftSize;
+    const turn = atBaseRate().repeatSamples % fftSize;
     const varies = inks.map((plan) => {
       if (plan.kind === 'data') return streams[plan.stream]!.acrossRepeats === 'continue' ? 1 : 0;
       return plan.kind === 'value' && plan.isContinuous && turn !== 0 ? 2 : 0;
@@ -247,8 +255,20 @@ export function createPlacedValues(
     return true;
   }
 
+  /** By row: whether it is steady, as far as it has been asked. */
+  const steady: (boolean | undefined)[] = [];
+  function isSteadyRow(row: number): boolean {
+    if (givenCells !== undefined) return false;
+    return (steady[row] ??= content.grid.rows[row]!.every((number, i) => {
+      const plan = i % 2 === 1 ? inks[number] : undefined;
+      if (plan === undefined || plan.kind === 'silent') return true;
+      return plan.kind === 'data' && !plan.isHalfTurning && streams[plan.stream]!.fill === 'running';
+    }));
+  }
+
   return {
     content,
+    isSteadyRow,
     get cells() {
       return cellsNow();
     },
@@ -295,10 +315,11 @@ export function createPlacedValues(
 function paintedPart(runs: CellRuns, { fftSize, grid }: WaveformContent, inks: readonly InkPlan[]) {
   let first = fftSize;
   let end = 0;
-  const seen = new Set<number>();
-  grid.rowOfSymbol.forEach((rowNumber, symbol) => {
-    if (seen.has(rowNumber)) return;
-    seen.add(rowNumber);
+  const seen = new Uint8Array(grid.rows.length);
+  for (let symbol = 0; symbol < grid.rowOfSymbol.length; symbol++) {
+    const rowNumber = grid.rowOfSymbol[symbol]!;
+    if (seen[rowNumber] === 1) continue;
+    seen[rowNumber] = 1;
     const row = runs.of(symbol);
     for (let i = 0, start = 0; i < row.length; i += 2) {
       if (inks[row[i + 1]!]?.kind !== 'silent') {
@@ -307,7 +328,7 @@ function paintedPart(runs: CellRuns, { fftSize, grid }: WaveformContent, inks: r
       }
       start = row[i]!;
     }
-  });
+  }
   return { first: Math.min(first, end), end };
 }
 

@@ -46,11 +46,46 @@ export function createEngineParts(plan: PartPlan, engine: SampleEngine, slots: n
     runs = 0;
     lastRow = -1;
     present = -1;
+    symbolsAhead = 0;
   }
 
   function flush(): void {
-    if (runs > 0) room.kernel.mapRuns(room.start + map.runs, runs);
+    if (runs > 0) room.kernel.mapRuns(room.start + map.runs, runs, 0);
     runs = 0;
+  }
+
+  // A steady row's runs stay listed: as long as the windows reach, the next symbol of it asks nobody for its values.
+  let listed = 0;
+  let nextRepeat = -1;
+  let nextSymbol = -1;
+  let symbolsAhead = 0;
+
+  function writeNext(row: number, repeat: number, symbol: number): boolean {
+    if (symbolsAhead <= 0 || row !== lastRow || symbol !== nextSymbol || repeat !== nextRepeat) return false;
+    room.kernel.mapRuns(room.start + map.runs, listed, 1);
+    symbolsAhead--;
+    nextSymbol++;
+    return true;
+  }
+
+  function write(row: number, repeat: number, symbol: number): void {
+    if (row < 0 || row !== lastRow) {
+      spectrum.fill(0, 0, 2 * low);
+      spectrum.fill(0, 2 * (size - high));
+      lastRow = row;
+    } // else each value of the symbol before is written over
+    const isSteady = row >= 0 && values.isSteadyRow(row);
+    symbolsAhead = isSteady ? Infinity : 0;
+    nextRepeat = repeat;
+    nextSymbol = symbol + 1;
+    values.writePlaced(repeat, symbol, spectrum, placement, sink);
+    listed = runs;
+    flush();
+  }
+
+  function flushEarly(): void {
+    if (runs > 0) symbolsAhead = 0; // the list is not whole any more
+    flush();
   }
 
   const sink: RunSink = {
@@ -60,11 +95,11 @@ export function createEngineParts(plan: PartPlan, engine: SampleEngine, slots: n
       const { start, integers } = room;
       const wordsAt = start + map.windows[data.stream]!;
       if (copied[data.stream] !== window.version) {
-        flush();
+        flushEarly();
         integers.set(window.words, wordsAt / 4);
         copied[data.stream] = window.version;
       }
-      if (runs === RUNS_MOST) flush();
+      if (runs === RUNS_MOST) flushEarly();
       const at = (start + map.runs) / 4 + RUN_NUMBERS * runs++;
       integers[at] = wordsAt;
       integers[at + 1] = offset;
@@ -74,6 +109,10 @@ export function createEngineParts(plan: PartPlan, engine: SampleEngine, slots: n
       integers[at + 5] = start + map.spectrum + 16 * to;
       integers[at + 6] = count;
       integers[at + 7] = parity;
+      if (symbolsAhead === 0) return;
+      const bits = values.bitsOfSymbol(data.stream, nextSymbol - 1);
+      integers[at + 8] = bits;
+      symbolsAhead = Math.min(symbolsAhead, Math.floor((window.heldBits - offset - step * count) / bits));
     },
   };
 
@@ -83,13 +122,7 @@ export function createEngineParts(plan: PartPlan, engine: SampleEngine, slots: n
     const part = start + (isKeeping ? map.kept + 16 * size * slot : map.part);
     if (isKeeping ? isKept[slot] === 1 : slot >= 0 && slot === present) return part;
     const row = values.rowOf(symbol);
-    if (row < 0 || row !== lastRow) {
-      spectrum.fill(0, 0, 2 * low);
-      spectrum.fill(0, 2 * (size - high));
-      lastRow = row;
-    } // else each value of the symbol before is written over
-    values.writePlaced(repeat, symbol, spectrum, placement, sink);
-    flush();
+    if (!writeNext(row, repeat, symbol)) write(row, repeat, symbol);
     kernel.transform(start + map.plan, start + map.spectrum, part, low, high);
     if (isKeeping) isKept[slot] = 1;
     else present = slot;

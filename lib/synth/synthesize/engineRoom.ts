@@ -6,7 +6,7 @@ export const BLOCK_SAMPLES = 4096;
 /** Words that are gathered before they are copied out. */
 export const STAGED_SAMPLES = 8192;
 export const RUNS_MOST = 512;
-export const RUN_NUMBERS = 8;
+export const RUN_NUMBERS = 9;
 const LEAST_WINDOW_WORDS = 4130;
 const MOST_BITS = 12; // of a cell, or from an anchored cell to the next
 const SPARE = 64; // what the kernel may read or write beyond an end
@@ -76,7 +76,7 @@ export function mapRoom({ values, layout }: PartPlan, planBytes: number, slots: 
     counts: take(16),
     block: take(16 * BLOCK_SAMPLES),
     words: take(8 * STAGED_SAMPLES),
-    kept: takeApart(16 * size * slots, 2048),
+    kept: takeApart(16 * size * slots + 4096, 2048),
   };
   return { ...map, bytes: end };
 }

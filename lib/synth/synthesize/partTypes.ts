@@ -33,8 +33,11 @@ export interface SampleWork {
   /** Measures samples from…from+count−1 of a row. */
   measure(row: number, from: number, count: number): void;
   giveBack(collector: Omit<StatsCollector, 'stats'>): void;
-  /** From here on samples are written as words to bytes[at…]; all of them are there after endWords. */
-  beginWords(writer: WordWriter, bytes: Uint8Array, at: number): void;
+  /**
+   * From here on samples are written as words to bytes[at…]; all of them are there after endWords. No component is beyond ±`most`
+   * (Infinity where that is not known).
+   */
+  beginWords(writer: WordWriter, bytes: Uint8Array, at: number, most: number): void;
   /** Writes samples from…from+count−1 of a row. */
   write(row: number, from: number, count: number): void;
   endWords(): void;

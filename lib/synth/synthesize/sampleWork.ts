@@ -3,11 +3,14 @@ import { BLOCK_SAMPLES, STAGED_SAMPLES, type OpenRoom, type RoomMap } from './en
 import { LEVEL_STATE_LENGTH, PART_SAMPLES, takePart, type PartSums } from './levelState';
 import type { SampleWork } from './partTypes';
 
+const BOUND = 1073741824; // 2^30, half of what the kernel wants
+
 /** What the engine does with finished samples in a room. */
 export function createSampleWork(map: RoomMap, room: OpenRoom): Omit<SampleWork, 'rowOfPart'> {
   let partSums: PartSums | undefined;
   let writer: WordWriter | null = null;
   let direct: DirectWords | null = null;
+  let isBounded = 0;
   let bytes: Uint8Array = new Uint8Array(0);
   let to = 0; // where the next bytes go
   let staged = 0; // samples whose words wait
@@ -65,9 +68,10 @@ export function createSampleWork(map: RoomMap, room: OpenRoom): Omit<SampleWork,
       const state = (room.start + map.state) / 8;
       collector.state.set(room.numbers.subarray(state, state + LEVEL_STATE_LENGTH));
     },
-    beginWords(wordWriter, out, at) {
+    beginWords(wordWriter, out, at, most) {
       writer = wordWriter;
       ({ direct } = wordWriter);
+      isBounded = direct !== null && most * direct.scale < BOUND ? 1 : 0;
       bytes = out;
       to = at;
       const counts = (room.start + map.counts) / 8;
@@ -86,7 +90,7 @@ export function createSampleWork(map: RoomMap, room: OpenRoom): Omit<SampleWork,
         const part = Math.min(count - done, STAGED_SAMPLES - staged);
         const words = start + map.words;
         if (word === 'int16') {
-          kernel.integerWords(row, from + done, part, words + 4 * staged, scale, -most - 1, most, counts);
+          kernel.integerWords(row, from + done, part, words + 4 * staged, scale, -most - 1, most, counts, isBounded);
         } else kernel.floatWords(row, from + done, part, words + 8 * staged, scale, counts);
         staged += part;
         done += part;

@@ -219,13 +219,22 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
     return done;
   }
 
+  // largest component of samples 0…measured − 1: words of a whole known rendering need fewer looks
+  let measured = 0;
+  let largest = 0;
+
   function collect(collector: Omit<StatsCollector, 'stats'>, most: number): number {
     if (onSamples !== null) {
       if (!parts.enter()) useful = null;
+      const first = position;
       onSamples.lend(collector);
-      const measured = eachSpan(onSamples, most, onSamples.measure);
+      const count = eachSpan(onSamples, most, onSamples.measure);
       onSamples.giveBack(collector);
-      return measured;
+      if (first === measured) {
+        measured = position;
+        largest = Math.max(largest, collector.state[12]!, collector.state[13]!);
+      }
+      return count;
     }
     block ??= new Float64Array(2 * BLOCK_SAMPLES);
     const count = read(most < BLOCK_SAMPLES ? block.subarray(0, 2 * most) : block);
@@ -242,7 +251,7 @@ export function createSynthesis(content: WaveformContent, options: RenderOptions
     );
     if (onSamples !== null) {
       if (!parts.enter()) useful = null;
-      onSamples.beginWords(writer, bytes, at);
+      onSamples.beginWords(writer, bytes, at, measured === samples ? largest : Infinity);
       const written = eachSpan(onSamples, most, onSamples.write);
       onSamples.endWords();
       return written;
