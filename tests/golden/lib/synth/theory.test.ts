@@ -188,11 +188,11 @@ describe('quantizing against theory', () => {
   });
 
   describeCheck<Record<string, Record<string, number>>>('th.loading', (loading) => {
-    it.each([8, 10, 12])('%i bits', (bits) => {
+    it.each([8, 10, 12, 14, 16])('%i bits', (bits) => {
       const expected = loading.expected[bits]!;
       const backoff = 10 ** (expected['at_component_backoff_db(A/sigma)']! / 20);
       // the component's whole range in even steps, weighted by its density: no luck in the tails
-      const count = 400000;
+      const count = bits > 14 ? 800000 : 400000; // sixteen points a step and more
       const range = 9;
       const samples = Float64Array.from({ length: 2 * count }, (_, i) => range * ((i + 0.5) / count - 1));
       // 2^b steps span ±A, as the theory has it
