@@ -121,6 +121,8 @@ export const packDetailSchema = packSchema
     fetchedAtMs: timeMsSchema,
     card: levelCardSchema,
     cautions: z.array(cautionSchema),
+    /** Limits of the bench that the file misses and that may be meant (headroom, level, seam …), in the fit's own words. */
+    notices: z.array(z.string()),
     deviceCards: z.array(deviceCardSchema),
     /** What the card was computed from, so that a typed setting can be followed at once. */
     levels: packLevelsSchema,

@@ -93,6 +93,7 @@ export function operatorHtml(pack: PackDetail, downloadAddress: string): string 
   return `<div id="plain"><main>${head}${cardHtml(pack)}
 <h2>First cautions</h2><ol class="first">${points(pack.cautions.filter(({ number }) => number === 3 || number === 4))}</ol>
 ${settingsHtml(pack)}
+${pack.notices.map((notice) => `<p class="severe">${text(notice)}</p>`).join('')}
 <p class="quiet">${text(pack.fileName)}, ${pack.fileBytes} bytes, SHA-256 <code>${groups(pack.fileDigest.replace('sha256:', ''))}</code></p>
 <details><summary>All cautions, ${pack.cautions.length}</summary><ol>${points(pack.cautions)}</ol></details>${entered}
 <div class="foot"><a class="get" href="${text(downloadAddress)}">Download pack</a></div></main></div>`;

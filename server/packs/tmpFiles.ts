@@ -43,15 +43,6 @@ export async function sweepWorkFolders(inFolder: string, options: { all?: boolea
   return swept;
 }
 
-export async function fsyncFile(file: string): Promise<void> {
-  const handle = await open(file, 'r+');
-  try {
-    await handle.sync();
-  } finally {
-    await handle.close();
-  }
-}
-
 /** Moves a finished, flushed file to its name in one step, and flushes the folder so that the name survives a power cut. */
 export async function publishFile(from: string, to: string): Promise<void> {
   await rename(from, to);

@@ -7,6 +7,7 @@ import { DigestChip } from '@/components/ui/DigestChip';
 import { Notice } from '@/components/ui/Notice';
 import { Stamp } from '@/components/ui/Stamp';
 import { Text } from '@/components/ui/Text';
+import { TextLink } from '@/components/ui/TextLink';
 import { color } from '@/components/ui/theme';
 import { useBreakpoint } from '@/components/ui/useBreakpoint';
 import { useApi } from '@/lib/client/useApi';
@@ -98,6 +99,15 @@ function OpenPack({ pack }: { pack: PackDetail }) {
         <>
           <LevelCardView card={card} onSetting={setTyped} typed={typedDbm !== null} />
           <CautionStrip points={points} onAll={() => setSheet('cautions')} />
+          {pack.notices.length > 0 ? (
+            <Notice kind="warning" title="The fit says">
+              <View>
+                {pack.notices.map((words) => (
+                  <Text key={words}>{words}</Text>
+                ))}
+              </View>
+            </Notice>
+          ) : null}
           {mayEnter ? (
             <View style={styles.deviceRow}>
               <Text variant="small" tone="quiet" style={styles.shrink}>
@@ -108,6 +118,14 @@ function OpenPack({ pack }: { pack: PackDetail }) {
               </Button>
             </View>
           ) : null}
+          <View style={styles.deviceRow}>
+            <Text variant="small" tone="quiet" style={styles.shrink}>
+              What came back from the device
+            </Text>
+            <TextLink href={{ pathname: '/packs/[packId]/capture', params: { packId: pack.packId } }}>
+              Add a capture
+            </TextLink>
+          </View>
         </>
       )}
     </View>

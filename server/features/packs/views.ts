@@ -118,10 +118,14 @@ export function toPackDetail(
   deviceCards: DeviceCard[],
   fetchedAtMs: number,
 ): PackDetail {
+  const card = cardOf(source);
+  // the manifest's safety text: a draft's mark, the cautions, then what the fit says
+  const { safety, state } = source.manifest;
   return {
     ...toPack(row),
     fetchedAtMs,
-    ...cardOf(source),
+    ...card,
+    notices: safety.slice(card.cautions.length + (state === 'draft' ? 1 : 0)),
     deviceCards,
     levels: levelsOf(source.manifest),
     intent: source.intent,

@@ -6,7 +6,10 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { build } from 'esbuild';
 
-const EXAMPLES = ['plain', 'mixed-1', 'mixed-2', 'mixed-3', 'mixed-4', 'mixed-5'];
+const EXAMPLES = [
+  ...['plain', 'mixed-1', 'mixed-2', 'mixed-3', 'mixed-4', 'mixed-5'],
+  ...['peak-clip', 'peak-tones', 'peak-phases', 'peak-seed'],
+];
 const fixtures = 'tests/golden/fixtures';
 const directory = mkdtempSync(join(tmpdir(), 'combwright-digests-'));
 try {

@@ -127,6 +127,20 @@ test('samples that saturate are counted and shown where the level refers to the 
   expect(file).toContain(`${levels.saturatedSamples} samples pass full scale`); // level card and README
 });
 
+test('a level that may be meant is said in manifest and card, in the fit’s own words, and refuses nothing', async () => {
+  const of = withIntent(manyCells({ level: { reference: 'componentPeak', headroomDb: 0 }, frequencyOffsetHz: 1234 }));
+  const result = await make(of);
+  if (!result.ok) throw new Error(result.message);
+  const said = result.pack.manifest.safety.slice(1 + 11);
+  expect(said).toEqual(result.pack.notices);
+  expect(said).toEqual([
+    expect.stringMatching(/^Seam: The frequency offset makes /),
+    expect.stringMatching(/^Headroom: .+ above full scale; full scale is the limit\.$/),
+  ]);
+  const file = readFileSync(path.join(folder, 'pack.zip')).toString('utf8');
+  for (const words of said) expect(file).toContain(`  ${words}\n`); // the level card has lines
+});
+
 test('progress runs over four steps and never back', async () => {
   const seen: PackProgress[] = [];
   await make(manyCells(), openBench(), { onProgress: (progress) => seen.push({ ...progress }) });
