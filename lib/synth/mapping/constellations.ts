@@ -52,6 +52,8 @@ export function isMapKnown(constellation: Constellation, bitMap: BitMap): boolea
   return true;
 }
 
+const known = new Map<string, Float64Array>(); // by constellation and map
+
 /**
  * The points of a constellation: interleaved [I, Q, …], 2·2^b numbers in a new Float64Array; the index is the cell's bit
  * word with the first bit as its most significant. Mean power 1 (integers over √norm). π/2-BPSK: the points of an even
@@ -61,6 +63,13 @@ export function isMapKnown(constellation: Constellation, bitMap: BitMap): boolea
  * Source: TS 38.211 5.1; IEEE Std 802.11 17.3.5.8; EN 300 744 4.3.5.
  */
 export function pointsOf(constellation: Constellation, bitMap: BitMap): Float64Array {
+  const name = `${constellation} ${bitMap}`;
+  let points = known.get(name);
+  if (points === undefined) known.set(name, (points = computePoints(constellation, bitMap)));
+  return points.slice();
+}
+
+function computePoints(constellation: Constellation, bitMap: BitMap): Float64Array {
   if (!isMapKnown(constellation, bitMap)) throw new SynthError('bad_content', `No ${bitMap} map of ${constellation}.`);
   const bits = bitsPerCell(constellation);
   if (constellation === 'bpsk' && bitMap === 'ieee80211') return Float64Array.of(-1, 0, 1, 0);

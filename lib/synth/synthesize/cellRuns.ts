@@ -10,24 +10,29 @@ export interface CellRuns {
   rowOf(symbol: number): number;
 }
 
-/** Runs of a grid's rows: each row once. */
-export function runsOfGrid(grid: RunGrid): CellRuns {
-  const rows = grid.rows.map((row) => {
-    const runs = Int32Array.from(row);
+/** The ends and inks of a grid's rows, each row once: what runsOfGrid walks. */
+export function rowsOfGrid(grid: RunGrid): Int32Array[] {
+  return grid.rows.map((row) => {
+    const runs = new Int32Array(row.length);
     let end = 0;
-    for (let i = 0; i < runs.length; i += 2) {
-      end += runs[i]!;
+    for (let i = 0; i < row.length; i += 2) {
+      end += row[i]!;
       runs[i] = end;
+      runs[i + 1] = row[i + 1]!;
     }
     return runs;
   });
+}
+
+/** Runs of a grid; `rows` are its rowsOfGrid. */
+export function runsOfGrid({ rowOfSymbol }: RunGrid, rows: readonly Int32Array[]): CellRuns {
   let last = rows[0]!;
   return {
-    of: (symbol) => (last = rows[grid.rowOfSymbol[symbol]!]!),
+    of: (symbol) => (last = rows[rowOfSymbol[symbol]!]!),
     get numbers() {
       return last.length;
     },
-    rowOf: (symbol) => grid.rowOfSymbol[symbol]!,
+    rowOf: (symbol) => rowOfSymbol[symbol]!,
   };
 }
 

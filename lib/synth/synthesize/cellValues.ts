@@ -4,7 +4,7 @@ import { createRootsOfUnity } from '../math/turns';
 import { createBitSource } from '../sequences/bitSource';
 import type { WaveformContent } from '../types';
 import { createBitWindow, type BitWindow } from './bitWindow';
-import { runsOfCells, runsOfGrid, type CellRuns } from './cellRuns';
+import { rowsOfGrid, runsOfCells, runsOfGrid, type CellRuns } from './cellRuns';
 import { createCellCounts } from './counts';
 import { planInks, type InkPlan } from './inkPlan';
 import { frameLayout } from './layout';
@@ -59,7 +59,8 @@ export function createPlacedValues(
   let expanded = givenCells;
   const cellsNow = (): Uint8Array => (expanded ??= expandGrid(content.grid, fftSize)); // most renderings never ask
   const inks = planInks(content, gain);
-  const openRuns = () => (givenCells === undefined ? runsOfGrid(content.grid) : runsOfCells(givenCells, fftSize));
+  const rows = givenCells === undefined ? rowsOfGrid(content.grid) : [];
+  const openRuns = () => (givenCells === undefined ? runsOfGrid(content.grid, rows) : runsOfCells(givenCells, fftSize));
   const cellRuns = openRuns();
   const counts = createCellCounts(openRuns(), symbolCount, inks); // of its own: it counts while runs are in use
   let baseLayout: FrameLayout | null = null;

@@ -51,7 +51,8 @@ function planInk(ink: Ink, content: WaveformContent, gain: number): InkPlan {
       const stream = content.streams.findIndex((candidate) => candidate.streamId === streamId);
       demand(stream >= 0, 'bad_content', `Ink ${ink.name} names a stream that is not there.`);
       const isHalfTurning = constellation === 'pi2-bpsk';
-      const even = pointsOf(constellation, bitMap).map((part) => part * amplitude);
+      const even = pointsOf(constellation, bitMap);
+      for (let i = 0; i < even.length; i++) even[i]! *= amplitude;
       const points = isHalfTurning ? Float64Array.of(...even, -even[1]!, even[0]!, -even[3]!, even[2]!) : even;
       return { kind: 'data', bits: bitsPerCell(constellation), stream, points, isHalfTurning };
     }
