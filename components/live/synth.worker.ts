@@ -1,6 +1,6 @@
 import type { LiveRequest } from '@/lib/editor/live/protocol';
 import { createLiveWorker, transfersOf } from '@/lib/editor/live/worker';
-import { createSampleEngine, type EngineExports, type SampleEngine } from '@/lib/synth/index';
+import { loadEngine } from './loadEngine';
 
 // The thread that synthesizes while somebody draws. All it does stands in lib/editor/live; here are only its ear and its voice.
 interface WorkerScope {
@@ -14,16 +14,6 @@ const scope = globalThis as unknown as WorkerScope;
 const channel = new MessageChannel();
 const tasks: (() => void)[] = [];
 channel.port1.onmessage = () => tasks.shift()?.();
-
-/** The engine's module from our own origin. Without it the page's samples have the same bits, slower. */
-async function loadEngine(): Promise<SampleEngine | undefined> {
-  try {
-    const module = await WebAssembly.compileStreaming(fetch('/wasm/engine.wasm'));
-    return createSampleEngine(() => new WebAssembly.Instance(module).exports as unknown as EngineExports);
-  } catch {
-    return undefined;
-  }
-}
 
 const starting = loadEngine().then((engine) =>
   createLiveWorker({

@@ -6,7 +6,7 @@ function counted(count: number, one: string): string {
   return `${count} ${one}${count === 1 ? '' : 's'}`;
 }
 
-const percent = (ratio: number): string => `${Number((100 * ratio).toPrecision(3))} %`;
+const percent = (ratio: number): string => `${(100 * ratio).toFixed(ratio >= 0.1 ? 1 : ratio >= 0.001 ? 2 : 3)} %`;
 
 /** How the EVM was taken, in sentences: frames, cells behind the channel, phase, window, and the figure before the fit's bias is taken out. */
 export function recipeWords(capture: MeasuredCapture): string {
