@@ -3,10 +3,19 @@ import { open, truncate } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
 import { createDigestJob } from '@/lib/editor/live/digest';
-import { vectorFiles, type BenchContent, type WaveformDocument } from '@/lib/synth';
+import {
+  createSynthesis,
+  createVectorForm,
+  createWordWriter,
+  fullScaleOf,
+  vectorFiles,
+  type BenchContent,
+  type WaveformDocument,
+} from '@/lib/synth';
 import { makePack, requireProof, scaleOf } from '@/server/packs/makePack';
 import { measureRendering } from '@/server/packs/measureRendering';
 import { openPool } from '@/server/packs/pool/workPool';
+import { readSmallEntry, readZipEntries } from '@/server/packs/zipReader';
 import { proveVector } from '@/server/packs/vectorProof';
 import { writeVector } from '@/server/packs/vectorWriter';
 import { wordWords } from '@/server/packs/wordWords';
@@ -40,6 +49,46 @@ test.each<[string, Partial<BenchContent>]>([
     .filter(({ role }) => role.startsWith('vector'))
     .reduce((sum, file) => sum + file.bytes, 0);
   expect(job.result()).toEqual({ sha256: result.pack.vectorSha256, bytes });
+});
+
+test.each<[string, Partial<BenchContent>]>([
+  ['split', { layout: 'split' }],
+  ['CSV', { ...float, container: 'csv' }],
+  ['markers in low bits, split', { bits: 14, align: 'left', layout: 'split', markers: { ...lowBits, count: 2 } }],
+])('copied repeats are the bytes that a rendering in one go gives: %s', async (_name, layout) => {
+  const { content } = document;
+  const mark = content.markers[0]!;
+  const repeated: WaveformDocument = {
+    ...document,
+    content: {
+      ...content,
+      timing: { ...content.timing, repeats: 50 },
+      // one on in every repeat, one that only the first has: both over a border
+      markers: [
+        { ...mark, offsetSamples: -2 },
+        { ...mark, name: 'Start', at: 'file', offsetSamples: 318, lengthSamples: 9 },
+      ],
+    },
+  };
+  const profile = openBench({ markers: { ...lowBits, packing: 'bytes', count: 2 }, ...layout });
+  const outFile = () => path.join(folder, 'pack.zip');
+  const result = await makePack({ document: repeated, profile, state: 'draft', tmpFolder: folder, outFile });
+  if (!result.ok) throw new Error(result.message);
+  const { manifest, file } = result.pack;
+  const synthesis = createSynthesis(repeated.content);
+  const { scaleLsbPerUnit } = manifest.word;
+  const fullScale = fullScaleOf(profile.content);
+  const scale = { scale: scaleLsbPerUnit, fullScale, referenceLevel: 1, isSilent: false };
+  const writer = createWordWriter(profile.content, scale);
+  const words = new Uint8Array(synthesis.samples * writer.bytesPerSample);
+  synthesis.readWords(writer, synthesis.samples, words);
+  const form = createVectorForm(repeated.content, profile.content);
+  const meant = form.form(words, synthesis.samples).map((part, i) => Buffer.concat([form.files[i]!.head, part]));
+  const handle = await open(file, 'r');
+  const entries = await readZipEntries(handle);
+  for (const [i, bytes] of meant.entries())
+    expect((await readSmallEntry(handle, entries[i]!, 1 << 24)).equals(bytes)).toBe(true);
+  await handle.close();
 });
 
 /** Writes a vector, damages it, and says why it is not offered. */
