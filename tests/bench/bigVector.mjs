@@ -57,6 +57,7 @@ export async function measureBigVector({ megabytes, rounds, directory }) {
       ['packCopied', 'copied'],
       ['packNew', 'new'],
     ]) {
+      note('plain', ask('plain')); // a moment's peace is as likely here
       const made = pack(way);
       memoryMegabytes = Math.max(memoryMegabytes, made.memoryMegabytes);
       note(name, made);
