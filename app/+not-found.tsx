@@ -1,12 +1,16 @@
 import { View } from 'react-native';
-import { NotThere } from '@/components/ui/states';
+import { DemoBand } from '@/components/ui/DemoBand';
 import { useDocumentTitle } from '@/components/ui/Frame';
+import { NotThere } from '@/components/ui/states';
 import { color } from '@/components/ui/theme';
+import { useSession } from '@/lib/client/useSession';
 
 export default function NotFound() {
   useDocumentTitle('Nothing here');
+  const { data } = useSession();
   return (
     <View role="main" style={{ flex: 1, backgroundColor: color.surface.desk }}>
+      {data?.installation.isDemo ? <DemoBand /> : null}
       <NotThere alone />
     </View>
   );

@@ -1,6 +1,7 @@
 import { Link, usePathname, type Href } from 'expo-router';
 import { useEffect, type ReactNode } from 'react';
 import { Pressable, ScrollView, StyleSheet, View } from 'react-native';
+import { DemoBand } from './DemoBand';
 import { Mark } from './Mark';
 import { Text } from './Text';
 import { chooseTheme, color, useTheme } from './theme';
@@ -54,13 +55,7 @@ export function Frame(props: FrameProps) {
     <View style={styles.page}>
       <View role="banner" style={styles.banner}>
         {phone ? <PhoneHead {...props} /> : <TopLine {...props} />}
-        {demo ? (
-          <View style={styles.demo}>
-            <Text variant="label" tone="warning">
-              Demo: invented people and data
-            </Text>
-          </View>
-        ) : null}
+        {demo ? <DemoBand /> : null}
         {notice}
       </View>
       {fixed ? (
@@ -242,13 +237,6 @@ const styles = StyleSheet.create({
   theme: { justifyContent: 'center', marginRight: 26 },
   themeWord: { height: 36, justifyContent: 'center' },
   last: { marginRight: 0, maxWidth: 240, minWidth: 0 },
-  demo: {
-    alignItems: 'center',
-    backgroundColor: color.warning.wash,
-    borderBottomWidth: 1,
-    borderBottomColor: color.warning.rule,
-    paddingVertical: 1,
-  },
   phoneHead: {
     height: 52,
     flexDirection: 'row',

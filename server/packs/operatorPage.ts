@@ -28,13 +28,17 @@ function createShell(webDir: string): () => Promise<string> {
 const place = /<div id="root">\s*<\/div>/;
 const escapeTitle = (title: string) => title.replace(/&/g, '&amp;').replace(/</g, '&lt;');
 
-function fill(shell: string, pack: PackDetail): string {
+const demoStyle =
+  '#plain .demo{margin:0 -16px 8px;padding:2px;text-align:center;font-size:12px;color:var(--warning);background:var(--warningWash)}';
+
+function fill(shell: string, pack: PackDetail, isDemo: boolean): string {
   const html = place.test(shell) ? shell : bareShell;
-  const card = operatorHtml(pack, `${API_PREFIX}/packs/${pack.packId}/file`);
+  const plain = operatorHtml(pack, `${API_PREFIX}/packs/${pack.packId}/file`);
+  const card = isDemo ? plain.replace('<main>', '<main><p class="demo">Demo: invented people and data</p>') : plain;
   // Functions, since a title may hold what a replacement text gives a meaning.
   return html
     .replace(/<title>[^<]*<\/title>/, () => `<title>${escapeTitle(pack.title)}, Combwright</title>`)
-    .replace('</head>', () => `<style>${operatorStyle}</style></head>`)
+    .replace('</head>', () => `<style>${operatorStyle}${isDemo ? demoStyle : ''}</style></head>`)
     .replace(place, () => `<div id="root">${card}</div>`);
 }
 
@@ -46,6 +50,7 @@ export function serveOperatorPage(
   webDir: string,
   readActor: ReadActor,
   show: (actor: Actor, packId: string) => PackDetail,
+  isDemo: () => boolean,
 ): Router {
   const router = Router();
   const shell = createShell(webDir);
@@ -66,7 +71,7 @@ export function serveOperatorPage(
     }
     response.setHeader('Cache-Control', 'private, no-store');
     response.setHeader('Vary', 'Cookie');
-    response.type('html').send(fill(await shell(), pack));
+    response.type('html').send(fill(await shell(), pack, isDemo()));
   });
   return router;
 }

@@ -1,14 +1,26 @@
 import type { ReactNode } from 'react';
 import { ScrollView, StyleSheet, View } from 'react-native';
+import { DemoBand } from '@/components/ui/DemoBand';
 import { Mark } from '@/components/ui/Mark';
 import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
 import { useBreakpoint } from '@/components/ui/useBreakpoint';
 import { useDocumentTitle } from '@/components/ui/Frame';
+import { useSession } from '@/lib/client/useSession';
 import { DemoDrawing } from './DemoDrawing';
 
 /** The page of everything before a session: one column of 360 px, the drawing beside or above it. */
-export function AuthPage({ title, children }: { title: string; children: ReactNode }) {
+export function AuthPage({
+  title,
+  children,
+  saysDemo = true,
+}: {
+  title: string;
+  children: ReactNode;
+  /** False where the page's own words say that it is a demo. */
+  saysDemo?: boolean;
+}) {
+  const isDemo = useSession().data?.installation.isDemo ?? false;
   const wide = useBreakpoint() === 'wide';
   useDocumentTitle(title);
   return (
@@ -28,6 +40,7 @@ export function AuthPage({ title, children }: { title: string; children: ReactNo
         <Text tone="quiet" style={styles.motto}>
           Draw the signal. Prove the file.
         </Text>
+        {isDemo && saysDemo ? <DemoBand /> : null}
         {children}
       </ScrollView>
       {wide ? (

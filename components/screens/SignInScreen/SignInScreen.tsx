@@ -31,7 +31,7 @@ export function SignInScreen() {
   const session = useSession();
   const installation = session.data?.installation;
   return (
-    <AuthPage title="Sign in">
+    <AuthPage title="Sign in" saysDemo={!installation?.hasDemoSignIn}>
       {session.isPending ? <Loading what="the sign-in page" rows={2} rowHeight={52} /> : null}
       {session.error ? (
         <Notice kind="danger" actions={<Button onPress={() => void session.refetch()}>Try again</Button>}>

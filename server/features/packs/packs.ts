@@ -5,6 +5,7 @@ import type { Mount, ReadActor } from '../../http/mount.ts';
 import { createPackJobs, type PackJobs } from '../../packs/jobs.ts';
 import { serveOperatorPage } from '../../packs/operatorPage.ts';
 import { createRenderThread } from '../../packs/renderThread.ts';
+import { findInstallation } from '../auth/installationRepo.ts';
 import { createDownloads } from './downloads.ts';
 import { mountPacks } from './routes.ts';
 import { createPacksService, type PacksService } from './service.ts';
@@ -21,5 +22,6 @@ export function createPacks(deps: Deps, mount: Mount, events: Events, readActor:
   const jobs = createPackJobs(deps, createRenderThread(deps.config.buildDir, deps.config.renderWorkers));
   const service = createPacksService(deps, jobs);
   mountPacks(mount, service, createDownloads(events));
-  return { jobs, service, page: serveOperatorPage(deps.config.webDir, readActor, service.show) };
+  const isDemo = () => findInstallation(deps.store.db)?.kind === 'demo';
+  return { jobs, service, page: serveOperatorPage(deps.config.webDir, readActor, service.show, isDemo) };
 }

@@ -1,6 +1,7 @@
 import { mkdtempSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
+import { installation } from '@/db/schema/people';
 import type { PackDetail } from '@/lib/contracts/packs';
 import { openBench, smallDocument } from '../../helpers/documents';
 import { createBench, makePack } from '../../helpers/packCalls';
@@ -79,6 +80,16 @@ test('the card is in the first answer, in reading order, small, without script, 
   expect(html.match(/<script/g)).toHaveLength(1);
   expect(html).not.toContain('<ladder>');
   for (const digits of pack.vectorDigest.slice(7).match(/.{8}/g)!) expect(html).toContain(digits);
+});
+
+test('a demo says so there too, a real installation does not', async () => {
+  const words = 'Demo: invented people and data';
+  const pack = await released('Real');
+  expect(await page(operator, pack.packId)).not.toContain(words);
+  server.store.write((tx) => tx.update(installation).set({ kind: 'demo' }).run());
+  const html = await page(operator, pack.packId);
+  expect(html.indexOf(words)).toBeGreaterThan(html.indexOf('<main>'));
+  expect(html.indexOf(words)).toBeLessThan(html.indexOf('Real</h1>'));
 });
 
 test('a withdrawn edition shows the reason and no way to its file', async () => {
