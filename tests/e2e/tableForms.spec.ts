@@ -79,6 +79,17 @@ test('a second finger takes the stroke back and moves the drawing', async ({ as,
   expect((await session(page)).viewport.firstPosition).toBeLessThan(first);
 });
 
+test('the wheel zooms at the pointer, and the cell under it stays there', async ({ as, baseURL }, info) => {
+  const page = await openNew(as, baseURL!);
+  const cell = { symbol: 5, subcarrier: isPhone(info) ? 4 : 200 };
+  const before = { place: await placeOf(page, cell), px: (await session(page)).viewport.subcarrierPx };
+  await page.mouse.move(before.place.x, before.place.y);
+  for (let i = 0; i < 3; i++) await page.mouse.wheel(0, -240);
+  await expect.poll(async () => (await session(page)).viewport.subcarrierPx).toBeGreaterThan(1.5 * before.px);
+  const after = await placeOf(page, cell);
+  expect(Math.abs(after.x - before.place.x)).toBeLessThan(2);
+});
+
 test('numbers say what follows, and ask before painted cells are cut', async ({ as, baseURL }, info) => {
   const page = await openNew(as, baseURL!);
   const before = await drawnDocument(page);

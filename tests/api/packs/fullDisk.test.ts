@@ -1,6 +1,7 @@
 import { readdirSync } from 'node:fs';
 import path from 'node:path';
 import type { PackJob } from '@/lib/contracts/packs';
+import { signInAsInes } from '../../helpers/demoPerson';
 import { openSmallDisk, type SmallDisk } from '../../helpers/smallDisk';
 import { killSpawned, spawnServer } from '../../helpers/spawnServer';
 import { documentOf } from '../../helpers/waveformCalls';
@@ -16,26 +17,11 @@ afterEach(() => {
   disk.remove();
 });
 
-/** Ines Okoro of the demo team, an author. */
-async function signIn(address: string) {
-  const headers: Record<string, string> = { Origin: address, 'Content-Type': 'application/json' };
-  const ask = async (method: 'GET' | 'POST', url: string, body?: object) => {
-    const answer = await fetch(`${address}/api/v1${url}`, { method, headers, body: body && JSON.stringify(body) });
-    headers.Cookie ??= answer.headers.get('set-cookie')?.split(';', 1)[0] ?? '';
-    if (!answer.ok) throw new Error(`${method} ${url}: ${answer.status} ${await answer.text()}`);
-    return (await answer.json()) as never;
-  };
-  const { people }: { people: { personId: string; name: string }[] } = await ask('GET', '/auth/demo-people');
-  delete headers.Cookie;
-  await ask('POST', '/auth/demo-sign-in', { personId: people.find(({ name }) => name === 'Ines Okoro')!.personId });
-  return ask;
-}
-
 test('a disk that fills up while a pack is rendered: the job says why, nothing is kept or offered', async () => {
   const dataDir = path.join(disk.folder, 'data');
   const filesIn = (folder: string) => readdirSync(path.join(dataDir, folder));
   const server = spawnServer({ DATA_DIR: dataDir, DEMO: 'yes' }, disk.before);
-  const ask = await signIn(await server.ready);
+  const ask = await signInAsInes(await server.ready);
   const before = { packs: filesIn('packs'), list: await ask('GET', '/packs') };
 
   // 51 MB of words: there is room for them when they are asked for.
