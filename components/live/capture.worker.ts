@@ -2,6 +2,7 @@ import {
   captureReadings,
   createLookAlikes,
   createReception,
+  fileNullPower,
   guessLayout,
   readSigmfMeta,
   type ByteSource,
@@ -111,7 +112,9 @@ async function answer(request: CaptureRequest): Promise<CaptureAnswer> {
   );
   const result = reception.result();
   const readingWords = result.kind === 'measured' ? readings[result.found.reading]!.words : '';
-  return { kind: 'measured', result, readingWords, samples: readings[0]!.source.samples };
+  const fileNulls =
+    result.kind === 'measured' && request.words ? fileNullPower(request.content, request.words, engine) : null;
+  return { kind: 'measured', result, readingWords, samples: readings[0]!.source.samples, fileNulls };
 }
 
 scope.onmessage = ({ data }) =>

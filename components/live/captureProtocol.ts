@@ -5,6 +5,7 @@ import type {
   ChannelSource,
   LayoutOutcome,
   Likeness,
+  NullPower,
   WaveformContent,
 } from '@/lib/synth';
 
@@ -18,6 +19,8 @@ export type CaptureRequest =
       clockHz: number | null;
       channel: ChannelSource;
       content: WaveformContent;
+      /** How the pack's integers were made, for what its own file has in the null cells; null: not asked. */
+      words: { scale: number; fullScale: number } | null;
     }
   | { kind: 'compare'; files: File[]; layout: CaptureLayout; clockHz: number | null; contents: WaveformContent[] };
 
@@ -25,6 +28,6 @@ export type CaptureAnswer =
   | { kind: 'guessed'; outcome: LayoutOutcome }
   | { kind: 'progress'; stage: CaptureStage | 'comparing'; doneRatio: number }
   /** `readingWords`: how the bytes were understood, "" as they were given. */
-  | { kind: 'measured'; result: CaptureResult; readingWords: string; samples: number }
+  | { kind: 'measured'; result: CaptureResult; readingWords: string; samples: number; fileNulls: NullPower | null }
   | { kind: 'compared'; alike: Likeness[] }
   | { kind: 'failed'; words: string };

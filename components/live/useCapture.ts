@@ -1,5 +1,5 @@
 import { useCallback, useEffect, useRef, useState } from 'react';
-import type { CaptureLayout, CaptureResult, ChannelSource, Likeness, WaveformContent } from '@/lib/synth';
+import type { CaptureLayout, CaptureResult, ChannelSource, Likeness, NullPower, WaveformContent } from '@/lib/synth';
 import type { CaptureAnswer, CaptureRequest } from './captureProtocol';
 
 /** A chosen capture: one file, or I's and Q's, with what its bytes say. */
@@ -19,7 +19,14 @@ export type CaptureState =
   | { kind: 'guessing'; name: string }
   | { kind: 'chosen'; words: string | null }
   | { kind: 'running'; step: CaptureStep; doneRatio: number }
-  | { kind: 'done'; result: CaptureResult; readingWords: string; samples: number; alike: Likeness[] | null };
+  | {
+      kind: 'done';
+      result: CaptureResult;
+      readingWords: string;
+      samples: number;
+      fileNulls: NullPower | null;
+      alike: Likeness[] | null;
+    };
 
 /** Larger captures take longer than anybody waits at a bench. */
 export const captureBytesMost = 2 ** 31;
@@ -105,7 +112,12 @@ export function useCapture() {
   const measure = useCallback(
     (
       capture: ChosenCapture,
-      options: { content: WaveformContent; clockHz: number | null; channel: ChannelSource },
+      options: {
+        content: WaveformContent;
+        clockHz: number | null;
+        channel: ChannelSource;
+        words: { scale: number; fullScale: number } | null;
+      },
       others: () => Promise<WaveformContent[]>,
     ) => {
       const { files, layout } = capture;
@@ -113,9 +125,10 @@ export function useCapture() {
       ask({ kind: 'measure', files, layout, ...options }, (answer) => {
         if (answer.kind === 'failed') return setState({ kind: 'chosen', words: answer.words });
         if (answer.kind !== 'measured') return;
-        const { result, readingWords, samples } = answer;
+        const { result, readingWords, samples, fileNulls } = answer;
         if (result.kind === 'refused') return setState({ kind: 'chosen', words: result.message });
-        if (result.kind === 'measured') return setState({ kind: 'done', result, readingWords, samples, alike: null });
+        if (result.kind === 'measured')
+          return setState({ kind: 'done', result, readingWords, samples, fileNulls, alike: null });
         setState({ kind: 'running', step: 'comparing', doneRatio: 0 });
         const turn = asked.current;
         const isCurrent = () => asked.current === turn;
@@ -128,10 +141,11 @@ export function useCapture() {
                 result,
                 readingWords,
                 samples,
+                fileNulls,
                 alike: compared.kind === 'compared' ? compared.alike : [],
               }),
             ),
-          () => isCurrent() && setState({ kind: 'done', result, readingWords, samples, alike: [] }),
+          () => isCurrent() && setState({ kind: 'done', result, readingWords, samples, fileNulls, alike: [] }),
         );
       });
     },

@@ -8,7 +8,14 @@ import { color } from '@/components/ui/theme';
 import { useBreakpoint } from '@/components/ui/useBreakpoint';
 import { OneOf } from '@/components/ui/WordsToPress';
 import { formatNumber, formatQuantity } from '@/lib/drawing/quantities';
-import { causeWords, measuredSymbolsWords, recipeWords, type MeasuredCapture, type WaveformContent } from '@/lib/synth';
+import {
+  causeWords,
+  measuredSymbolsWords,
+  recipeWords,
+  type MeasuredCapture,
+  type NullPower,
+  type WaveformContent,
+} from '@/lib/synth';
 import { ChannelPage } from './ChannelPage';
 import { ConstellationPage } from './ConstellationPage';
 import { InksPage } from './InksPage';
@@ -38,8 +45,9 @@ export function CaptureResultView({
   capture,
   content,
   readingWords,
+  fileNulls,
   limitPercent,
-}: ResultProps & { readingWords: string }) {
+}: ResultProps & { readingWords: string; fileNulls: NullPower | null }) {
   const phone = useBreakpoint() !== 'wide';
   const [page, setPage] = useState<PageName>('symbols');
   useArrows(page, setPage);
@@ -59,7 +67,7 @@ export function CaptureResultView({
       ) : null}
     </>
   );
-  const nulls = <NullPowerView nulls={capture.nulls} />;
+  const nulls = <NullPowerView nulls={capture.nulls} file={fileNulls} />;
   if (!phone)
     return (
       <View style={styles.wide}>

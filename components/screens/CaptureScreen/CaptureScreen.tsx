@@ -70,7 +70,11 @@ function OpenCapture({ pack, content }: { pack: PackDetail; content: WaveformCon
   const readAgainst = (other: OtherEdition) => {
     if (!chosen) return;
     const clockHz = choices.clockHz ?? chosen.clockHz;
-    capture.measure(chosen, { content: other.content, clockHz, channel: choices.channel }, findOthers);
+    capture.measure(
+      chosen,
+      { content: other.content, clockHz, channel: choices.channel, words: other.pack === pack ? wordsOf(pack) : null },
+      findOthers,
+    );
   };
   const isDone = state.kind === 'done';
   const result = state.kind === 'done' ? state.result : null;
@@ -138,6 +142,7 @@ function OpenCapture({ pack, content }: { pack: PackDetail; content: WaveformCon
             capture={result}
             content={target.content}
             readingWords={state.readingWords}
+            fileNulls={state.fileNulls}
             limitPercent={choices.limitPercent}
           />
         ) : null}
@@ -155,6 +160,13 @@ function OpenCapture({ pack, content }: { pack: PackDetail; content: WaveformCon
       </View>
     </Page>
   );
+}
+
+/** How the pack's integers were made, from its manifest; null for floats. */
+function wordsOf({ manifest }: PackDetail): { scale: number; fullScale: number } | null {
+  const word = manifest.word as { word?: string; scaleLsbPerUnit?: number; fullScale?: number } | undefined;
+  if (word?.word === 'float32' || !word?.scaleLsbPerUnit || !word.fullScale) return null;
+  return { scale: word.scaleLsbPerUnit, fullScale: word.fullScale };
 }
 
 /** The contents of the packs that this person sees, this waveform's own editions first; what they are stands in `onFound`. */

@@ -13,7 +13,8 @@ interface Row {
 }
 
 /** What the device put where nothing was sent, on one scale in dB to the mean used cell. */
-export function NullPowerView({ nulls }: { nulls: NullPower }) {
+export function NullPowerView({ nulls, file }: { nulls: NullPower; file: NullPower | null }) {
+  const own = file?.notch ?? file?.inside ?? null;
   const rows: Row[] = [
     ...(nulls.notch
       ? [
@@ -27,6 +28,7 @@ export function NullPowerView({ nulls }: { nulls: NullPower }) {
     ...(nulls.worst
       ? [{ name: `Worst, symbol ${nulls.worst.symbol}, k ${formatNumber(nulls.worst.subcarrier)}`, db: nulls.worst.db }]
       : []),
+    ...(own ? [{ name: `${file?.notch ? 'Notch' : 'All inside'} in the file`, db: own.db }] : []),
   ];
   if (rows.length === 0)
     return (

@@ -59,11 +59,3 @@ export function constantSource(samples: number): SampleSource {
     },
   };
 }
-
-/** Samples held in memory as a source (interleaved; not copied). */
-export function memorySource(data: Float64Array): SampleSource {
-  return {
-    samples: data.length / 2,
-    read: (first, count, out) => out.set(data.subarray(2 * first, 2 * (first + count))),
-  };
-}

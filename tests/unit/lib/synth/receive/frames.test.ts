@@ -1,4 +1,4 @@
-import type { WaveformContent } from '@/lib/synth';
+import { fileNullPower, type WaveformContent } from '@/lib/synth';
 import { readCheck, titleOf } from '@/tests/helpers/checks';
 import { captureOf, frameSamplesOf, measuredOf, ofdmContent } from '@/tests/helpers/captures';
 import { dataInk, NULL_INK, pnStream, rowOf, smallContent } from '@/tests/helpers/content';
@@ -80,6 +80,10 @@ test('a notched run: power in the null cells, the worst of them, and the clipped
   expect(clipped.nulls.inside!.cells).toBe(21 * clipped.symbols);
   expect(clipped.nulls.worst!.db).toBeGreaterThan(clipped.nulls.inside!.db);
   expect(clipped.statistics.clippedSamples).toBeGreaterThan(20);
+  // words of 8 bits leave their own noise there: a twelfth of a squared step in I and in Q, over cells of unit power
+  const scale = 20;
+  const own = fileNullPower(notched, { scale, fullScale: 127 });
+  expect(Math.abs(own!.notch!.db - 10 * Math.log10(2 / 12 / scale ** 2))).toBeLessThan(1.5);
   expect(clipped.statistics.clipLevel).toBeCloseTo(10 ** (0.5 / 20), 6);
 });
 
