@@ -1,4 +1,4 @@
-import { bitsPerCell, type CellValues, type WaveformContent } from '@/lib/synth';
+import { bitsPerCell, createBitSource, type CellValues, type PayloadSource, type WaveformContent } from '@/lib/synth';
 
 const chunkBytes = 1 << 18;
 /** Most bits of all payload files together; more repeats are left out whole. */
@@ -45,10 +45,42 @@ export interface PayloadCount {
   ones: number;
 }
 
+/** The source's first bits, packed as they are: cells of a running fill take them as they come, repeat after repeat. */
+function* sourceChunks(source: PayloadSource, bits: number, count: PayloadCount): Generator<Uint8Array> {
+  const bitSource = createBitSource(source);
+  const words = new Uint32Array(chunkBytes / 4);
+  count.bits = bits;
+  count.ones = 0;
+  for (let from = 0; from < bits; from += 8 * chunkBytes) {
+    const left = Math.min(bits - from, 8 * chunkBytes);
+    const used = Math.ceil(left / 32);
+    bitSource.readWords(from / 32, used, words, 0);
+    if (left % 32 !== 0) words[used - 1] = (words[used - 1]! >>> (32 - (left % 32))) << (32 - (left % 32));
+    const chunk = Buffer.allocUnsafe(4 * used);
+    for (let i = 0; i < used; i++) {
+      const word = words[i]!;
+      chunk.writeUInt32BE(word, 4 * i);
+      count.ones += onesOf(word);
+    }
+    yield chunk.subarray(0, Math.ceil(left / 8));
+  }
+}
+
+/** Bits of a word that are 1, by sums of pairs, fours and bytes side by side. */
+function onesOf(word: number): number {
+  const pairs = word - ((word >>> 1) & 0x55555555);
+  const fours = (pairs & 0x33333333) + ((pairs >>> 2) & 0x33333333);
+  return Math.imul((fours + (fours >>> 4)) & 0x0f0f0f0f, 0x01010101) >>> 24;
+}
+
 /** The bits of a stream's cells in fill order, most significant first, the last byte filled with zeros; counts as it goes. */
 export function* payloadChunks(values: CellValues, stream: number, count: PayloadCount): Generator<Uint8Array> {
-  const { symbolCount } = values.content;
+  const { symbolCount, streams } = values.content;
   const repeats = listedRepeats(values);
+  if (streams[stream]!.fill === 'running') {
+    yield* sourceChunks(streams[stream]!.source, repeats * values.bitsPerRepeat(stream), count);
+    return;
+  }
   const buffer = new ChunkBuffer();
   let bits = new Uint8Array(0);
   let open = 0;
