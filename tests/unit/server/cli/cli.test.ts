@@ -151,7 +151,7 @@ test('files that are not there, too large, folders, or the output itself', () =>
   expect(run('inspect', 'b.json')).toMatchObject({ status: 1 });
 });
 
-test('limits and what is not built are said with their place, in JSON as well', () => {
+test('limits and layouts that cannot be are said with their place, in JSON as well', () => {
   inputs(smallDocument(), openBench({ granularitySamples: 4096, byteOrder: 'big' }));
   const { status, stdout, stderr } = run('render', 'w.json', 'b.json', '--json');
   expect(status).toBe(1);
@@ -162,7 +162,7 @@ test('limits and what is not built are said with their place, in JSON as well', 
     issues: [{ where: 'bench', pointer: '/content/granularitySamples' }],
   });
   inputs(smallDocument(), openBench({ container: 'csv' }));
-  expect(run('render', 'w.json', 'b.json').stderr).toContain('bench /content/container');
+  expect(run('render', 'w.json', 'b.json').stderr).toContain('bench /content/word');
 });
 
 test('a disk that is full while rendering: a clear word, and nothing is left', () => {
