@@ -2,7 +2,7 @@ import { useLocalSearchParams } from 'expo-router';
 import { useState } from 'react';
 import { StyleSheet, View } from 'react-native';
 import { Button } from '@/components/ui/Button';
-import { DigestChip } from '@/components/ui/DigestChip';
+import { DigestChip, DigestsInView } from '@/components/ui/DigestChip';
 import { Failing, Loading, NotThere } from '@/components/ui/states';
 import { Notice } from '@/components/ui/Notice';
 import { Stamp } from '@/components/ui/Stamp';
@@ -36,6 +36,7 @@ export function HistoryScreen({ waveformId }: { waveformId: string }) {
   const [takingBack, setTakingBack] = useState(false);
   const [withdrawing, setWithdrawing] = useState<Edition | null>(null);
   const data = waveform.data;
+  const lines = groupHistory(revisions.data?.revisions ?? []);
   const head = data?.head ?? null;
   const open = data?.openReview ?? null;
   const mayAsk = maySave && head !== null && head.stamp.state === 'draft' && open === null;
@@ -88,7 +89,9 @@ export function HistoryScreen({ waveformId }: { waveformId: string }) {
         </Notice>
       ) : null}
       {data ? (
-        <>
+        <DigestsInView
+          digests={[...data.editions, ...lines.map(({ newest }) => newest)].map((one) => one.contentDigest)}
+        >
           <Editions editions={data.editions} onWithdraw={setWithdrawing} />
           {readsDrafts ? (
             <View>
@@ -103,14 +106,14 @@ export function HistoryScreen({ waveformId }: { waveformId: string }) {
                 />
               ) : null}
               <View role="list" aria-label="Revisions">
-                {groupHistory(revisions.data?.revisions ?? []).map((group) => (
+                {lines.map((group) => (
                   <GroupRow key={group.newest.revisionId} group={group} waveformId={waveformId} />
                 ))}
               </View>
               {revisions.data?.hasOlder ? <Text tone="quiet">Older revisions are kept and not shown here.</Text> : null}
             </View>
           ) : null}
-        </>
+        </DigestsInView>
       ) : null}
       {phone && ask ? <PrimaryStrip>{ask}</PrimaryStrip> : null}
       {asking && head ? <AskSheet waveformId={waveformId} head={head} onClose={() => setAsking(false)} /> : null}

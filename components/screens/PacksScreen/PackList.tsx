@@ -1,6 +1,6 @@
 import { Link, useRouter } from 'expo-router';
 import { StyleSheet, View } from 'react-native';
-import { DigestChip } from '@/components/ui/DigestChip';
+import { DigestChip, DigestsInView } from '@/components/ui/DigestChip';
 import { Figure } from '@/components/ui/Figure';
 import { Stamp } from '@/components/ui/Stamp';
 import { Table, type TableColumn } from '@/components/ui/Table';
@@ -76,19 +76,21 @@ const columns: TableColumn<Pack>[] = [
       </>
     ),
   },
-  { key: 'digest', label: 'Digest', width: 100, cell: (pack) => <DigestChip digest={pack.vectorDigest} /> },
+  { key: 'digest', label: 'Digest', width: 140, cell: (pack) => <DigestChip digest={pack.vectorDigest} /> },
 ];
 
 export function PackTable({ packs }: { packs: readonly Pack[] }) {
   const router = useRouter();
   return (
-    <Table
-      label="Packs"
-      columns={columns}
-      rows={packs}
-      keyOf={(pack) => pack.packId}
-      onOpen={(pack) => router.push(hrefOf(pack))}
-    />
+    <DigestsInView digests={packs.map((pack) => pack.vectorDigest)}>
+      <Table
+        label="Packs"
+        columns={columns}
+        rows={packs}
+        keyOf={(pack) => pack.packId}
+        onOpen={(pack) => router.push(hrefOf(pack))}
+      />
+    </DigestsInView>
   );
 }
 

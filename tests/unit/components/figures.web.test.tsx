@@ -1,6 +1,7 @@
 import { render, screen } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { FigureBlock } from '@/components/drawing/FigureBlock';
+import { DigestChip, DigestsInView } from '@/components/ui/DigestChip';
 import { FigureRow } from '@/components/ui/Figure';
 import { ToastPlace } from '@/components/ui/toast';
 
@@ -45,4 +46,16 @@ it('a browser that refuses is said to have refused', async () => {
   show();
   await user.click(screen.getByRole('button', { name: /^Samples/ }));
   expect(await screen.findByText('Copying was refused')).toBeInTheDocument();
+});
+
+it('equal digests of one view carry “same”', () => {
+  const [one, other] = ['ab', 'cd'].map((pair) => `sha256:${pair.repeat(32)}`) as [string, string];
+  render(
+    <DigestsInView digests={[one, other, one]}>
+      {[one, other, one].map((digest, i) => (
+        <DigestChip key={i} digest={digest} />
+      ))}
+    </DigestsInView>,
+  );
+  expect(screen.getAllByRole('button').map((chip) => /same/.test(chip.textContent))).toEqual([true, false, true]);
 });
