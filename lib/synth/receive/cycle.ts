@@ -1,5 +1,5 @@
 import type { SampleEngine } from '../engine/types';
-import { createCellValues } from '../synthesize/cellValues';
+import { createSentValues } from '../synthesize/sentValues';
 import { frameLayout } from '../synthesize/layout';
 import { createSynthesis } from '../synthesize/synthesis';
 import type { CellValues, FrameLayout } from '../synthesize/types';
@@ -36,7 +36,8 @@ export interface Cycle {
 /** Describes the cycle of a content. Throws SynthError as frameLayout and createCellValues do, `nothing_painted` is left to the caller. */
 export function createCycle(content: WaveformContent): Cycle {
   const layout = frameLayout(content);
-  const values = createCellValues(content);
+  // what a lowered peak sent is what a capture holds, reserved cells filled
+  const values = createSentValues(content);
   const { repeats, repeatSamples, symbolCount, usefulSamples } = layout;
   const isAlike = values.isRepeatAlike;
   const cycleRepeats = isAlike ? 1 : repeats;
