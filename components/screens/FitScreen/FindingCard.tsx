@@ -1,7 +1,9 @@
+import type { Href } from 'expo-router';
 import type { ReactNode } from 'react';
 import { StyleSheet, View } from 'react-native';
 import { Button } from '@/components/ui/Button';
 import { Text } from '@/components/ui/Text';
+import { TextLink } from '@/components/ui/TextLink';
 import { color } from '@/components/ui/theme';
 import type { Fit } from '@/lib/contracts/fit';
 import { LengthRuler } from './LengthRuler';
@@ -35,8 +37,7 @@ function moveFinding(event: { key: string; target: HTMLElement; preventDefault: 
 
 /** What a miss without a remedy leaves to do. */
 function withoutRemedy(finding: Finding): string {
-  if (finding.check === 'symbolPeak')
-    return 'It may be meant. To lower it, change the symbol or lower the peak on the drawing table.';
+  if (finding.check === 'symbolPeak') return 'It may be meant: a pack can be made, and its card says this.';
   return finding.hard
     ? 'Nothing in the waveform can mend this. Choose another bench.'
     : 'Nothing in the waveform can mend this. A pack can be made; its card says this.';
@@ -48,6 +49,7 @@ export function FindingCard({
   press,
   busy,
   ruler,
+  tableHref,
 }: {
   finding: Finding;
   /** Null where nothing can be changed here. */
@@ -55,6 +57,8 @@ export function FindingCard({
   busy: boolean;
   /** The length is drawn in its own card where nothing else on the page draws it. */
   ruler: boolean;
+  /** Where the peak is lowered; absent where this revision is not drawn on. */
+  tableHref?: Href | undefined;
 }) {
   const misses = finding.verdict === 'misses';
   return (
@@ -81,6 +85,9 @@ export function FindingCard({
         <Text variant="small" tone="quiet">
           {withoutRemedy(finding)}
         </Text>
+      ) : null}
+      {misses && finding.check === 'symbolPeak' && tableHref ? (
+        <TextLink href={tableHref}>Lower the peak on the drawing table</TextLink>
       ) : null}
     </View>
   );

@@ -58,12 +58,13 @@ export function LoadedFit({
   const of = (verdict: Finding['verdict']) => fit?.findings.filter((finding) => finding.verdict === verdict) ?? [];
   const [misses, unjudged, met] = [of('misses'), of('cannotJudge'), of('meets')];
   const press = pressOf(opened, maySave, remedies);
+  const table = { pathname: '/waveforms/[waveformId]' as const, params: { waveformId } };
   const why = whyFixed(revision, maySave);
   const primary = <Primary {...{ waveformId, opened, fit, benchId, remedies }} maySave={maySave} />;
   return (
     <Page
       title="Fit"
-      backTo={{ pathname: '/waveforms/[waveformId]', params: { waveformId } }}
+      backTo={table}
       headAside={undo}
       actions={
         <View style={styles.actions}>
@@ -98,18 +99,21 @@ export function LoadedFit({
             <Notice
               kind="danger"
               title="The change was not saved."
-              actions={
-                <TextLink href={{ pathname: '/waveforms/[waveformId]', params: { waveformId } }}>
-                  Open the newer
-                </TextLink>
-              }
+              actions={<TextLink href={table}>Open the newer</TextLink>}
             >
               {remedies.problem}
             </Notice>
           ) : null}
           {why && misses.some((finding) => finding.remedies.length > 0) ? <Notice>{why}</Notice> : null}
           {[...misses, ...unjudged].map((finding) => (
-            <FindingCard key={finding.check} finding={finding} busy={remedies.busy} press={press} ruler={phone} />
+            <FindingCard
+              key={finding.check}
+              finding={finding}
+              busy={remedies.busy}
+              press={press}
+              ruler={phone}
+              tableHref={maySave && revision.isHead ? table : undefined}
+            />
           ))}
         </View>
         <View style={phone ? styles.stack : styles.right}>
