@@ -8,6 +8,8 @@ export interface ChosenCapture {
   name: string;
   bytes: number;
   layout: CaptureLayout;
+  /** Who says so. */
+  from: 'bytes' | 'metadata' | 'you';
   /** What the file itself says; null where it says none. */
   clockHz: number | null;
 }
@@ -100,6 +102,7 @@ export function useCapture() {
           name: data.map(({ name }) => name).join(', '),
           bytes: data.reduce((sum, { size }) => sum + size, 0),
           layout: answer.outcome.layout,
+          from: meta ? 'metadata' : 'bytes',
           clockHz: answer.outcome.clockHz,
         });
         setState({ kind: 'chosen', words: null });

@@ -19,6 +19,8 @@ export interface CaptureChoices {
   limitPercent: number | null;
 }
 
+const sayers = { bytes: 'From its bytes', metadata: 'From its metadata', you: 'As you say' };
+
 const bytesText = (bytes: number): string => `${formatNumber(bytes)} bytes`;
 
 /** The chosen file, how its bytes are understood, and the two questions that only the operator can answer. */
@@ -59,7 +61,7 @@ export function CaptureForm({
             <Text variant="small" tone="quiet">
               {bytesText(chosen.bytes)}
             </Text>
-            <Text>{`From its bytes: ${layoutWords(chosen.layout)}.`}</Text>
+            <Text>{`${sayers[chosen.from]}: ${layoutWords(chosen.layout)}.`}</Text>
           </View>
           {chosen.layout.container === 'raw' ? <WordFields layout={chosen.layout} onLayout={onLayout} /> : null}
           <ClockField

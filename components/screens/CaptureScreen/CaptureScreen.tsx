@@ -16,7 +16,7 @@ import { CaptureForm, type CaptureChoices } from './CaptureForm';
 import { CaptureFoot } from './CaptureFoot';
 import { CaptureProgress } from './CaptureProgress';
 import { CaptureResultView } from './CaptureResultView';
-import { nameOf } from './editionWords';
+import { shortNameOf } from './editionWords';
 import { RefusedCaptureView } from './RefusedCaptureView';
 
 /** Editions that are compared with a capture that does not look like its own. */
@@ -93,7 +93,7 @@ function OpenCapture({ pack, content }: { pack: PackDetail; content: WaveformCon
       suggestion={
         suggested
           ? {
-              words: `Read it against ${nameOf(suggested.pack, pack)}`,
+              words: `Read it against ${shortNameOf(suggested.pack, pack)}`,
               onPress: () => {
                 setAgainst(suggested);
                 readAgainst(suggested);
@@ -134,7 +134,7 @@ function OpenCapture({ pack, content }: { pack: PackDetail; content: WaveformCon
             hasPilots={content.tray.some(({ role }) => role === 'pilot')}
             choices={choices}
             onChoices={setChoices}
-            onLayout={(layout) => chosen && capture.setChosen({ ...chosen, layout })}
+            onLayout={(layout) => chosen && capture.setChosen({ ...chosen, layout, from: 'you' })}
           />
         ) : null}
         {result?.kind === 'measured' && state.kind === 'done' ? (

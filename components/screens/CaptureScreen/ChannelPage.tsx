@@ -80,7 +80,7 @@ function Magnitude({
     const db = magnitudeDb[p]!;
     if (Number.isNaN(db)) continue;
     // nothing is drawn where nothing was measured: a notch stays open, a comb's teeth are joined
-    path += `${p - last <= joinedMost ? 'L' : 'M'}${x(p).toFixed(1)} ${y(db).toFixed(1)}`;
+    path += `${p - last <= joinedMost ? 'L' : 'M'}${x(p).toFixed(1)} ${y(db).toFixed(1)}${p - last <= joinedMost ? '' : 'h0'}`;
     last = p;
   }
   return (
@@ -105,7 +105,7 @@ function Magnitude({
           </text>
         </g>
       ))}
-      <path d={path} fill="none" stroke={color.plot.trace} strokeWidth={1.25} />
+      <path d={path} fill="none" stroke={color.plot.trace} strokeWidth={1.5} strokeLinecap="round" />
       <rect x={0.5} y={0.5} width={widthPx - 1} height={heightPx - 1} fill="none" stroke={color.rule.line} />
     </svg>
   );

@@ -7,7 +7,7 @@ import type { Pack, PackDetail } from '@/lib/contracts/packs';
 import { formatNumber, quantityText } from '@/lib/drawing/quantities';
 import type { Likeness, UnrecognisedCapture } from '@/lib/synth';
 import { CheckFile } from '../PackScreen/CheckFile';
-import { editionWords, nameOf } from './editionWords';
+import { editionWords, nameOf, shortNameOf } from './editionWords';
 
 interface Row {
   key: string;
@@ -232,7 +232,16 @@ function Correlation({
             >
               {`needs ${formatNumber(needed, 2, true)}`}
             </text>
-            <text x={5} y={y(needed) + 16} fontSize={11} fill={color.ink.strong} fontFamily="HankenGrotesk_400Regular">
+            <text
+              x={5}
+              y={y(needed) + 16}
+              fontSize={11}
+              fill={color.ink.strong}
+              fontFamily="HankenGrotesk_400Regular"
+              stroke={color.plot.background}
+              strokeWidth={4}
+              paintOrder="stroke"
+            >
               {own}
             </text>
             {found && best?.pack ? (
@@ -244,7 +253,7 @@ function Correlation({
                 fill={color.plot.before}
                 fontFamily="HankenGrotesk_400Regular"
               >
-                {nameOf(best.pack, pack)}
+                {shortNameOf(best.pack, pack)}
               </text>
             ) : null}
             <rect
