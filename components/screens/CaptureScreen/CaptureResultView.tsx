@@ -8,19 +8,13 @@ import { color } from '@/components/ui/theme';
 import { useBreakpoint } from '@/components/ui/useBreakpoint';
 import { OneOf } from '@/components/ui/WordsToPress';
 import { formatNumber, formatQuantity } from '@/lib/drawing/quantities';
-import {
-  causeWords,
-  measuredSymbolsWords,
-  recipeWords,
-  type MeasuredCapture,
-  type NullPower,
-  type WaveformContent,
-} from '@/lib/synth';
+import { causeWords, measuredSymbolsWords, recipeWords, type MeasuredCapture, type NullPower } from '@/lib/synth';
 import { ChannelPage } from './ChannelPage';
 import { ConstellationPage } from './ConstellationPage';
 import { InksPage } from './InksPage';
 import { NullPowerView } from './NullPowerView';
 import { percentOf, signedText, verdictOf } from './captureWords';
+import type { ResultProps } from './resultProps';
 import { SubcarriersPage } from './SubcarriersPage';
 import { SymbolsPage } from './SymbolsPage';
 
@@ -33,12 +27,6 @@ const pages: { value: PageName; label: string }[] = [
   { value: 'constellation', label: 'Constellation' },
   { value: 'channel', label: 'Channel' },
 ];
-
-export interface ResultProps {
-  capture: MeasuredCapture;
-  content: WaveformContent;
-  limitPercent: number | null;
-}
 
 /** What a recognised capture says: the numeral with its recipe, then its pages; on a wide screen all of them. */
 export function CaptureResultView({

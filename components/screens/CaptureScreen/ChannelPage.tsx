@@ -6,7 +6,7 @@ import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
 import { formatNumber, quantityText } from '@/lib/drawing/quantities';
 import type { MeasuredCapture } from '@/lib/synth';
-import type { ResultProps } from './CaptureResultView';
+import type { ResultProps } from './resultProps';
 import { PlotHead } from './PlotHead';
 import { spanOf } from './SubcarriersPage';
 

@@ -6,7 +6,7 @@ import { color } from '@/components/ui/theme';
 import { inkStyleOf } from '@/lib/drawing/inkStyle';
 import { formatNumber } from '@/lib/drawing/quantities';
 import { pointsOf } from '@/lib/synth';
-import type { ResultProps } from './CaptureResultView';
+import type { ResultProps } from './resultProps';
 import { PlotHead } from './PlotHead';
 
 /** Equalized cells as small dots in their ink's colour, and the points that were sent as rings. */

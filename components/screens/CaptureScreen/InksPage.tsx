@@ -3,7 +3,7 @@ import { InkSwatch } from '@/components/drawing/InkSwatch';
 import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
 import { formatNumber } from '@/lib/drawing/quantities';
-import type { ResultProps } from './CaptureResultView';
+import type { ResultProps } from './resultProps';
 import { percentOf, verdictOf } from './captureWords';
 
 /** EVM of each ink whose values the edition knows. */

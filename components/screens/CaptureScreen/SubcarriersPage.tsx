@@ -3,7 +3,7 @@ import { View } from 'react-native';
 import { Straightedge } from '@/components/drawing/Straightedge';
 import { useWidth } from '@/components/drawing/useWidth';
 import { formatNumber } from '@/lib/drawing/quantities';
-import type { ResultProps } from './CaptureResultView';
+import type { ResultProps } from './resultProps';
 import { EvmBars } from './EvmBars';
 import { PlotHead } from './PlotHead';
 import { barsOf } from './SymbolsPage';

@@ -5,7 +5,7 @@ import { Text } from '@/components/ui/Text';
 import { color } from '@/components/ui/theme';
 import { symbolTicks } from '@/lib/drawing/axis';
 import { formatNumber } from '@/lib/drawing/quantities';
-import type { ResultProps } from './CaptureResultView';
+import type { ResultProps } from './resultProps';
 import { EvmBars, type EvmBar } from './EvmBars';
 import { PlotHead } from './PlotHead';
 
