@@ -68,7 +68,8 @@ test('an empty installation: its code, its first administrator, and a second per
   await third.getByRole('button', { name: 'Sign in' }).click();
   await expect(third).toHaveURL(/\/waveforms$/);
 
-  // The code went with its use: a restart prints none.
+  // The code went with its use: a restart prints none. No page asks for anything while the server is away.
+  for (const open of [page, second, third]) await open.close();
   await server.kill();
   await server.restart();
   expect(server.out()).not.toMatch(/code/);
