@@ -18,8 +18,8 @@ export function guessLayout(source: ByteSource, expected: CaptureLayout | null, 
   if (source.bytes === 0) return { ok: false, message: 'The file is empty.' };
   const head = new Uint8Array(Math.min(HEAD_BYTES, source.bytes));
   source.read(0, head.length, head);
-  if (isWav(head)) return readWavHead(head);
-  if (isNpy(head)) return readNpyHead(head, isSplit);
+  if (isWav(head)) return withExpectedBits(readWavHead(head), expected);
+  if (isNpy(head)) return withExpectedBits(readNpyHead(head, isSplit), expected);
   const layout: CaptureLayout['layout'] = isSplit ? 'split' : 'interleaved';
   if (isText(head))
     return {
@@ -35,6 +35,18 @@ export function guessLayout(source: ByteSource, expected: CaptureLayout | null, 
     dataBytes: null,
   };
   return { ok: true, clockHz: null, layout: guessWords(someBytes(source), base) };
+}
+
+/** A head of 16-bit words does not say how many of the bits are used: where it is the file that is expected, its bits are. */
+function withExpectedBits(found: LayoutOutcome, expected: CaptureLayout | null): LayoutOutcome {
+  if (!found.ok || expected === null) return found;
+  const { layout } = found;
+  const isSame =
+    layout.word === 'int16' &&
+    (['container', 'word', 'numberFormat', 'byteOrder', 'layout'] as const).every(
+      (key) => layout[key] === expected[key],
+    );
+  return isSame ? { ...found, layout: { ...layout, bits: expected.bits, align: expected.align } } : found;
 }
 
 /** Digits, signs and separators only, with a letter or two in a first line. */
@@ -92,7 +104,10 @@ function guessWords(bytes: Uint8Array, base: CaptureLayout): CaptureLayout {
       byteOrder: isLittle ? 'little' : 'big',
       bits: isLeft ? 16 - low.zeroBits : isSame && base.align === 'right' ? base.bits : 16,
       align: isLeft ? 'left' : 'right',
-      numberFormat: formatOf(high.centre, isSame ? base.numberFormat : 'twosComplement'),
+      numberFormat:
+        isSame && !isLeft && base.align === 'right' && base.bits < 16
+          ? signOf(high, base)
+          : formatOf(high.centre, isSame ? base.numberFormat : 'twosComplement'),
     };
   }
   if (Math.max(even.entropy, odd.entropy) < 7.9)
@@ -125,6 +140,13 @@ function floatShare(bytes: Uint8Array, isLittle: boolean): number {
   return zeros === count ? 0 : (plausible + zeros) / count;
 }
 
+/** Right-aligned words of fewer than 16 bits: below zero the high byte is full of ones, in offset binary it holds the top bits alone. */
+function signOf(high: ByteFacts, base: CaptureLayout): CaptureLayout['numberFormat'] {
+  if (base.numberFormat === 'offsetBinary')
+    return high.largest < 1 << (base.bits - 8) ? 'offsetBinary' : 'twosComplement';
+  return formatOf(high.centre, base.numberFormat);
+}
+
 interface ByteFacts {
   /** Bits of Shannon entropy of the byte, 0…8. */
   entropy: number;
@@ -132,6 +154,7 @@ interface ByteFacts {
   zeroBits: number;
   /** Mean cosine of the byte as an angle: 1 around 0, −1 around 128. */
   centre: number;
+  largest: number;
 }
 
 function byteFacts(bytes: Uint8Array, first: number): ByteFacts {
@@ -151,9 +174,11 @@ function byteFacts(bytes: Uint8Array, first: number): ByteFacts {
     // a triangle does for a cosine
     centre += share * (1 - Math.abs(((byte + 128) % 256) - 128) / 64);
   }
+  let largest = 255;
+  while (largest > 0 && counts[largest] === 0) largest--;
   let zeroBits = 0;
   if (all !== 0) while (((all >> zeroBits) & 1) === 0) zeroBits++;
-  return { entropy, zeroBits, centre };
+  return { entropy, zeroBits, centre, largest };
 }
 
 function formatOf(centre: number, otherwise: CaptureLayout['numberFormat']): CaptureLayout['numberFormat'] {

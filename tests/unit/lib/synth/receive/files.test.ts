@@ -93,6 +93,16 @@ describe('raw words are told apart by their bytes alone', () => {
     });
   });
 
+  test.each([8, 11, 14])("the pack's %i right-aligned bits in offset binary are read as such", (bits) => {
+    for (const byteOrder of ['little', 'big'] as const) {
+      const expected: CaptureLayout = { ...plainLayout, bits, numberFormat: 'offsetBinary', byteOrder };
+      const bytes = bytesOf(written(expected));
+      expect(guessLayout(bytes, expected)).toMatchObject({ layout: expected });
+      const plain: CaptureLayout = { ...expected, numberFormat: 'twosComplement' };
+      expect(guessLayout(bytesOf(written(plain)), expected)).toMatchObject({ layout: plain });
+    }
+  });
+
   test('the other readings swap bytes and number format', () => {
     const opening = captureReadings([bytesOf(written(plainLayout))], plainLayout);
     const { value } = opening.next();
@@ -133,6 +143,18 @@ describe('containers say what they hold', () => {
         layout: { word: layout.word, byteOrder: layout.byteOrder, container: 'npy' },
       });
       if (found.ok) expectSignal(firstReading([file], found.layout), 0.01);
+    },
+  );
+
+  test.each(['twosComplement', 'offsetBinary'] as const)(
+    "a NumPy file in the pack's own layout has the pack's bits: %s",
+    (numberFormat) => {
+      const expected: CaptureLayout = { ...plainLayout, container: 'npy', bits: 10, numberFormat };
+      const file = bytesOf(Uint8Array.from([...npyHead(expected, COUNT), ...written(expected)]));
+      const found = guessLayout(file, expected);
+      expect(found).toMatchObject({ ok: true, layout: { bits: 10 } });
+      if (found.ok) expectSignal(firstReading([file], found.layout), 1.1 / 511);
+      expect(guessLayout(file, { ...expected, container: 'raw' })).toMatchObject({ layout: { bits: 16 } });
     },
   );
 
