@@ -32,8 +32,8 @@ export type CaptureCommand = ReceiveCommand | ImpairCommand;
 export const captureHelp = `  combwright receive <capture> <pack.zip> [--clock <Hz>] [--channel all|pilots]
       Finds the pack's waveform in recorded I/Q and measures it: offset, delay,
       level, channel, EVM, null cells. The layout is guessed from the bytes (or told:
-      --word int8|int16|float32, --bits, --left-aligned, --big-endian,
-      --offset-binary, --q <file>); a SigMF pair says it itself.
+      --word int8|int16|float32, --bits, --left-aligned, --big-endian or
+      --little-endian, --offset-binary, --q <file>); a SigMF pair says it itself.
       --against <other.zip>  which other pack it looks like, where it is not this one
       --symbols <n>          measures at most so many
   combwright impair <pack.zip> --out <capture.sigmf-data> [--seed <n>]
@@ -48,6 +48,7 @@ const wordOptions = {
   bits: { type: 'string' },
   'left-aligned': { type: 'boolean' },
   'big-endian': { type: 'boolean' },
+  'little-endian': { type: 'boolean' },
   'offset-binary': { type: 'boolean' },
   json: { type: 'boolean' },
 } as const;
@@ -105,17 +106,24 @@ function numbers(name: string, text: string, least: number, most: number, limit:
 }
 
 type WordValues = Record<'word' | 'bits', string | undefined> &
-  Record<'left-aligned' | 'big-endian' | 'offset-binary', boolean | undefined>;
+  Record<'left-aligned' | 'big-endian' | 'little-endian' | 'offset-binary', boolean | undefined>;
 
 function wordsOf(values: WordValues): Partial<CaptureLayout> {
-  const { word } = values;
+  const { word, bits } = values;
   if (word !== undefined && word !== 'int8' && word !== 'int16' && word !== 'float32')
     throw new Wrong('--word is int8, int16 or float32');
+  if (values['big-endian'] && values['little-endian'])
+    throw new Wrong('--big-endian and --little-endian exclude each other');
+  if (word === 'float32' && (bits !== undefined || values['left-aligned'] || values['offset-binary']))
+    throw new Wrong('--bits, --left-aligned and --offset-binary belong to integers');
+  if (word === 'int8' && ((bits !== undefined && bits !== '8') || values['left-aligned']))
+    throw new Wrong('--word int8 has 8 bits and no alignment; fewer bits than a word has belong to int16');
   return {
     ...(word === undefined ? {} : { word, bits: word === 'int8' ? 8 : 16 }),
     ...(values.bits === undefined ? {} : { bits: number('bits', values.bits, 8, 16, true) }),
     ...(values['left-aligned'] ? { align: 'left' as const } : {}),
     ...(values['big-endian'] ? { byteOrder: 'big' as const } : {}),
+    ...(values['little-endian'] ? { byteOrder: 'little' as const } : {}),
     ...(values['offset-binary'] ? { numberFormat: 'offsetBinary' as const } : {}),
   };
 }

@@ -1,4 +1,4 @@
-import { open, rename, rm, writeFile } from 'node:fs/promises';
+import { open, rename, rm, stat, writeFile } from 'node:fs/promises';
 import path from 'node:path';
 import {
   captureReadings,
@@ -21,6 +21,8 @@ const mostDefaultSamples = 2 ** 26;
 
 /** impair pack.zip --out capture: the pack's vector as a receiver might record it, the same bytes for the same seed. */
 export async function impair(command: ImpairCommand, signal: AbortSignal): Promise<Outcome> {
+  if (await isSameFile(command.pack, command.out))
+    return refused('invalid', `${command.out}: the capture would replace the pack. Give another name with --out.`);
   let pack: OpenPack;
   try {
     pack = await openPack(command.pack);
@@ -32,6 +34,16 @@ export async function impair(command: ImpairCommand, signal: AbortSignal): Promi
     return await write(command, pack, signal);
   } finally {
     await pack.close();
+  }
+}
+
+/** The same file under either name, links too. */
+async function isSameFile(one: string, other: string): Promise<boolean> {
+  try {
+    const [a, b] = [await stat(one), await stat(other)];
+    return a.ino === b.ino && a.dev === b.dev;
+  } catch {
+    return false;
   }
 }
 
@@ -87,17 +99,28 @@ async function write(command: ImpairCommand, pack: OpenPack, signal: AbortSignal
     const { saturated } = writer;
     return done(
       [
-        `${command.out}: ${samples} samples at ${capture.clockHz} Hz, seed ${command.impairments.seed}`,
-        `  saturated: ${saturated.samples} samples`,
+        `${command.out}: ${counted(samples)} at ${Number(capture.clockHz.toPrecision(15))} Hz, seed ${command.impairments.seed}`,
+        `  saturated: ${counted(saturated.samples)}`,
+        ...(samples < asked ? [`  cut: the whole would be ${counted(asked)} (--samples)`] : []),
         ...(meta === null ? [] : [`  ${meta}`]),
       ],
-      { file: command.out, meta, samples, clockHz: capture.clockHz, saturated, impairments: command.impairments },
+      {
+        file: command.out,
+        meta,
+        samples,
+        asked,
+        clockHz: capture.clockHz,
+        saturated,
+        impairments: command.impairments,
+      },
     );
   } catch (error) {
     await rm(part, { force: true });
     return refused('io_failed', `${command.out}: ${reasonOf(error)}.`);
   }
 }
+
+const counted = (samples: number): string => `${samples} ${samples === 1 ? 'sample' : 'samples'}`;
 
 /** The vector's samples, full scale 1. Text is indexed first. */
 async function vectorSource(pack: OpenPack): Promise<SampleSource> {
@@ -116,10 +139,14 @@ function activePower(pack: OpenPack): number {
   return activeRmsDbfs === null ? 0 : 10 ** (activeRmsDbfs / 10);
 }
 
-/** SigMF metadata beside a .sigmf-data file whose words SigMF has a type for; null else. */
+/** SigMF metadata beside a .sigmf-data file whose words SigMF has a type for; null else, and what stood there of an earlier file goes. */
 async function writeMeta({ out, layout }: ImpairCommand, clockHz: number): Promise<string | null> {
-  if (!out.endsWith('.sigmf-data') || layout.swapIq || layout.negateQ) return null;
-  if (layout.word === 'int16' && layout.bits < 16) return null;
+  if (!out.endsWith('.sigmf-data')) return null;
+  const file = out.replace(/\.sigmf-data$/, '.sigmf-meta');
+  if (layout.swapIq || layout.negateQ || (layout.word === 'int16' && layout.bits < 16)) {
+    await rm(file, { force: true });
+    return null;
+  }
   const isOffset = layout.numberFormat === 'offsetBinary';
   const order = layout.byteOrder === 'little' ? 'le' : 'be';
   const type =
@@ -130,7 +157,6 @@ async function writeMeta({ out, layout }: ImpairCommand, clockHz: number): Promi
           ? 'cu8'
           : 'ci8'
         : `${isOffset ? 'cu16' : 'ci16'}_${order}`;
-  const file = out.replace(/\.sigmf-data$/, '.sigmf-meta');
   const meta = {
     global: {
       'core:datatype': type,

@@ -140,7 +140,7 @@ async function measure(
   const alike = looking.result();
   const errors = [
     `${command.capture}: does not look like ${pack.words}.`,
-    `  ρ ${result.correlation.value.toFixed(3)}; it takes ${result.correlation.needed.toFixed(2)}, a match is near 1. No EVM is given.`,
+    `  ${correlationWords(result.correlation)} No EVM is given.`,
     ...alike.map((one) => `  ${likenessWords(one, others[one.content]!, command.against[one.content]!)}`),
   ];
   const best = alike.find(({ isFound }) => isFound);
@@ -163,6 +163,12 @@ async function measure(
       ),
     },
   };
+}
+
+/** A place may look alike while what follows does not. */
+function correlationWords({ value, needed }: { value: number; needed: number }): string {
+  if (value < needed) return `ρ ${value.toFixed(3)}; it takes ${needed.toFixed(2)}, a match is near 1.`;
+  return `ρ ${value.toFixed(3)} at one place, but the symbols around it could not be followed: is its clock as said (--clock), within 20 ppm?`;
 }
 
 function likenessWords(one: Likeness, pack: OpenPack, file: string): string {

@@ -1,5 +1,5 @@
 import { spawnSync } from 'node:child_process';
-import { mkdtempSync, readFileSync, rmSync, truncateSync, writeFileSync } from 'node:fs';
+import { existsSync, mkdtempSync, readFileSync, rmSync, truncateSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
 import { parseCommand } from '@/server/cli/arguments';
@@ -78,6 +78,31 @@ test('another edition: exit 1, ρ, and which pack it looks like', () => {
   expect(unlike.stderr).not.toMatch(/EVM \d/);
 });
 
+test('impair replaces no pack, leaves no stale metadata, says what it cut', () => {
+  const before = readFileSync(path.join(folder, 'own.zip'));
+  const same = run('impair', 'own.zip', '--out', './own.zip');
+  expect([same.status, same.stderr]).toEqual([
+    1,
+    './own.zip: the capture would replace the pack. Give another name with --out.\n',
+  ]);
+  expect(readFileSync(path.join(folder, 'own.zip'))).toEqual(before);
+  expect(run('impair', 'own.zip', '--out', 'c.sigmf-data', '--word', 'float32').stdout).toContain('c.sigmf-meta');
+  expect(run('impair', 'own.zip', '--out', 'c.sigmf-data', '--bits', '12', '--left-aligned').status).toBe(0);
+  expect(existsSync(path.join(folder, 'c.sigmf-meta'))).toBe(false);
+  expect(run('receive', 'c.sigmf-data', 'own.zip').stdout).toContain('12-bit integers');
+  expect(run('impair', 'own.zip', '--out', 'd.bin', '--samples', '1').stdout).toContain('d.bin: 1 sample at');
+});
+
+test('a place alone that looks alike is not called too little', () => {
+  const example = (name: string): string => path.resolve('lib/document/examples', name);
+  const burst = [example('burst-with-markers.combwright.json'), example('bench-b-16-bit.bench.json')];
+  expect(run('render', ...burst, '--out', 'burst.zip').status).toBe(0);
+  run('impair', 'burst.zip', '--out', 'e.bin', '--clock-error', '1000');
+  const { status, stderr } = run('receive', 'e.bin', 'burst.zip');
+  expect(status).toBe(1);
+  expect(stderr).toMatch(/ρ 0\.\d+ at one place, but the symbols around it could not be followed/);
+});
+
 test('what cannot be read is said, exit 1', () => {
   writeFileSync(path.join(folder, 'huge.bin'), '');
   truncateSync(path.join(folder, 'huge.bin'), 2 ** 31 + 4); // a hole: it takes no room
@@ -142,4 +167,16 @@ test('impairments are read with their signs', () => {
       },
     },
   });
+});
+
+test.each([
+  [['--word', 'int8', '--bits', '12'], '--word int8 has 8 bits'],
+  [['--word', 'float32', '--offset-binary'], 'belong to integers'],
+  [['--big-endian', '--little-endian'], 'exclude each other'],
+])('words that contradict each other are refused: %j', (words, message) => {
+  for (const command of [
+    ['impair', 'a.zip', '--out', 'a.bin', ...words],
+    ['receive', 'a.bin', 'a.zip', ...words],
+  ])
+    expect(parseCommand(command)).toMatchObject({ ok: false, message: expect.stringContaining(message) as string });
 });
