@@ -11,8 +11,8 @@ import {
 const textBytes = 4 * 1024 * 1024;
 const mostPayloadBits = 2 ** 27;
 
-/** Room that making a pack takes for each byte of it: it is written once, in place; and something to spare. */
-export const roomRatio = 1.1;
+/** Room that making a pack takes for each byte of it: the vector by itself, then the zip with its copy, and something to spare. */
+export const roomRatio = 2.2;
 
 /** Upper bound of a pack's bytes, known before anything is rendered. */
 export function packBytesOf(content: WaveformContent, bench: BenchContent): number {

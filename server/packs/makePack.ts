@@ -1,4 +1,5 @@
 import { createHash } from 'node:crypto';
+import { open } from 'node:fs/promises';
 import path from 'node:path';
 import { baseName as baseNameOf } from '@/lib/document/packNames';
 import type { Manifest } from '@/lib/document/manifestSchema';
@@ -15,15 +16,7 @@ import {
   type WordScale,
 } from '@/lib/synth';
 import type { PayloadCount } from './entryChunks.ts';
-import {
-  saturatedWordsOf,
-  sideEntries,
-  stateWordsOf,
-  vectorEntriesOf,
-  vectorNameOf,
-  type EntryInput,
-  type SideEntry,
-} from './entries.ts';
+import { saturatedWordsOf, sideEntries, stateWordsOf, vectorEntriesOf, type EntryInput } from './entries.ts';
 import { packBytesOf } from './estimate.ts';
 import { digestPlace } from './fileDigest.ts';
 import { levelCardText } from './levelCardText.ts';
@@ -37,8 +30,9 @@ import { openPool, type WorkPool } from './pool/workPool.ts';
 import { noticesOf, refusalOf } from './refusals.ts';
 import { makeWorkFolder, publishFile, removeWorkFolder } from './tmpFiles.ts';
 import { proveVector, type VectorProof } from './vectorProof.ts';
+import type { VectorPlace } from './vectorPlaces.ts';
 import { writeVector } from './vectorWriter.ts';
-import { createZipFile, type ZipFile, type ZipRoom } from './zipFile.ts';
+import { writeZip, type ZipSource } from './zipWriter.ts';
 
 /** Where each step ends on the bar of the whole job. */
 const stepEnds: Record<PackStep, [from: number, to: number]> = {
@@ -47,6 +41,9 @@ const stepEnds: Record<PackStep, [from: number, to: number]> = {
   readingBack: [0.5, 0.85],
   writing: [0.85, 1],
 };
+
+/** Of the last step: the zip's bytes; the rest is its digest. */
+const writtenShare = 0.8;
 
 function stepProgress(report: ((progress: PackProgress) => void) | undefined, step: PackStep) {
   const [from, to] = stepEnds[step];
@@ -130,7 +127,8 @@ export function describePack(given: {
       stateWords,
       title: document.about.title,
       benchName: profile.about.name,
-      vectorSha256: proof.sha256,
+      vectorSha256:
+        proof.files.length === 1 ? proof.sha256 : `${proof.sha256} (the -i file with the -q file behind it)`,
       saturatedWords: saturatedWordsOf(proof),
       notices,
     },
@@ -198,96 +196,101 @@ export function createTally() {
   };
 }
 
-/** Rooms for the vector's files at the beginning of the zip: their names' lengths are known before their digests are. */
-function reserveVector(zip: ZipFile, { document, profile, state }: PackRequest): ZipRoom[] {
-  const baseName = baseNameFor(document, profile, state, '0'.repeat(64));
-  return vectorFiles(document.content, profile.content).map(({ ending, bytes }) =>
-    zip.reserve(vectorNameOf(baseName, ending, profile).length, bytes),
-  );
+/** One of the vector's files, under a name of the work folder until its digest gives it its own. */
+interface VectorFile {
+  path: string;
+  place: VectorPlace;
 }
 
-async function make(request: PackRequest, zip: ZipFile, pool: WorkPool): Promise<Omit<MadePack, 'file' | 'fileName'>> {
+async function openVector({ document, profile }: PackRequest, folder: string, opened: VectorFile[]): Promise<void> {
+  for (const [i, { bytes }] of vectorFiles(document.content, profile.content).entries()) {
+    const file = path.join(folder, `vector-${i}`);
+    opened.push({ path: file, place: { handle: await open(file, 'wx+'), offsetBytes: 0, bytes } });
+  }
+}
+
+/** What stands in the files, whatever should. */
+const finishedPlaces = (vector: readonly VectorFile[]): Promise<VectorPlace[]> =>
+  Promise.all(vector.map(async ({ place }) => ({ ...place, bytes: (await place.handle.stat()).size })));
+
+async function make(
+  request: PackRequest,
+  { vector, zipFile, pool }: { vector: readonly VectorFile[]; zipFile: string; pool: WorkPool },
+): Promise<Omit<MadePack, 'file' | 'fileName'>> {
   const { document, profile, state, signal, onProgress } = request;
   const { content } = document;
   const bench = profile.content;
   const step = (name: PackStep) => ({ signal, onProgress: stepProgress(onProgress, name) });
-  const check = () => throwIfCancelled(signal);
 
   const measure = await measureRendering(pool, content, step('rendering'));
   const scale = scaleOf(document, profile, measure);
-  const rooms = reserveVector(zip, request);
-  refuseSaturation(document, await writeVector(pool, content, bench, scale, rooms, step('quantizing')));
-  const proof = await proveVector(pool, content, bench, scale, rooms, step('readingBack'));
+  const places = vector.map(({ place }) => place);
+  refuseSaturation(document, await writeVector(pool, content, bench, scale, places, step('quantizing')));
+  const proof = await proveVector(pool, content, bench, scale, await finishedPlaces(vector), step('readingBack'));
   requireProof(proof, measure.stats.samples);
 
   const { onProgress: writing } = step('writing');
   const reduction = await measureReduction(content, signal);
   const pack = describePack({ document, profile, state, scale, measure, proof, reduction });
-  for (const [i, { name }] of pack.vectors.entries()) await zip.settle(rooms[i]!, name, proof.files[i]!.crc32);
-  // The zip's own digest is begun while the other entries are made.
-  const { fd } = zip.handle;
-  const settledBytes = zip.bytes;
-  const place = (from: number, end: number) => ({ fd, offsetBytes: from, bytes: end - from });
-  const begun = digestPlace(pool, 'zip', 'sha256', place(0, settledBytes), check, false);
-  begun.catch(() => undefined); // waited for below, unless something fails before
   const files: Manifest['files'] = [...pack.vectors];
-  const add = async (entry: SideEntry) => {
-    const tally = createTally();
-    await zip.append(entry.name, tally.through(entry.chunks()), {
-      isLarge: isLargeEntry(entry, document, profile),
-      signal,
-    });
-    files.push({ name: entry.name, role: entry.role, ...tally.result() });
-  };
-  try {
-    for (const entry of pack.before) await add(entry);
-    // The manifest lists what stands behind it, which is small: texts and the two inputs.
-    const behind = pack.after.map((entry) => {
+  let manifest: Manifest | null = null;
+  let manifestText = '';
+  const most = packBytesOf(content, bench);
+  let bytes = 0;
+  await writeZip(zipFile, entriesOf(), {
+    signal,
+    onBytes: (count) => writing((writtenShare * (bytes += count)) / most),
+  });
+
+  /** One after another: the manifest lists what stands before it, and the texts and the two inputs behind it. */
+  function* entriesOf(): Generator<ZipSource> {
+    for (const [i, { name }] of pack.vectors.entries()) yield { name, from: vector[i]!.path };
+    for (const { name, role, chunks } of pack.before) {
       const tally = createTally();
-      const chunks = [...tally.through(entry.chunks())];
-      files.push({ name: entry.name, role: entry.role, ...tally.result() });
-      return { name: entry.name, chunks };
+      yield { name, from: () => tally.through(chunks()) };
+      files.push({ name, role, ...tally.result() });
+    }
+    const behind = pack.after.map(({ name, role, chunks }) => {
+      const tally = createTally();
+      const made = [...tally.through(chunks())];
+      files.push({ name, role, ...tally.result() });
+      return { name, from: () => made };
     });
-    const manifest = pack.manifestOf(files);
-    const manifestText = manifestTextOf(manifest);
-    await zip.append('manifest.json', [Buffer.from(manifestText, 'utf8')], { signal });
-    for (const { name, chunks } of behind) await zip.append(name, chunks, { signal });
-    const fileBytes = await zip.finish();
-    writing(0.5);
-    await begun;
-    writing(0.9);
-    const fileSha256 = await digestPlace(pool, 'zip', 'sha256', place(settledBytes, fileBytes), check);
+    manifest = pack.manifestOf(files);
+    manifestText = manifestTextOf(manifest);
+    yield { name: 'manifest.json', from: () => [Buffer.from(manifestText, 'utf8')] };
+    yield* behind;
+  }
+
+  const zip = await open(zipFile, 'r');
+  try {
+    const { size } = await zip.stat();
+    const place = { fd: zip.fd, offsetBytes: 0, bytes: size };
+    const fileSha256 = await digestPlace(pool, 'zip', 'sha256', place, () => throwIfCancelled(signal));
     return {
-      fileBytes,
+      fileBytes: size,
       fileSha256,
       baseName: pack.baseName,
       vectorName: pack.vectors[0]!.name,
       vectorSha256: proof.sha256,
-      manifest,
+      manifest: manifest!,
       manifestText,
       notices: pack.notices,
     };
   } finally {
-    await begun.catch(() => undefined); // it reads the file, which is closed next
+    await zip.close();
   }
 }
 
-/** Markers, references: what may grow with the repeats, beside the vector. */
-function isLargeEntry({ role }: SideEntry, document: WaveformDocument, profile: BenchProfile): boolean {
-  const canGrow = role === 'markers' || role === 'reference' || role === 'referenceSent';
-  return canGrow && packBytesOf(document.content, profile.content) >= 2 ** 32 - 1;
-}
-
 /**
- * Renders, writes, reads back, proves and zips. The vector is written where it stands in the zip, and read back there. Either a whole pack
- * stands under its name afterwards, or nothing does and the answer says why: temporaries lie in a folder of their own, which goes in both
- * cases.
+ * Renders, writes, reads back, proves and zips. Either a whole pack stands under its name afterwards, or nothing does and the answer says
+ * why: temporaries lie in a folder of their own, which goes in both cases.
  */
 export async function makePack(request: PackRequest): Promise<PackResult> {
   const { document, profile, signal } = request;
   let folder: string | null = null;
   let pool: WorkPool | null = null;
-  let zip: ZipFile | null = null;
+  const vector: VectorFile[] = [];
   try {
     const refusal = refusalOf(document, profile);
     if (refusal) throw refusal;
@@ -296,8 +299,8 @@ export async function makePack(request: PackRequest): Promise<PackResult> {
     const zipFile = path.join(folder, 'pack.zip');
     pool = openPool(document.content, profile.content, request.threads);
     signal?.addEventListener('abort', () => void pool?.close(), { once: true }); // no need to wait for what is under way
-    zip = await createZipFile(zipFile);
-    const made = await make(request, zip, pool);
+    await openVector(request, folder, vector);
+    const made = await make(request, { vector, zipFile, pool });
     const fileName = `${made.baseName}.zip`;
     const file = request.outFile(fileName);
     throwIfCancelled(signal);
@@ -309,7 +312,7 @@ export async function makePack(request: PackRequest): Promise<PackResult> {
     return { ok: false, code, message, issues };
   } finally {
     await pool?.close();
-    await zip?.close();
+    for (const { place } of vector) await place.handle.close();
     if (folder !== null) await removeWorkFolder(folder);
   }
 }

@@ -1,11 +1,17 @@
 import type { FileHandle } from 'node:fs/promises';
 import type { VectorFile } from '@/lib/synth';
 
-/** Where one of a vector's files lies in an open file: in a pack, behind the head of its entry. */
+/** Where one of a vector's files lies in an open file: the whole of it, or in a pack, behind the head of its entry. */
 export interface VectorPlace {
   handle: FileHandle;
   offsetBytes: number;
   bytes: number;
+}
+
+/** Writes all of a buffer: a nearly full disk takes a part without an error, and refuses only the next write. */
+export async function writeAll(handle: FileHandle, bytes: Uint8Array, position: number): Promise<void> {
+  for (let done = 0; done < bytes.length;)
+    done += (await handle.write(bytes, done, bytes.length - done, position + done)).bytesWritten;
 }
 
 /** Fills the first `bytes` bytes of a buffer from a file's `position` on. */

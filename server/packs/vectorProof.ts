@@ -1,5 +1,4 @@
 import { createHash } from 'node:crypto';
-import { crc32 } from 'node:zlib';
 import {
   createCellPower,
   createCellValues,
@@ -33,7 +32,6 @@ export interface VectorProof {
     ending: VectorFile['ending'];
     bytes: number;
     sha256: string;
-    crc32: number;
   }[];
   /** The first four samples of each file, heads left out. */
   firstParts: Uint8Array[];
@@ -194,7 +192,7 @@ async function compareStretches(
   return { ...found, evm: meter.report(), worstUnpainted: lines.worstUnpainted(), reconstructedPeak };
 }
 
-/** SHA-256 and the zip's sum of every byte, in order; on the way, copied samples are compared with what they copy. */
+/** SHA-256 of every byte, in order; on the way, copied samples are compared with what they copy. */
 async function digestFiles(
   files: readonly VectorFile[],
   places: readonly VectorPlace[],
@@ -209,7 +207,6 @@ async function digestFiles(
   for (const [i, { role, ending, head, bytesPerSample, wordsPerSample }] of files.entries()) {
     const { handle, offsetBytes, bytes } = places[i]!;
     const own = createHash('sha256');
-    let sum = 0;
     const end = offsetBytes + bytes;
     const at = (sample: number): number => offsetBytes + head.length + sample * bytesPerSample;
     const copied =
@@ -227,7 +224,6 @@ async function digestFiles(
         check();
         own.update(block);
         if (i > 0) joint.update(block);
-        sum = crc32(block, sum);
         if (from === copied.from && to === copied.end) {
           await readInto(handle, earlier, block.length, position - copied.back);
           const words = bytesPerSample / wordsPerSample;
@@ -238,7 +234,7 @@ async function digestFiles(
       }
     }
     if (i === 0) joint = own.copy();
-    found.push({ role, ending, bytes, sha256: own.digest('hex'), crc32: sum });
+    found.push({ role, ending, bytes, sha256: own.digest('hex') });
   }
   return { files: found, sha256: joint.digest('hex'), wordsDifferent };
 }

@@ -12,8 +12,7 @@ import { throwIfCancelled } from './packError.ts';
 import { cutPiece, planVector, stretchMost, type FilePiece } from './pool/stretchPlan.ts';
 import { inOrder, type WorkPool } from './pool/workPool.ts';
 import type { TaskOf } from './pool/workTasks.ts';
-import { readInto, type VectorPlace } from './vectorPlaces.ts';
-import { writeAll } from './zipFile.ts';
+import { readInto, writeAll, type VectorPlace } from './vectorPlaces.ts';
 
 const copyBytes = 1 << 22;
 

@@ -44,7 +44,8 @@ test('a server killed while it renders: nothing half is offered, the next start 
   const second = spawnServer(env);
   ask = await signInAsInes(await second.ready);
   job = await ask('GET', `/pack-jobs/${job.jobId}`);
-  if (!hasEnded()) expect(job).toMatchObject({ startedAgain: true, packId: null });
+  await until(() => job.startedAgain || hasEnded());
+  expect(job.startedAgain).toBe(true);
   await until(hasEnded);
   expect(job).toMatchObject({ state: 'done', problem: null });
   const pack: PackDetail = await ask('GET', `/packs/${job.packId}`);
