@@ -91,12 +91,16 @@ describe('cells below a pixel', () => {
     const random = seededRandom(20270301);
     for (let round = 0; round < 60; round++) {
       const runs: number[] = [];
-      for (let ink = -1; runs.length < 2 + 60 * random(); ) {
+      for (let ink = -1; runs.length < 2 + 60 * random();) {
         ink = (ink + 1 + Math.floor(random() * (styles.length - 1))) % styles.length;
         runs.push(1 + Math.floor(random() ** 3 * 40), ink);
       }
       const row = runs.flatMap((entry, i) => (i % 2 === 0 ? new Array<number>(entry).fill(runs[i + 1]!) : []));
-      const [first, px, columns] = [row.length * (random() - 0.3), 0.05 + 0.94 * random(), 1 + Math.floor(random() * 90)];
+      const [first, px, columns] = [
+        row.length * (random() - 0.3),
+        0.05 + 0.94 * random(),
+        1 + Math.floor(random() * 90),
+      ];
       const out = new Int16Array(columns);
       reduceRuns(runs, first, px, priorities, out);
       expect([...out]).toEqual(reduce(row, first, px, columns));

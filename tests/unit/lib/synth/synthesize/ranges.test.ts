@@ -166,7 +166,9 @@ test('marker bytes from any sample on are those of the whole file', () => {
   fc.assert(
     fc.property(
       arbitraryContent(),
-      fc.array(fc.tuple(fc.double({ min: 0, max: 1, noNaN: true }), fc.integer({ min: 1, max: 999 })), { maxLength: 6 }),
+      fc.array(fc.tuple(fc.double({ min: 0, max: 1, noNaN: true }), fc.integer({ min: 1, max: 999 })), {
+        maxLength: 6,
+      }),
       (content, places) => {
         const source = markerBytes(content);
         const whole = new Uint8Array(source.samples);
