@@ -31,9 +31,10 @@ export type CaptureCommand = ReceiveCommand | ImpairCommand;
 
 export const captureHelp = `  combwright receive <capture> <pack.zip> [--clock <Hz>] [--channel all|pilots]
       Finds the pack's waveform in recorded I/Q and measures it: offset, delay,
-      level, channel, EVM, null cells. The layout is guessed from the bytes (or told:
-      --word int8|int16|float32, --bits, --left-aligned, --big-endian or
-      --little-endian, --offset-binary, --q <file>); a SigMF pair says it itself.
+      level, channel, EVM, null cells. The layout is guessed from the bytes or told:
+      --word int8|int16|float32, --bits <n>, --left-aligned, --big-endian,
+      --little-endian, --offset-binary, --swap-iq, --negate-q, --q <file for Q>.
+      A SigMF pair says it itself.
       --against <other.zip>  which other pack it looks like, where it is not this one
       --symbols <n>          measures at most so many
   combwright impair <pack.zip> --out <capture.sigmf-data> [--seed <n>]
@@ -50,6 +51,8 @@ const wordOptions = {
   'big-endian': { type: 'boolean' },
   'little-endian': { type: 'boolean' },
   'offset-binary': { type: 'boolean' },
+  'swap-iq': { type: 'boolean' },
+  'negate-q': { type: 'boolean' },
   json: { type: 'boolean' },
 } as const;
 
@@ -78,8 +81,6 @@ const impairOptions = {
   clip: { type: 'string' },
   'clock-ratio': { type: 'string' },
   'clock-error': { type: 'string' },
-  'swap-iq': { type: 'boolean' },
-  'negate-q': { type: 'boolean' },
 } as const;
 
 /** A wrong value of an option; its message is for people. */
@@ -106,7 +107,10 @@ function numbers(name: string, text: string, least: number, most: number, limit:
 }
 
 type WordValues = Record<'word' | 'bits', string | undefined> &
-  Record<'left-aligned' | 'big-endian' | 'little-endian' | 'offset-binary', boolean | undefined>;
+  Record<
+    'left-aligned' | 'big-endian' | 'little-endian' | 'offset-binary' | 'swap-iq' | 'negate-q',
+    boolean | undefined
+  >;
 
 function wordsOf(values: WordValues): Partial<CaptureLayout> {
   const { word, bits } = values;
@@ -125,6 +129,8 @@ function wordsOf(values: WordValues): Partial<CaptureLayout> {
     ...(values['big-endian'] ? { byteOrder: 'big' as const } : {}),
     ...(values['little-endian'] ? { byteOrder: 'little' as const } : {}),
     ...(values['offset-binary'] ? { numberFormat: 'offsetBinary' as const } : {}),
+    ...(values['swap-iq'] ? { swapIq: true } : {}),
+    ...(values['negate-q'] ? { negateQ: true } : {}),
   };
 }
 
@@ -222,8 +228,8 @@ function parseImpair(argv: string[]): ImpairCommand {
       align: words.align ?? 'right',
       numberFormat: words.numberFormat ?? 'twosComplement',
       byteOrder: words.byteOrder ?? 'little',
-      swapIq: values['swap-iq'] ?? false,
-      negateQ: values['negate-q'] ?? false,
+      swapIq: words.swapIq ?? false,
+      negateQ: words.negateQ ?? false,
     },
     impairments: {
       ...noImpairments,

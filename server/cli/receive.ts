@@ -234,7 +234,9 @@ function measuredLines(
     recipeWords(result),
     measuredSymbolsWords(result),
     cause,
-    result.isCut ? `The first ${result.symbols} symbols were measured; the capture holds more (--symbols).` : null,
+    result.isCut
+      ? `${result.symbols === 1 ? 'The first symbol was' : `The first ${result.symbols} symbols were`} measured; the capture holds more (--symbols).`
+      : null,
     result.lostSubcarriers > 0
       ? `${result.lostSubcarriers} subcarriers lie outside of the capture's band: no figure of them.`
       : null,

@@ -36,7 +36,7 @@ export function* captureReadings(
       if (!other.ok) return other;
       split = { source: second!, rows: other.rows };
     }
-    return { ok: true, readings: [{ words: '', source: csvSource(first, indexed.rows, split) }] };
+    return { ok: true, readings: [{ words: '', source: turnedSource(csvSource(first, indexed.rows, split), layout) }] };
   }
   const readings = [{ words: '', source: wordSource(sources, layout) }];
   if (layout.word !== 'int8') {
@@ -54,6 +54,23 @@ export function* captureReadings(
     });
   }
   return { ok: true, readings };
+}
+
+/** Text's columns as the layout has them: I and Q swapped, Q negated. */
+function turnedSource(source: SampleSource, { swapIq, negateQ }: CaptureLayout): SampleSource {
+  if (!swapIq && !negateQ) return source;
+  const sign = negateQ ? -1 : 1;
+  return {
+    samples: source.samples,
+    read(first, count, out) {
+      source.read(first, count, out);
+      for (let i = 0; i < 2 * count; i += 2) {
+        const [one, other] = [out[i]!, out[i + 1]!];
+        out[i] = swapIq ? other : one;
+        out[i + 1] = sign * (swapIq ? one : other);
+      }
+    },
+  };
 }
 
 /** Samples of words, full scale 1. Bytes behind the last whole sample are left out; floats that are no numbers read as 0. */

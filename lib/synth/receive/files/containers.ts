@@ -38,7 +38,8 @@ export function readWavHead(head: Uint8Array): LayoutOutcome {
     if (name === 'data') {
       if (format === null) return refuse('The WAV file has no format before its data.');
       const { tag, channels, bits, clockHz } = format;
-      if (channels !== 2) return refuse(`The WAV file has ${channels} channels; I and Q take two.`);
+      if (channels !== 2)
+        return refuse(`The WAV file has ${channels} ${channels === 1 ? 'channel' : 'channels'}; I and Q take two.`);
       const isFloat = tag === FLOAT && bits === 32;
       if (!isFloat && !(tag === PCM && (bits === 8 || bits === 16)))
         return refuse(`The WAV file has ${bits}-bit words of type ${tag}; 8 and 16 bits and 32-bit floats are read.`);
@@ -88,17 +89,17 @@ export function readNpyHead(head: Uint8Array, isSplit = false): LayoutOutcome {
   if (!type || !shape) return refuse('The NumPy file holds no plain numbers.');
   if (/'fortran_order':\s*True/.test(text)) return refuse('The NumPy file is in Fortran order; C order is read.');
   const kind = `${type[2]}${type[3]}`;
+  const word = ({ i1: 'int8', u1: 'int8', i2: 'int16', u2: 'int16', f4: 'float32', c8: 'float32' } as const)[
+    kind as 'i1'
+  ] as 'int8' | 'int16' | 'float32' | undefined;
+  if (word === undefined)
+    return refuse(`The NumPy file has items of type ${kind}; i1, u1, i2, u2, f4 and c8 are read.`);
   const isComplex = kind === 'c8';
   const isRow = shape.length === 2 && shape[1] === '2';
   if (!(isComplex ? shape.length === 1 : isRow || (isSplit && shape.length === 1)))
     return refuse(
       `The NumPy file has the shape (${shape.join(', ')}); (samples, 2), or (samples) of complex64, is read.`,
     );
-  const word = ({ i1: 'int8', u1: 'int8', i2: 'int16', u2: 'int16', f4: 'float32', c8: 'float32' } as const)[
-    kind as 'i1'
-  ] as 'int8' | 'int16' | 'float32' | undefined;
-  if (word === undefined)
-    return refuse(`The NumPy file has items of type ${kind}; i1, u1, i2, u2, f4 and c8 are read.`);
   return {
     ok: true,
     clockHz: null,

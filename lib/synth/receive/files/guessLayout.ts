@@ -12,7 +12,7 @@ const STEP_BYTES = 64;
  * A file's layout from its bytes and what is expected (the pack's own layout, or null). A container says what it holds; raw words are told
  * apart by their exponents (floats), by which byte is the quieter one (16 bits and their order), by low bits that are always 0 (left-aligned)
  * and by where the quiet byte stands (two's complement around 0, offset binary around the middle). What the bytes leave open is taken from
- * `expected`. `isSplit`: the file is one of two, I's and Q's.
+ * `expected`, but for swapped or negated components: those are the generator's. `isSplit`: the file is one of two, I's and Q's.
  */
 export function guessLayout(source: ByteSource, expected: CaptureLayout | null, isSplit = false): LayoutOutcome {
   if (source.bytes === 0) return { ok: false, message: 'The file is empty.' };
@@ -25,12 +25,15 @@ export function guessLayout(source: ByteSource, expected: CaptureLayout | null, 
     return {
       ok: true,
       clockHz: null,
-      layout: { ...plainLayout, container: 'csv', word: 'float32', layout, swapIq: expected?.swapIq ?? false },
+      layout: { ...plainLayout, container: 'csv', word: 'float32', layout },
     };
   const base: CaptureLayout = {
     ...(expected !== null && expected.container !== 'csv' ? expected : plainLayout),
     container: 'raw',
     layout,
+    // what a profile swaps for its generator's sake stands right on the air again
+    swapIq: false,
+    negateQ: false,
     headBytes: 0,
     dataBytes: null,
   };

@@ -86,11 +86,15 @@ describe('raw words are told apart by their bytes alone', () => {
     },
   );
 
-  test("what the bytes leave open is the pack's: 12 bits right-aligned, Q first", () => {
-    const expected = { ...plainLayout, bits: 12, swapIq: true };
-    expect(guessLayout(bytesOf(written(expected)), expected)).toMatchObject({
-      layout: { bits: 12, align: 'right', swapIq: true },
-    });
+  test("what the bytes leave open is the pack's: 12 bits right-aligned", () => {
+    const expected = { ...plainLayout, bits: 12 };
+    expect(guessLayout(bytesOf(written(expected)), expected)).toMatchObject({ layout: { bits: 12, align: 'right' } });
+  });
+
+  test('components that are swapped for the generator are not taken for swapped in a capture', () => {
+    const expected = { ...plainLayout, swapIq: true, negateQ: true };
+    for (const file of [bytesOf(written(plainLayout)), textOf('I,Q\n0.1,0.2\n')])
+      expect(guessLayout(file, expected)).toMatchObject({ layout: { swapIq: false, negateQ: false } });
   });
 
   test.each([8, 11, 14])("the pack's %i right-aligned bits in offset binary are read as such", (bits) => {
@@ -175,6 +179,19 @@ describe('containers say what they hold', () => {
     }
   });
 
+  test('columns that are told to be swapped and negated are', () => {
+    const layout: CaptureLayout = { ...plainLayout, container: 'csv', word: 'float32' };
+    const read = (changes: Partial<CaptureLayout>): number[] => {
+      const out = new Float64Array(4);
+      firstReading([textOf('I,Q\n1,2\n3,4\n')], { ...layout, ...changes }).read(0, 2, out);
+      return [...out];
+    };
+    expect(read({})).toEqual([1, 2, 3, 4]);
+    expect(read({ swapIq: true })).toEqual([2, 1, 4, 3]);
+    expect(read({ negateQ: true })).toEqual([1, -2, 3, -4]);
+    expect(read({ swapIq: true, negateQ: true })).toEqual([2, -1, 4, -3]);
+  });
+
   test("I's and Q's files are read side by side", () => {
     const whole = written(plainLayout);
     const column = (first: number): ByteSource =>
@@ -213,6 +230,15 @@ test.each([
     '6 channels',
   ],
   [() => guessLayout(bytesOf(npyHead(plainLayout, 4).slice(0, 40)), null), 'ends in its head'],
+  [
+    // NumPy's own complex numbers are of 16 bytes
+    () => {
+      const head = npyHead({ ...plainLayout, word: 'float32' }, 4);
+      const text = String.fromCharCode(...head).replace("'<c8', ", "'<c16',");
+      return guessLayout(bytesOf(Uint8Array.from(text, (letter) => letter.charCodeAt(0))), null);
+    },
+    'items of type c16',
+  ],
   [() => readSigmfMeta('{'), 'no JSON'],
   [() => readSigmfMeta('{"global":{"core:datatype":"rf32_le"}}'), 'rf32_le'],
   [() => readSigmfMeta('{"global":{"core:datatype":"cf32_le","core:num_channels":2}}'), 'several channels'],
