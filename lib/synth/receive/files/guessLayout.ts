@@ -92,20 +92,21 @@ function guessWords(bytes: Uint8Array, base: CaptureLayout): CaptureLayout {
   const even = byteFacts(bytes, 0);
   const odd = byteFacts(bytes, 1);
   // low bits that are never set belong to the low byte of a left-aligned word
-  const evenLow = even.zeroBits > 0 && odd.zeroBits === 0;
-  const oddLow = odd.zeroBits > 0 && even.zeroBits === 0;
+  const evenLow = isLowByte(even, odd, base);
+  const oddLow = isLowByte(odd, even, base);
   const apart = even.entropy - odd.entropy;
   if (evenLow || oddLow || Math.abs(apart) > 0.35) {
     const isLittle = evenLow || (!oddLow && apart > 0);
     const high = isLittle ? odd : even;
     const low = isLittle ? even : odd;
-    const isLeft = low.zeroBits > 0 && low.zeroBits <= 8;
+    const zeroBits = evenLow || oddLow ? low.zeroBits : low.zeroBits % 8;
+    const isLeft = zeroBits > 0;
     const isSame = base.word === 'int16';
     return {
       ...base,
       word: 'int16',
       byteOrder: isLittle ? 'little' : 'big',
-      bits: isLeft ? 16 - low.zeroBits : isSame && base.align === 'right' ? base.bits : 16,
+      bits: isLeft ? 16 - zeroBits : isSame && base.align === 'right' ? base.bits : 16,
       align: isLeft ? 'left' : 'right',
       numberFormat:
         isSame && !isLeft && base.align === 'right' && base.bits < 16
@@ -125,6 +126,17 @@ function guessWords(bytes: Uint8Array, base: CaptureLayout): CaptureLayout {
       ),
     };
   return base;
+}
+
+/**
+ * True for the low byte of left-aligned words: low bits of it, or all of it, are never set. Expected right-aligned offset binary of 8 bits
+ * never sets its high byte.
+ */
+function isLowByte(one: ByteFacts, other: ByteFacts, base: CaptureLayout): boolean {
+  if (other.zeroBits > 0 || one.zeroBits === 0) return false;
+  const isHighEmpty =
+    base.word === 'int16' && base.align === 'right' && base.bits === 8 && base.numberFormat === 'offsetBinary';
+  return one.zeroBits < 8 || !isHighEmpty;
 }
 
 /** Share of words that are numbers a receiver would write: 0, or between 2^−60 and 2^20. */
@@ -153,7 +165,7 @@ function signOf(high: ByteFacts, base: CaptureLayout): CaptureLayout['numberForm
 interface ByteFacts {
   /** Bits of Shannon entropy of the byte, 0…8. */
   entropy: number;
-  /** Low bits that are 0 in each of them; 0 where all bytes are 0. */
+  /** Low bits that are 0 in each of them: 8 where all bytes are 0. */
   zeroBits: number;
   /** Mean cosine of the byte as an angle: 1 around 0, −1 around 128. */
   centre: number;
@@ -180,7 +192,7 @@ function byteFacts(bytes: Uint8Array, first: number): ByteFacts {
   let largest = 255;
   while (largest > 0 && counts[largest] === 0) largest--;
   let zeroBits = 0;
-  if (all !== 0) while (((all >> zeroBits) & 1) === 0) zeroBits++;
+  while (zeroBits < 8 && ((all >> zeroBits) & 1) === 0) zeroBits++;
   return { entropy, zeroBits, centre, largest };
 }
 

@@ -68,6 +68,8 @@ const layouts: Partial<CaptureLayout>[] = [
   { numberFormat: 'offsetBinary', byteOrder: 'big' },
   { bits: 12, align: 'left' },
   { bits: 14, align: 'left', byteOrder: 'big' },
+  { bits: 8, align: 'left' },
+  { bits: 8, align: 'left', byteOrder: 'big', numberFormat: 'offsetBinary' },
   { word: 'int8', bits: 8 },
   { word: 'int8', bits: 8, numberFormat: 'offsetBinary' },
   { word: 'float32' },
