@@ -47,7 +47,7 @@ const problemOf: Record<PackErrorCode, ProblemCode> = {
 type Failure = { code: ProblemCode; detail: string };
 
 /** Jobs lie in a table, oldest first; one thread renders at a time. */
-export function createPackJobs(deps: Deps, rendering: Rendering): PackJobs {
+export function createPackJobs(deps: Deps, rendering: Rendering, { retryMs = RETRY_MS } = {}): PackJobs {
   const { store, clock, lifecycle, log, config } = deps;
   const tmpFolder = path.join(config.dataDir, 'tmp');
   mkdirSync(tmpFolder, { recursive: true });
@@ -67,11 +67,14 @@ export function createPackJobs(deps: Deps, rendering: Rendering): PackJobs {
     return found?.isFile() && found.size === stored.fileBytes ? file : null;
   }
 
-  /** A killed server left them: anew once, since it may have been this very job that ended it. */
+  /**
+   * Nothing renders, and yet they are running: a killed server left them, or a database that could not be written (a full disk). Anew
+   * once, since it may have been this very job that ended it.
+   */
   function takeUpLeftJobs(): void {
     for (const job of repo.listRunningJobs(store.db)) {
       if (job.starts < MOST_STARTS) store.write((tx) => repo.updateJob(tx, job.id, { state: 'waiting' }));
-      else end(job.id, 'failed', { code: 'internal', detail: 'The server stopped twice while it was made. Ask anew.' });
+      else end(job.id, 'failed', { code: 'internal', detail: 'It was broken off twice while it was made. Ask anew.' });
     }
   }
 
@@ -205,6 +208,7 @@ export function createPackJobs(deps: Deps, rendering: Rendering): PackJobs {
 
   async function runAll(): Promise<void> {
     await sweepWorkFolders(tmpFolder, { all: true });
+    takeUpLeftJobs();
     for (;;) {
       if (lifecycle.isStopping) return;
       const jobId = repo.nextWaitingJob(store.db);
@@ -224,7 +228,7 @@ export function createPackJobs(deps: Deps, rendering: Rendering): PackJobs {
       (error: unknown) => {
         running = null;
         log.error({ err: error }, 'the pack jobs stopped');
-        setTimeout(wake, RETRY_MS).unref();
+        setTimeout(wake, retryMs).unref();
       },
     );
   }

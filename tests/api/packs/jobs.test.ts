@@ -239,7 +239,7 @@ test('a stop of the server keeps a job for the next start; a killed one starts a
 
   server.store.write((tx) => tx.update(packJobs).set({ state: 'running', starts: 2, packId: null }).run());
   await restart().settled();
-  expect(stored()).toMatchObject({ state: 'failed', problemDetail: expect.stringContaining('stopped twice') });
+  expect(stored()).toMatchObject({ state: 'failed', problemDetail: expect.stringContaining('broken off twice') });
 });
 
 function workFolderName(): string {
@@ -269,4 +269,40 @@ test('a thread that ends without an answer fails the job, and the next one is ma
   const second = await service.make(server.actor('author'), ask, sent);
   await flaky.settled();
   expect((await showJob(author, second.jobId)).state).toBe('done');
+});
+
+test('a database that takes no writing at the end of a job leaves none running: it is made anew', async () => {
+  const { head } = await create(author, documentOf('Full'));
+  const rendering = createRenderThread(server.deps.config.buildDir);
+  const { store } = server.deps;
+  let isFull = false;
+  const full = {
+    ...server.deps,
+    store: {
+      ...store,
+      write: <T>(act: Parameters<typeof store.write<T>>[0]): T => {
+        if (isFull) throw new Error('database or disk is full');
+        return store.write(act);
+      },
+    },
+  };
+  let renderings = 0;
+  const jobs = createPackJobs(
+    full,
+    {
+      render: (...of) => {
+        isFull = ++renderings === 1;
+        return rendering.render(...of);
+      },
+    },
+    { retryMs: 20 },
+  );
+  const service = createPacksService(full, jobs);
+  const sent = { requestId: null, idempotencyKey: null };
+  const { jobId } = await service.make(server.actor('author'), { revisionId: head!.revisionId, benchId }, sent);
+  await jobs.settled();
+  expect(await showJob(author, jobId)).toMatchObject({ state: 'running' });
+  isFull = false;
+  expect(await untilJob(author, jobId)).toMatchObject({ state: 'done', startedAgain: true });
+  expect(renderings).toBe(2);
 });
