@@ -1,5 +1,8 @@
 import type { EngineExports, EngineRoom, SampleEngine } from './types';
 
+/** What createSampleEngine takes: a module built from other sources would answer other samples without a word. */
+export const kernelVersion = 1;
+
 const ROOMS = 3;
 const PAGE = 65536;
 
@@ -17,16 +20,21 @@ function worthOf(room: Room): number {
 
 /**
  * An engine over instances that `instantiate` makes, each with a memory of its own; at most three. lib/synth knows no
- * WebAssembly: who loads the module hands its exports over.
+ * WebAssembly: who loads the module hands its exports over. Throws where the module belongs to another version.
  */
 export function createSampleEngine(instantiate: () => EngineExports): SampleEngine {
   const rooms: Room[] = [];
   let clock = 0;
+  let first: EngineExports | null = instantiate();
+  const built = first.builtVersion?.() ?? 0;
+  if (built !== kernelVersion)
+    throw new Error(`The sample engine was built for version ${built}, not ${kernelVersion}. Build it anew.`);
 
   function openRoom(): Room {
     const best = rooms.reduce<Room | null>((a, b) => (a !== null && worthOf(a) >= worthOf(b) ? a : b), null);
     if (best !== null && (best.isResting || rooms.length >= ROOMS)) return best;
-    const exports = instantiate();
+    const exports = first ?? instantiate();
+    first = null;
     const room = {
       exports,
       start: exports.freeFrom(),

@@ -1,6 +1,8 @@
 /** What the sample engine's module exports, as far as it is used. Addresses and sizes are bytes in its own memory. */
 export interface EngineExports {
   readonly memory: { readonly buffer: ArrayBuffer; grow(pages: number): number };
+  /** The kernelVersion of the sources that the module was built from. */
+  builtVersion?(): number;
   /** The first byte that is free, a multiple of 4096. */
   freeFrom(): number;
   /**
