@@ -1,10 +1,10 @@
 import { contentDigest, documentDigest, intentDigest } from '@/lib/document/digest';
 import {
-  createFrameMeasure,
-  createReductionMeasure,
+  createPeakMeasure,
   deriveFigures,
   interpolationOf,
   pilotReach,
+  type PeakFigures,
   type ReductionReport,
   type WaveformContent,
 } from '@/lib/synth';
@@ -16,34 +16,47 @@ const number = (value: number, digits = 6): string => String(Number(value.toPrec
 const share = (ratio: number | null): string => (ratio === null ? 'none' : `${number(100 * ratio, 4)} %`);
 const decibels = (db: number | null): string => (db === null ? 'none' : `${db.toFixed(2)} dB`);
 
-function measureFrame(content: WaveformContent) {
-  const measuring = createFrameMeasure(content, { engine: sampleEngine() });
+function measure(content: WaveformContent): PeakFigures {
+  const measuring = createPeakMeasure(content, { engine: sampleEngine() });
   while (measuring.step());
   return measuring.result();
 }
 
 interface Reduction {
   report: ReductionReport;
-  /** Of the frame, over its own mean before and after. */
-  framePaprDbBefore: number | null;
+  before: PeakFigures;
 }
 
-function measureReduction(content: WaveformContent): Reduction | null {
-  const measuring = createReductionMeasure(content, { engine: sampleEngine() });
-  if (measuring === null) return null;
-  while (measuring.step());
-  const before = measureFrame({ ...content, peakReduction: { kind: 'none' } });
-  return { report: measuring.result(), framePaprDbBefore: before.power.paprDb };
+/** What stands beside each other before and after, of one rendering each. */
+function peakRows(figures: PeakFigures, title: string, words: string): [string, string][] {
+  const { paprDb, symbolPaprDb, atOneInHundredDb, atOneInThousandDb, occupiedHz, notchDb } = figures;
+  const worst = symbolPaprDb.reduce((most, db) => (db > most ? db : most), -Infinity);
+  const band = occupiedHz === null ? 'none' : `${number(occupiedHz)} Hz`;
+  return [
+    [title, `${decibels(paprDb)} over the frame${words}, worst symbol ${decibels(worst === -Infinity ? null : worst)}`],
+    ['  CCDF', `1 in 100 above ${decibels(atOneInHundredDb)}, 1 in 1000 above ${decibels(atOneInThousandDb)}`],
+    ['  spectrum', `99 % of the power in ${band}${notchDb === null ? '' : `, notch ${decibels(notchDb)}`}`],
+  ];
 }
+
+const describePeak = (figures: PeakFigures) => ({
+  frameDb: figures.paprDb,
+  activeFrameDb: figures.activePaprDb,
+  symbolsDb: Array.from(figures.symbolPaprDb, (db) => (Number.isNaN(db) ? null : db)),
+  atOneInHundredDb: figures.atOneInHundredDb,
+  atOneInThousandDb: figures.atOneInThousandDb,
+  occupiedHz: figures.occupiedHz,
+  notchDb: figures.notchDb,
+});
 
 const kindWords = { clipAndFilter: 'clip and filter', toneReservation: 'tone reservation' };
 const evmWords = (ratio: number | null): string => (ratio === null ? 'none' : `${number(100 * ratio, 3)} %`);
 
-function reductionRows({ report, framePaprDbBefore }: Reduction): [string, string][] {
+function reductionRows({ report, before }: Reduction): [string, string][] {
   const verdict = report.isReached ? 'reached' : `not reached, the best is ${decibels(report.reachedPaprDb)}`;
   const passes = report.passes === 1 ? '1 pass' : `${report.passes} passes`;
   return [
-    ['before lowering', `${decibels(framePaprDbBefore)} over the frame`],
+    ...peakRows(before, 'before lowering', ''),
     ['peak lowered', `${kindWords[report.kind]}, ${decibels(report.targetPaprDb)} over the mean ${verdict}, ${passes}`],
     [
       'its cost',
@@ -52,11 +65,12 @@ function reductionRows({ report, framePaprDbBefore }: Reduction): [string, strin
   ];
 }
 
-function describeReduction({ report, framePaprDbBefore }: Reduction, content: WaveformContent) {
+function describeReduction({ report, before }: Reduction, content: WaveformContent) {
   const { evm, evmGainFitted, ...figures } = report;
   return {
     ...figures,
-    framePaprDbBefore,
+    framePaprDbBefore: before.paprDb,
+    before: describePeak(before),
     evmDb: evm.all.db,
     evmGainFittedDb: evmGainFitted.all.db,
     inks: content.tray.flatMap(({ inkId, name }, ink) => {
@@ -74,8 +88,11 @@ export async function inspect(command: { document: string }): Promise<Outcome> {
   const { content } = document;
   const figures = deriveFigures(content);
   const reach = pilotReach(content);
-  const frame = measureFrame(content);
-  const reduction = measureReduction(content);
+  const peak = measure(content);
+  const reduction =
+    peak.reduction === null
+      ? null
+      : { report: peak.reduction, before: measure({ ...content, peakReduction: { kind: 'none' } }) };
   const { numerator, denominator } = figures.sampleClock;
   const clock = denominator === 1n ? `${numerator}` : `${numerator}/${denominator}`;
   const digests = {
@@ -102,10 +119,7 @@ export async function inspect(command: { document: string }): Promise<Outcome> {
       "pilots' reach",
       `delay ${pair.delayWindowSec === null ? 'none' : `${number(pair.delayWindowSec)} s`}, Doppler ${pair.dopplerHz === null ? 'none' : `${number(pair.dopplerHz)} Hz`}`,
     ]),
-    [
-      'PAPR',
-      `${decibels(frame.power.paprDb)} over the frame, interpolated ${interpolationOf(content.oversampling)} times`,
-    ],
+    ...peakRows(peak, 'PAPR', `, interpolated ${interpolationOf(content.oversampling)} times`),
     ...(reduction === null ? [] : reductionRows(reduction)),
   ];
   return done([document.about.title, ...rows.map(([name, value]) => `  ${name.padEnd(15)} ${value}`)], {
@@ -113,11 +127,7 @@ export async function inspect(command: { document: string }): Promise<Outcome> {
     digests,
     figures: { ...figures, sampleClock: [`${numerator}`, `${denominator}`] },
     pilotReach: reach,
-    papr: {
-      frameDb: frame.power.paprDb,
-      activeFrameDb: frame.power.activePaprDb,
-      interpolation: frame.interpolation,
-    },
+    papr: { ...describePeak(peak), interpolation: interpolationOf(content.oversampling) },
     peakReduction: reduction === null ? null : describeReduction(reduction, content),
   });
 }

@@ -12,6 +12,8 @@ import { createReductionMeasure, type ReductionReport } from './reductionMeasure
 export interface PeakFigures {
   /** Over the frame's own mean. */
   paprDb: number | null;
+  /** The same, symbols that send nothing left out of the mean. */
+  activePaprDb: number | null;
   /** Per symbol over its own mean, the worst of its repeats; NaN where silent. */
   symbolPaprDb: Float64Array;
   /** The symbol that holds the frame's peak. */
@@ -75,15 +77,20 @@ export function createPeakMeasure(
     },
     result() {
       const { power, symbolPaprDb, sampleCcdf } = frame().result();
-      const isSilent = power.paprDb === null;
+      // the curve's steps end above the highest sample
+      const level = (probability: number): number | null => {
+        const db = dbAtProbability(sampleCcdf, probability);
+        return power.paprDb === null || db === null ? null : Math.min(power.paprDb, db);
+      };
       return {
         paprDb: power.paprDb,
+        activePaprDb: power.activePaprDb,
         symbolPaprDb,
-        worstSymbol: isSilent ? null : power.peakSlot % content.symbolCount,
+        worstSymbol: power.paprDb === null ? null : power.peakSlot % content.symbolCount,
         meanPower: power.meanPower,
         sampleCcdf,
-        atOneInHundredDb: isSilent ? null : dbAtProbability(sampleCcdf, 1e-2),
-        atOneInThousandDb: isSilent ? null : dbAtProbability(sampleCcdf, 1e-3),
+        atOneInHundredDb: level(1e-2),
+        atOneInThousandDb: level(1e-3),
         ...spectrum().result(),
         reduction: reduction()?.result() ?? null,
       };
