@@ -250,7 +250,7 @@ const styles = StyleSheet.create({
     backgroundColor: color.rule.control,
   },
   litSheet: { maxHeight: '74%' },
-  head: { flexDirection: 'row', alignItems: 'center', gap: 12, paddingLeft: 16, paddingRight: 4, minHeight: 48 },
+  head: { flexDirection: 'row', alignItems: 'center', gap: 12, paddingLeft: 16, paddingRight: 8, minHeight: 48 },
   title: { flexGrow: 1, flexShrink: 1 },
   body: {
     flexGrow: 1,
