@@ -16,9 +16,17 @@ const number = (value: number, digits = 6): string => String(Number(value.toPrec
 const share = (ratio: number | null): string => (ratio === null ? 'none' : `${number(100 * ratio, 4)} %`);
 const decibels = (db: number | null): string => (db === null ? 'none' : `${db.toFixed(2)} dB`);
 
-function measure(content: WaveformContent): PeakFigures {
+/** A person at a terminal sees how far it is; Ctrl-C ends the program, nothing is written. */
+function measure(content: WaveformContent, words: string): PeakFigures {
   const measuring = createPeakMeasure(content, { engine: sampleEngine() });
-  while (measuring.step());
+  const isShown = process.stderr.isTTY;
+  let shown = Date.now();
+  while (measuring.step()) {
+    if (!isShown || Date.now() - shown < 200) continue;
+    shown = Date.now();
+    process.stderr.write(`\r\x1b[K${words} ${Math.floor((100 * measuring.doneSteps) / measuring.totalSteps)} %`);
+  }
+  if (isShown) process.stderr.write('\r\x1b[K');
   return measuring.result();
 }
 
@@ -88,11 +96,14 @@ export async function inspect(command: { document: string }): Promise<Outcome> {
   const { content } = document;
   const figures = deriveFigures(content);
   const reach = pilotReach(content);
-  const peak = measure(content);
+  const peak = measure(content, 'Measuring');
   const reduction =
     peak.reduction === null
       ? null
-      : { report: peak.reduction, before: measure({ ...content, peakReduction: { kind: 'none' } }) };
+      : {
+          report: peak.reduction,
+          before: measure({ ...content, peakReduction: { kind: 'none' } }, 'Measuring it before lowering'),
+        };
   const { numerator, denominator } = figures.sampleClock;
   const clock = denominator === 1n ? `${numerator}` : `${numerator}/${denominator}`;
   const digests = {
