@@ -40,6 +40,8 @@ export interface Reception {
 }
 
 const MEASURED_SAMPLES = 8388608;
+/** ρ of a reading that is taken without a look at the others. */
+const CLEARLY_RIGHT = 0.9;
 
 /** The file's clock N·M·Δf in Hz. */
 export function vectorClock(content: WaveformContent): number {
@@ -110,8 +112,16 @@ function* receive(options: CaptureOptions, enter: (stage: CaptureStage) => void)
     return refuse('noPilots', 'No pilot is painted: take the channel from all known cells.');
 
   const partSamples = partOf(cycle, ratio);
-  const tried: (FoundReading & { correlation: number; found: FoundFrame })[] = [];
+  const tried: Tried[] = [];
   let statistics: CaptureStatistics | null = null;
+  const measureTried = ({ reading, isMirrored, heard, seen, found }: Tried) =>
+    measure(
+      options,
+      { cycle, heard, captureHz, fileHz, clock, known, statistics: seen },
+      found,
+      { reading, isMirrored },
+      enter,
+    );
   for (const [reading, plain] of readings.entries()) {
     enter('reading');
     const seen: CaptureStatistics = yield* captureStatistics(plain, partSamples, options.hasRails);
@@ -126,19 +136,22 @@ function* receive(options: CaptureOptions, enter: (stage: CaptureStage) => void)
       const base = mixedSource(heard, content.frequencyOffsetHz / captureHz);
       const from = Math.min(seen.strongestAt, Math.max(0, plain.samples - partSamples));
       const found = yield* findFrame(base, cycle, ratio * content.oversampling, from, options.engine);
-      tried.push({ reading, isMirrored, correlation: found.correlation, found });
-      if (!found.isWorthReading) continue;
-      const measured: MeasuredCapture | null = yield* measure(
-        options,
-        { cycle, heard, captureHz, fileHz, clock, known, statistics: seen },
-        found,
-        { reading, isMirrored },
-        enter,
-      );
+      const one: Tried = { reading, isMirrored, correlation: found.correlation, heard, seen, found, isMeasured: false };
+      tried.push(one);
+      // nothing could be likelier: the other readings need not be looked at
+      if (found.correlation < CLEARLY_RIGHT || !found.isWorthReading) continue;
+      one.isMeasured = true;
+      const measured: MeasuredCapture | null = yield* measureTried(one);
       if (measured !== null) return measured;
     }
   }
   tried.sort((a, b) => b.correlation - a.correlation);
+  // a reading that is wrong may still look a little like the waveform (saturated words do): the likest is the right one
+  for (const one of tried) {
+    if (one.isMeasured || !one.found.isWorthReading) continue;
+    const measured: MeasuredCapture | null = yield* measureTried(one);
+    if (measured !== null) return measured;
+  }
   const best = tried[0]!;
   const plainCurve = tried.find(({ reading, isMirrored }) => reading === 0 && !isMirrored) ?? best;
   return {
@@ -150,6 +163,15 @@ function* receive(options: CaptureOptions, enter: (stage: CaptureStage) => void)
     curve: plainCurve.found.curve,
     frameSec: cycle.periodSamples / fileHz,
   };
+}
+
+/** A reading that was looked through. */
+interface Tried extends FoundReading {
+  correlation: number;
+  heard: SampleSource;
+  seen: CaptureStatistics;
+  found: FoundFrame;
+  isMeasured: boolean;
 }
 
 interface Heard {

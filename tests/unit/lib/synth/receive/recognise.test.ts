@@ -116,6 +116,13 @@ describe('readings', () => {
     const capture = measuredOf(content, data, { readings: [sourceOf(swapped), sourceOf(data)] });
     expect(capture.found).toEqual({ reading: 1, isMirrored: false });
   });
+
+  test('a first reading that looks a little alike gives way to one that looks more so', () => {
+    const buried = captureOf(content, { snrDb: -1, delaySamples: 200.6, frequencyOffsetHz: 500, seed: 2 }, 2 * frame);
+    const readings = [sourceOf(buried), sourceOf(data)];
+    expect(measuredOf(content, buried).correlation.value).toBeGreaterThan(0.4);
+    expect(measuredOf(content, data, { readings }).found).toEqual({ reading: 1, isMirrored: false });
+  });
 });
 
 describe('what is not the edition', () => {
