@@ -7,6 +7,8 @@ const PIECE_BYTES = 16384;
 const PIECES = 16;
 /** Bytes are looked at from here on: 8-bit words take even numbers, floats a multiple of eight. */
 const STEP_BYTES = 64;
+/** Of the words at either end of the scale. */
+const RAILED_SHARE = 0.1;
 
 /**
  * A file's layout from its bytes and what is expected (the pack's own layout, or null). A container says what it holds; raw words are told
@@ -89,6 +91,11 @@ function guessWords(bytes: Uint8Array, base: CaptureLayout): CaptureLayout {
       numberFormat: 'twosComplement',
       byteOrder: little > big ? 'little' : 'big',
     };
+  const railed = railedOrder(bytes);
+  if (railed !== null && base.word !== 'int8')
+    return { ...base, word: 'int16', bits: 16, align: 'right', numberFormat: 'twosComplement', byteOrder: railed };
+  const marked = markedOrder(bytes, base);
+  if (marked !== null) return { ...base, byteOrder: marked };
   const even = byteFacts(bytes, 0);
   const odd = byteFacts(bytes, 1);
   // low bits that are never set belong to the low byte of a left-aligned word
@@ -126,6 +133,41 @@ function guessWords(bytes: Uint8Array, base: CaptureLayout): CaptureLayout {
       ),
     };
   return base;
+}
+
+/** The order in which many 16-bit words stand at both ends of the scale, and none do in the other: of saturated words no byte is the quieter. */
+function railedOrder(bytes: Uint8Array): CaptureLayout['byteOrder'] | null {
+  let [lowLittle, highLittle, lowBig, highBig] = [0, 0, 0, 0];
+  const words = Math.floor(bytes.length / 2);
+  for (let i = 0; i < 2 * words; i += 2) {
+    const little = bytes[i]! | (bytes[i + 1]! << 8);
+    const big = bytes[i + 1]! | (bytes[i]! << 8);
+    if (little === 0x7fff) highLittle++;
+    else if (little === 0x8000 || little === 0x8001) lowLittle++;
+    if (big === 0x7fff) highBig++;
+    else if (big === 0x8000 || big === 0x8001) lowBig++;
+  }
+  const least = RAILED_SHARE * words;
+  const isLittle = Math.min(lowLittle, highLittle) > least;
+  const isBig = Math.min(lowBig, highBig) > least;
+  return words === 0 || isLittle === isBig ? null : isLittle ? 'little' : 'big';
+}
+
+/**
+ * The order of expected left-aligned words whose free low bits hold markers: those bits say less than the same bits of the high byte, while
+ * the bits above them are as busy as a low byte's. Null where nothing says so.
+ */
+function markedOrder(bytes: Uint8Array, base: CaptureLayout): CaptureLayout['byteOrder'] | null {
+  if (base.word !== 'int16' || base.align !== 'left' || base.bits >= 16 || base.bits <= 8) return null;
+  const free = (1 << (16 - base.bits)) - 1;
+  const [even, odd] = [byteFacts(bytes, 0), byteFacts(bytes, 1)];
+  if (even.zeroBits > 0 || odd.zeroBits > 0) return null;
+  const evenFree = byteFacts(bytes, 0, free).entropy;
+  const oddFree = byteFacts(bytes, 1, free).entropy;
+  const busy = 0.8 * (base.bits - 8);
+  if (evenFree < oddFree - 0.35 && even.entropy - evenFree > busy) return 'little';
+  if (oddFree < evenFree - 0.35 && odd.entropy - oddFree > busy) return 'big';
+  return null;
 }
 
 /**
@@ -172,13 +214,15 @@ interface ByteFacts {
   largest: number;
 }
 
-function byteFacts(bytes: Uint8Array, first: number): ByteFacts {
+/** Of every second byte, or of the bits of it that `mask` holds. */
+function byteFacts(bytes: Uint8Array, first: number, mask = 0xff): ByteFacts {
   const counts = new Float64Array(256);
   let all = 0;
   let total = 0;
   for (let i = first; i < bytes.length; i += 2) {
-    counts[bytes[i]!]!++;
-    all |= bytes[i]!;
+    const byte = bytes[i]! & mask;
+    counts[byte]!++;
+    all |= byte;
     total++;
   }
   let entropy = 0;

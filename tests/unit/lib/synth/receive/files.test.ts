@@ -109,6 +109,34 @@ describe('raw words are told apart by their bytes alone', () => {
     }
   });
 
+  test.each(['little', 'big'] as const)('saturated words are %s-endian by their limits', (byteOrder) => {
+    const layout: CaptureLayout = { ...plainLayout, byteOrder };
+    const words = new DataView(new ArrayBuffer(4 * COUNT));
+    for (let i = 0; i < 2 * COUNT; i++) {
+      const value = Math.max(-32768, Math.min(32767, Math.round(signal[i]! * 4e6)));
+      words.setInt16(2 * i, value, byteOrder === 'little');
+    }
+    for (const other of [null, plainLayout, { ...plainLayout, byteOrder: 'big' as const }])
+      expect(guessLayout(bytesOf(new Uint8Array(words.buffer)), other)).toMatchObject({ layout });
+  });
+
+  test.each([
+    [12, 'little'],
+    [12, 'big'],
+    [14, 'little'],
+    [10, 'big'],
+  ] as const)(
+    "markers in the low bits of the pack's %i bits do not turn its words over: %s-endian",
+    (bits, byteOrder) => {
+      const expected: CaptureLayout = { ...plainLayout, bits, align: 'left', byteOrder };
+      const marked = written(expected);
+      const low = byteOrder === 'little' ? 0 : 1;
+      for (let i = low; i < marked.length; i += 2)
+        marked[i] = marked[i]! | (i < 400 ? (1 << (16 - bits)) - 1 : (i >> 7) & 1);
+      expect(guessLayout(bytesOf(marked), expected)).toMatchObject({ layout: expected });
+    },
+  );
+
   test('the other readings swap bytes and number format', () => {
     const opening = captureReadings([bytesOf(written(plainLayout))], plainLayout);
     const { value } = opening.next();
