@@ -92,7 +92,8 @@ describe('renderings of random documents', () => {
             const start = r * layout.repeatSamples + layout.symbolStarts[l]!;
             const prefix = layout.prefixes[l]!;
             const head = samples.subarray(2 * start, 2 * (start + prefix));
-            expect(head).toEqual(samples.subarray(2 * (start + size), 2 * (start + size + prefix)));
+            const tail = samples.subarray(2 * (start + size), 2 * (start + size + prefix));
+            expect(head.every((value, i) => Object.is(value, tail[i]))).toBe(true);
             transform.forward(samples.subarray(2 * (start + prefix), 2 * (start + prefix + size)), bins);
             for (let p = 0; p < content.fftSize; p++) {
               const bin = (p - half + size) % size;
@@ -100,7 +101,8 @@ describe('renderings of random documents', () => {
               found[2 * p + 1] = (bins[2 * bin + 1]! * Math.sqrt(content.fftSize)) / size;
             }
             values.write(r, l, wanted);
-            for (let i = 0; i < wanted.length; i++) expect(Math.abs(found[i]! - wanted[i]!)).toBeLessThan(1e-9);
+            const largest = wanted.reduce((most, value, i) => Math.max(most, Math.abs(found[i]! - value)), 0);
+            expect(largest).toBeLessThan(1e-9);
           }
         }
       }),
