@@ -1,5 +1,7 @@
 import { parseArgs } from 'node:util';
 import { captureHelp, parseCaptureCommand, type CaptureCommand } from './captureArguments.ts';
+import { lowerHelp, parseLowerCommand, type LowerCommand } from './lowerArguments.ts';
+import { wordsOfWrong } from './optionValues.ts';
 
 export type Command =
   | { name: 'help' }
@@ -9,6 +11,7 @@ export type Command =
   | { name: 'verify'; pack: string; json: boolean }
   | { name: 'inspect'; document: string; json: boolean }
   | { name: 'fit'; document: string; bench: string; out: string | null; json: boolean }
+  | LowerCommand
   | CaptureCommand;
 
 export type Parsed = { ok: true; command: Command } | { ok: false; message: string; json: boolean };
@@ -30,7 +33,7 @@ export const helpText = `combwright: from a waveform document to a proven vector
       Checks the document against every limit of the bench profile, with what would
       mend each miss and what that costs. With --out the first remedies are applied
       and the mended document is written. Ends with 1 where a pack would be refused.
-${captureHelp}
+${lowerHelp}${captureHelp}
   --json      one JSON object on standard output instead of lines
   --help      this text
   --version   the program's and its arithmetic's version
@@ -51,20 +54,20 @@ export function parseCommand(argv: string[]): Parsed {
   const json = argv.includes('--json');
   const wrong = (message: string): Parsed => ({ ok: false, message, json });
   const isHelp = argv.includes('--help') || argv.includes('-h');
-  const capture = isHelp ? null : parseCaptureCommand(argv);
-  if (capture !== null) return capture.ok ? capture : wrong(capture.message);
+  const own = isHelp ? null : (parseCaptureCommand(argv) ?? parseLowerCommand(argv));
+  if (own !== null) return own.ok ? own : wrong(own.message);
   let values: { out?: string; json?: boolean; help?: boolean; version?: boolean };
   let positionals: string[];
   try {
     ({ values, positionals } = parseArgs({ args: argv, options, allowPositionals: true, strict: true }));
   } catch (error) {
-    return wrong((error as Error).message.split('. ')[0] ?? 'The command line could not be read');
+    return wrong(wordsOfWrong(error));
   }
   if (values.help) return { ok: true, command: { name: 'help' } };
   if (values.version) return { ok: true, command: { name: 'version' } };
   const [name, ...files] = positionals;
   if (name === undefined)
-    return wrong('A command is missing: render, sidedness, verify, inspect, fit, receive or impair');
+    return wrong('A command is missing: render, sidedness, verify, inspect, fit, lower, receive or impair');
   if (!['render', 'sidedness', 'fit'].includes(name) && values.out !== undefined)
     return wrong('--out belongs to render, sidedness and fit');
   switch (name) {

@@ -1,5 +1,6 @@
 import { parseArgs } from 'node:util';
 import { noImpairments, type CaptureLayout, type ChannelSource, type ChannelTap, type Impairments } from '@/lib/synth';
+import { number, Wrong, wordsOfWrong } from './optionValues.ts';
 
 export interface ReceiveCommand {
   name: 'receive';
@@ -83,22 +84,6 @@ const impairOptions = {
   'clock-error': { type: 'string' },
 } as const;
 
-/** A wrong value of an option; its message is for people. */
-class Wrong extends Error {}
-
-function number(name: string, text: string, least: number, most: number, isWhole = false): number {
-  const value = Number(text);
-  if (
-    text.trim() === '' ||
-    !Number.isFinite(value) ||
-    value < least ||
-    value > most ||
-    (isWhole && !Number.isInteger(value))
-  )
-    throw new Wrong(`--${name} is a${isWhole ? ' whole' : ''} number from ${least} to ${most}`);
-  return value;
-}
-
 function numbers(name: string, text: string, least: number, most: number, limit: number): number[] {
   const parts = text.split(':');
   if (parts.length < least || parts.length > most)
@@ -144,13 +129,7 @@ export function parseCaptureCommand(
   try {
     return { ok: true, command: name === 'receive' ? parseReceive(joined) : parseImpair(joined) };
   } catch (error) {
-    return {
-      ok: false,
-      message:
-        error instanceof Wrong
-          ? error.message
-          : ((error as Error).message.split('. ')[0] ?? 'The command line could not be read'),
-    };
+    return { ok: false, message: wordsOfWrong(error) };
   }
 }
 

@@ -6,6 +6,7 @@ import { helpText, parseCommand, type Command } from './arguments.ts';
 import { impair } from './impair.ts';
 import { fit } from './fit.ts';
 import { inspect } from './inspect.ts';
+import { lower } from './lower.ts';
 import { done, refused, usage, type Outcome } from './outcome.ts';
 import { receive } from './receive.ts';
 import { render } from './render.ts';
@@ -47,6 +48,8 @@ async function run(command: Command): Promise<Outcome> {
       return inspect(command);
     case 'fit':
       return fit(command);
+    case 'lower':
+      return lower(command, cancelSignal());
     case 'receive':
       return receive(command, cancelSignal());
     case 'impair':

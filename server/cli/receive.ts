@@ -20,27 +20,13 @@ import { openCapture, type OpenCapture } from './captureFiles.ts';
 import { done, refused, type Outcome } from './outcome.ts';
 import { openPack, type OpenPack } from './packContents.ts';
 import { reasonOf } from './readInputs.ts';
+import { runSteps } from './runSteps.ts';
 
 const stageWords: Record<CaptureStage, string> = {
   reading: 'Reading',
   synchronizing: 'Synchronizing',
   demodulating: 'Demodulating',
 };
-
-/** Runs steps until nothing is left; gives way to signals now and then. Null: cancelled. */
-async function runSteps(step: () => boolean, words: () => string, signal: AbortSignal): Promise<boolean> {
-  const isShown = process.stderr.isTTY;
-  let shown = Date.now();
-  while (step()) {
-    if (Date.now() - shown < 100) continue;
-    shown = Date.now();
-    if (isShown) process.stderr.write(`\r\x1b[K${words()}`);
-    await new Promise((next) => setImmediate(next));
-    if (signal.aborted) break;
-  }
-  if (isShown) process.stderr.write('\r\x1b[K');
-  return !signal.aborted;
-}
 
 const percent = (done: number): string => `${Math.floor(100 * done)} %`;
 const cancelled = () => refused('cancelled', 'Cancelled. Nothing was kept.');

@@ -56,24 +56,28 @@ export function trayWithPhases(tray: readonly Ink[], reach: PhaseReach, { rule, 
   });
 }
 
-/** The choices that differ in a content: none where no pilot and no tone is painted. */
-export function phaseChoices({ ruled, single }: PhaseReach): PhaseChoice[] {
-  const rules: PhaseChoice['rule'][] = ruled.length > 0 ? ['newman', 'schroeder'] : ['newman'];
+/** The choices that differ in a content: none where no pilot and no tone is painted. `rule`: only those of one. */
+export function phaseChoices({ ruled, single }: PhaseReach, rule?: PhaseChoice['rule']): PhaseChoice[] {
+  const both: PhaseChoice['rule'][] = ruled.length > 0 ? ['newman', 'schroeder'] : ['newman'];
+  const rules = rule === undefined ? both : [rule];
   const angles = single.length > 0 ? Array.from({ length: 360 / DEGREES_APART }, (_, i) => i * DEGREES_APART) : [0];
   if (ruled.length === 0 && single.length === 0) return [];
-  return rules.flatMap((rule) => angles.map((toneDeg) => ({ rule, toneDeg })));
+  return rules.flatMap((law) => angles.map((toneDeg) => ({ rule: law, toneDeg })));
 }
 
-/** Tries Newman's and Schroeder's phases on pilots and tones, and every 15° on tones that stand alone in their symbols. */
+/**
+ * Tries Newman's and Schroeder's phases on pilots and tones, and every 15° on tones that stand alone in their symbols.
+ * `rule`: only one of the two rules.
+ */
 export function createPhaseSearch(
   content: WaveformContent,
-  options: Pick<RenderOptions, 'cells' | 'engine'> = {},
+  options: Pick<RenderOptions, 'cells' | 'engine'> & { rule?: PhaseChoice['rule'] } = {},
 ): PeakSearch<PhaseChoice> & { reach: PhaseReach } {
   const reach = phaseReach(content, options.cells);
   const contentOf = (choice: PhaseChoice): WaveformContent => ({
     ...content,
     tray: trayWithPhases(content.tray, reach, choice),
   });
-  const search = createPeakSearch(content, phaseChoices(reach), contentOf, options);
+  const search = createPeakSearch(content, phaseChoices(reach, options.rule), contentOf, options);
   return Object.assign(search, { reach });
 }
