@@ -22,7 +22,8 @@ export function seamFinding(content: WaveformContent, facts: FitFacts, seam: Sea
       words: 'A burst has no wrap.',
     };
   }
-  const steps = seam === null ? '' : `${spell(seam.stepAtWrap, 2)}, elsewhere ${spell(seam.stepElsewhere, 2)}`;
+  const steps =
+    seam === null ? '' : `${spell(seam.stepAtWrap, 2)} of the RMS, elsewhere ${spell(seam.stepElsewhere, 2)}`;
   const measured =
     seam === null
       ? ''

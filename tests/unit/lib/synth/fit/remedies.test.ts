@@ -259,7 +259,7 @@ describe('seam, worked by hand', () => {
       0, 0, 1, 0, 3, 0, 0, 0, 1, 0, 3, 0,
     ]);
     const found = find('seam', smallContent(), {}, { known: { wave: { seam, symbolPeaks: null } } });
-    expect(found).toMatchObject({ title: 'Seam, step at the wrap', found: '1.64, elsewhere 1.10' });
+    expect(found).toMatchObject({ title: 'Seam, step at the wrap', found: '1.64 of the RMS, elsewhere 1.10' });
   });
 
   test('of a longer file the last and first 64 are kept, in order, however the blocks are cut', () => {
