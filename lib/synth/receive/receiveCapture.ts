@@ -126,6 +126,7 @@ function* receive(options: CaptureOptions, enter: (stage: CaptureStage) => void)
     enter('reading');
     const seen: CaptureStatistics = yield* captureStatistics(plain, partSamples, options.hasRails);
     statistics ??= seen;
+    if (seen.firstNotNumber !== null) continue; // bytes the wrong way round look so too
     if (seen.isSilent) {
       if (reading === 0) return refuse('silent', 'All samples are zero.');
       continue;
@@ -152,6 +153,7 @@ function* receive(options: CaptureOptions, enter: (stage: CaptureStage) => void)
     const measured: MeasuredCapture | null = yield* measureTried(one);
     if (measured !== null) return measured;
   }
+  if (statistics?.firstNotNumber != null) return refuse('notNumbers', notNumberWords(statistics.firstNotNumber));
   const best = tried[0]!;
   const plainCurve = tried.find(({ reading, isMirrored }) => reading === 0 && !isMirrored) ?? best;
   return {
@@ -326,6 +328,10 @@ function hasPilots(cycle: Cycle, known: KnownCells): boolean {
 function partOf(cycle: Cycle, ratio: number): number {
   const symbols = Math.max(1, Math.min(64, Math.ceil(3000 / cycle.usedCount)));
   return Math.ceil(symbols * cycle.layout.usefulSamples * ratio);
+}
+
+function notNumberWords(at: number): string {
+  return `The capture holds values that are not numbers (NaN or infinite), the first in sample ${at}, counted from 0.`;
 }
 
 function clockWords(captureHz: number, fileHz: number, clock: ClockRatio): string {

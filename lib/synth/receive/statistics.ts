@@ -13,6 +13,8 @@ export interface CaptureStatistics {
   /** The limit they stand at; null where nothing is clipped. */
   clipLevel: number | null;
   isSilent: boolean;
+  /** First sample with a component that is not a number, counted from 0; null where all are. Such components count as 0 here. */
+  firstNotNumber: number | null;
   /** First sample of the strongest part (the earliest that comes within 0.5 dB of it). */
   strongestAt: number;
 }
@@ -39,6 +41,7 @@ export function* captureStatistics(
   let largest = 0;
   let atLargest = 0; // samples with a component of that size
   let railed = 0;
+  let firstNotNumber: number | null = null;
   // energies of pieces, for the strongest part
   const piece = Math.max(64, Math.ceil(Math.max(partSamples / 8, source.samples / 1048576)));
   const energies = new Float64Array(Math.ceil(source.samples / piece));
@@ -49,8 +52,13 @@ export function* captureStatistics(
     let blockI = 0;
     let blockQ = 0;
     for (let i = 0; i < 2 * count; i += 2) {
-      const re = block[i]!;
-      const im = block[i + 1]!;
+      let re = block[i]!;
+      let im = block[i + 1]!;
+      if (Number.isNaN(re) || Number.isNaN(im)) {
+        firstNotNumber ??= first + i / 2;
+        re = Number.isNaN(re) ? 0 : re;
+        im = Number.isNaN(im) ? 0 : im;
+      }
       const here = re * re + im * im;
       blockPower += here;
       blockI += re;
@@ -81,6 +89,7 @@ export function* captureStatistics(
     clippedSamples,
     clipLevel: clippedSamples === 0 ? null : railed > 0 ? 1 : largest,
     isSilent: peakPower === 0,
+    firstNotNumber,
     strongestAt: strongestPart(energies, Math.max(1, Math.round(partSamples / piece))) * piece,
   };
 }

@@ -139,7 +139,7 @@ export interface UnrecognisedCapture {
 /** A capture that cannot be measured at all, with both numbers where there are two. */
 export interface RefusedCapture {
   kind: 'refused';
-  code: 'tooShort' | 'silent' | 'clock' | 'nothingPainted' | 'noPilots';
+  code: 'tooShort' | 'silent' | 'notNumbers' | 'clock' | 'nothingPainted' | 'noPilots';
   message: string;
 }
 

@@ -73,7 +73,7 @@ function turnedSource(source: SampleSource, { swapIq, negateQ }: CaptureLayout):
   };
 }
 
-/** Samples of words, full scale 1. Bytes behind the last whole sample are left out; floats that are no numbers read as 0. */
+/** Samples of words, full scale 1. Bytes behind the last whole sample are left out; floats too large for any signal read as 0, those that are no numbers as NaN. */
 function wordSource(sources: readonly ByteSource[], layout: CaptureLayout): SampleSource {
   const isSplit = layout.layout === 'split';
   const reader = createWordReader({ ...benchLike, ...layout, container: 'raw' });
@@ -103,7 +103,8 @@ function wordSource(sources: readonly ByteSource[], layout: CaptureLayout): Samp
         const target = out.subarray(2 * done, 2 * (done + part));
         reader.readSamples(bytes, 0, part, scale, target);
         if (layout.word === 'float32')
-          for (let i = 0; i < 2 * part; i++) if (!(Math.abs(target[i]!) < 1e18)) target[i] = 0;
+          for (let i = 0; i < 2 * part; i++)
+            if (!(Math.abs(target[i]!) < 1e18)) target[i] = Number.isFinite(target[i]!) ? 0 : NaN;
         done += part;
       }
     },

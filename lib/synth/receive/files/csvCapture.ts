@@ -6,6 +6,8 @@ const BLOCK_BYTES = 1048576;
 const STRIDE_ROWS = 4096;
 const LINE_FEED = 0x0a;
 const LINE_MOST = 4096;
+/** How programs write a value that is not a number, or an infinite one. */
+const NOT_A_NUMBER = /^[+-]?(nan|inf|infinity)$/i;
 
 /** A text capture's rows, indexed. */
 export interface CsvRows {
@@ -20,7 +22,7 @@ export type CsvOutcome = { ok: true; rows: CsvRows } | { ok: false; message: str
 
 const fieldsOf = (line: string): string[] => line.trim().split(/[,;\t ]+/);
 const isNumber = (field: string | undefined): boolean =>
-  field !== undefined && field !== '' && Number.isFinite(Number(field));
+  field !== undefined && field !== '' && (Number.isFinite(Number(field)) || NOT_A_NUMBER.test(field));
 
 /**
  * Finds the rows of a text file: numbers with a decimal dot, separated by comma, semicolon, tab or space; lines before the first row of
@@ -84,7 +86,7 @@ function chunked(bytes: Uint8Array): number[] {
   return Array.from(bytes.subarray(0, 16384));
 }
 
-/** The samples of indexed rows: I and Q as written, full scale 1. What is no number reads as 0. Split: `sourceQ` holds the other column. */
+/** The samples of indexed rows: I and Q as written, full scale 1. Text reads as 0, "nan" and "inf" as NaN. Split: `sourceQ` holds the other column. */
 export function csvSource(
   source: ByteSource,
   rows: CsvRows,
@@ -106,7 +108,8 @@ export function csvSource(
 
 function numberOf(field: string | undefined): number {
   const value = Number(field);
-  return Number.isFinite(value) ? value : 0;
+  if (Number.isFinite(value)) return value;
+  return field !== undefined && NOT_A_NUMBER.test(field) ? NaN : 0;
 }
 
 type RowReader = (first: number, count: number, found: (row: number, fields: string[]) => void) => void;

@@ -192,6 +192,18 @@ describe('containers say what they hold', () => {
     },
   );
 
+  test('values that are not numbers stay so: floats and text', () => {
+    const floats = bytesOf(new Uint8Array(Float32Array.of(0.5, NaN, Infinity, 1e30).buffer));
+    for (const [file, layout] of [
+      [floats, { ...plainLayout, word: 'float32' }],
+      [textOf('I,Q\n0.5,nan\n-inf,x\n'), { ...plainLayout, container: 'csv', word: 'float32' }],
+    ] as [ByteSource, CaptureLayout][]) {
+      const out = new Float64Array(4);
+      firstReading([file], layout).read(0, 2, out);
+      expect([...out]).toEqual([0.5, NaN, NaN, 0]);
+    }
+  });
+
   test('CSV with a head, with other separators, and columns named the other way round', () => {
     const rows = (separator: string, order: [number, number]): string =>
       Array.from({ length: COUNT }, (_, i) =>
