@@ -165,7 +165,7 @@ export { createDemodulator, type Demodulator, type FoundSymbol } from './receive
 
 // reception of captures
 export { createReception, type CaptureOptions, type CaptureStage, type Reception } from './receive/receiveCapture';
-export { causeWords, measuredSymbolsWords, recipeWords } from './receive/words';
+export { causeWords, clockBeyondWords, measuredSymbolsWords, notFollowedWords, recipeWords } from './receive/words';
 export { fileNullPower } from './receive/fileNulls';
 export { createLookAlikes, type Likeness, type LookAlikes } from './receive/lookAlike';
 export type {

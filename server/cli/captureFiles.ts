@@ -26,6 +26,8 @@ export interface OpenCapture {
   layout: CaptureLayout;
   /** What the file itself says; null where it says none. */
   clockHz: number | null;
+  /** True where nobody and nothing said how the words lie: the bytes alone did. */
+  isGuessed: boolean;
   close(): Promise<void>;
 }
 
@@ -72,15 +74,18 @@ export async function openCapture(
     }
   }
   let found = guessLayout(sources[0]!, expected, q !== null);
+  let isGuessed = found.ok && found.layout.container === 'raw' && !('byteOrder' in told || 'numberFormat' in told);
   if (pair !== null) {
     try {
       const { size } = await stat(pair.meta);
       if (size > mostMetaBytes) return await fail('too_large', `${pair.meta}: the metadata is too large.`);
       found = readSigmfMeta(await readFile(pair.meta, 'utf8'));
+      isGuessed = false;
     } catch (error) {
       if (file === pair.meta) return await fail('io_failed', `${pair.meta}: ${reasonOf(error)}.`);
     }
   }
   if (!found.ok) return await fail('invalid', `${names[0]}: ${found.message}`);
-  return { ok: true, capture: { sources, layout: { ...found.layout, ...told }, clockHz: found.clockHz, close } };
+  const layout = { ...found.layout, ...told };
+  return { ok: true, capture: { sources, layout, clockHz: found.clockHz, isGuessed, close } };
 }

@@ -1,11 +1,13 @@
 import {
   captureReadings,
   causeWords,
+  clockBeyondWords,
   createLookAlikes,
   createReception,
   layoutOfBench,
   layoutWords,
   measuredSymbolsWords,
+  notFollowedWords,
   recipeWords,
   type CaptureReading,
   type CaptureStage,
@@ -100,10 +102,13 @@ async function measure(
   const layout = layoutWords(capture.layout);
   if (result.kind === 'refused') return refused(result.code, `${command.capture}: ${result.message}`);
   if (result.kind === 'measured') {
-    const cause = causeWords(result.found, list[result.found.reading]!.words);
-    return done(measuredLines(command, pack, result, layout, cause), {
+    const { words } = list[result.found.reading]!;
+    // a guess of the bytes that did not hold is nobody's mistake
+    const cause = causeWords(result.found, capture.isGuessed ? '' : words);
+    const understood = words === '' ? layout : `${layout}, read ${words}`;
+    return done(measuredLines(command, pack, result, understood, cause), {
       pack: pack.words,
-      layout,
+      layout: understood,
       cause,
       recipe: recipeWords(result),
       result: plain(result),
@@ -152,9 +157,12 @@ async function measure(
 }
 
 /** A place may look alike while what follows does not. */
-function correlationWords({ value, needed }: { value: number; needed: number }): string {
-  if (value < needed) return `ρ ${value.toFixed(3)}; it takes ${needed.toFixed(2)}, a match is near 1.`;
-  return `ρ ${value.toFixed(3)} at one place, but the symbols around it could not be followed: is its clock as said (--clock), within 20 ppm?`;
+function correlationWords(correlation: { value: number; needed: number }): string {
+  const value = `ρ ${correlation.value.toFixed(3)}`;
+  const words = notFollowedWords(correlation, ' (--clock)');
+  return words === null
+    ? `${value}; it takes ${correlation.needed.toFixed(2)}, a match is near 1.`
+    : `${value} ${words}`;
 }
 
 function likenessWords(one: Likeness, pack: OpenPack, file: string): string {
@@ -242,9 +250,10 @@ function clockWords({ clockRatio: [p, q], clockErrorPpm, clockErrorSigmaPpm, isC
   const ratio = `${p}/${q} of the vector's`;
   if (clockErrorPpm === null) return `${ratio}, its error not measured: one symbol`;
   const sigma = clockErrorSigmaPpm === null ? '' : ` ± ${clockErrorSigmaPpm.toPrecision(2)}`;
+  const beyond = clockBeyondWords(clockErrorPpm);
   return isClockShared
     ? `${ratio}, no error seen (0${sigma} ppm)`
-    : `${ratio}, ${signed(clockErrorPpm, 3)}${sigma} ppm`;
+    : `${ratio}, ${signed(clockErrorPpm, 3)}${sigma} ppm${beyond === null ? '' : `: ${beyond} (--clock)`}`;
 }
 
 function nullWords({ notch, inside, worst }: MeasuredCapture['nulls']): string {

@@ -8,7 +8,14 @@ import { color } from '@/components/ui/theme';
 import { useBreakpoint } from '@/components/ui/useBreakpoint';
 import { OneOf } from '@/components/ui/WordsToPress';
 import { formatNumber, formatQuantity } from '@/lib/drawing/quantities';
-import { causeWords, measuredSymbolsWords, recipeWords, type MeasuredCapture, type NullPower } from '@/lib/synth';
+import {
+  causeWords,
+  clockBeyondWords,
+  measuredSymbolsWords,
+  recipeWords,
+  type MeasuredCapture,
+  type NullPower,
+} from '@/lib/synth';
 import { ChannelPage } from './ChannelPage';
 import { ConstellationPage } from './ConstellationPage';
 import { InksPage } from './InksPage';
@@ -245,7 +252,9 @@ function clockWords({ clockRatio: [p, q], clockErrorPpm, clockErrorSigmaPpm, isC
       ? null
       : formatNumber(3 * clockErrorSigmaPpm, 2);
   if (isClockShared) return `${ratio}no error seen${sigma === null ? '' : `, ± ${sigma} ppm`}`;
-  return `${ratio}${signedText(clockErrorPpm, formatNumber(Math.abs(clockErrorPpm), 2, true))} ppm`;
+  const beyond = clockBeyondWords(clockErrorPpm);
+  const error = `${ratio}${signedText(clockErrorPpm, formatNumber(Math.abs(clockErrorPpm), 2, true))} ppm`;
+  return beyond === null ? error : `${error}, ${beyond}`;
 }
 
 function clippedWords({ statistics }: MeasuredCapture): string {

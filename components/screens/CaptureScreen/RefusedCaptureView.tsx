@@ -5,7 +5,7 @@ import { color } from '@/components/ui/theme';
 import { useBreakpoint } from '@/components/ui/useBreakpoint';
 import type { Pack, PackDetail } from '@/lib/contracts/packs';
 import { formatNumber, quantityText } from '@/lib/drawing/quantities';
-import type { Likeness, UnrecognisedCapture } from '@/lib/synth';
+import { notFollowedWords, type Likeness, type UnrecognisedCapture } from '@/lib/synth';
 import { CheckFile } from '../PackScreen/CheckFile';
 import { editionWords, nameOf, shortNameOf } from './editionWords';
 
@@ -39,6 +39,7 @@ export function RefusedCaptureView({
   const rows = rowsOf(capture, pack, others, alike);
   const best = rows.find(({ isFound }) => isFound) ?? null;
   const { value, needed } = capture.correlation;
+  const notFollowed = notFollowedWords(capture.correlation);
   const known = [
     { what: 'vector of this pack', digest: pack.vectorDigest },
     { what: 'whole pack', digest: pack.fileDigest },
@@ -55,7 +56,9 @@ export function RefusedCaptureView({
             {formatNumber(value, 2, true)}
           </Text>
           <Text variant="small" style={styles.shrink}>
-            {`the best correlation; a match is near 1. No EVM is given below ${formatNumber(needed, 2, true)}.`}
+            {notFollowed === null
+              ? `the best correlation; a match is near 1. No EVM is given below ${formatNumber(needed, 2, true)}.`
+              : `the correlation ${notFollowed} No EVM is given.`}
           </Text>
         </View>
       </View>
@@ -199,7 +202,7 @@ function Correlation({
           width={widthPx}
           height={heightPx}
           role="img"
-          aria-label={`Correlation with ${own} stays below ${needed}`}
+          aria-label={`Correlation with ${own}, ${capture.correlation.value.toFixed(2)} at best; ${needed} is needed`}
           style={{ display: 'block', overflow: 'visible' }}
         >
           <g transform={`translate(${gutterPx})`}>

@@ -1,5 +1,6 @@
 import { amplitudeOfDecibels } from '../math/exponential';
-import type { FoundReading, MeasuredCapture } from './types';
+import { CLOCK_ERROR_MOST_PPM } from './clockRatio';
+import type { Correlation, FoundReading, MeasuredCapture } from './types';
 
 /** "1 frame", "11 frames". */
 function counted(count: number, one: string): string {
@@ -49,6 +50,20 @@ export function measuredSymbolsWords(capture: MeasuredCapture): string | null {
     return null;
   const shown = ranges.length > 6 ? [...ranges.slice(0, 6), 'and others'] : ranges;
   return `The capture holds whole ${ranges.length === 1 && !ranges[0]!.includes(' ') ? 'symbol' : 'symbols'} ${shown.join(', ')} only; of the others there is no figure.`;
+}
+
+/** Why a capture was not measured though its ρ is enough, to be said behind that ρ; null where ρ is too small. `option`: how to name the clock. */
+export function notFollowedWords({ value, needed }: Correlation, option = ''): string | null {
+  return value < needed
+    ? null
+    : `at one place, but the symbols around it could not be followed: is its clock as said${option}, within ${CLOCK_ERROR_MOST_PPM} ppm?`;
+}
+
+/** Where a clock error is beyond what one clock may be off; null within. */
+export function clockBeyondWords(clockErrorPpm: number): string | null {
+  return Math.abs(clockErrorPpm) > CLOCK_ERROR_MOST_PPM
+    ? `beyond the ${CLOCK_ERROR_MOST_PPM} ppm that one clock may be off; name the capture's clock`
+    : null;
 }
 
 /** What was wrong with the bytes or the axes, in a sentence; null where the plain reading was right. */

@@ -1,4 +1,10 @@
-import { createLookAlikes, type Impairments, type WaveformContent } from '@/lib/synth';
+import {
+  clockBeyondWords,
+  createLookAlikes,
+  notFollowedWords,
+  type Impairments,
+  type WaveformContent,
+} from '@/lib/synth';
 import {
   captureOf,
   clockOf,
@@ -181,6 +187,28 @@ describe('what is not the edition', () => {
       message: "A symbol has 80 samples at the capture's clock; the capture has 79.",
     });
   });
+});
+
+test('values that are not numbers are refused with the first place, unless another reading is right', () => {
+  const data = captureOf(content, { snrDb: 30, seed: 2 }, frame);
+  const broken = data.map((value, i) => (i === 2 * 17 + 1 || i > 400 ? NaN : value));
+  for (const holding of [broken, new Float64Array(2 * frame).fill(NaN)])
+    expect(receiveOf(content, holding)).toMatchObject({
+      kind: 'refused',
+      code: 'notNumbers',
+      message: `The capture holds values that are not numbers (NaN or infinite), the first in sample ${holding === broken ? 17 : 0}, counted from 0.`,
+    });
+  expect(measuredOf(content, broken, { readings: [sourceOf(broken), sourceOf(data)] }).found.reading).toBe(1);
+});
+
+test('ρ that is enough is not called too little', () => {
+  expect(notFollowedWords({ value: 0.29, needed: 0.3 })).toBeNull();
+  expect(notFollowedWords({ value: 0.41, needed: 0.3 })).toContain('at one place, but the symbols around it');
+});
+
+test.each([20, -20])('a clock error beyond %i ppm is said to be so', (ppm) => {
+  expect(clockBeyondWords(ppm)).toBeNull();
+  expect(clockBeyondWords(1.5 * ppm)).toContain('beyond the 20 ppm');
 });
 
 describe('captures shorter than the frame', () => {
