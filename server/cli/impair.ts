@@ -52,6 +52,17 @@ async function write(command: ImpairCommand, pack: OpenPack, signal: AbortSignal
   const { content } = pack.document;
   const { sampleClockHz, highestSubcarrier, lowestSubcarrier } = deriveFigures(content);
   const [p, q] = command.impairments.clockRatio;
+  if (source.samples !== pack.manifest.samples.fileSamples)
+    return refused(
+      'invalid',
+      `${command.pack}: the pack is damaged: its vector has ${counted(source.samples)}, its manifest says ${pack.manifest.samples.fileSamples}.`,
+    );
+  const captureHz = (sampleClockHz * p) / q;
+  if (Math.abs(command.impairments.frequencyOffsetHz) > captureHz / 2)
+    return refused(
+      'invalid',
+      `--offset ${command.impairments.frequencyOffsetHz} Hz is beyond half of the capture's clock of ${Number(captureHz.toPrecision(15))} Hz: it would come back at another place.`,
+    );
   const asked =
     command.samples ?? Math.ceil(((source.samples + Math.max(0, command.impairments.delaySamples)) * p) / q);
   const samples = command.samples ?? Math.min(asked, mostDefaultSamples);

@@ -93,6 +93,36 @@ test('impair replaces no pack, leaves no stale metadata, says what it cut', () =
   expect(run('impair', 'own.zip', '--out', 'd.bin', '--samples', '1').stdout).toContain('d.bin: 1 sample at');
 });
 
+test('impair refuses a damaged pack and an offset that would come back elsewhere', () => {
+  // the vector's entry is made shorter by what the zip's directory says of it
+  const bytes = readFileSync(path.join(folder, 'own.zip'));
+  const directory = bytes.indexOf(Buffer.from([0x50, 0x4b, 1, 2]));
+  const size = bytes.readUInt32LE(directory + 24);
+  bytes.writeUInt32LE(size - 400, directory + 20);
+  bytes.writeUInt32LE(size - 400, directory + 24);
+  writeFileSync(path.join(folder, 'short.zip'), bytes);
+  const short = run('impair', 'short.zip', '--out', 'f.bin');
+  expect([short.status, short.stdout]).toEqual([1, '']);
+  expect(short.stderr).toMatch(
+    /^short\.zip: the pack is damaged: its vector has \d+ samples, its manifest says \d+\.$/m,
+  );
+  const far = run('impair', 'own.zip', '--out', 'f.bin', '--offset', '960001');
+  expect(far).toMatchObject({ status: 1, stdout: '' });
+  expect(far.stderr).toContain("--offset 960001 Hz is beyond half of the capture's clock of 1920000 Hz");
+  expect(existsSync(path.join(folder, 'f.bin'))).toBe(false);
+});
+
+test('what is wrong with a capture is said, and nothing that is not', () => {
+  run('impair', 'own.zip', '--out', 'off.bin', '--clock-error', '60', '--samples', '6000');
+  expect(run('receive', 'off.bin', 'own.zip').stdout).toMatch(
+    /\+(59\.99|60\.0)\d* .*ppm: beyond the 20 ppm .*\(--clock\)/,
+  );
+  writeFileSync(path.join(folder, 'nan.bin'), Buffer.from(new Float32Array(8000).fill(NaN).buffer));
+  expect(run('receive', 'nan.bin', 'own.zip', '--word', 'float32').stderr).toBe(
+    'nan.bin: The capture holds values that are not numbers (NaN or infinite), the first in sample 0, counted from 0.\n',
+  );
+});
+
 test('a place alone that looks alike is not called too little', () => {
   const example = (name: string): string => path.resolve('lib/document/examples', name);
   const burst = [example('burst-with-markers.combwright.json'), example('bench-b-16-bit.bench.json')];
