@@ -1,5 +1,5 @@
 // Runs every check and test, then closes with "N passed, N failed" alone on a line. A failing step does not hide the others.
-import { spawnSync } from 'node:child_process';
+import { spawn, spawnSync } from 'node:child_process';
 import { mkdirSync, readFileSync, rmSync } from 'node:fs';
 import path from 'node:path';
 
@@ -16,6 +16,24 @@ function step(title, command, args, env = {}) {
   const { status } = spawnSync(command, args, { stdio: 'inherit', env: { ...process.env, ...env } });
   console.log(`== ${title}: ${status === 0 ? 'passed' : 'failed'} in ${((Date.now() - began) / 1000).toFixed(0)} s`);
   return status === 0;
+}
+/** A step beside others: its words are printed together when it has ended. */
+function stepAside(title, command, args) {
+  const began = Date.now();
+  const words = [];
+  const child = spawn(command, args, { stdio: ['ignore', 'pipe', 'pipe'] });
+  for (const stream of [child.stdout, child.stderr]) stream.on('data', (chunk) => words.push(chunk));
+  return new Promise((resolve) => {
+    child.on('error', (error) => {
+      words.push(Buffer.from(`${error.message}\n`));
+      resolve(false);
+    });
+    child.on('close', (status) => resolve(status === 0));
+  }).then((ok) => {
+    console.log(`\n== ${title}\n${Buffer.concat(words)}`.trimEnd());
+    console.log(`== ${title}: ${ok ? 'passed' : 'failed'} in ${((Date.now() - began) / 1000).toFixed(0)} s`);
+    return ok;
+  });
 }
 function count(ok, counts) {
   if (!counts) {
@@ -35,7 +53,11 @@ function read(file, pick) {
   }
 }
 
-for (const name of ['format', 'typecheck', 'lint', 'deps', 'dead']) count(step(name, 'npm', ['run', '--silent', name]));
+// The longest check beside the others: each takes one core.
+const check = (name) => stepAside(name, 'npm', ['run', '--silent', name]);
+const linted = check('lint');
+for (const name of ['format', 'typecheck', 'deps', 'dead']) count(await check(name));
+count(await linted);
 
 const jestOk = step('unit, property, golden, api, visual', 'node_modules/.bin/jest', [
   '--maxWorkers=2',
