@@ -6,8 +6,15 @@ import { expectAccessible } from './support/axe.ts';
 import { drawnDocument, expectMeasured, live } from './support/table.ts';
 import { expect, test } from './support/test.ts';
 
-const figureOf = async (page: Page, name: RegExp): Promise<number> =>
-  Number(/\. (\d+\.\d+) dB,/.exec((await page.getByRole('radio', { name }).getAttribute('aria-label'))!)![1]);
+/** What a way reached; a way that is tried anew has no figure for a moment. */
+async function figureOf(page: Page, name: RegExp): Promise<number> {
+  let label = '';
+  await expect(async () => {
+    label = (await page.getByRole('radio', { name }).getAttribute('aria-label'))!;
+    expect(label).toMatch(/\. \d+\.\d+ dB,/);
+  }).toPass({ timeout: 10_000 });
+  return Number(/\. (\d+\.\d+) dB,/.exec(label)![1]);
+}
 
 test('a peak is lowered: tried side by side, shown before it is applied, undone like any edit', async ({
   as,
