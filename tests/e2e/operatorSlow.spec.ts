@@ -35,17 +35,12 @@ test('peak limit and mean are readable within 3 s on a slow line, before any scr
     };
     look();
   });
-  // The line is slow, the machine may be busy: opened again where other work was in the way, and the best of three counts.
-  let readableMs = Infinity;
-  for (let tries = 0; tries < 3 && readableMs >= READABLE_MS; tries++) {
-    const opening = page.goto(`/packs/${pack.packId}`, { waitUntil: 'commit' });
-    await page.waitForFunction(() => 'sight' in window, null, { timeout: 30_000 });
-    const sight = await page.evaluate(() => (window as unknown as { sight: Sight }).sight);
-    expect(sight.text).toContain(pack.title);
-    await opening;
-    readableMs = Math.min(readableMs, sight.atMs);
-  }
-  expect(readableMs).toBeLessThan(READABLE_MS);
+  const opening = page.goto(`/packs/${pack.packId}`, { waitUntil: 'commit' });
+  await page.waitForFunction(() => 'sight' in window, null, { timeout: 30_000 });
+  const sight = await page.evaluate(() => (window as unknown as { sight: Sight }).sight);
+  expect(sight.atMs).toBeLessThan(READABLE_MS);
+  expect(sight.text).toContain(pack.title);
+  await opening;
   const html = await context.request.get(`/packs/${pack.packId}`);
   const body = await html.text();
   expect(Buffer.byteLength(body)).toBeLessThanOrEqual(25_000);
